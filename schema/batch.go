@@ -1,0 +1,193 @@
+package schema
+
+// BatchRows is about how many rows a batch holds. Readers may give fewer or
+// somewhat more; nothing that is written depends on where batches end.
+const BatchRows = 4096
+
+// Batch is a run of consecutive rows of the position file on their way through
+// the program: the reader fills Positions, the risk core Results, the writers
+// write both. Batches are recycled.
+type Batch struct {
+	N int
+	Positions
+	Results
+	Rejects []Reject // of rows with Status Rejected, in row order
+	Notes   []Note   // warnings, in row order
+}
+
+// Positions are the columns of the position file, row i of each slice being
+// one line. An absent number is NaN, date NoDate, minute NoMinute, text,
+// code or choice zero. Defaults are filled in by the reader, except the
+// currency, which is the underlying's.
+type Positions struct {
+	Line         []int64 // where the row stands in its file, see Source
+	LineID       Strings
+	Book         []Code
+	Underlying   []Code
+	Currency     []Code
+	Strategy     []Code
+	Instrument   []Choice
+	Quantity     []float64
+	Multiplier   []float64
+	OptionType   []Choice
+	Exercise     []Choice
+	Payoff       []Choice
+	Strike       []float64
+	Expiry       []Date
+	ExpiryMinute []int16
+	Vol          []float64 // decimal, per √year
+	Mark         []float64
+	Payout       []float64
+	BarrierType  []Choice
+	Barrier      []float64
+	Rebate       []float64
+	AverageStart []Date
+	AverageSoFar []float64
+	EntryPrice   []float64
+	Extra        []Strings // the house's own columns, in file order
+	Raw          Strings   // each row as it came, for rejects
+}
+
+// Results are what the risk core adds to each line. The units are those of the
+// data dictionary (see Lines).
+type Results struct {
+	Status    []Choice
+	Model     []Choice
+	VolSource []Choice
+	Curve     []Code // the discount curve used
+
+	// the inputs used
+	Spot, Forward, VolUsed, Rate, Carry, Time, FX []float64
+
+	// one unit of the contract
+	Price, Delta, Gamma, Vega, Theta, Rho, CarryRho, Vanna, Volga, Charm, Residual []float64
+
+	// the position, in its currency, and in the reporting currency
+	DeltaUnits     []float64
+	Measures       [NumMeasures][]float64
+	MeasuresInBase [NumMeasures][]float64
+}
+
+// Measure numbers the position measures that are given in the line's currency
+// and in the reporting currency, and added up over books.
+type Measure int
+
+// The position measures.
+const (
+	Value Measure = iota
+	DeltaCash
+	GammaCash1Pct
+	VegaCash1Pt
+	ThetaCash1D
+	ThetaCash1BD
+	RhoCash1BP
+	NumMeasures
+)
+
+// MeasureNames are the column names of the position measures; with "_base"
+// behind it, of the measure in the reporting currency.
+var MeasureNames = [NumMeasures]string{
+	"value", "delta_cash", "gamma_cash_1pct", "vega_cash_1pt", "theta_cash_1d", "theta_cash_1bd", "rho_cash_1bp",
+}
+
+// Floats returns pointers to all float columns of the results, for resizing
+// and moving rows.
+func (r *Results) Floats() []*[]float64 {
+	s := []*[]float64{
+		&r.Spot, &r.Forward, &r.VolUsed, &r.Rate, &r.Carry, &r.Time, &r.FX,
+		&r.Price, &r.Delta, &r.Gamma, &r.Vega, &r.Theta, &r.Rho, &r.CarryRho, &r.Vanna, &r.Volga, &r.Charm, &r.Residual,
+		&r.DeltaUnits,
+	}
+	for m := range r.Measures {
+		s = append(s, &r.Measures[m], &r.MeasuresInBase[m])
+	}
+	return s
+}
+
+// Floats returns pointers to all float columns of the positions.
+func (p *Positions) Floats() []*[]float64 {
+	return []*[]float64{&p.Quantity, &p.Multiplier, &p.Strike, &p.Vol, &p.Mark, &p.Payout, &p.Barrier, &p.Rebate, &p.AverageSoFar, &p.EntryPrice}
+}
+
+// Resize makes every fixed-width column n rows long, keeping memory, and
+// empties the text columns, the rejects and the notes. The values are left over
+// from before: the reader sets those of Positions, the risk core those of Results.
+func (b *Batch) Resize(n int) {
+	b.N = n
+	for _, s := range append(b.Positions.Floats(), b.Results.Floats()...) {
+		*s = resized(*s, n)
+	}
+	for _, s := range b.codes() {
+		*s = resized(*s, n)
+	}
+	for _, s := range b.choices() {
+		*s = resized(*s, n)
+	}
+	b.Line = resized(b.Line, n)
+	b.Expiry, b.AverageStart = resized(b.Expiry, n), resized(b.AverageStart, n)
+	b.ExpiryMinute = resized(b.ExpiryMinute, n)
+	for _, s := range b.texts() {
+		s.Reset()
+	}
+	b.Rejects, b.Notes = b.Rejects[:0], b.Notes[:0]
+}
+
+// Compact drops the rows with Status Rejected; the others keep their order.
+func (b *Batch) Compact() {
+	keep := make([]int32, 0, b.N)
+	for i, s := range b.Status {
+		if s != Rejected {
+			keep = append(keep, int32(i))
+		}
+	}
+	if len(keep) == b.N {
+		return
+	}
+	b.N = len(keep)
+	for _, s := range append(b.Positions.Floats(), b.Results.Floats()...) {
+		*s = picked(*s, keep)
+	}
+	for _, s := range b.codes() {
+		*s = picked(*s, keep)
+	}
+	for _, s := range b.choices() {
+		*s = picked(*s, keep)
+	}
+	b.Line = picked(b.Line, keep)
+	b.Expiry, b.AverageStart = picked(b.Expiry, keep), picked(b.AverageStart, keep)
+	b.ExpiryMinute = picked(b.ExpiryMinute, keep)
+	for _, s := range b.texts() {
+		s.Start, s.End = picked(s.Start, keep), picked(s.End, keep)
+	}
+}
+
+func (b *Batch) codes() []*[]Code {
+	return []*[]Code{&b.Book, &b.Underlying, &b.Currency, &b.Strategy, &b.Curve}
+}
+
+func (b *Batch) choices() []*[]Choice {
+	return []*[]Choice{&b.Instrument, &b.OptionType, &b.Exercise, &b.Payoff, &b.BarrierType, &b.Status, &b.Model, &b.VolSource}
+}
+
+func (b *Batch) texts() []*Strings {
+	s := []*Strings{&b.LineID, &b.Raw}
+	for i := range b.Extra {
+		s = append(s, &b.Extra[i])
+	}
+	return s
+}
+
+func resized[T any](s []T, n int) []T {
+	if cap(s) < n {
+		return make([]T, n, n+n/4)
+	}
+	return s[:n]
+}
+
+// picked moves the rows keep (ascending) to the front of s.
+func picked[T any](s []T, keep []int32) []T {
+	for to, from := range keep {
+		s[to] = s[from]
+	}
+	return s[:len(keep)]
+}

@@ -1,0 +1,85 @@
+package schema
+
+// RejectCode is one of the closed list of reasons for refusing a row.
+type RejectCode string
+
+// Reasons for refusing a row. RejectCodes documents each.
+const (
+	BadRow            RejectCode = "bad_row"
+	BadText           RejectCode = "bad_text"
+	MissingValue      RejectCode = "missing_value"
+	BadNumber         RejectCode = "bad_number"
+	BadDate           RejectCode = "bad_date"
+	BadChoice         RejectCode = "bad_choice"
+	OutOfRange        RejectCode = "out_of_range"
+	DuplicateKey      RejectCode = "duplicate_key"
+	DuplicateLineID   RejectCode = "duplicate_line_id"
+	UnknownUnderlying RejectCode = "unknown_underlying"
+	CurrencyMismatch  RejectCode = "currency_mismatch"
+	KindMismatch      RejectCode = "kind_mismatch"
+	NoRate            RejectCode = "no_rate"
+	NoVol             RejectCode = "no_vol"
+	NoFX              RejectCode = "no_fx"
+	BadMarketData     RejectCode = "bad_market_data"
+	Unsupported       RejectCode = "unsupported"
+	NotFinite         RejectCode = "not_finite"
+)
+
+// CodeDoc is the meaning of a code.
+type CodeDoc struct {
+	Code string
+	Doc  string
+}
+
+// RejectCodes is the closed list of reject codes.
+var RejectCodes = []CodeDoc{
+	{string(BadRow), "the row does not have the columns of its header, or cannot be read as a row"},
+	{string(BadText), "a text is not valid UTF-8, holds a control character, or is too long"},
+	{string(MissingValue), "a cell that this line needs is empty"},
+	{string(BadNumber), "a cell is not a finite number"},
+	{string(BadDate), "a cell is not a date of the declared format"},
+	{string(BadChoice), "a cell is not one of the words of a closed list"},
+	{string(OutOfRange), "a number or a date is outside the range that makes sense for its column"},
+	{string(DuplicateKey), "a market row has the key of an earlier row"},
+	{string(DuplicateLineID), "line_id stands on an earlier row; the earlier row counts"},
+	{string(UnknownUnderlying), "the underlying is not in underlyings"},
+	{string(CurrencyMismatch), "the line's currency is not the underlying's"},
+	{string(KindMismatch), "the instrument does not exist on this kind of underlying"},
+	{string(NoRate), "there is no zero curve for the line"},
+	{string(NoVol), "there is no volatility for the line: not its own, no surface, no flat volatility"},
+	{string(NoFX), "there is no rate into the reporting currency"},
+	{string(BadMarketData), "the market data that the line needs has a refused row"},
+	{string(Unsupported), "this version does not price such a line"},
+	{string(NotFinite), "the result is not a finite number"},
+}
+
+// NoteCode is one of the closed list of warnings.
+type NoteCode string
+
+// Warnings. NoteCodes documents each.
+const (
+	FileNotUsed     NoteCode = "file_not_used"
+	ColumnEmptyName NoteCode = "column_without_name"
+	BookNotInTree   NoteCode = "book_not_in_tree"
+	CarryIgnored    NoteCode = "carry_ignored"
+	VolFallback     NoteCode = "vol_fallback"
+	CurveFlatEnd    NoteCode = "curve_flat_end"
+	SurfaceFlatEnd  NoteCode = "surface_flat_end"
+	SurfaceCalendar NoteCode = "surface_calendar"
+	NoHolidays      NoteCode = "no_holidays"
+	FormatDetected  NoteCode = "format_detected"
+)
+
+// NoteCodes is the closed list of warnings.
+var NoteCodes = []CodeDoc{
+	{string(FileNotUsed), "a file of the snapshot folder is not used by this version"},
+	{string(ColumnEmptyName), "a column has no name in the header and is dropped"},
+	{string(BookNotInTree), "a book is not in books: it is added up as a book of its own at the top"},
+	{string(CarryIgnored), "carry_yield of an underlying of kind future has no meaning and is not used"},
+	{string(VolFallback), "the underlying has no surface: its flat volatility was used"},
+	{string(CurveFlatEnd), "an expiry lies beyond the ends of the zero curve: the end rate was used"},
+	{string(SurfaceFlatEnd), "an expiry lies beyond the ends of the surface: the end slice was used"},
+	{string(SurfaceCalendar), "total variance of a surface falls between two expiries at the money"},
+	{string(NoHolidays), "no holidays are given for the calendar: business days are Monday to Friday"},
+	{string(FormatDetected), "the encoding of a file was detected, not declared"},
+}

@@ -1,0 +1,41 @@
+package schema
+
+// Config is run.toml, checked, with the command line laid over it.
+type Config struct {
+	AsOf              Moment
+	ReportingCurrency string
+	Calendar          string // "" is Monday to Friday
+
+	CSV      CSVConfig
+	Vols     VolsConfig
+	Workbook WorkbookConfig
+	Parquet  ParquetConfig
+
+	// Columns maps, table by table, our column names to the house's own headers.
+	Columns map[string]map[string]string
+}
+
+// CSVConfig says how the house writes its text files.
+type CSVConfig struct {
+	Delimiter    byte   // 0: comma
+	DecimalComma bool   // 1.234,5 rather than 1,234.5
+	DateFormat   string // in the letters YYYY, MM, DD; "" is YYYY-MM-DD
+}
+
+// VolsConfig says how volatilities are written.
+type VolsConfig struct {
+	Percent bool // 20 stands for 0.20
+}
+
+// WorkbookConfig bounds the workbook.
+type WorkbookConfig struct {
+	MaxLines int // rows of the Lines sheet; the rest is in the lines table
+}
+
+// ParquetConfig says how Parquet is written.
+type ParquetConfig struct {
+	Compression string // zstd, snappy, gzip or none
+}
+
+// DefaultMaxLines is the default of WorkbookConfig.MaxLines.
+const DefaultMaxLines = 50_000
