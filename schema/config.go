@@ -20,6 +20,7 @@ type CSVConfig struct {
 	Delimiter    byte   // 0: comma
 	DecimalComma bool   // 1.234,5 rather than 1,234.5
 	DateFormat   string // in the letters YYYY, MM, DD; "" is YYYY-MM-DD
+	Encoding     string // utf-8, windows-1252 or utf-16; "" is utf-8
 }
 
 // VolsConfig says how volatilities are written.
