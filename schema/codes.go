@@ -66,6 +66,7 @@ const (
 	CurveFlatEnd    NoteCode = "curve_flat_end"
 	SurfaceFlatEnd  NoteCode = "surface_flat_end"
 	SurfaceCalendar NoteCode = "surface_calendar"
+	SliceExpired    NoteCode = "slice_expired"
 	NoHolidays      NoteCode = "no_holidays"
 	FormatDetected  NoteCode = "format_detected"
 )
@@ -80,6 +81,7 @@ var NoteCodes = []CodeDoc{
 	{string(CurveFlatEnd), "an expiry lies beyond the ends of the zero curve: the end rate was used"},
 	{string(SurfaceFlatEnd), "an expiry lies beyond the ends of the surface: the end slice was used"},
 	{string(SurfaceCalendar), "total variance of a surface falls between two expiries at the money"},
+	{string(SliceExpired), "a surface has slices that are not after as_of: they are not used"},
 	{string(NoHolidays), "no holidays are given for the calendar: business days are Monday to Friday"},
 	{string(FormatDetected), "the encoding of a file was detected, not declared"},
 }

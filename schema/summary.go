@@ -10,10 +10,11 @@ type Summary struct {
 	Books       []BookTotal       // the tree, depth first, children by name
 	Underlyings []UnderlyingTotal // by name
 	Currencies  []CurrencyTotal   // by name
-	Rejects     int64
-	RejectCount []CodeCount // by code, in the order of RejectCodes
-	Notes       []Note      // counted together, by code and subject
-	MaxResidual float64     // largest pde_residual of a priced option; NaN without one
+	Rejects     int64             // refused position rows
+	Faults      int64             // refused market rows; they are in rejects.csv, not in RowsIn
+	RejectCount []CodeCount       // by code, in the order of RejectCodes
+	Notes       []Note            // counted together, by code and subject
+	MaxResidual float64           // largest pde_residual of a priced option; NaN without one
 	Inputs      []InputFile
 }
 
