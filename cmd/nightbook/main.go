@@ -1,0 +1,17 @@
+// Command nightbook turns a day's position file and market snapshot into the
+// risk a desk signs off: see the README of this module, or nightbook --help.
+package main
+
+import (
+	"context"
+	"os"
+	"os/signal"
+	"syscall"
+)
+
+func main() {
+	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
+	status := run(ctx, os.Args, os.Stdout, os.Stderr)
+	stop()
+	os.Exit(status)
+}

@@ -1,0 +1,219 @@
+package main
+
+import (
+	"path/filepath"
+	"slices"
+
+	"nightbook/risk/vec"
+	"nightbook/schema"
+	"nightbook/writer"
+	"nightbook/writer/report"
+)
+
+// outputs are the files of a run. With options.out == "" there are none: refused
+// rows are listed on options.check, and the rest is dropped.
+type outputs struct {
+	o      *options
+	cfg    *schema.Config
+	dicts  *schema.Dicts
+	folder *writer.Folder
+	frame  schema.Frame
+
+	lines      []*tableFile // one a format
+	rejected   *tableFile
+	report     *report.Report
+	reportFile *writer.File
+}
+
+// tableFile is a table on its way to a file.
+type tableFile struct {
+	writer.Table
+	file *writer.File
+	rows int64
+}
+
+func (t *tableFile) write(f *schema.Frame) error {
+	t.rows += int64(f.N)
+	return t.Write(f)
+}
+
+func (t *tableFile) close() error {
+	if err := t.Close(); err != nil || t.file == nil {
+		return err
+	}
+	t.file.SetRows(t.rows)
+	return t.file.Close()
+}
+
+func newOutputs(o *options, cfg *schema.Config, dicts *schema.Dicts, extra []string) (*outputs, error) {
+	out := &outputs{o: o, cfg: cfg, dicts: dicts}
+	var err error
+	if o.out == "" {
+		w, err := writer.NewTable("csv", o.check, schema.RejectsOut, writer.Options{})
+		out.rejected = &tableFile{Table: w}
+		return out, err
+	}
+	if out.folder, err = writer.NewFolder(o.out, cfg.AsOf.Day.String(), o.replace); err != nil {
+		return nil, err
+	}
+	if err := out.open(schema.LinesTable(extra)); err != nil {
+		out.abort()
+		return nil, err
+	}
+	return out, nil
+}
+
+func (out *outputs) open(lines schema.Table) error {
+	for _, format := range out.tableFormats() {
+		t, err := out.table(lines, format)
+		if err != nil {
+			return err
+		}
+		out.lines = append(out.lines, t)
+	}
+	var err error
+	if out.rejected, err = out.table(schema.RejectsOut, "csv"); err != nil {
+		return err
+	}
+	if slices.Contains(out.o.formats, "xlsx") {
+		if out.reportFile, err = out.folder.Create("report.xlsx"); err != nil {
+			return err
+		}
+		out.report, err = report.New(out.reportFile, out.cfg, lines)
+	}
+	return err
+}
+
+func (out *outputs) tableFormats() []string {
+	return slices.DeleteFunc(slices.Clone(out.o.formats), func(f string) bool { return f == "xlsx" })
+}
+
+func (out *outputs) table(t schema.Table, format string) (*tableFile, error) {
+	f, err := out.folder.Create(t.Name + "." + format)
+	if err != nil {
+		return nil, err
+	}
+	w, err := writer.NewTable(format, f, t, writer.Options{
+		Compression: out.cfg.Parquet.Compression,
+		Workers:     out.o.workers,
+		Metadata: map[string]string{
+			"nightbook.version": version, "nightbook.schema_revision": schema.Revision,
+			"nightbook.as_of": out.cfg.AsOf.String(), "nightbook.reporting_currency": out.cfg.ReportingCurrency,
+			"nightbook.caution": schema.Caution,
+		},
+	})
+	return &tableFile{Table: w, file: f}, err
+}
+
+// batch writes a compacted batch and its refused rows.
+func (out *outputs) batch(b *schema.Batch) error {
+	if err := out.rejects(b.Rejects); err != nil || out.folder == nil {
+		return err
+	}
+	b.Frame(out.dicts, &out.frame)
+	for _, t := range out.lines {
+		if err := t.write(&out.frame); err != nil {
+			return err
+		}
+	}
+	if out.report != nil {
+		return out.report.Lines(&out.frame)
+	}
+	return nil
+}
+
+// rejects writes refused rows.
+func (out *outputs) rejects(rejects []schema.Reject) error {
+	if len(rejects) == 0 {
+		return nil
+	}
+	f := schema.RejectsFrame(rejects)
+	if err := out.rejected.write(f); err != nil {
+		return err
+	}
+	if out.report != nil {
+		return out.report.Rejects(f)
+	}
+	return nil
+}
+
+// finish writes what is known only at the end, and makes the folder appear.
+func (out *outputs) finish(s *schema.Summary) error {
+	for _, t := range append(out.lines, out.rejected) {
+		if err := t.close(); err != nil {
+			return err
+		}
+	}
+	if out.folder == nil {
+		return nil
+	}
+	whole := func(t schema.Table, format string, f *schema.Frame) error {
+		w, err := out.table(t, format)
+		if err != nil {
+			return err
+		}
+		if err := w.write(f); err != nil {
+			return err
+		}
+		return w.close()
+	}
+	for _, format := range out.tableFormats() {
+		if err := whole(schema.BooksOut, format, s.BooksFrame()); err != nil {
+			return err
+		}
+		if err := whole(schema.UnderlyingsOut, format, s.UnderlyingsFrame()); err != nil {
+			return err
+		}
+		if err := whole(schema.CurrenciesOut, format, s.CurrenciesFrame()); err != nil {
+			return err
+		}
+	}
+	if err := whole(schema.WarningsOut, "csv", schema.NotesFrame(s.Notes)); err != nil {
+		return err
+	}
+	if out.report != nil {
+		if err := out.report.Finish(s); err != nil {
+			return err
+		}
+		if err := out.reportFile.Close(); err != nil {
+			return err
+		}
+	}
+	return out.commit(s)
+}
+
+func (out *outputs) commit(s *schema.Summary) error {
+	manifest, err := writer.Manifest(s, vec.Tier(), out.folder.Outputs())
+	if err != nil {
+		return err
+	}
+	f, err := out.folder.Create("manifest.json")
+	if err != nil {
+		return err
+	}
+	if _, err := f.Write(manifest); err != nil {
+		return err
+	}
+	if err := f.Close(); err != nil {
+		return err
+	}
+	return out.folder.Commit()
+}
+
+// abort removes what is unfinished; after finish it does nothing.
+func (out *outputs) abort() {
+	if out.report != nil {
+		out.report.Abort()
+	}
+	if out.folder != nil {
+		out.folder.Abort()
+	}
+}
+
+// resultFolder is where a run's results stand, "" where it writes none.
+func (o *options) resultFolder(cfg *schema.Config) string {
+	if o.out == "" {
+		return ""
+	}
+	return filepath.Join(o.out, cfg.AsOf.Day.String())
+}

@@ -1,0 +1,121 @@
+package main
+
+import (
+	"context"
+	"fmt"
+	"time"
+
+	"nightbook/reader"
+	"nightbook/risk"
+	"nightbook/risk/aggregate"
+	"nightbook/risk/market"
+	"nightbook/schema"
+)
+
+// job is a piece of the position file on its way through the program.
+type job struct {
+	piece reader.Piece
+	batch schema.Batch
+}
+
+// pipeline is the whole run: open → read → price → aggregate → write.
+//
+// With o.out == "" everything is read and priced, and nothing written.
+func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, error) {
+	folder, err := reader.OpenFolder(o.snapshot)
+	if err != nil {
+		return nil, err
+	}
+	cfg, err := folder.Config(o.asOf)
+	if err != nil {
+		return nil, err
+	}
+	raw, err := folder.Market(cfg)
+	if err != nil {
+		return nil, err
+	}
+	dicts := schema.NewDicts()
+	mkt, marketNotes, err := market.New(cfg, raw, dicts)
+	if err != nil {
+		return nil, err
+	}
+	totals, err := aggregate.NewTotals(raw.Books, dicts)
+	if err != nil {
+		return nil, err
+	}
+	positions, err := folder.Positions(cfg, dicts)
+	if err != nil {
+		return nil, err
+	}
+	defer positions.Close()
+	out, err := newOutputs(o, cfg, dicts, positions.Extra())
+	if err != nil {
+		return nil, err
+	}
+	defer out.abort()
+
+	engine := risk.NewEngine(mkt, dicts)
+	jobs := make([]*job, 2*o.workers+2)
+	for i := range jobs {
+		jobs[i] = new(job)
+	}
+	binders := make([]*reader.Binder, o.workers)
+	scratch := make([]*risk.Worker, o.workers)
+	for i := range o.workers {
+		binders[i], scratch[i] = positions.NewBinder(), risk.NewWorker()
+	}
+	gate := newGate(positions, raw.Faults, o.strict)
+	if err := gate.market(out); err != nil {
+		return nil, err
+	}
+	bar := con.progress(positions.Size())
+	err = ordered(ctx, jobs, o.workers,
+		func(j *job) error { return positions.Next(&j.piece) },
+		func(worker int, j *job) error {
+			if err := binders[worker].Bind(&j.piece, &j.batch); err != nil {
+				return err
+			}
+			engine.Price(&j.batch, scratch[worker])
+			return nil
+		},
+		func(j *job) error {
+			if err := gate.rows(&j.batch); err != nil {
+				return err
+			}
+			totals.AddRejects(&j.batch)
+			j.batch.Compact()
+			totals.AddLines(&j.batch, engine.Kind)
+			bar.reach(j.piece.Bytes)
+			return out.batch(&j.batch)
+		})
+	bar.finish()
+	if err != nil {
+		return nil, err
+	}
+
+	s := &schema.Summary{Config: cfg, Version: version, RowsIn: gate.rowsIn, Faults: int64(len(raw.Faults)), Inputs: folder.Inputs()}
+	s.Notes = gate.notes(folder.Notes(), raw.Notes, marketNotes)
+	totals.Summary(s)
+	if !s.RowsAccounted() {
+		return nil, fmt.Errorf("%d rows came in, but %d were priced, %d expired and %d rejected: nothing is written, because rows were lost; this is a fault of the program",
+			s.RowsIn, s.Total.Priced, s.Total.Expired, s.Rejects)
+	}
+	if err := ctx.Err(); err != nil {
+		return nil, err
+	}
+	return s, out.finish(s)
+}
+
+// timed runs the pipeline and tells how it went.
+func timed(ctx context.Context, verb string, o *options, con *console) error {
+	start := time.Now()
+	s, err := pipeline(ctx, o, con)
+	if err != nil {
+		return err
+	}
+	con.finished(verb, s, o.resultFolder(s.Config), time.Since(start))
+	if s.Rejects+s.Faults > 0 {
+		return &statusError{exitRejected, nil}
+	}
+	return nil
+}

@@ -1,0 +1,151 @@
+package risk
+
+import (
+	"slices"
+
+	"nightbook/risk/instrument"
+	"nightbook/risk/market"
+	"nightbook/schema"
+)
+
+// Engine prices batches against one market. It may be used by several
+// goroutines, each with its own Worker.
+type Engine struct {
+	market *market.Market
+	dicts  *schema.Dicts
+	after  [instrument.Steps]schema.Moment // the moments of the theta revaluations
+}
+
+// NewEngine returns an engine for a market.
+func NewEngine(m *market.Market, d *schema.Dicts) *Engine {
+	e := &Engine{market: m, dicts: d}
+	e.after[instrument.NextDay] = schema.Moment{Day: m.AsOf.Day + 1, Minute: m.AsOf.Minute}
+	e.after[instrument.NextBusinessDay] = schema.Moment{Day: m.Calendar.Next(m.AsOf.Day), Minute: m.AsOf.Minute}
+	return e
+}
+
+// Kind returns the kind of the underlying of a code, 0 where there is none.
+func (e *Engine) Kind(c schema.Code) schema.Choice {
+	if u := e.market.Underlying(c); u != nil {
+		return u.Kind
+	}
+	return 0
+}
+
+// Worker is the scratch memory of one goroutine.
+type Worker struct {
+	terms map[termKey]term
+	last  termKey
+	term  term
+	notes map[noteKey]*schema.Note
+
+	route []uint8 // by row: 2·product, plus 1 for its expired form
+	rows  [][]int32
+	run   instrument.Run
+}
+
+// NewWorker returns scratch memory for one goroutine.
+func NewWorker() *Worker {
+	return &Worker{terms: map[termKey]term{}, notes: map[noteKey]*schema.Note{}, rows: make([][]int32, 2*len(products))}
+}
+
+const noRoute = 255
+
+// Price fills the results of a batch. Rows it refuses get Status Rejected and a
+// Reject; rows refused before are left alone.
+func (e *Engine) Price(b *schema.Batch, w *Worker) {
+	for _, s := range b.Results.Floats() {
+		clear(*s)
+	}
+	w.route = w.route[:0]
+	for i := range w.rows {
+		w.rows[i] = w.rows[i][:0]
+	}
+	for i := range b.N {
+		route := uint8(noRoute)
+		if b.Status[i] != schema.Rejected {
+			if route = e.resolve(b, i, w); route != noRoute {
+				w.rows[route] = append(w.rows[route], int32(i))
+			}
+		}
+		w.route = append(w.route, route)
+	}
+	for route, rows := range w.rows {
+		if len(rows) > 0 {
+			e.priceRun(b, w, route, rows)
+		}
+	}
+	measure(b)
+	slices.SortStableFunc(b.Rejects, func(x, y schema.Reject) int { return x.Index - y.Index })
+	e.flushNotes(b, w)
+}
+
+// priceRun gathers the rows of one route, prices them and scatters the results.
+func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
+	p := &products[route/2]
+	price, model := p.price, p.model
+	if route%2 == 1 {
+		price, model = p.expired, schema.ModelPayoff
+		if p.instrument == schema.Future {
+			model = p.model
+		}
+	}
+	r := &w.run
+	r.Resize(len(rows))
+	for j, i := range rows {
+		r.Spot[j], r.Strike[j], r.Time[j] = b.Spot[i], b.Strike[i], b.Time[i]
+		r.Vol[j], r.Rate[j], r.Yield[j] = b.VolUsed[i], b.Rate[i], b.Carry[i]
+		r.Entry[j] = b.EntryPrice[i]
+		r.Sign[j] = sign(b.OptionType[i])
+		for s := range instrument.Steps {
+			r.TimeAfter[s][j] = e.timeAfter(b, int(i), s)
+		}
+	}
+	price(r)
+	for k, s := range r.Greeks.Slices() {
+		scatter(*greekColumns(&b.Results)[k], *s, rows)
+	}
+	// the two revaluations wait in the theta columns for measure
+	scatter(b.Measures[schema.ThetaCash1D], r.After[instrument.NextDay], rows)
+	scatter(b.Measures[schema.ThetaCash1BD], r.After[instrument.NextBusinessDay], rows)
+	for _, i := range rows {
+		b.Model[i] = model
+		if b.Status[i] = schema.Priced; route%2 == 1 {
+			b.Status[i] = schema.Expired
+		}
+		if p.instrument != schema.Option {
+			b.Residual[i] = nan
+		}
+	}
+}
+
+// greekColumns returns the columns of the results in the order of
+// model.Greeks.Slices.
+func greekColumns(r *schema.Results) [11]*[]float64 {
+	return [11]*[]float64{&r.Price, &r.Delta, &r.Gamma, &r.Vega, &r.Theta, &r.Rho, &r.CarryRho, &r.Vanna, &r.Volga, &r.Charm, &r.Residual}
+}
+
+func scatter(to, from []float64, rows []int32) {
+	for j, i := range rows {
+		to[i] = from[j]
+	}
+}
+
+func sign(t schema.Choice) float64 {
+	switch t {
+	case schema.Call:
+		return 1
+	case schema.Put:
+		return -1
+	}
+	return 0
+}
+
+// timeAfter returns the time to expiry seen from the moment of a theta step,
+// not below 0.
+func (e *Engine) timeAfter(b *schema.Batch, i, step int) float64 {
+	if b.Expiry[i] == schema.NoDate {
+		return 0
+	}
+	return max(e.after[step].Years(b.Expiry[i], b.ExpiryMinute[i]), 0)
+}

@@ -1,0 +1,53 @@
+package instrument
+
+import "nightbook/risk/model"
+
+// Steps are the days to which every line is revalued for theta.
+const (
+	NextDay = iota
+	NextBusinessDay
+	Steps
+)
+
+// Run is a run of lines of one product, gathered: row i of every slice is one
+// line. Pricing functions read the inputs and fill Greeks and After.
+type Run struct {
+	N int
+
+	Spot, Strike, Time, Vol, Rate, Yield []float64
+	Sign                                 []float64 // +1 call, −1 put, 0 neither
+	Entry                                []float64 // last margined price of a future
+	TimeAfter                            [Steps][]float64
+
+	model.Greeks
+	After [Steps][]float64 // price with TimeAfter to expiry, all else held
+}
+
+// Resize makes every slice n rows long, keeping memory.
+func (r *Run) Resize(n int) {
+	r.N = n
+	for _, s := range r.slices() {
+		if cap(*s) < n {
+			*s = make([]float64, n, n+n/4)
+		}
+		*s = (*s)[:n]
+	}
+}
+
+func (r *Run) slices() []*[]float64 {
+	s := []*[]float64{&r.Spot, &r.Strike, &r.Time, &r.Vol, &r.Rate, &r.Yield, &r.Sign, &r.Entry}
+	for i := range Steps {
+		s = append(s, &r.TimeAfter[i], &r.After[i])
+	}
+	for _, g := range r.Greeks.Slices() {
+		s = append(s, g)
+	}
+	return s
+}
+
+// held says that the passing of a day changes nothing.
+func (r *Run) held() {
+	for i := range r.After {
+		copy(r.After[i], r.Price)
+	}
+}

@@ -1,0 +1,177 @@
+package market
+
+import (
+	"fmt"
+	"math"
+	"slices"
+	"sort"
+
+	"nightbook/risk/vec"
+	"nightbook/schema"
+)
+
+// Surface is an implied volatility surface.
+//
+// Computes the total variance w(k, T) = σ²T at log forward moneyness
+// k = ln(K/F(T)). Within a slice, w is the monotone piecewise cubic of Fritsch
+// and Butland in k, flat beyond the end strikes. Between two expiries, w is
+// linear in T at the same k. Before the first and beyond the last expiry, σ is
+// that of the end slice at the same k.
+// Units: T in years, k dimensionless, σ per √year.
+// Source: F. N. Fritsch and J. Butland, A method for constructing local
+// monotone piecewise cubic interpolants, SIAM J. Sci. Stat. Comput. 5 (1984).
+type Surface struct {
+	slices []slice // by T ascending
+}
+
+// slice is the smile of one expiry: w and its slope in k at each strike.
+type slice struct {
+	T       float64
+	k, w, m []float64
+}
+
+// point is one quoted volatility.
+type point struct{ strike, vol float64 }
+
+// newSlice builds the smile of one expiry from points with different strikes.
+func newSlice(T, forward float64, points []point) (slice, error) {
+	sort.Slice(points, func(i, j int) bool { return points[i].strike < points[j].strike })
+	s := slice{T: T}
+	for i, p := range points {
+		k := vec.LogRatio1(p.strike, forward)
+		if i > 0 && !(k > s.k[i-1]) {
+			return s, fmt.Errorf("strikes %v and %v of the expiry in %.6g years cannot be told apart", points[i-1].strike, p.strike, T)
+		}
+		s.k = append(s.k, k)
+		s.w = append(s.w, float64(p.vol*p.vol)*T)
+	}
+	s.m = slopes(s.k, s.w)
+	return s, nil
+}
+
+// slopes returns the Fritsch–Butland derivatives of y over x, with the
+// three-point end condition, limited so that the curve stays monotone.
+func slopes(x, y []float64) []float64 {
+	n := len(x)
+	m := make([]float64, n)
+	switch n {
+	case 1:
+		return m
+	case 2:
+		d := (y[1] - y[0]) / (x[1] - x[0])
+		m[0], m[1] = d, d
+		return m
+	}
+	h, d := make([]float64, n-1), make([]float64, n-1)
+	for i := range h {
+		h[i] = x[i+1] - x[i]
+		d[i] = (y[i+1] - y[i]) / h[i]
+	}
+	for i := 1; i < n-1; i++ {
+		if d[i-1]*d[i] > 0 { // a weighted harmonic mean; 0 at a turning point
+			a, b := float64(2*h[i])+h[i-1], h[i]+float64(2*h[i-1])
+			m[i] = (a + b) / (a/d[i-1] + b/d[i])
+		}
+	}
+	m[0] = endSlope(h[0], h[1], d[0], d[1])
+	m[n-1] = endSlope(h[n-2], h[n-3], d[n-2], d[n-3])
+	return m
+}
+
+// endSlope is the three-point derivative at the end of an interval of length
+// h0 and slope d0 that is followed by one of length h1 and slope d1.
+func endSlope(h0, h1, d0, d1 float64) float64 {
+	m := (float64((float64(2*h0)+h1)*d0) - float64(h0*d1)) / (h0 + h1)
+	switch {
+	case m*d0 <= 0:
+		return 0
+	case d0*d1 <= 0 && math.Abs(m) > 3*math.Abs(d0):
+		return 3 * d0
+	}
+	return m
+}
+
+// variance returns w(k) of the slice.
+func (s *slice) variance(k float64) float64 {
+	n := len(s.k)
+	if k <= s.k[0] {
+		return s.w[0]
+	}
+	if k >= s.k[n-1] {
+		return s.w[n-1]
+	}
+	i := sort.SearchFloat64s(s.k, k) // s.k[i-1] < k <= s.k[i]
+	h := s.k[i] - s.k[i-1]
+	u := (k - s.k[i-1]) / h
+	v := 1 - u
+	// cubic Hermite in Bernstein form: a convex combination of four ordinates
+	b0, b3 := s.w[i-1], s.w[i]
+	b1 := b0 + float64(h*s.m[i-1])/3
+	b2 := b3 - float64(h*s.m[i])/3
+	uv3 := float64(3 * float64(u*v))
+	return float64(float64(v*v)*v*b0) + float64(uv3*(float64(v*b1)+float64(u*b2))) + float64(float64(u*u)*u*b3)
+}
+
+// Vol returns σ at log forward moneyness k and T > 0, and whether T lies
+// within the expiries.
+func (s *Surface) Vol(k, T float64) (vol float64, inside bool) {
+	n := len(s.slices)
+	i := sort.Search(n, func(i int) bool { return s.slices[i].T >= T })
+	if i == n {
+		last := &s.slices[n-1]
+		return math.Sqrt(last.variance(k) / last.T), false
+	}
+	next := &s.slices[i]
+	if next.T == T {
+		return math.Sqrt(next.variance(k) / T), true
+	}
+	if i == 0 {
+		return math.Sqrt(next.variance(k) / next.T), false
+	}
+	prev := &s.slices[i-1]
+	u := (T - prev.T) / (next.T - prev.T)
+	w := float64((1-u)*prev.variance(k)) + float64(u*next.variance(k))
+	return math.Sqrt(w / T), true
+}
+
+// calendarFall returns the first slice whose total variance at the money is
+// below that of the slice before it, or -1.
+func (s *Surface) calendarFall() int {
+	for i := 1; i < len(s.slices); i++ {
+		if s.slices[i].variance(0) < s.slices[i-1].variance(0) {
+			return i
+		}
+	}
+	return -1
+}
+
+// newSurface builds a surface from the rows of one underlying. forward gives
+// the forward price to a time. It returns the days of the slices that are not
+// after as_of, which are left out; without any other slice the surface is nil.
+func newSurface(rows []schema.VolRow, asOf schema.Moment, forward func(T float64) float64) (*Surface, []schema.Date, error) {
+	byTime := map[float64][]point{}
+	var past []schema.Date
+	for _, r := range rows {
+		T := asOf.Years(r.Day, r.Minute)
+		if T <= 0 {
+			past = append(past, r.Day)
+			continue
+		}
+		byTime[T] = append(byTime[T], point{r.Strike, r.Vol})
+	}
+	slices.Sort(past)
+	past = slices.Compact(past)
+	s := &Surface{}
+	for T, points := range byTime {
+		sl, err := newSlice(T, forward(T), points)
+		if err != nil {
+			return nil, past, err
+		}
+		s.slices = append(s.slices, sl)
+	}
+	if len(s.slices) == 0 {
+		return nil, past, nil
+	}
+	sort.Slice(s.slices, func(i, j int) bool { return s.slices[i].T < s.slices[j].T })
+	return s, past, nil
+}

@@ -1,0 +1,66 @@
+package risk
+
+import (
+	"strconv"
+
+	"nightbook/schema"
+)
+
+// measure turns the sensitivities of one unit into measures of the position, in
+// the line's currency and in the reporting currency, and refuses rows whose
+// results are not finite.
+func measure(b *schema.Batch) {
+	v, d, g := b.Measures[schema.Value], b.Measures[schema.DeltaCash], b.Measures[schema.GammaCash1Pct]
+	ve, t1, tb, rh := b.Measures[schema.VegaCash1Pt], b.Measures[schema.ThetaCash1D], b.Measures[schema.ThetaCash1BD], b.Measures[schema.RhoCash1BP]
+	for i := range b.N {
+		if b.Status[i] == schema.Rejected {
+			continue
+		}
+		units, s, price := b.Quantity[i]*b.Multiplier[i], b.Spot[i], b.Price[i]
+		v[i] = price * units
+		b.DeltaUnits[i] = float64(b.Delta[i] * units)
+		d[i] = b.DeltaUnits[i] * s
+		g[i] = b.Gamma[i] * s * s / 100 * units
+		ve[i] = b.Vega[i] / 100 * units
+		t1[i] = (t1[i] - price) * units
+		tb[i] = (tb[i] - price) * units
+		rh[i] = b.Rho[i] / 10_000 * units
+		fx := b.FX[i]
+		check := notFinite(b.DeltaUnits[i])
+		for m := range b.Measures {
+			x := float64(b.Measures[m][i] * fx)
+			b.MeasuresInBase[m][i] = x
+			check += notFinite(x)
+		}
+		for _, s := range [...][]float64{b.CarryRho, b.Vanna, b.Volga, b.Charm, b.Theta} {
+			check += notFinite(s[i])
+		}
+		if check != 0 {
+			refuse(b, i, schema.NotFinite, "", "", "a result is beyond the range of a double: check quantity "+number(b.Quantity[i])+
+				", multiplier "+number(b.Multiplier[i])+", strike "+number(b.Strike[i])+", vol "+number(b.VolUsed[i])+" and the price of the underlying")
+		}
+	}
+}
+
+// notFinite is 0 for a finite x, else NaN.
+func notFinite(x float64) float64 {
+	x = float64(x) // no fused product may stand for x here
+	return x - x
+}
+
+// refuse marks row i as rejected. The caller of the engine adds where the row
+// stands; see schema.Reject.
+func refuse(b *schema.Batch, i int, code schema.RejectCode, column, value, reason string) uint8 {
+	b.Status[i] = schema.Rejected
+	b.Rejects = append(b.Rejects, schema.Reject{
+		Line: b.Line[i], Column: column, Code: code, Value: value, Reason: reason, Row: string(b.Raw.Bytes(i)), Index: i,
+	})
+	return noRoute
+}
+
+func number(x float64) string {
+	if x != x {
+		return "(none)"
+	}
+	return strconv.FormatFloat(x, 'g', -1, 64)
+}

@@ -1,0 +1,47 @@
+package risk
+
+import (
+	"cmp"
+	"slices"
+
+	"nightbook/schema"
+)
+
+// noteKey names a warning within a batch.
+type noteKey struct {
+	code    schema.NoteCode
+	subject schema.Code
+}
+
+// note counts a warning about row i; flushNotes writes them to the batch.
+func (w *Worker) note(b *schema.Batch, i int, code schema.NoteCode, subject schema.Code) {
+	key := noteKey{code, subject}
+	n := w.notes[key]
+	if n == nil {
+		n = &schema.Note{Code: code, Line: b.Line[i]}
+		w.notes[key] = n
+	}
+	n.Count++
+}
+
+// flushNotes moves the worker's warnings to the batch, in a fixed order.
+func (e *Engine) flushNotes(b *schema.Batch, w *Worker) {
+	for key, n := range w.notes {
+		switch key.code {
+		case schema.CurveFlatEnd:
+			n.Subject = e.dicts.Curves.Name(key.subject)
+			n.Message = "expiries lie beyond the nodes of curve " + n.Subject + ": the end rate was used"
+		case schema.SurfaceFlatEnd:
+			n.Subject = e.dicts.Underlyings.Name(key.subject)
+			n.Message = "expiries lie beyond the surface of " + n.Subject + ": the end slice was used"
+		case schema.VolFallback:
+			n.Subject = e.dicts.Underlyings.Name(key.subject)
+			n.Message = n.Subject + " has no surface: its flat volatility was used"
+		}
+		b.Notes = append(b.Notes, *n)
+	}
+	clear(w.notes)
+	slices.SortFunc(b.Notes, func(x, y schema.Note) int {
+		return cmp.Or(cmp.Compare(x.Code, y.Code), cmp.Compare(x.Subject, y.Subject))
+	})
+}

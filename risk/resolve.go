@@ -1,0 +1,190 @@
+package risk
+
+import (
+	"math"
+
+	"nightbook/risk/market"
+	"nightbook/risk/vec"
+	"nightbook/schema"
+)
+
+var nan = math.NaN()
+
+// termKey names an expiry of an underlying; lines share what hangs on it.
+type termKey struct {
+	underlying schema.Code
+	day        schema.Date
+	minute     int16
+}
+
+// term is what every line of one underlying and expiry shares.
+type term struct {
+	time, rate, forward float64
+	curveInside         bool
+	dividend            schema.Date // first ex-date up to expiry; NoDate where there is none
+}
+
+// resolve finds for row i what it is priced with, and how, and writes the
+// inputs used. It returns the row's route, or noRoute for a refused row.
+func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
+	inst := b.Instrument[i]
+	b.Model[i], b.VolSource[i], b.Curve[i] = 0, 0, 0
+	b.Forward[i], b.VolUsed[i], b.Rate[i], b.Carry[i], b.Time[i] = nan, nan, nan, nan, nan
+	if inst == schema.Cash {
+		return e.resolveCash(b, i)
+	}
+
+	u := e.market.Underlying(b.Underlying[i])
+	switch {
+	case u == nil:
+		return refuse(b, i, schema.UnknownUnderlying, "underlying", e.dicts.Underlyings.Name(b.Underlying[i]), "the underlying is not in underlyings: add it there, or mend the name")
+	case u.Fault != "":
+		return refuse(b, i, schema.BadMarketData, "underlying", u.Name, u.Fault)
+	case b.Currency[i] == 0:
+		b.Currency[i] = u.Currency
+	case b.Currency[i] != u.Currency:
+		return refuse(b, i, schema.CurrencyMismatch, "currency", e.dicts.Currencies.Name(b.Currency[i]),
+			"the price of "+u.Name+" is in "+e.dicts.Currencies.Name(u.Currency)+": a line in another currency is not priced; leave currency empty or mend it")
+	}
+	if !e.exchange(b, i) {
+		return noRoute
+	}
+	at := productAt[inst][u.Kind][b.Payoff[i]][b.Exercise[i]]
+	if at == 0 {
+		code, column, reason := unsupported(inst, u.Kind, b.Payoff[i], b.Exercise[i])
+		return refuse(b, i, code, column, choiceText(b, i, column, u), reason)
+	}
+	p := &products[at-1]
+	route := 2 * (at - 1)
+	b.Spot[i] = u.Price
+	switch {
+	case u.Price < 0 && u.Kind != schema.FuturePrice && u.Kind != schema.Spread:
+		return refuse(b, i, schema.OutOfRange, "underlying", u.Name, "the price of "+u.Name+" is negative: only kinds future and spread may have such a price")
+	case inst == schema.Stock, inst == schema.Future:
+		if math.IsNaN(b.EntryPrice[i]) && inst == schema.Future {
+			b.EntryPrice[i] = u.Price
+		}
+		if inst == schema.Future && b.Expiry[i] != schema.NoDate && e.market.AsOf.Years(b.Expiry[i], b.ExpiryMinute[i]) <= 0 {
+			return route + 1
+		}
+		return route
+	}
+	if inst == schema.Option {
+		if u.Price <= 0 {
+			return refuse(b, i, schema.OutOfRange, "underlying", u.Name, "the price of "+u.Name+" is not positive, and model "+schema.Models[p.model]+" needs it to be")
+		}
+		if b.Strike[i] <= 0 {
+			return refuse(b, i, schema.OutOfRange, "strike", number(b.Strike[i]), "the strike must be positive for model "+schema.Models[p.model])
+		}
+	}
+
+	t := e.term(u, b, i, w)
+	if t.time <= 0 {
+		b.Time[i], b.Forward[i] = 0, u.Price
+		return route + 1
+	}
+	if t.dividend != schema.NoDate && (u.Kind == schema.Equity || u.Kind == schema.Index) {
+		return refuse(b, i, schema.Unsupported, "expiry", b.Expiry[i].String(),
+			u.Name+" pays a cash dividend on "+t.dividend.String()+", before expiry: cash dividends are not priced by this version, and are never left out")
+	}
+	if u.Curve == nil {
+		return refuse(b, i, u.CurveFault.Code, "underlying", u.Name, u.CurveFault.Reason)
+	}
+	b.Time[i], b.Rate[i], b.Forward[i] = t.time, t.rate, t.forward
+	b.Curve[i] = u.CurveID
+	if b.Carry[i] = u.Yield; u.Kind == schema.FuturePrice {
+		b.Carry[i] = t.rate
+	}
+	if !t.curveInside {
+		w.note(b, i, schema.CurveFlatEnd, u.CurveID)
+	}
+	if inst == schema.Option && !e.volatility(b, i, u, t, w) {
+		return noRoute
+	}
+	return route
+}
+
+func (e *Engine) resolveCash(b *schema.Batch, i int) uint8 {
+	if b.Currency[i] == 0 {
+		b.Currency[i] = e.dicts.Currencies.Code(e.dicts.Underlyings.Name(b.Underlying[i]))
+	}
+	if !e.exchange(b, i) {
+		return noRoute
+	}
+	b.Spot[i] = 1
+	return 2 * (productAt[schema.Cash][0][0][0] - 1)
+}
+
+// exchange sets the row's rate into the reporting currency, or refuses it.
+func (e *Engine) exchange(b *schema.Batch, i int) bool {
+	fx := e.market.FX(b.Currency[i])
+	if fx.Problem.Code != "" {
+		refuse(b, i, fx.Problem.Code, "currency", e.dicts.Currencies.Name(b.Currency[i]), fx.Problem.Reason)
+		return false
+	}
+	b.FX[i] = fx.Rate
+	return true
+}
+
+// volatility sets the row's volatility and its source, or refuses it: the
+// line's own before the surface before the underlying's flat one.
+func (e *Engine) volatility(b *schema.Batch, i int, u *market.Underlying, t term, w *Worker) bool {
+	switch {
+	case !math.IsNaN(b.Vol[i]):
+		b.VolUsed[i], b.VolSource[i] = b.Vol[i], schema.VolFromLine
+	case u.VolFault != "":
+		refuse(b, i, schema.BadMarketData, "underlying", u.Name, u.VolFault)
+		return false
+	case u.Surface != nil:
+		vol, inside := u.Surface.Vol(vec.LogRatio1(b.Strike[i], t.forward), t.time)
+		b.VolUsed[i], b.VolSource[i] = vol, schema.VolFromSurface
+		if !inside {
+			w.note(b, i, schema.SurfaceFlatEnd, b.Underlying[i])
+		}
+	case !math.IsNaN(u.FlatVol):
+		b.VolUsed[i], b.VolSource[i] = u.FlatVol, schema.VolFromUnderlying
+		w.note(b, i, schema.VolFallback, b.Underlying[i])
+	default:
+		refuse(b, i, schema.NoVol, "vol", "", "there is no volatility: give the line a vol, or "+u.Name+" a surface in vols or a vol in underlyings")
+		return false
+	}
+	return true
+}
+
+// term returns what the line's expiry stands for, from the worker's memory
+// where it has met it.
+func (e *Engine) term(u *market.Underlying, b *schema.Batch, i int, w *Worker) term {
+	key := termKey{b.Underlying[i], b.Expiry[i], b.ExpiryMinute[i]}
+	if key == w.last {
+		return w.term
+	}
+	t, ok := w.terms[key]
+	if !ok {
+		t = term{time: e.market.AsOf.Years(key.day, key.minute), rate: nan, forward: nan, dividend: schema.NoDate}
+		if u.Curve != nil && t.time > 0 {
+			t.rate, t.curveInside = u.Curve.Rate(t.time)
+			t.forward = u.Forward(t.rate, t.time)
+		}
+		for _, ex := range u.Dividends {
+			if ex <= key.day && (t.dividend == schema.NoDate || ex < t.dividend) {
+				t.dividend = ex
+			}
+		}
+		w.terms[key] = t
+	}
+	w.last, w.term = key, t
+	return t
+}
+
+// choiceText returns the text at fault for a product that does not exist.
+func choiceText(b *schema.Batch, i int, column string, u *market.Underlying) string {
+	switch column {
+	case "instrument":
+		return schema.Instruments[b.Instrument[i]]
+	case "exercise":
+		return schema.Exercises[b.Exercise[i]]
+	case "payoff":
+		return schema.Payoffs[b.Payoff[i]]
+	}
+	return u.Name
+}
