@@ -1,0 +1,98 @@
+package vec
+
+// BSM is a batch of European options under the generalised Black–Scholes–Merton
+// formula, row i of every slice being one option.
+//
+// Computes, with w = Sign and all sums of the usual names,
+//
+//	d₁,₂     = (ln(S/K) + (r−q)T)/(σ√T) ± ½σ√T
+//	Price    = w(S·e^(−qT)·Φ(w·d₁) − K·e^(−rT)·Φ(w·d₂))
+//	Delta    = ∂V/∂S    = w·e^(−qT)·Φ(w·d₁)
+//	Gamma    = ∂²V/∂S²  = e^(−qT)·φ(d₁)/(S·σ√T)
+//	Vega     = ∂V/∂σ    = S·e^(−qT)·φ(d₁)·√T
+//	Theta    = ∂V/∂t    = −S·e^(−qT)·φ(d₁)·σ/(2√T) + w(q·S·e^(−qT)·Φ(w·d₁) − r·K·e^(−rT)·Φ(w·d₂))
+//	Rho      = ∂V/∂r    = w·T·K·e^(−rT)·Φ(w·d₂), spot and yield fixed
+//	CarryRho = ∂V/∂q    = −w·T·S·e^(−qT)·Φ(w·d₁), spot and rate fixed
+//	Vanna    = ∂²V/∂S∂σ = −e^(−qT)·φ(d₁)·d₂/σ
+//	Volga    = ∂²V/∂σ²  = Vega·d₁·d₂/σ
+//	Charm    = ∂²V/∂S∂t = q·Delta + e^(−qT)·φ(d₁)·(½d₂/T − (r−q)/(σ√T))
+//	Residual = |Theta + ½σ²S²·Gamma + (r−q)S·Delta − r·Price| / max(|Price|, 10⁻⁴·S)
+//
+// The residual is taken from the finished outputs: it is what their rounding
+// errors leave of the Black–Scholes equation, and shows a fault in any of them.
+//
+// Shapes: all slices have the length of Spot. Core and Prices need only the
+// outputs they fill. No output may share memory with an input or with another
+// output; inputs may share with one another.
+// Units: Spot, Strike and Price in one currency; Time T in years; Vol σ per
+// √year; Rate r and Yield q continuous per year; Sign +1 for a call and −1 for a
+// put. Derivatives are per unit of the variable: theta and charm per year of
+// calendar time passing, vega per 1.00 of volatility.
+//
+// Special cases, none of which gives NaN:
+//   - σ√T = 0, expiry or no volatility: the forward is certain. With
+//     S·e^(−qT) on the profitable side of K·e^(−rT) the option is worth their
+//     difference and its derivatives are the derivatives of that; on the other
+//     side all are 0. Exactly between, the price is 0 and Delta, Theta, Rho,
+//     CarryRho and Charm are the mean of the two sides. Gamma, Vega, Vanna and
+//     Volga are 0 in all three.
+//   - S, K, T, σ, r and q may otherwise be any finite number (S, K > 0; T, σ ≥ 0).
+//     A result too large for a float64 is ±MaxFloat64; its Residual says nothing.
+//
+// NaN in all outputs: any input NaN or infinite, S or K ≤ 0, T or σ < 0, or a
+// Sign other than ±1.
+//
+// Accuracy, for S and K in 2^±128, T and σ in 2^−24 … 2^8, |r| and |q| < 2: the
+// price within 1e-15 of S·e^(−qT)·Φ(w·d₁) + K·e^(−rT)·Φ(w·d₂); see
+// bsm_reference_test.go for the others. Further out the textbook formula is used as it stands.
+// Source: F. Black & M. Scholes, J. Political Economy 81 (1973); R. C. Merton,
+// Bell J. Economics 4 (1973).
+type BSM struct {
+	Spot, Strike, Time, Vol, Rate, Yield, Sign []float64
+
+	Price, Delta, Gamma, Vega, Theta, Rho   []float64
+	CarryRho, Vanna, Volga, Charm, Residual []float64
+}
+
+// All fills all eleven outputs.
+func (b *BSM) All() {
+	b.checkInputs()
+	b.checkCore()
+	n := len(b.Spot)
+	if len(b.CarryRho) != n || len(b.Vanna) != n || len(b.Volga) != n || len(b.Charm) != n || len(b.Residual) != n {
+		panic(lengthMismatch)
+	}
+	b.all()
+}
+
+// Core fills Price, Delta, Gamma, Vega, Theta and Rho, with the bits All gives.
+func (b *BSM) Core() {
+	b.checkInputs()
+	b.checkCore()
+	b.core()
+}
+
+// Prices fills Price, with the bits All gives.
+func (b *BSM) Prices() {
+	b.checkInputs()
+	if len(b.Price) != len(b.Spot) {
+		panic(lengthMismatch)
+	}
+	b.prices()
+}
+
+const lengthMismatch = "vec: slices of different lengths"
+
+func (b *BSM) checkInputs() {
+	n := len(b.Spot)
+	if len(b.Strike) != n || len(b.Time) != n || len(b.Vol) != n || len(b.Rate) != n || len(b.Yield) != n || len(b.Sign) != n {
+		panic(lengthMismatch)
+	}
+}
+
+func (b *BSM) checkCore() {
+	n := len(b.Spot)
+	if len(b.Price) != n || len(b.Delta) != n || len(b.Gamma) != n || len(b.Vega) != n || len(b.Theta) != n || len(b.Rho) != n {
+		panic(lengthMismatch)
+	}
+}

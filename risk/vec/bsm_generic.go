@@ -1,0 +1,123 @@
+package vec
+
+import "math"
+
+// The scalar form of the formula: the specification of every other form.
+//
+// With a = S·e^(−qT) and b = K·e^(−rT), a·φ(d₁) = b·φ(d₂). So one exponential
+// serves both tails, a·Φ(−|d₁|) and b·Φ(−|d₂|), through the Mills ratio; it is
+// taken at the smaller of |d₁| and |d₂|, where it loses least.
+//
+// A product that may be −0 is written as FMA(x, y, 0), which is +0: a put out of
+// reach has a delta of 0, not of −0.
+
+func (b *BSM) allGeneric(lo, hi int) {
+	for i := lo; i < hi; i++ {
+		s, k, t, v, r, q, w := b.Spot[i], b.Strike[i], b.Time[i], b.Vol[i], b.Rate[i], b.Yield[i], b.Sign[i]
+		if !inBox(s, k, t, v, r, q, w) {
+			b.storeAll(i, bsmEdge(s, k, t, v, r, q, w))
+			continue
+		}
+		an, bn, x, rv, sq, d1, d2 := bsmTerms(s, k, t, v, r, q, w)
+		rs := 1 / s
+		g := x * rv
+		gs := g * rs
+		halfVar := v * float64(v*0.5)
+		price := an - bn
+		delta := an * rs
+		gamma := gs * rs
+		theta := math.FMA(q, an, math.FMA(0-r, bn, math.FMA(g, 0-halfVar, 0)))
+		b.Price[i] = price
+		b.Delta[i] = delta
+		b.Gamma[i] = gamma
+		b.Vega[i] = x * sq
+		b.Theta[i] = theta
+		b.Rho[i] = t * bn
+		b.CarryRho[i] = math.FMA(0-t, an, 0)
+		b.Vanna[i] = math.FMA(float64(gs*sq), 0-d2, 0)
+		b.Volga[i] = math.FMA(float64(g*t), float64(d1*d2), 0)
+		b.Charm[i] = math.FMA(q, delta, math.FMA(gs, math.FMA(float64(d2*halfVar), rv, q-r), 0))
+		e := math.FMA(halfVar, float64(float64(gamma*s)*s), theta)
+		e = math.FMA(r-q, float64(s*delta), e)
+		e = math.FMA(0-r, price, e)
+		b.Residual[i] = math.Abs(e) / max(math.Abs(price), float64(s*residualFloor))
+	}
+}
+
+func (b *BSM) coreGeneric(lo, hi int) {
+	for i := lo; i < hi; i++ {
+		s, k, t, v, r, q, w := b.Spot[i], b.Strike[i], b.Time[i], b.Vol[i], b.Rate[i], b.Yield[i], b.Sign[i]
+		if !inBox(s, k, t, v, r, q, w) {
+			b.storeCore(i, bsmEdge(s, k, t, v, r, q, w))
+			continue
+		}
+		an, bn, x, rv, sq, _, _ := bsmTerms(s, k, t, v, r, q, w)
+		rs := 1 / s
+		g := x * rv
+		halfVar := v * float64(v*0.5)
+		b.Price[i] = an - bn
+		b.Delta[i] = an * rs
+		b.Gamma[i] = float64(g*rs) * rs
+		b.Vega[i] = x * sq
+		b.Theta[i] = math.FMA(q, an, math.FMA(0-r, bn, math.FMA(g, 0-halfVar, 0)))
+		b.Rho[i] = t * bn
+	}
+}
+
+func (b *BSM) pricesGeneric(lo, hi int) {
+	for i := lo; i < hi; i++ {
+		s, k, t, v, r, q, w := b.Spot[i], b.Strike[i], b.Time[i], b.Vol[i], b.Rate[i], b.Yield[i], b.Sign[i]
+		if !inBox(s, k, t, v, r, q, w) {
+			b.Price[i] = bsmEdge(s, k, t, v, r, q, w).price
+			continue
+		}
+		an, bn, _, _, _, _, _ := bsmTerms(s, k, t, v, r, q, w)
+		b.Price[i] = an - bn
+	}
+}
+
+const residualFloor = 1e-4 // of the spot: below it a price is too small to scale by
+
+// The box: spot and strike in [2^−128, 2^128), time and volatility in
+// [2^−24, 2^8), |rate| and |yield| below 2, sign ±1. Its sides are powers of two
+// so that membership is a matter of exponent bits: no comparison, and NaN and
+// infinities fall outside by themselves. Within it no step overflows, divides by
+// zero or meets a subnormal number it must keep.
+const (
+	priceGear = (1023 - 128) << 52
+	timeGear  = (1023 - 24) << 52
+	priceMask = 0xF << 60  // beyond the 256 binades above priceGear
+	timeMask  = 0x7F << 57 // beyond the 32 binades above timeGear
+	rateMask  = 1 << 62    // set from 2 upwards
+)
+
+func inBox(s, k, t, v, r, q, w float64) bool {
+	sb, kb, tb, vb := math.Float64bits(s), math.Float64bits(k), math.Float64bits(t), math.Float64bits(v)
+	rb, qb, wb := math.Float64bits(r), math.Float64bits(q), math.Float64bits(w)
+	return (sb-priceGear|kb-priceGear)&priceMask|(tb-timeGear|vb-timeGear)&timeMask|(rb|qb)&rateMask|(wb&absBits^oneBits) == 0
+}
+
+// bsmTerms returns, for an option in the box,
+//
+//	an = w·S·e^(−qT)·Φ(w·d₁)    bn = w·K·e^(−rT)·Φ(w·d₂)
+//	x  = S·e^(−qT)·φ(d₁)        rv = 1/(σ√T)    sq = √T
+func bsmTerms(s, k, t, v, r, q, w float64) (an, bn, x, rv, sq, d1, d2 float64) {
+	a := s * discount(q, t)
+	b := k * discount(r, t)
+	sq = math.Sqrt(t)
+	vs := v * sq
+	rv = 1 / vs
+	m := math.FMA(r-q, t, logRatio(s, k))
+	d := m * rv
+	d = math.FMA(math.FMA(d, 0-vs, m), rv, d) // m/vs as if divided
+	d1 = math.FMA(vs, 0.5, d)
+	d2 = math.FMA(vs, -0.5, d)
+	y1, y2 := math.Abs(d1), math.Abs(d2)
+	first := y1 <= y2
+	x = gauss(min(y1, y2, gaussEnd)) * selectFloat(first, a, b)
+	an = float64(x * mills(y1))
+	bn = float64(x * mills(y2))
+	an = selectFloat(float64(w*d1) > 0, a-an, an)
+	bn = selectFloat(float64(w*d2) > 0, b-bn, bn)
+	return math.FMA(w, an, 0), math.FMA(w, bn, 0), float64(x * invSqrt2Pi), rv, sq, d1, d2
+}

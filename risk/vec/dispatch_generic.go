@@ -1,0 +1,17 @@
+//go:build !(goexperiment.simd && amd64)
+
+package vec
+
+// Without vector code there is one tier.
+
+func bestTier() tier { return scalar }
+
+func expSlice(dst, x []float64)         { expGeneric(dst, x) }
+func logSlice(dst, x []float64)         { logGeneric(dst, x) }
+func logRatioSlice(dst, s, k []float64) { logRatioGeneric(dst, s, k) }
+func normPDFSlice(dst, x []float64)     { normPDFGeneric(dst, x) }
+func normCDFSlice(dst, x []float64)     { normCDFGeneric(dst, x) }
+
+func (b *BSM) all()    { b.allGeneric(0, len(b.Spot)) }
+func (b *BSM) core()   { b.coreGeneric(0, len(b.Spot)) }
+func (b *BSM) prices() { b.pricesGeneric(0, len(b.Spot)) }

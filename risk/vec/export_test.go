@@ -1,0 +1,24 @@
+package vec
+
+// Tiers lists the tiers this build and machine can run, "scalar" first.
+func Tiers() []string { return tierNames[:bestTier()+1] }
+
+// SetTier forces a tier and returns a function that restores the former one.
+func SetTier(name string) (restore func()) {
+	was := active
+	active, _ = chooseTier(name, bestTier())
+	if Tier() != name {
+		panic("no such tier here: " + name)
+	}
+	return func() { active = was }
+}
+
+// ChooseTier is chooseTier by name.
+func ChooseTier(asked, best string) (name, note string) {
+	b, _ := chooseTier(best, avx512)
+	t, note := chooseTier(asked, b)
+	return tierNames[t], note
+}
+
+// InBox reports whether a line is left to vector code.
+var InBox = inBox
