@@ -1,0 +1,154 @@
+package risk
+
+import (
+	"math"
+	"strings"
+	"testing"
+
+	"nightbook/risk/market"
+	"nightbook/schema"
+)
+
+// Every reason the core has for refusing a line, with the column it names.
+func TestRefusals(t *testing.T) {
+	d := newDesk(t)
+	d.rate("EUR", 0.03)
+	d.rate("BAD", 0.03)
+	d.underlying("U", schema.Equity, "EUR", 100, 0, 0.2)
+	d.underlying("bare", schema.Equity, "EUR", 100, 0, nan)
+	d.underlying("fut", schema.FuturePrice, "EUR", -5, 0, 0.2)
+	d.underlying("gap", schema.Spread, "EUR", -5, 0, 0.2)
+	d.underlying("neg", schema.Equity, "EUR", -5, 0, 0.2)
+	d.underlying("usd", schema.Equity, "USD", 100, 0, 0.2)
+	d.underlying("gbp", schema.Equity, "GBP", 100, 0, 0.2)
+	d.underlying("pays", schema.Equity, "EUR", 100, 0, 0.2)
+	d.underlying("doubtful", schema.Equity, "EUR", 100, 0, 0.2)
+	d.underlying("curve", schema.Equity, "EUR", 100, 0, 0.2)
+	d.raw.Underlyings[len(d.raw.Underlyings)-1].Curve = "BAD"
+	d.raw.Dividends = []schema.DividendRow{{Underlying: "pays", ExDate: d.cfg.AsOf.Day + 10, Amount: 1}}
+	d.raw.Faults = []schema.Fault{
+		{Table: "rates", Name: "BAD", Reject: schema.Reject{File: "rates.csv", Line: 7, Code: schema.BadNumber}},
+		{Table: "vols", Name: "doubtful", Reject: schema.Reject{File: "vols.csv", Line: 8, Code: schema.BadNumber}},
+		{Table: "underlyings", Name: "broken", Reject: schema.Reject{File: "underlyings.csv", Line: 9, Code: schema.BadNumber}},
+		{Table: "fx", Name: "CHF", Reject: schema.Reject{File: "fx.csv", Line: 3, Code: schema.BadNumber}},
+	}
+	call := func(u string) line { return option(u, schema.Call, 100, 50, 0) }
+	american, digital, other, zero, huge := call("U"), call("U"), call("U"), call("U"), call("U")
+	american.style, digital.payoff, other.currency, zero.strike, huge.quantity = schema.American, schema.CashDigital, "USD", -1, 1e307
+	huge.multiplier = 1e300
+	for _, c := range []struct {
+		what   string
+		l      line
+		code   schema.RejectCode
+		column string
+		says   string
+	}{
+		{"unknown underlying", call("nowhere"), schema.UnknownUnderlying, "underlying", "add it"},
+		{"other currency", other, schema.CurrencyMismatch, "currency", "EUR"},
+		{"no fx", call("gbp"), schema.NoFX, "currency", "add a row"},
+		{"no curve", call("usd"), schema.NoRate, "underlying", "no curve USD"},
+		{"no volatility", call("bare"), schema.NoVol, "vol", "give the line a vol"},
+		{"american", american, schema.Unsupported, "exercise", "never priced as European"},
+		{"digital", digital, schema.Unsupported, "payoff", "cash_digital"},
+		{"option on a spread", call("gap"), schema.Unsupported, "underlying", "spread"},
+		{"negative futures price", call("fut"), schema.OutOfRange, "underlying", "not positive"},
+		{"negative share price", line{underlying: "neg", instrument: schema.Stock}, schema.OutOfRange, "underlying", "negative"},
+		{"strike", zero, schema.OutOfRange, "strike", "positive"},
+		{"dividend", call("pays"), schema.Unsupported, "expiry", "cash dividend on 2026-04-10"},
+		{"stock on a future", line{underlying: "fut", instrument: schema.Stock}, schema.KindMismatch, "instrument", "instrument future"},
+		{"future on a share", line{underlying: "U", instrument: schema.Future}, schema.KindMismatch, "instrument", "kind future or spread"},
+		{"forward on a spread", line{underlying: "gap", instrument: schema.Forward, strike: 1, days: 9}, schema.KindMismatch, "instrument", "not spread"},
+		{"broken curve", call("curve"), schema.BadMarketData, "underlying", "rates.csv line 7"},
+		{"broken surface", call("doubtful"), schema.BadMarketData, "underlying", "vols.csv line 8"},
+		{"broken underlying", call("broken"), schema.BadMarketData, "underlying", "underlyings.csv line 9"},
+		{"broken fx", line{underlying: "CHF", instrument: schema.Cash}, schema.BadMarketData, "currency", "fx.csv line 3"},
+		{"beyond a double", huge, schema.NotFinite, "", "quantity 1e+307"},
+	} {
+		b := d.price(call("U"), c.l)
+		if b.Status[0] != schema.Priced {
+			t.Fatalf("%s: the good line was refused: %v", c.what, b.Rejects)
+		}
+		if b.Status[1] != schema.Rejected || len(b.Rejects) != 1 {
+			t.Errorf("%s: status %s, rejects %v", c.what, schema.Statuses[b.Status[1]], b.Rejects)
+			continue
+		}
+		if r := b.Rejects[0]; r.Code != c.code || r.Column != c.column || !strings.Contains(r.Reason, c.says) || r.Line != 3 || r.Index != 1 || r.Row != "L1,…" {
+			t.Errorf("%s: %+v", c.what, r)
+		}
+	}
+
+	// what does not depend on the broken thing is priced
+	own := call("doubtful")
+	own.vol = 0.2
+	late := call("pays")
+	late.days = 9
+	if b := d.price(own, late, line{underlying: "curve", instrument: schema.Stock}, line{underlying: "fut", instrument: schema.Future}); len(b.Rejects) > 0 {
+		t.Errorf("refused without need: %v", b.Rejects)
+	}
+}
+
+func TestFaultsThatEndTheRun(t *testing.T) {
+	for table, name := range map[string]string{"holidays": "home", "rates": "", "underlyings": "", "fx": "", "vols": "", "dividends": ""} {
+		d := newDesk(t)
+		d.raw.Faults = []schema.Fault{{Table: table, Name: name, Reject: schema.Reject{File: table + ".csv", Line: 4, Code: schema.BadDate}}}
+		if _, _, err := market.New(&d.cfg, &d.raw, d.dicts); err == nil || !strings.Contains(err.Error(), table+".csv line 4") {
+			t.Errorf("%s: error %v", table, err)
+		}
+	}
+}
+
+// Each cell of the table is reached, and each combination outside it is refused.
+func TestTableIsWhole(t *testing.T) {
+	tried := map[uint8]bool{}
+	for inst := schema.Option; inst < schema.Cash; inst++ {
+		for kind := schema.Equity; kind <= schema.Spread; kind++ {
+			for payoff := schema.Choice(0); payoff <= schema.AsianArithmetic; payoff++ {
+				for style := schema.Choice(0); style <= schema.American; style++ {
+					if isOption := inst == schema.Option; isOption != (payoff != 0) || isOption != (style != 0) {
+						continue
+					}
+					d := newDesk(t)
+					d.rate("EUR", 0.03)
+					d.underlying("U", kind, "EUR", 100, 0, 0.2)
+					l := line{underlying: "U", instrument: inst, payoff: payoff, style: style, strike: 100, days: 50}
+					if inst == schema.Option {
+						l.kind = schema.Put
+					}
+					b := d.price(l)
+					at := productAt[inst][kind][payoff][style]
+					tried[at] = true
+					if want := at != 0; want != (b.Status[0] == schema.Priced) {
+						t.Errorf("%s on %s, payoff %s, %s: %s", schema.Instruments[inst], schema.Kinds[kind], schema.Payoffs[payoff], schema.Exercises[style], schema.Statuses[b.Status[0]])
+					}
+					if at == 0 && (b.Rejects[0].Value == "" || b.Rejects[0].Reason == "") {
+						t.Errorf("refused without a word: %+v", b.Rejects[0])
+					}
+				}
+			}
+		}
+	}
+	if len(tried) != len(products) { // all but cash, and "none"
+		t.Errorf("%d of %d products tried", len(tried)-1, len(products)-1)
+	}
+}
+
+func TestResultsDoNotDependOnTheCompany(t *testing.T) {
+	d := newDesk(t)
+	d.rate("EUR", 0.03)
+	d.underlying("U", schema.Equity, "EUR", 100, 0.01, 0.2)
+	d.underlying("F", schema.FuturePrice, "EUR", 100, 0, 0.2)
+	var lines []line
+	for i := range 200 {
+		kind := schema.Call + schema.Choice(i%2)
+		lines = append(lines, option([]string{"U", "F"}[i/2%2], kind, 50+float64(i), 1+i*7, 0.1+float64(i)/400))
+	}
+	all := d.price(lines...)
+	for i := range lines {
+		one := d.price(lines[i])
+		for k, c := range greekColumns(&one.Results) {
+			if got, want := (*greekColumns(&all.Results)[k])[i], (*c)[0]; math.Float64bits(got) != math.Float64bits(want) {
+				t.Fatalf("line %d, result %d: %v in company, %v alone", i, k, got, want)
+			}
+		}
+	}
+}
