@@ -11,4 +11,4 @@
 // of readers, prices or writers.
 package samples
 
-//go:generate go run ./generate
+//go:generate go run ./generate .
