@@ -1,0 +1,181 @@
+package reader
+
+import (
+	"cmp"
+	"math"
+	"slices"
+	"strings"
+
+	"nightbook/reader/csv"
+	"nightbook/reader/table"
+	"nightbook/schema"
+)
+
+// Binder turns pieces of the position file into batches: it splits them into
+// fields and gives every cell its meaning. Each goroutine needs its own.
+type Binder struct {
+	p       *Positions
+	decoder *csv.Decoder
+	split   table.Rows // of text files
+	cells   cells
+	words   positionChoices
+	vol     bounds
+
+	books, underlyings, currencies, strategies *schema.Interner
+
+	// Which rows need a cell, by the instruments of the piece; see need.
+	every, options, dated need
+	instruments           []schema.Choice
+
+	problems []problem
+	bad      []bool // by row
+}
+
+// problem is something wrong with a row; column is ours.
+type problem struct {
+	row, column int
+	why         *finding
+}
+
+// NewBinder returns a binder for one goroutine.
+func (p *Positions) NewBinder() *Binder {
+	n := &Binder{
+		p: p, words: newPositionChoices(), vol: volBounds(p.cfg), cells: cells{style: p.o.style},
+		books: schema.NewInterner(p.dicts.Books), underlyings: schema.NewInterner(p.dicts.Underlyings),
+		currencies: schema.NewInterner(p.dicts.Currencies), strategies: schema.NewInterner(p.dicts.Strategies),
+	}
+	n.every = func(int) *finding { return missing }
+	n.options = func(i int) *finding { return optionNeeds(n.instruments[i]) }
+	n.dated = func(i int) *finding { return datedNeeds(n.instruments[i]) }
+	if t, ok := p.o.source.(*textFile); ok {
+		n.decoder = csv.NewDecoder(len(t.Header()), t.Delimiter())
+	}
+	return n
+}
+
+// Bind fills b with the rows of pc: all columns of Positions, and Status
+// Rejected with a Reject, in row order, for each row that is refused; the
+// Status of the others is 0. All texts of the batch are spans of b.Raw.Data.
+// No error is returned for what the rows hold.
+func (n *Binder) Bind(pc *Piece, b *schema.Batch) error {
+	for len(b.Extra) < len(n.p.extra) {
+		b.Extra = append(b.Extra, schema.Strings{})
+	}
+	rows := &pc.rows
+	if pc.text {
+		rows = &n.split
+		n.decoder.Decode(&pc.block, rows)
+	}
+	b.Resize(rows.N)
+	n.cells.Rows = rows
+	n.problems = n.problems[:0]
+	n.bad = append(n.bad[:0], make([]bool, rows.N)...)
+	for _, x := range rows.Bad {
+		n.bad[x.Row] = true
+	}
+	clear(b.Status)
+	copy(b.Line, rows.Line)
+	if pc.text {
+		// The batch takes the block's bytes, and the block those the batch had.
+		b.Raw.Data, pc.block.Data = rows.Raw.Data, b.Raw.Data[:0]
+		b.Raw.Start = append(b.Raw.Start, rows.Raw.Start...)
+		b.Raw.End = append(b.Raw.End, rows.Raw.End...)
+	} else {
+		for i := range rows.N {
+			at := len(b.Raw.Data)
+			b.Raw.Data = rows.AppendRow(b.Raw.Data, i)
+			b.Raw.AppendSpan(uint32(at), uint32(len(b.Raw.Data)))
+		}
+	}
+	n.columns(b)
+	n.extra(b)
+	n.refuse(b)
+	return nil
+}
+
+// columns reads our columns one after the other, in the order of the schema.
+func (n *Binder) columns(b *schema.Batch) {
+	n.instruments = b.Instrument
+	nan := math.NaN()
+	n.ids(b)
+	n.codes(book, n.books, b.Book, n.every)
+	n.codes(underlying, n.underlyings, b.Underlying, n.every)
+	n.choices(instrument, schema.Instruments, n.words.instrument, b.Instrument, n.every)
+	n.numbers(quantity, &anyNumber, b.Quantity, nan, n.every)
+	n.numbers(multiplier, &positive, b.Multiplier, 1, none)
+	n.currency(b.Currency)
+	n.choices(optionType, schema.OptionTypes, n.words.optionType, b.OptionType, n.options)
+	n.choices(exercise, schema.Exercises, n.words.exercise, b.Exercise, none)
+	n.choices(payoff, schema.Payoffs, n.words.payoff, b.Payoff, none)
+	for i, x := range b.Instrument {
+		if x == schema.Option {
+			b.Exercise[i] = cmp.Or(b.Exercise[i], schema.European)
+			b.Payoff[i] = cmp.Or(b.Payoff[i], schema.Vanilla)
+		}
+	}
+	n.numbers(strike, &anyNumber, b.Strike, nan, n.dated)
+	n.dates(expiry, b.Expiry, b.ExpiryMinute, n.dated)
+	n.numbers(vol, &n.vol, b.Vol, nan, none)
+	n.numbers(mark, &anyNumber, b.Mark, nan, none)
+	n.numbers(payout, &anyNumber, b.Payout, nan, none)
+	n.choices(barrierType, schema.BarrierTypes, n.words.barrierType, b.BarrierType, none)
+	n.numbers(barrier, &anyNumber, b.Barrier, nan, none)
+	n.numbers(rebate, &anyNumber, b.Rebate, nan, none)
+	n.dates(averageStart, b.AverageStart, nil, none)
+	n.numbers(averageSoFar, &anyNumber, b.AverageSoFar, nan, none)
+	n.numbers(entryPrice, &anyNumber, b.EntryPrice, nan, none)
+	n.codes(strategy, n.strategies, b.Strategy, none)
+}
+
+// wrong notes a problem; further ones of a row that is no row are not worth a word.
+func (n *Binder) wrong(row, column int, why *finding) {
+	if !n.bad[row] {
+		n.problems = append(n.problems, problem{row, column, why})
+	}
+}
+
+// refuse writes a Reject for every row with a problem, in row order. The first
+// problem in the order of our columns is the one reported; the reason names
+// the columns of the others.
+func (n *Binder) refuse(b *schema.Batch) {
+	for _, x := range n.cells.Bad {
+		n.problems = append(n.problems, problem{x.Row, -1, &finding{schema.BadRow, x.Reason}})
+	}
+	slices.SortStableFunc(n.problems, func(a, b problem) int {
+		if a.row != b.row {
+			return a.row - b.row
+		}
+		return a.column - b.column
+	})
+	for k := 0; k < len(n.problems); {
+		x := n.problems[k]
+		var others []string
+		for k++; k < len(n.problems) && n.problems[k].row == x.row; k++ {
+			if c := n.p.o.names[n.problems[k].column]; !slices.Contains(others, c) {
+				others = append(others, c)
+			}
+		}
+		b.Status[x.row] = schema.Rejected
+		b.Rejects = append(b.Rejects, n.reject(b, x, others))
+	}
+}
+
+func (n *Binder) reject(b *schema.Batch, x problem, others []string) schema.Reject {
+	r := schema.Reject{
+		File: n.p.o.in.name, Sheet: n.p.o.sheet, Line: b.Line[x.row], Code: x.why.code, Reason: x.why.reason,
+		Row: strings.Clone(b.Raw.At(x.row)), Index: x.row,
+	}
+	if len(others) > 0 {
+		r.Reason += "; also: " + strings.Join(others, ", ")
+	}
+	if x.column < 0 {
+		return r
+	}
+	r.Column = n.p.o.names[x.column]
+	if at := n.p.o.at[x.column]; at >= 0 {
+		r.Value = n.cells.value(at, x.row)
+	} else {
+		r.Reason += "; the file has no such column"
+	}
+	return r
+}

@@ -1,0 +1,49 @@
+package reader
+
+import (
+	"math"
+
+	"nightbook/schema"
+)
+
+// bounds are what makes sense for a number, whatever the row.
+type bounds struct {
+	from, to float64
+	open     bool // from itself is out
+	scale    float64
+	why      *finding
+}
+
+// Bounds of the columns. A rate or a volatility beyond 1000 % is most often a
+// percentage where a decimal is expected.
+var (
+	anyNumber = bounds{from: math.Inf(-1), to: math.Inf(1)}
+	positive  = bounds{from: 0, to: math.Inf(1), open: true, why: &finding{schema.OutOfRange, "expected a number above 0"}}
+	notBelow0 = bounds{from: 0, to: math.Inf(1), why: &finding{schema.OutOfRange, "expected 0 or a number above it"}}
+	rateRange = bounds{from: -10, to: 10, why: &finding{schema.OutOfRange, "expected a rate as a decimal, from -10 to 10 (1000 %): 0.035 is 3.5 %"}}
+
+	volDecimal = bounds{from: 0, to: 10, why: &finding{schema.OutOfRange,
+		`expected a volatility as a decimal, from 0 to 10 (1000 %): 0.20 is 20 %; if the files give percent, set [vols] unit = "percent"`}}
+	volPercent = bounds{from: 0, to: 10, scale: 100, why: &finding{schema.OutOfRange,
+		`expected a volatility in percent, from 0 to 1000, as [vols] unit = "percent" says`}}
+)
+
+// volBounds are the bounds of a volatility in the unit of the files.
+func volBounds(cfg *schema.Config) bounds {
+	if cfg.Vols.Percent {
+		return volPercent
+	}
+	return volDecimal
+}
+
+// check scales a finite number to our unit and holds it to the bounds. Of a
+// number that is out it returns NaN.
+func (b *bounds) check(x float64) (float64, *finding) {
+	if b.scale != 0 {
+		x /= b.scale
+	}
+	if x < b.from || x > b.to || b.open && x == b.from {
+		return math.NaN(), b.why
+	}
+	return x, nil
+}

@@ -1,0 +1,219 @@
+package reader
+
+import (
+	"bytes"
+	"math"
+	"unicode/utf8"
+
+	"nightbook/reader/table"
+	"nightbook/schema"
+)
+
+// finding is what is wrong with a cell: the code and what was expected.
+type finding struct {
+	code   schema.RejectCode
+	reason string
+}
+
+// Findings on single cells.
+var (
+	missing     = &finding{schema.MissingValue, "the cell is empty and this row needs it"}
+	notNumber   = &finding{schema.BadNumber, "expected a number such as 1234.5 or 1.2e6, without thousands separators; if the file writes decimal commas, set [csv] decimal_comma = true"}
+	notComma    = &finding{schema.BadNumber, "expected a number with a decimal comma such as 1.234,5, as [csv] decimal_comma = true says"}
+	notFinite   = &finding{schema.BadNumber, "expected a finite number"}
+	faultCell   = &finding{schema.BadNumber, "the workbook's cell holds an error value: correct its formula"}
+	notUTF8     = &finding{schema.BadText, "the text is not valid UTF-8: save the file as UTF-8, or declare its encoding in [csv] encoding"}
+	hasControl  = &finding{schema.BadText, "the text holds a control character"}
+	tooLongText = &finding{schema.BadText, "the text is longer than 256 bytes"}
+	notCurrency = &finding{schema.BadChoice, "expected a currency as three letters of ISO 4217, such as USD"}
+)
+
+// maxText is the longest name, in bytes.
+const maxText = 256
+
+// style is how a house writes its numbers and dates as text. Typed cells (of
+// Parquet files and workbooks) have no style.
+type style struct {
+	decimalComma bool
+	dates        dateFormat
+}
+
+// cells reads cells of a run of rows. Its results are valid until the next call.
+type cells struct {
+	*table.Rows
+	style   style
+	scratch []byte
+}
+
+// text returns a cell's text without spaces around it; nil is an empty cell.
+func (c *cells) text(col, i int) []byte {
+	if v := &c.Cols[col]; v.Kind == schema.KindStrings {
+		return trim(v.Strings.Bytes(i))
+	}
+	c.scratch = c.AppendText(c.scratch[:0], col, i)
+	return c.scratch
+}
+
+// name returns a cell that names something: at most 256 bytes of UTF-8 without
+// control characters.
+func (c *cells) name(col, i int) ([]byte, *finding) {
+	b := c.text(col, i)
+	if c.Cell(col, i) == table.Fault {
+		return b, faultCell
+	}
+	return b, checkName(b)
+}
+
+func checkName(b []byte) *finding {
+	if len(b) > maxText {
+		return tooLongText
+	}
+	ascii := true
+	for _, x := range b {
+		if x < 0x20 || x == 0x7f {
+			return hasControl
+		}
+		ascii = ascii && x < utf8.RuneSelf
+	}
+	if ascii {
+		return nil
+	}
+	if !utf8.Valid(b) {
+		return notUTF8
+	}
+	for _, r := range string(b) {
+		if 0x80 <= r && r < 0xA0 {
+			return hasControl
+		}
+	}
+	return nil
+}
+
+// number returns a cell's number; NaN is an empty cell.
+func (c *cells) number(col, i int) (float64, *finding) {
+	switch v := &c.Cols[col]; v.Kind {
+	case schema.KindFloats:
+		x := v.Floats[i]
+		if math.IsInf(x, 0) {
+			return math.NaN(), notFinite
+		}
+		return x, nil
+	case schema.KindInts:
+		if v.Ints[i] == schema.NoInt {
+			return math.NaN(), nil
+		}
+		return float64(v.Ints[i]), nil
+	case schema.KindDates:
+		if v.Dates[i] == schema.NoDate {
+			return math.NaN(), nil
+		}
+		return math.NaN(), notNumber
+	}
+	b := trim(c.Cols[col].Strings.Bytes(i))
+	if len(b) == 0 {
+		return math.NaN(), nil
+	}
+	kind := c.Cell(col, i)
+	if kind == table.Fault {
+		return math.NaN(), faultCell
+	}
+	if c.style.decimalComma && kind == table.Text {
+		if x, ok := parseCommaNumber(b, &c.scratch); ok {
+			return x, nil
+		}
+		return math.NaN(), notComma
+	}
+	if x, ok := parseNumber(b); ok {
+		return x, nil
+	}
+	return math.NaN(), notNumber
+}
+
+// date returns a cell's date and time of day; NoDate is an empty cell.
+func (c *cells) date(col, i int) (schema.Date, int16, *finding) {
+	switch v := &c.Cols[col]; v.Kind {
+	case schema.KindDates:
+		return v.Dates[i], schema.NoMinute, nil
+	case schema.KindStrings:
+		b := trim(v.Strings.Bytes(i))
+		if len(b) == 0 {
+			return schema.NoDate, schema.NoMinute, nil
+		}
+		switch c.Cell(col, i) {
+		case table.Text:
+			return c.style.dates.parse(b)
+		case table.Date:
+			return isoDate.parse(b)
+		case table.Fault:
+			return schema.NoDate, schema.NoMinute, faultCell
+		}
+		return schema.NoDate, schema.NoMinute, notDate
+	}
+	// A number is no date, but its text may be one where dates are written
+	// without anything between the digits: 20260320.
+	b := c.text(col, i)
+	if len(b) == 0 {
+		return schema.NoDate, schema.NoMinute, nil
+	}
+	return c.style.dates.parse(b)
+}
+
+// choice returns a cell's choice out of list; 0 is an empty cell.
+func (c *cells) choice(col, i int, list schema.Choices, other *finding) (schema.Choice, *finding) {
+	b := c.text(col, i)
+	if len(b) == 0 {
+		return 0, nil
+	}
+	if x, ok := findChoice(list, b); ok {
+		return x, nil
+	}
+	if c.Cell(col, i) == table.Fault {
+		return 0, faultCell
+	}
+	return 0, other
+}
+
+// currency returns a cell's currency in capitals; nil is an empty cell.
+func (c *cells) currency(col, i int) ([]byte, *finding) {
+	b := c.text(col, i)
+	if len(b) == 0 {
+		return nil, nil
+	}
+	if c.Cell(col, i) == table.Fault {
+		return b, faultCell
+	}
+	if len(b) != 3 {
+		return b, notCurrency
+	}
+	c.scratch = append(c.scratch[:0], b...)
+	for k, x := range c.scratch {
+		if 'a' <= x && x <= 'z' {
+			x -= 'a' - 'A'
+		}
+		if x < 'A' || x > 'Z' {
+			return b, notCurrency
+		}
+		c.scratch[k] = x
+	}
+	return c.scratch, nil
+}
+
+// value returns a cell as it came, for a Reject.
+func (c *cells) value(col, i int) string {
+	b := c.AppendText(nil, col, i)
+	const most = 1024 // a whole page pasted into a cell is not worth repeating
+	if len(b) > most {
+		b = append(bytes.ToValidUTF8(b[:most], nil), "…"...)
+	}
+	return string(b)
+}
+
+func trim(b []byte) []byte {
+	for len(b) > 0 && (b[0] == ' ' || b[0] == '\t') {
+		b = b[1:]
+	}
+	for len(b) > 0 && (b[len(b)-1] == ' ' || b[len(b)-1] == '\t') {
+		b = b[:len(b)-1]
+	}
+	return b
+}

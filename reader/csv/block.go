@@ -1,0 +1,45 @@
+package csv
+
+// Block is a run of records of a file, not yet split into fields. Its memory
+// is used again by the next call of Scanner.Next.
+type Block struct {
+	Data    []byte
+	Records []Record
+}
+
+// Record is one record of a Block: Data[Start:End] without its line end.
+type Record struct {
+	Start, End uint32
+	Line       int64 // of the file, on which the record starts; the first is 1
+	Quoted     bool  // holds a quotation mark
+	Fault      Fault
+}
+
+// Fault says how a record breaks the rules of quoting.
+type Fault uint8
+
+// The faults of a record.
+const (
+	NoFault Fault = iota
+	StrayQuote
+	TextAfterQuote
+	OpenQuote
+	FieldTooLong
+)
+
+var faultReasons = [...]string{
+	StrayQuote:     `a quotation mark stands inside a field that does not begin with one: put the field in quotation marks and double those inside it`,
+	TextAfterQuote: `text follows a closing quotation mark: double the quotation marks inside the field`,
+	OpenQuote:      `a quotation mark is opened and not closed before the file ends`,
+	FieldTooLong:   `a field is longer than 64 KiB`,
+}
+
+func (f Fault) String() string { return faultReasons[f] }
+
+// Limits on what is held in memory, in bytes. A record beyond the first is most
+// often a quotation mark that is never closed, and ends the reading; a field
+// beyond the second makes its row a bad one.
+const (
+	MaxRecord = 1 << 20
+	MaxField  = 64 << 10
+)

@@ -1,0 +1,144 @@
+package reader
+
+import (
+	"crypto/sha256"
+	"encoding/hex"
+	"errors"
+	"fmt"
+	"hash"
+	"io"
+	"os"
+	"sync/atomic"
+
+	"github.com/klauspost/compress/gzip"
+	"github.com/klauspost/compress/zstd"
+
+	"nightbook/schema"
+)
+
+// input is a file of the snapshot folder and the table it holds.
+type input struct {
+	path, name string
+	table      *schema.Table
+	format     format
+}
+
+// file is an input being read. What is read of it in order is hashed on the way.
+type file struct {
+	*os.File
+	in    *input
+	size  int64
+	sum   hash.Hash
+	taken atomic.Int64 // bytes read and hashed; a decompressor may read ahead on its own goroutine
+	close func()
+}
+
+func (in *input) open() (*file, error) {
+	f, err := os.Open(in.path)
+	if err != nil {
+		return nil, err
+	}
+	info, err := f.Stat()
+	if err == nil && !info.Mode().IsRegular() {
+		err = fmt.Errorf("%s: %w", in.path, errNotRegular)
+	}
+	if err != nil {
+		f.Close()
+		return nil, err
+	}
+	return &file{File: f, in: in, size: info.Size(), sum: sha256.New(), close: func() {}}, nil
+}
+
+// Read reads the file as it lies on disk.
+func (f *file) Read(p []byte) (int, error) {
+	n, err := f.File.Read(p)
+	f.sum.Write(p[:n])
+	f.taken.Add(int64(n))
+	return n, err
+}
+
+// Close closes the file and what unpacks it.
+func (f *file) Close() error {
+	f.close()
+	return f.File.Close()
+}
+
+// hashAll hashes the whole of a file that is then read out of order.
+func (f *file) hashAll() error {
+	_, err := io.Copy(io.Discard, struct{ io.Reader }{f})
+	return err
+}
+
+// finish reads what is left of the file and returns its entry in the inputs.
+func (f *file) finish(rows int64) (schema.InputFile, error) {
+	if err := f.hashAll(); err != nil {
+		return schema.InputFile{}, err
+	}
+	return schema.InputFile{Name: f.in.name, Table: f.in.table.Name, SHA256: hex.EncodeToString(f.sum.Sum(nil)), Bytes: f.taken.Load(), Rows: rows}, nil
+}
+
+func inputOfBytes(name, table string, text []byte) schema.InputFile {
+	sum := sha256.Sum256(text)
+	return schema.InputFile{Name: name, Table: table, SHA256: hex.EncodeToString(sum[:]), Bytes: int64(len(text))}
+}
+
+// Limits on unpacking, against files made to fill the machine: no file of more
+// than 64 GiB unpacked, and beyond 100 MiB none that grows more than a
+// thousandfold. Text of positions packs about tenfold.
+const (
+	maxUnpacked   = 64 << 30
+	maxRatio      = 1000
+	ratioFromSize = 100 << 20
+	maxWindow     = 256 << 20 // memory one zstd frame may ask for
+)
+
+var (
+	errTooLarge = errors.New("unpacks to more than 64 GiB")
+	errBomb     = errors.New("unpacks to more than a thousand times its size")
+)
+
+// unpacked returns the file's text without its compression. A packed file that
+// ends too early gives io.ErrUnexpectedEOF.
+func (f *file) unpacked() (io.Reader, error) {
+	switch f.in.format.packed {
+	case "gzip":
+		z, err := gzip.NewReader(f)
+		if err == io.EOF {
+			return nil, fmt.Errorf("not a gzip file: %w", io.ErrUnexpectedEOF)
+		}
+		if err != nil {
+			return nil, err
+		}
+		return &bounded{r: z, f: f}, nil
+	case "zstd":
+		if f.size == 0 { // the decoder takes nothing at all for an empty text
+			return nil, fmt.Errorf("not a zstd file: %w", io.ErrUnexpectedEOF)
+		}
+		z, err := zstd.NewReader(f, zstd.WithDecoderMaxWindow(maxWindow))
+		if err != nil {
+			return nil, err
+		}
+		f.close = z.Close
+		return &bounded{r: z, f: f}, nil
+	}
+	return struct{ io.Reader }{f}, nil
+}
+
+// bounded holds unpacking to the limits.
+type bounded struct {
+	r io.Reader
+	f *file
+	n int64
+}
+
+func (b *bounded) Read(p []byte) (int, error) {
+	n, err := b.r.Read(p)
+	b.n += int64(n)
+	if b.n > maxUnpacked {
+		return 0, errTooLarge
+	}
+	if b.n > ratioFromSize && b.n/maxRatio > b.f.taken.Load() {
+		return 0, errBomb
+	}
+	return n, err
+}

@@ -1,0 +1,85 @@
+package reader
+
+import (
+	"nightbook/reader/csv"
+	"nightbook/reader/table"
+	"nightbook/schema"
+)
+
+// A format is a form of file that is read.
+type format struct {
+	suffix string
+	packed string // "", "gzip" or "zstd"
+	open   func(*file, *schema.Config) (source, error)
+}
+
+// formats is the list of all of them: to read one more is to add a line.
+func formats() []format {
+	return []format{
+		{".csv", "", openCSV},
+		{".csv.gz", "gzip", openCSV},
+		{".csv.zst", "zstd", openCSV},
+	}
+}
+
+// source is a file of whatever format, as rows.
+type source interface {
+	// Header returns the names of the columns, in the order of the file.
+	Header() []string
+	// Next reads the next rows; io.EOF is the end. The rows are valid until it is called again.
+	Next(into *table.Rows) error
+}
+
+func formatOf(suffix string) (format, bool) {
+	for _, f := range formats() {
+		if f.suffix == suffix {
+			return f, true
+		}
+	}
+	return format{}, false
+}
+
+func formatNames() []string {
+	var names []string
+	for _, f := range formats() {
+		names = append(names, f.suffix)
+	}
+	return names
+}
+
+// textFile is a text file: a scanner, with a decoder of its own for those who
+// read it in order.
+type textFile struct {
+	*csv.Scanner
+	block   csv.Block
+	decoder *csv.Decoder
+}
+
+func (t *textFile) Next(into *table.Rows) error {
+	if err := t.Scanner.Next(&t.block); err != nil {
+		return err
+	}
+	if t.decoder == nil {
+		t.decoder = csv.NewDecoder(len(t.Header()), t.Delimiter())
+	}
+	t.decoder.Decode(&t.block, into)
+	return nil
+}
+
+func openCSV(f *file, cfg *schema.Config) (source, error) {
+	text, err := f.unpacked()
+	if err != nil {
+		return nil, err
+	}
+	o := csv.Options{Delimiter: cfg.CSV.Delimiter}
+	for i, name := range csv.EncodingNames {
+		if name == cfg.CSV.Encoding {
+			o.Encoding = csv.Encoding(i)
+		}
+	}
+	s, err := csv.NewScanner(text, o)
+	if err != nil {
+		return nil, err
+	}
+	return &textFile{Scanner: s}, nil
+}
