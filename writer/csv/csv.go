@@ -1,0 +1,124 @@
+package csv
+
+import (
+	"fmt"
+	"io"
+	"slices"
+	"sync"
+
+	"nightbook/schema"
+)
+
+// Options are settings of the format; the zero value serves.
+type Options struct {
+	Workers  int      // goroutines that format; 0 is one
+	BareText bool     // write every text as it is, formulas or not
+	AsCame   []string // columns whose texts are written as they are
+}
+
+// partRows is how many rows a goroutine formats at least: below that, starting
+// it costs more than it saves.
+const partRows = 256
+
+// Writer writes one table.
+type Writer struct {
+	w       io.Writer
+	columns []column
+	parts   [][]byte // one buffer a goroutine, kept from frame to frame
+	errs    []error
+	rows    int64
+	failed  error
+}
+
+type column struct {
+	schema.Column
+	guard bool // against formulas
+}
+
+// New starts a table. The header is written at once.
+func New(w io.Writer, t schema.Table, opt Options) (*Writer, error) {
+	workers := max(opt.Workers, 1)
+	c := &Writer{w: w, parts: make([][]byte, workers), errs: make([]error, workers)}
+	for _, name := range opt.AsCame {
+		if t.Column(name) == nil {
+			return nil, fmt.Errorf("csv: table %s has no column %s to leave as it came", t.Name, name)
+		}
+	}
+	var header []byte
+	for i, col := range t.Columns {
+		if i > 0 {
+			header = append(header, ',')
+		}
+		// The house's own column names come from outside, too.
+		header = appendText(header, col.Name, !opt.BareText)
+		c.columns = append(c.columns, column{col, !opt.BareText && !slices.Contains(opt.AsCame, col.Name)})
+	}
+	header = append(header, '\n')
+	if _, err := w.Write(header); err != nil {
+		return nil, err
+	}
+	return c, nil
+}
+
+// Write appends the rows of the frame.
+func (c *Writer) Write(f *schema.Frame) error {
+	if c.failed != nil {
+		return c.failed
+	}
+	if len(f.Cols) != len(c.columns) {
+		panic("csv: the frame's columns are not the table's")
+	}
+	n := min(len(c.parts), 1+f.N/partRows)
+	var wg sync.WaitGroup
+	for p := 1; p < n; p++ {
+		wg.Go(func() { c.format(p, f, f.N*p/n, f.N*(p+1)/n) })
+	}
+	c.format(0, f, 0, f.N/n)
+	wg.Wait()
+	for p := range n {
+		if c.failed = c.errs[p]; c.failed != nil {
+			return c.failed
+		}
+		if _, c.failed = c.w.Write(c.parts[p]); c.failed != nil {
+			return c.failed
+		}
+	}
+	c.rows += int64(f.N)
+	return nil
+}
+
+// Close ends the table.
+func (c *Writer) Close() error { return c.failed }
+
+// format turns rows [from, to) of the frame into part p.
+func (c *Writer) format(p int, f *schema.Frame, from, to int) {
+	b := c.parts[p][:0]
+	c.errs[p] = nil
+	for row := from; row < to && c.errs[p] == nil; row++ {
+		start := len(b)
+		for i := range c.columns {
+			if i > 0 {
+				b = append(b, ',')
+			}
+			var ok bool
+			if b, ok = appendCell(b, &f.Cols[i], row, &c.columns[i]); !ok {
+				c.errs[p] = c.refusal(&f.Cols[i], row, i)
+				break
+			}
+		}
+		if len(b) == start {
+			b = append(b, `""`...) // an empty line would not be a row
+		}
+		b = append(b, '\n')
+	}
+	c.parts[p] = b
+}
+
+// refusal says what is wrong with a value that appendCell did not take.
+func (c *Writer) refusal(v *schema.Vector, row, i int) error {
+	what := "null in a column that is never null"
+	if v.Kind == schema.KindFloats && v.Floats[row] == v.Floats[row] {
+		what = "not a finite number"
+	}
+	return fmt.Errorf("csv: column %s, row %d: %s", c.columns[i].Name, c.rows+int64(row)+1, what)
+}

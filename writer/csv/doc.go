@@ -1,0 +1,16 @@
+// Package csv writes frames as comma-separated text: RFC 4180 with LF at the
+// ends of lines, a header, UTF-8 without a byte order mark.
+//
+//   - Numbers are the shortest decimals that read back to the same bits, with an
+//     exponent only below 1e-6 and from 1e21 in magnitude.
+//   - Dates are YYYY-MM-DD, booleans true and false, null is an empty cell.
+//   - A text is quoted where it holds a comma, a quote, CR or LF.
+//   - A text that a spreadsheet would take for a formula, that is one that begins
+//     with = + - @ or a tab, CR or LF, gets an apostrophe before it. So does a
+//     text that begins with apostrophes and then one of these, which makes the
+//     rule reversible: take one apostrophe off where apostrophes are followed by
+//     one of these. Numbers are never touched. Options turns the rule off for all
+//     columns or for single ones.
+//
+// It knows nothing of files: it writes to an io.Writer.
+package csv

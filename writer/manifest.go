@@ -1,0 +1,222 @@
+package writer
+
+import (
+	"bytes"
+	"encoding/json"
+	"fmt"
+	"math"
+
+	"nightbook/schema"
+)
+
+// Caution stands in the manifest and in the workbook.
+const Caution = "Estimates from models, not advice. To be checked by qualified staff; local regulation prevails."
+
+// manifest is the shape of manifest.json. The order of the fields is that of
+// the file.
+type manifest struct {
+	Program           string          `json:"program"`
+	Version           string          `json:"version"`
+	SchemaRevision    int             `json:"schema_revision"`
+	Kernel            string          `json:"kernel"`
+	AsOf              string          `json:"as_of"`
+	ReportingCurrency string          `json:"reporting_currency"`
+	Calendar          string          `json:"calendar"`
+	Conventions       conventions     `json:"conventions"`
+	Counts            manifestCounts  `json:"counts"`
+	Totals            manifestTotals  `json:"control_totals"`
+	Inputs            []manifestInput `json:"inputs"`
+	Outputs           []manifestFile  `json:"outputs"`
+	Caution           string          `json:"caution"`
+}
+
+type conventions struct {
+	DayCount         string `json:"day_count"`
+	Rates            string `json:"rates"`
+	RateNodes        string `json:"rate_interpolation"`
+	VolExpiries      string `json:"volatility_between_expiries"`
+	Sensitivities    string `json:"sensitivities"`
+	PositionMeasures string `json:"position_measures"`
+	Theta            string `json:"theta"`
+	Dividends        string `json:"dividends"`
+	Expired          string `json:"expired_lines"`
+	Sums             string `json:"sums"`
+}
+
+var theConventions = conventions{
+	DayCount:         "ACT/365F; date against date is whole days, with times of day on both to the minute",
+	Rates:            "continuous zero rates and yields",
+	RateNodes:        "linear in rate x time; flat zero rate beyond the ends",
+	VolExpiries:      "linear in total variance at fixed forward moneyness; flat beyond the ends",
+	Sensitivities:    "mathematical partial derivatives for one unit of the contract; vega and rho per 1.00, theta per year",
+	PositionMeasures: "unit measure x quantity x multiplier, in the line's currency and, with _base, in the reporting currency",
+	Theta:            "theta_cash_1d and theta_cash_1bd by full revaluation to the next calendar day and the next business day, all else held",
+	Dividends:        "continuous yield; lines that a cash dividend would move are refused",
+	Expired:          "at as_of or before: the payoff at the current price",
+	Sums:             "exact before one rounding: independent of the order of the rows",
+}
+
+type manifestCounts struct {
+	RowsIn         int64       `json:"rows_in"`
+	Priced         int64       `json:"priced"`
+	Expired        int64       `json:"expired"`
+	Rejected       int64       `json:"rejected"`
+	RowsAccounted  bool        `json:"rows_accounted"`
+	RejectedByCode []codeCount `json:"rejected_by_code"`
+	WarningsByCode []codeCount `json:"warnings_by_code"`
+}
+
+type codeCount struct {
+	Code  string `json:"code"`
+	Count int64  `json:"count"`
+}
+
+type manifestTotals struct {
+	Quantity    float64        `json:"quantity"`
+	Measures    measures       `json:"measures"`
+	MaxResidual *float64       `json:"max_pde_residual"`
+	BooksOwn    []manifestBook `json:"books_own"`
+}
+
+// measures are sums in the reporting currency.
+type measures [schema.NumMeasures]float64
+
+// MarshalJSON writes the measures as an object, in their order.
+func (m measures) MarshalJSON() ([]byte, error) {
+	b := []byte{'{'}
+	for i, x := range m {
+		if i > 0 {
+			b = append(b, ',')
+		}
+		value, err := json.Marshal(x)
+		if err != nil {
+			return nil, err
+		}
+		b = fmt.Appendf(b, "%q:%s", schema.MeasureNames[i]+"_base", value)
+	}
+	return append(b, '}'), nil
+}
+
+type manifestBook struct {
+	Book      string  `json:"book"`
+	Lines     int64   `json:"lines"`
+	Quantity  float64 `json:"quantity"`
+	ValueBase float64 `json:"value_base"`
+}
+
+type manifestInput struct {
+	Name   string `json:"name"`
+	Table  string `json:"table"`
+	SHA256 string `json:"sha256"`
+	Bytes  int64  `json:"bytes"`
+	Rows   int64  `json:"rows"`
+}
+
+type manifestFile struct {
+	Name   string `json:"name"`
+	SHA256 string `json:"sha256"`
+	Bytes  int64  `json:"bytes"`
+	Rows   int64  `json:"rows"`
+}
+
+// Manifest returns manifest.json: what was read, what was written, and the
+// figures to hold a later reading of the files against. The kernel is the name
+// of the pricing kernel that ran. A total that is not finite is refused.
+func Manifest(s *schema.Summary, kernel string, outputs []schema.OutputFile) ([]byte, error) {
+	if err := finiteTotals(s); err != nil {
+		return nil, err
+	}
+	m := manifest{
+		Program:           "nightbook",
+		Version:           s.Version,
+		SchemaRevision:    schema.Revision,
+		Kernel:            kernel,
+		AsOf:              s.Config.AsOf.String(),
+		ReportingCurrency: s.Config.ReportingCurrency,
+		Calendar:          s.Config.Calendar,
+		Conventions:       theConventions,
+		Counts: manifestCounts{
+			RowsIn: s.RowsIn, Priced: s.Total.Priced, Expired: s.Total.Expired, Rejected: s.Rejects,
+			RowsAccounted:  s.RowsAccounted(),
+			RejectedByCode: []codeCount{},
+			WarningsByCode: noteCounts(s.Notes),
+		},
+		Totals: manifestTotals{
+			Quantity: s.Total.Quantity,
+			Measures: s.Total.Measures,
+			BooksOwn: []manifestBook{},
+		},
+		Inputs:  []manifestInput{},
+		Outputs: []manifestFile{},
+		Caution: Caution,
+	}
+	if !math.IsNaN(s.MaxResidual) {
+		m.Totals.MaxResidual = &s.MaxResidual
+	}
+	for _, c := range s.RejectCount {
+		m.Counts.RejectedByCode = append(m.Counts.RejectedByCode, codeCount(c))
+	}
+	for i := range s.Books {
+		b := &s.Books[i]
+		m.Totals.BooksOwn = append(m.Totals.BooksOwn,
+			manifestBook{b.Book, b.Own.Lines, b.Own.Quantity, b.Own.Measures[schema.Value]})
+	}
+	for _, f := range s.Inputs {
+		m.Inputs = append(m.Inputs, manifestInput(f))
+	}
+	for _, f := range outputs {
+		m.Outputs = append(m.Outputs, manifestFile(f))
+	}
+	var buf bytes.Buffer
+	e := json.NewEncoder(&buf)
+	e.SetEscapeHTML(false)
+	e.SetIndent("", "  ")
+	err := e.Encode(&m)
+	return buf.Bytes(), err
+}
+
+// noteCounts adds warnings up by code, in the order of schema.NoteCodes.
+func noteCounts(notes []schema.Note) []codeCount {
+	counts := []codeCount{}
+	for _, c := range schema.NoteCodes {
+		var n int64
+		for i := range notes {
+			if string(notes[i].Code) == c.Code {
+				n += notes[i].Count
+			}
+		}
+		if n > 0 {
+			counts = append(counts, codeCount{c.Code, n})
+		}
+	}
+	return counts
+}
+
+// finiteTotals refuses a summary with a total that is no number.
+func finiteTotals(s *schema.Summary) error {
+	bad := func(what string, t *schema.Totals) error {
+		if !finite(t.Quantity) {
+			return fmt.Errorf("manifest: quantity of %s is not finite", what)
+		}
+		for m, x := range t.Measures {
+			if !finite(x) {
+				return fmt.Errorf("manifest: %s_base of %s is not finite", schema.MeasureNames[m], what)
+			}
+		}
+		return nil
+	}
+	if err := bad("all lines", &s.Total); err != nil {
+		return err
+	}
+	for i := range s.Books {
+		if err := bad("book "+s.Books[i].Book, &s.Books[i].Own); err != nil {
+			return err
+		}
+	}
+	if math.IsInf(s.MaxResidual, 0) {
+		return fmt.Errorf("manifest: max_pde_residual is not finite")
+	}
+	return nil
+}
+
+func finite(x float64) bool { return x-x == 0 }

@@ -1,0 +1,131 @@
+package parquet
+
+import (
+	"bytes"
+	"encoding/binary"
+	"math"
+
+	"github.com/xitongsys/parquet-go/parquet"
+)
+
+// maxTextBound is the length beyond which a text is not given as a bound: a
+// shortened one would not be the smallest or largest value any more.
+const maxTextBound = 256
+
+// bounds are the smallest and largest of a page's values so far, in the fields
+// of the column's type.
+type bounds struct {
+	values, nulls      int
+	minFloat, maxFloat float64
+	minInt, maxInt     int64 // also dates and booleans
+	minText, maxText   []byte
+}
+
+func (b *bounds) reset() {
+	*b = bounds{minText: b.minText[:0], maxText: b.maxText[:0]}
+}
+
+func (b *bounds) addInt(x int64) {
+	if b.values == 0 {
+		b.minInt, b.maxInt = x, x
+	}
+	b.minInt, b.maxInt = min(b.minInt, x), max(b.maxInt, x)
+	b.values++
+}
+
+// addText takes a text into account. Texts are ordered by their bytes.
+func (b *bounds) addText(t string) {
+	if b.values == 0 || t < string(b.minText) {
+		b.minText = append(b.minText[:0], t...)
+	}
+	if b.values == 0 || t > string(b.maxText) {
+		b.maxText = append(b.maxText[:0], t...)
+	}
+	b.values++
+}
+
+// encodedBounds are bounds as the file holds them.
+type encodedBounds struct {
+	values, nulls int
+	known         bool // whether min and max are given
+	min, max      []byte
+}
+
+func (b *bounds) encoded(t parquet.Type) encodedBounds {
+	e := encodedBounds{values: b.values, nulls: b.nulls, known: b.values > 0}
+	if b.values == 0 {
+		return e
+	}
+	switch t {
+	case parquet.Type_DOUBLE:
+		low, high := b.minFloat, b.maxFloat
+		// The format wants zeros so that a reader which tells -0 from +0 skips
+		// no page that holds the other.
+		if low == 0 {
+			low = math.Copysign(0, -1)
+		}
+		if high == 0 {
+			high = 0
+		}
+		e.min, e.max = encodeUint64(math.Float64bits(low)), encodeUint64(math.Float64bits(high))
+	case parquet.Type_INT64:
+		e.min, e.max = encodeUint64(uint64(b.minInt)), encodeUint64(uint64(b.maxInt))
+	case parquet.Type_INT32:
+		e.min = binary.LittleEndian.AppendUint32(nil, uint32(b.minInt))
+		e.max = binary.LittleEndian.AppendUint32(nil, uint32(b.maxInt))
+	case parquet.Type_BOOLEAN:
+		e.min, e.max = []byte{byte(b.minInt)}, []byte{byte(b.maxInt)}
+	default:
+		e.known = len(b.minText) <= maxTextBound && len(b.maxText) <= maxTextBound
+		if e.known {
+			e.min, e.max = bytes.Clone(b.minText), bytes.Clone(b.maxText)
+		}
+	}
+	return e
+}
+
+// merge widens e, which are the bounds of some pages, by those of another.
+func (e *encodedBounds) merge(page encodedBounds, t parquet.Type) {
+	switch {
+	case page.values == 0:
+	case e.values == 0:
+		e.known, e.min, e.max = page.known, page.min, page.max
+	case !e.known || !page.known:
+		e.known, e.min, e.max = false, nil, nil
+	default:
+		if less(t, page.min, e.min) {
+			e.min = page.min
+		}
+		if less(t, e.max, page.max) {
+			e.max = page.max
+		}
+	}
+	e.values += page.values
+	e.nulls += page.nulls
+}
+
+// less compares two encoded values of a type.
+func less(t parquet.Type, a, b []byte) bool {
+	switch t {
+	case parquet.Type_DOUBLE:
+		return decodeFloat(a) < decodeFloat(b)
+	case parquet.Type_INT64:
+		return int64(binary.LittleEndian.Uint64(a)) < int64(binary.LittleEndian.Uint64(b))
+	case parquet.Type_INT32:
+		return int32(binary.LittleEndian.Uint32(a)) < int32(binary.LittleEndian.Uint32(b))
+	}
+	return bytes.Compare(a, b) < 0
+}
+
+func (e *encodedBounds) statistics() *parquet.Statistics {
+	nulls := int64(e.nulls)
+	s := &parquet.Statistics{NullCount: &nulls}
+	if e.known {
+		s.MinValue, s.MaxValue = e.min, e.max
+	}
+	return s
+}
+
+func encodeUint64(x uint64) []byte { return binary.LittleEndian.AppendUint64(nil, x) }
+
+func decodeFloat(b []byte) float64 { return math.Float64frombits(binary.LittleEndian.Uint64(b)) }

@@ -1,0 +1,26 @@
+// Package parquet writes frames as an Apache Parquet file.
+//
+// It works on pages: each column copies its values into the page being filled,
+// in the PLAIN layout or as indices into a dictionary, and compresses the page
+// when it is full, so that of a row group only finished pages are held. Columns
+// are encoded in parallel. The file's own structures are those of the Parquet
+// format's Thrift definition.
+//
+// What stands in a file:
+//
+//   - Double as DOUBLE, Int as INT64, Day as INT32 with logical type DATE, Bool
+//     as BOOLEAN, Text as BYTE_ARRAY with logical type STRING. A column that is
+//     never null is REQUIRED, any other OPTIONAL.
+//   - Texts go through a dictionary of the row group, in the order in which they
+//     first appear; a column of free text in which most values differ, or whose
+//     dictionary grows past a limit, goes on as PLAIN.
+//   - A column chunk whose first page shrinks by less than a tenth is stored
+//     uncompressed: the low bits of computed numbers are noise.
+//   - Smallest and largest value and number of nulls of each page and chunk, a
+//     page index, and a CRC of each page.
+//
+// Where pages and row groups end depends on the rows alone: the same rows give
+// the same bytes whatever the frames they come in and the number of workers.
+//
+// It knows nothing of files: it writes to an io.Writer, front to back.
+package parquet

@@ -1,0 +1,190 @@
+package parquet
+
+import (
+	"fmt"
+	"io"
+	"sync"
+	"sync/atomic"
+
+	"github.com/xitongsys/parquet-go/parquet"
+
+	"nightbook/schema"
+)
+
+const (
+	// pageRows is how many rows a page holds at most: 128 KiB of doubles.
+	pageRows = 16 << 10
+
+	// groupRows is how many rows a row group holds at most.
+	groupRows = 8 * pageRows
+
+	// groupBytes ends a row group early: it bounds the memory that long texts take.
+	groupBytes = 256 << 20
+)
+
+// Options are settings of the format; the zero value serves.
+type Options struct {
+	Workers     int               // goroutines that encode; 0 is one
+	Version     string            // of the program
+	Compression string            // zstd, snappy, gzip or none; "" is zstd
+	Metadata    map[string]string // key-value pairs for the footer
+}
+
+// Writer writes one table.
+type Writer struct {
+	out     counter
+	table   schema.Table
+	columns []*column
+	scratch []*scratch // one a worker
+
+	rows      int64 // in the file
+	groupRows int64 // in the row group being filled
+	groups    []*parquet.RowGroup
+	indexes   []pageIndex // of every column chunk written, in order
+	meta      footerInfo
+	failed    error
+}
+
+// New starts a file.
+func New(w io.Writer, t schema.Table, opt Options) (*Writer, error) {
+	workers := max(opt.Workers, 1)
+	comp, err := newCompressor(opt.Compression, workers)
+	if err != nil {
+		return nil, err
+	}
+	p := &Writer{
+		out:   counter{w: w},
+		table: t,
+		meta:  footerInfo{version: opt.Version, pairs: opt.Metadata},
+	}
+	for _, c := range t.Columns {
+		p.columns = append(p.columns, newColumn(c, comp))
+	}
+	for range workers {
+		p.scratch = append(p.scratch, newScratch())
+	}
+	if _, err := p.out.Write(magic); err != nil {
+		return nil, err
+	}
+	return p, nil
+}
+
+// Write appends the rows of the frame.
+func (p *Writer) Write(f *schema.Frame) error {
+	if len(f.Cols) != len(p.columns) {
+		panic("parquet: the frame's columns are not the table's")
+	}
+	for from := 0; from < f.N && p.failed == nil; {
+		// Slices end where pages may end, so that all columns stand at the same
+		// row when the size of the row group is looked at.
+		to := min(f.N, from+pageRows-int(p.groupRows%pageRows))
+		p.failed = p.add(f, from, to)
+		p.groupRows += int64(to - from)
+		from = to
+		if p.failed == nil && p.groupRows%pageRows == 0 && (p.groupRows == groupRows || p.held() > groupBytes) {
+			p.failed = p.flush()
+		}
+	}
+	return p.failed
+}
+
+// Close writes what is held, and the footer.
+func (p *Writer) Close() error {
+	if p.failed == nil && p.groupRows > 0 {
+		p.failed = p.flush()
+	}
+	if p.failed == nil {
+		p.failed = p.writeFooter()
+	}
+	return p.failed
+}
+
+// add hands rows [from, to) of the frame to the columns.
+func (p *Writer) add(f *schema.Frame, from, to int) error {
+	return p.each(func(i int, s *scratch) error {
+		c := p.columns[i]
+		bad, err := c.add(&f.Cols[i], from, to, s)
+		if err != nil {
+			row := p.rows + p.groupRows + int64(bad-from) + 1
+			return fmt.Errorf("parquet: %s: column %s, row %d: %w", p.table.Name, c.Name, row, err)
+		}
+		return nil
+	})
+}
+
+// each calls do for every column, in parallel, and returns the error of the
+// first column that has one.
+func (p *Writer) each(do func(i int, s *scratch) error) error {
+	errs := make([]error, len(p.columns))
+	var next atomic.Int64
+	work := func(s *scratch) {
+		for {
+			i := int(next.Add(1)) - 1
+			if i >= len(p.columns) {
+				return
+			}
+			errs[i] = do(i, s)
+		}
+	}
+	var wg sync.WaitGroup
+	for _, s := range p.scratch[1:] {
+		wg.Go(func() { work(s) })
+	}
+	work(p.scratch[0])
+	wg.Wait()
+	for _, err := range errs {
+		if err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+func (p *Writer) held() int64 {
+	var n int64
+	for _, c := range p.columns {
+		n += c.held()
+	}
+	return n
+}
+
+// flush ends the row group and writes it.
+func (p *Writer) flush() error {
+	err := p.each(func(i int, s *scratch) error { return p.columns[i].finish(s) })
+	if err != nil {
+		return err
+	}
+	group := &parquet.RowGroup{NumRows: p.groupRows}
+	start := p.out.n
+	for _, c := range p.columns {
+		chunk, index, err := c.writeChunk(&p.out)
+		if err != nil {
+			return err
+		}
+		group.TotalByteSize += chunk.MetaData.TotalUncompressedSize
+		group.Columns = append(group.Columns, chunk)
+		p.indexes = append(p.indexes, index)
+	}
+	size := p.out.n - start
+	group.FileOffset, group.TotalCompressedSize = &start, &size
+	if n := len(p.groups); n < 1<<15 {
+		ordinal := int16(n)
+		group.Ordinal = &ordinal
+	}
+	p.groups = append(p.groups, group)
+	p.rows += p.groupRows
+	p.groupRows = 0
+	return nil
+}
+
+// counter knows where in the file the next byte goes.
+type counter struct {
+	w io.Writer
+	n int64
+}
+
+func (c *counter) Write(b []byte) (int, error) {
+	n, err := c.w.Write(b)
+	c.n += int64(n)
+	return n, err
+}

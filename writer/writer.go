@@ -1,0 +1,67 @@
+package writer
+
+import (
+	"fmt"
+	"io"
+	"strings"
+
+	"nightbook/schema"
+	"nightbook/writer/csv"
+	"nightbook/writer/parquet"
+)
+
+// Table takes the rows of one table. The columns of every frame are those of
+// the table, in order. Close writes what is still held and must be called for
+// the output to be whole; it does not close the io.Writer below.
+type Table interface {
+	Write(*schema.Frame) error
+	Close() error
+}
+
+// Formats are the names that NewTable knows, which are also the extensions of
+// the files.
+var Formats = []string{"parquet", "csv"}
+
+// Options are the settings of all formats; the zero value serves.
+type Options struct {
+	// Workers is how many goroutines encode; 0 is one. The bytes written do not
+	// depend on it.
+	Workers int
+
+	Version     string            // of this program, told in Parquet files
+	Compression string            // of Parquet: zstd, snappy, gzip or none; "" is zstd
+	Metadata    map[string]string // key-value pairs for the footer of Parquet files
+
+	// BareText turns off, for CSV, the protection against texts that a
+	// spreadsheet would run as formulas (see package csv).
+	BareText bool
+}
+
+// NewTable starts a table in the given format.
+func NewTable(format string, w io.Writer, t schema.Table, opt Options) (Table, error) {
+	switch format {
+	case "parquet":
+		return parquet.New(w, t, parquet.Options{
+			Workers:     opt.Workers,
+			Version:     opt.Version,
+			Compression: opt.Compression,
+			Metadata:    opt.Metadata,
+		})
+	case "csv":
+		return csv.New(w, t, csv.Options{
+			Workers:  opt.Workers,
+			BareText: opt.BareText,
+			AsCame:   evidence(t.Name),
+		})
+	}
+	return nil, fmt.Errorf("output format %q: must be one of %s", format, strings.Join(Formats, ", "))
+}
+
+// evidence names the columns that hold text exactly as it came: whoever looks
+// into a refused row must see what the file holds, not what we made of it.
+func evidence(table string) []string {
+	if table == schema.RejectsOut.Name {
+		return []string{"value", "row"}
+	}
+	return nil
+}
