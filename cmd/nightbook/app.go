@@ -49,6 +49,9 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 	if err == nil {
 		return exitDone
 	}
+	if errors.Is(err, context.Canceled) {
+		err = errors.New("stopped: nothing was written")
+	}
 	var s *statusError
 	if !errors.As(err, &s) {
 		s = &statusError{exitFailed, err}

@@ -10,6 +10,7 @@ import (
 	"strings"
 	"text/tabwriter"
 	"time"
+	"unicode/utf8"
 
 	"github.com/schollz/progressbar/v3"
 	"golang.org/x/term"
@@ -115,7 +116,7 @@ func (c *console) finished(verb string, s *schema.Summary, dir string, took time
 	fmt.Fprintf(c.w, "%s %s: %s rows in = %s priced + %s expired + %s rejected", verb, s.Config.AsOf,
 		grouped(float64(s.RowsIn), 0), grouped(float64(s.Total.Priced), 0), grouped(float64(s.Total.Expired), 0), grouped(float64(s.Rejects), 0))
 	if s.Faults > 0 {
-		fmt.Fprintf(c.w, "; %s market rows rejected", grouped(float64(s.Faults), 0))
+		fmt.Fprintf(c.w, "; rejected market rows: %s", grouped(float64(s.Faults), 0))
 	}
 	fmt.Fprintf(c.w, "\n")
 	for _, n := range s.RejectCount {
@@ -136,10 +137,14 @@ func (c *console) books(s *schema.Summary) {
 	if len(s.Books) == 0 {
 		return
 	}
+	names := len("total")
+	for i := range s.Books {
+		names = max(names, utf8.RuneCountInString(s.Books[i].Book))
+	}
 	w := tabwriter.NewWriter(c.w, 0, 0, 2, ' ', tabwriter.AlignRight)
-	fmt.Fprintf(w, "%s\tlines\t%s\t\n", s.Config.ReportingCurrency, strings.Join(schema.MeasureNames[:], "\t"))
+	fmt.Fprintf(w, "%-*s\tlines\t%s\t\n", names, "in "+s.Config.ReportingCurrency, strings.Join(schema.MeasureNames[:], "\t"))
 	row := func(name string, t *schema.Totals) {
-		fmt.Fprintf(w, "%s\t%s\t", name, grouped(float64(t.Lines), 0))
+		fmt.Fprintf(w, "%-*s\t%s\t", names, name, grouped(float64(t.Lines), 0))
 		for _, x := range t.Measures {
 			fmt.Fprintf(w, "%s\t", grouped(x, 0))
 		}

@@ -63,7 +63,7 @@ func (g *gate) rows(b *schema.Batch) error {
 	for i := range b.Rejects {
 		r := &b.Rejects[i]
 		if r.File == "" { // refused after reading: the columns bear our names still
-			r.File, r.Sheet = g.positions.File(), g.positions.Sheet()
+			r.File, r.Sheet = g.positions.Name(), g.positions.Sheet()
 			r.Column = g.positions.Header(r.Column)
 		}
 	}
@@ -72,7 +72,7 @@ func (g *gate) rows(b *schema.Batch) error {
 	}
 	for _, n := range b.Notes {
 		if n.File == "" {
-			n.File = g.positions.File()
+			n.File = g.positions.Name()
 		}
 		g.warn(n)
 	}
@@ -96,14 +96,18 @@ func (g *gate) warn(n schema.Note) {
 	g.warnings[key] = &n
 }
 
-// notes returns all warnings, those of lines counted together, by code and subject.
-func (g *gate) notes(more ...[]schema.Note) []schema.Note {
+// notes returns the warnings about lines, like ones counted together.
+func (g *gate) notes() []schema.Note {
 	var all []schema.Note
 	for _, n := range g.warnings {
 		all = append(all, *n)
 	}
-	for _, m := range more {
-		all = append(all, m...)
-	}
 	return all
+}
+
+// sortNotes puts warnings in the order in which they are written.
+func sortNotes(notes []schema.Note) {
+	slices.SortStableFunc(notes, func(a, b schema.Note) int {
+		return cmp.Or(cmp.Compare(a.Code, b.Code), cmp.Compare(a.Subject, b.Subject), cmp.Compare(a.Line, b.Line), cmp.Compare(a.Message, b.Message))
+	})
 }

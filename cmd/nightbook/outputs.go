@@ -3,6 +3,7 @@ package main
 import (
 	"path/filepath"
 	"slices"
+	"strconv"
 
 	"nightbook/risk/vec"
 	"nightbook/schema"
@@ -97,9 +98,9 @@ func (out *outputs) table(t schema.Table, format string) (*tableFile, error) {
 		Compression: out.cfg.Parquet.Compression,
 		Workers:     out.o.workers,
 		Metadata: map[string]string{
-			"nightbook.version": version, "nightbook.schema_revision": schema.Revision,
+			"nightbook.version": version, "nightbook.schema_revision": strconv.Itoa(schema.Revision),
 			"nightbook.as_of": out.cfg.AsOf.String(), "nightbook.reporting_currency": out.cfg.ReportingCurrency,
-			"nightbook.caution": schema.Caution,
+			"nightbook.caution": writer.Caution,
 		},
 	})
 	return &tableFile{Table: w, file: f}, err

@@ -3,6 +3,7 @@ package main
 import (
 	"context"
 	"fmt"
+	"slices"
 	"time"
 
 	"nightbook/reader"
@@ -94,8 +95,9 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 	}
 
 	s := &schema.Summary{Config: cfg, Version: version, RowsIn: gate.rowsIn, Faults: int64(len(raw.Faults)), Inputs: folder.Inputs()}
-	s.Notes = gate.notes(folder.Notes(), raw.Notes, marketNotes)
 	totals.Summary(s)
+	s.Notes = slices.Concat(s.Notes, gate.notes(), folder.Notes(), raw.Notes, marketNotes)
+	sortNotes(s.Notes)
 	if !s.RowsAccounted() {
 		return nil, fmt.Errorf("%d rows came in, but %d were priced, %d expired and %d rejected: nothing is written, because rows were lost; this is a fault of the program",
 			s.RowsIn, s.Total.Priced, s.Total.Expired, s.Rejects)

@@ -167,7 +167,9 @@ func (t *Totals) Summary(s *schema.Summary) {
 		if t.tree.nodes[name] == nil {
 			t.tree.add(name)
 			if listed { // without a books table every book stands at the top
-				t.notes = append(t.notes, notInTree(name, "positions", 0))
+				n := notInTree(name, "", 0)
+				n.Count = sum.priced + sum.expired + sum.rejected
+				t.notes = append(t.notes, n)
 			}
 		}
 	}
@@ -179,7 +181,6 @@ func (t *Totals) Summary(s *schema.Summary) {
 			s.Rejects += n
 		}
 	}
-	slices.SortFunc(t.notes, func(a, b schema.Note) int { return cmp.Compare(a.Subject, b.Subject) })
 	s.Notes = append(s.Notes, t.notes...)
 	s.MaxResidual = t.residual
 }
