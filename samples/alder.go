@@ -102,7 +102,7 @@ func (a *alderDesk) euVol() {
 		a.option("EU-VOL", a.alder, size/2, "5", "call", a.alder.near(1000+2*w), x, "wings")
 	}
 	for _, side := range []string{"put", "call"} {
-		a.option("EU-VOL", a.alder, 420, "5", side, a.alder.near(1000), a.y1, "calendar")
+		a.option("EU-VOL", a.alder, 900, "5", side, a.alder.near(1000), a.y1, "calendar")
 		a.option("EU-VOL", a.alder, -380, "5", side, a.alder.near(1000), a.july, "calendar")
 	}
 	// clients of the flow book
@@ -121,7 +121,7 @@ func (a *alderDesk) euVol() {
 // the future and two forwards.
 func (a *alderDesk) euHedge() {
 	f := a.alderFut
-	a.linear("EU-HEDGE", f.name, "future", 310, "multiplier", "5", "entry_price", f.at(f.price.n-3150))
+	a.linear("EU-HEDGE", f.name, "future", 520, "multiplier", "5", "entry_price", f.at(f.price.n-3150))
 	a.linear("EU-HEDGE", f.name, "future", -95, "multiplier", "5", "entry_price", f.at(f.price.n+1825))
 	a.linear("EU-HEDGE", f.name, "future", 40, "multiplier", "5")
 	for _, x := range []string{a.july, a.august, a.september} {
@@ -157,7 +157,7 @@ func (a *alderDesk) usVol() {
 		a.option("US-VOL", a.bramble, a.between(10, 20)*10, "10", "put", a.bramble.near(920), x, "crash")
 	}
 	a.linear("US-HEDGE", a.quildale.name, "stock", -21_400, "currency", "USD")
-	a.linear("US-HEDGE", a.brambleFut.name, "future", 64, "multiplier", "10", "entry_price", a.brambleFut.at(a.brambleFut.price.n+640))
+	a.linear("US-HEDGE", a.brambleFut.name, "future", 280, "multiplier", "10", "entry_price", a.brambleFut.at(a.brambleFut.price.n+640))
 	for _, k := range []int64{940, 970, 1030} {
 		side := "put"
 		if k > 1000 {
@@ -181,6 +181,6 @@ func (a *alderDesk) jpVol() {
 		a.option("JP-SHARES", a.tarnwick, -240, "100", side, a.tarnwick.near(1000), a.december, "straddle")
 	}
 	a.linear("JP-SHARES", a.tarnwick.name, "stock", 8_800)
-	a.linear("JP-VOL", a.kestrelFut.name, "future", -41, "multiplier", "1000", "entry_price", a.kestrelFut.at(a.kestrelFut.price.n-12_500))
+	a.linear("JP-VOL", a.kestrelFut.name, "future", -330, "multiplier", "1000", "entry_price", a.kestrelFut.at(a.kestrelFut.price.n-12_500))
 	a.linear("JP-VOL", a.kestrelFut.name, "future", 3, "multiplier", "1000")
 }

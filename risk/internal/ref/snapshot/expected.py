@@ -15,7 +15,7 @@ Needs Python 3.11 and mpmath.
 import csv
 import sys
 
-from mpmath import mp, mpf, nstr
+from mpmath import chop, mp, mpf, nstr
 
 from market import Market
 from price import GREEKS, greeks, payoff, payoff_slope, value_function
@@ -96,7 +96,8 @@ def expected(line, market):
             out["delta"] = mpf(1)
         if line.instrument == "future":
             out["entry_price"] = u.price if line.entry_price is None else line.entry_price
-            value = (u.price - out["entry_price"]) * size
+            out["price"] = u.price - out["entry_price"]
+            value = out["price"] * size
         if line.instrument in ("option", "forward"):
             steps = dated_line(line, u, market, out)
             value = out["price"] * size
@@ -129,7 +130,10 @@ def dated_line(line, u, market, out):
     V = value_function(line.instrument, u.kind, K, line.call)
     price = V(S, T, r, q, vol)
     out["price"] = price
-    out.update(greeks(V, S, T, r, q, vol))
+    sensitivities = greeks(V, S, T, r, q, vol)
+    if line.instrument == "forward":  # linear: its second derivatives are 0 but for the last digits
+        sensitivities = {name: chop(x, mpf(10) ** -40) for name, x in sensitivities.items()}
+    out.update(sensitivities)
     if line.instrument == "option":
         g = out
         residual = abs(g["theta"] + vol ** 2 * S ** 2 * g["gamma"] / 2 + (r - q) * S * g["delta"] - r * price)
