@@ -162,15 +162,16 @@ func (c *column) endPage(s *scratch) error {
 }
 
 // pack returns s.raw as the page is to hold it. The first page of the chunk
-// settles the codec of the whole chunk: compression that saves less than a
-// tenth only costs the readers time.
+// settles the codec of the whole chunk: compression of numbers that saves less
+// than a tenth only costs the readers time. Texts always gain, if not on their
+// first page of indices then in the dictionary.
 func (c *column) pack(s *scratch) ([]byte, error) {
 	if len(c.pages) > 0 {
 		return c.comp.pack(s, c.codec)
 	}
 	c.codec = c.comp.codec
 	packed, err := c.comp.pack(s, c.codec)
-	if len(packed)*10 > len(s.raw)*9 {
+	if c.physical != parquet.Type_BYTE_ARRAY && len(packed)*10 > len(s.raw)*9 {
 		c.codec = parquet.CompressionCodec_UNCOMPRESSED
 		return s.raw, err
 	}

@@ -14,7 +14,7 @@
 //   - Texts go through a dictionary of the row group, in the order in which they
 //     first appear; a column of free text in which most values differ, or whose
 //     dictionary grows past a limit, goes on as PLAIN.
-//   - A column chunk whose first page shrinks by less than a tenth is stored
+//   - A chunk of numbers whose first page shrinks by less than a tenth is stored
 //     uncompressed: the low bits of computed numbers are noise.
 //   - Smallest and largest value and number of nulls of each page and chunk, a
 //     page index, and a CRC of each page.

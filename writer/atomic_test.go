@@ -1,0 +1,394 @@
+package writer
+
+import (
+	"bufio"
+	"crypto/sha256"
+	"encoding/hex"
+	"errors"
+	"fmt"
+	"math/rand/v2"
+	"os"
+	"os/exec"
+	"path/filepath"
+	"slices"
+	"strings"
+	"testing"
+	"time"
+)
+
+// fill makes a folder of results whose every file says what.
+func fill(f *Folder, what string) error {
+	for i := range 4 {
+		file, err := f.Create(fmt.Sprintf("file%d.txt", i))
+		if err != nil {
+			return err
+		}
+		for range 50 {
+			if _, err := fmt.Fprintln(file, what); err != nil {
+				return err
+			}
+		}
+		if err := file.Close(); err != nil {
+			return err
+		}
+	}
+	return f.Commit()
+}
+
+func mustFolder(t *testing.T, out string, replace bool) *Folder {
+	t.Helper()
+	f, err := NewFolder(out, "day", replace)
+	if err != nil {
+		t.Fatal(err)
+	}
+	t.Cleanup(func() { f.Abort() })
+	return f
+}
+
+// state says what OUT/day holds: "" for nothing, else what its files say. It
+// fails the test if the folder is not whole.
+func state(t *testing.T, out string) string {
+	t.Helper()
+	entries, err := os.ReadDir(filepath.Join(out, "day"))
+	if errors.Is(err, os.ErrNotExist) {
+		return ""
+	}
+	if err != nil {
+		t.Fatal(err)
+	}
+	if len(entries) != 4 {
+		t.Fatalf("%d files, want 4", len(entries))
+	}
+	what := ""
+	for _, e := range entries {
+		data, err := os.ReadFile(filepath.Join(out, "day", e.Name()))
+		if err != nil {
+			t.Fatal(err)
+		}
+		first, _, _ := strings.Cut(string(data), "\n")
+		if string(data) != strings.Repeat(first+"\n", 50) || what != "" && first != what {
+			t.Fatalf("%s is not whole", e.Name())
+		}
+		what = first
+	}
+	return what
+}
+
+// entries lists OUT, hidden names included.
+func entries(t *testing.T, out string) []string {
+	t.Helper()
+	list, err := os.ReadDir(out)
+	if err != nil {
+		t.Fatal(err)
+	}
+	var names []string
+	for _, e := range list {
+		names = append(names, e.Name())
+	}
+	return names
+}
+
+func wantEntries(t *testing.T, out string, want ...string) {
+	t.Helper()
+	if got := entries(t, out); !slices.Equal(got, want) {
+		t.Errorf("%s holds %q, want %q", out, got, want)
+	}
+}
+
+func TestCommitAndReplace(t *testing.T) {
+	out := filepath.Join(t.TempDir(), "a", "b") // made if need be
+	f := mustFolder(t, out, false)
+	if state(t, out) != "" {
+		t.Error("the folder is there before the commit")
+	}
+	if err := fill(f, "one"); err != nil {
+		t.Fatal(err)
+	}
+	if got := state(t, out); got != "one" {
+		t.Errorf("after the commit: %q", got)
+	}
+	wantEntries(t, out, "day")
+
+	if _, err := NewFolder(out, "day", false); !errors.Is(err, ErrExists) {
+		t.Errorf("existing folder: %v", err)
+	}
+	wantEntries(t, out, "day")
+	if err := fill(mustFolder(t, out, true), "two"); err != nil {
+		t.Fatal(err)
+	}
+	if got := state(t, out); got != "two" {
+		t.Errorf("after the replacement: %q", got)
+	}
+	wantEntries(t, out, "day")
+}
+
+func TestReplaceByTwoRenames(t *testing.T) {
+	out := t.TempDir()
+	if err := fill(mustFolder(t, out, false), "one"); err != nil {
+		t.Fatal(err)
+	}
+	f := mustFolder(t, out, true)
+	f.exchange = func(string, string) (bool, error) { return false, nil }
+	if err := fill(f, "two"); err != nil {
+		t.Fatal(err)
+	}
+	if got := state(t, out); got != "two" {
+		t.Errorf("after the replacement: %q", got)
+	}
+	wantEntries(t, out, "day")
+}
+
+// A run killed between the two renames leaves the old results under a hidden
+// name; the next run must put them back.
+func TestOldResultsComeBack(t *testing.T) {
+	out := t.TempDir()
+	if err := fill(mustFolder(t, out, false), "one"); err != nil {
+		t.Fatal(err)
+	}
+	if err := os.Rename(filepath.Join(out, "day"), filepath.Join(out, ".day"+oldSuffix)); err != nil {
+		t.Fatal(err)
+	}
+	f := mustFolder(t, out, true)
+	if got := state(t, out); got != "one" {
+		t.Errorf("old results: %q", got)
+	}
+	f.Abort()
+	wantEntries(t, out, "day")
+}
+
+func TestAbort(t *testing.T) {
+	out := t.TempDir()
+	f := mustFolder(t, out, false)
+	open, err := f.Create("open.txt")
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := f.Commit(); err == nil {
+		t.Error("a folder with an open file was committed")
+	}
+	for range 2 {
+		if err := f.Abort(); err != nil {
+			t.Error(err)
+		}
+	}
+	wantEntries(t, out)
+	if _, err := open.Write([]byte("x")); err == nil {
+		t.Error("a file of an aborted folder can be written")
+	}
+	if _, err := f.Create("late.txt"); err == nil {
+		t.Error("an aborted folder takes files")
+	}
+
+	f = mustFolder(t, out, false)
+	if err := fill(f, "one"); err != nil {
+		t.Fatal(err)
+	}
+	if err := f.Abort(); err != nil {
+		t.Error(err)
+	}
+	if got := state(t, out); got != "one" {
+		t.Errorf("Abort after Commit: %q", got)
+	}
+}
+
+// The folder may have been made by somebody else while the run was at work.
+func TestExistsAtCommit(t *testing.T) {
+	for _, make := range []func(string) error{
+		func(p string) error { return os.Mkdir(p, 0o777) }, // a plain rename would take its place
+		func(p string) error { return os.WriteFile(p, nil, 0o666) },
+	} {
+		out := t.TempDir()
+		f := mustFolder(t, out, false)
+		if err := make(filepath.Join(out, "day")); err != nil {
+			t.Fatal(err)
+		}
+		if err := fill(f, "one"); !errors.Is(err, ErrExists) {
+			t.Errorf("commit over an existing name: %v", err)
+		}
+		if err := renameNew(f.hidden(partSuffix), f.path()); !errors.Is(err, ErrExists) {
+			t.Errorf("rename over an existing name: %v", err)
+		}
+		if err := f.Abort(); err != nil {
+			t.Error(err)
+		}
+		wantEntries(t, out, "day")
+	}
+}
+
+func TestReplaceRefusesWhatIsNoFolder(t *testing.T) {
+	out := t.TempDir()
+	elsewhere := t.TempDir()
+	if err := os.Symlink(elsewhere, filepath.Join(out, "day")); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := NewFolder(out, "day", true); !errors.Is(err, ErrExists) {
+		t.Errorf("a link in the place of the folder: %v", err)
+	}
+	wantEntries(t, out, "day")
+}
+
+func TestNames(t *testing.T) {
+	out := t.TempDir()
+	bad := []string{"", ".", "..", "a/b", "/a", "../a", `a\b`, ".hidden", "C:a", "a\x00b"}
+	for _, name := range bad {
+		if _, err := NewFolder(out, name, false); err == nil {
+			t.Errorf("folder %q was started", name)
+		}
+	}
+	f := mustFolder(t, out, false)
+	for _, name := range bad {
+		if _, err := f.Create(name); err == nil {
+			t.Errorf("file %q was made", name)
+		}
+	}
+	if _, err := f.Create("a.csv"); err != nil {
+		t.Error(err)
+	}
+	if _, err := f.Create("a.csv"); err == nil {
+		t.Error("a file was made twice")
+	}
+	target := filepath.Join(t.TempDir(), "target")
+	if err := os.Symlink(target, filepath.Join(f.hidden(partSuffix), "link.csv")); err != nil {
+		t.Fatal(err)
+	}
+	if _, err := f.Create("link.csv"); err == nil {
+		t.Error("a link was followed")
+	}
+	if _, err := os.Lstat(target); err == nil {
+		t.Error("the target of a link was made")
+	}
+}
+
+func TestOutputs(t *testing.T) {
+	f := mustFolder(t, t.TempDir(), false)
+	for _, name := range []string{"b.csv", "a.csv"} {
+		file, err := f.Create(name)
+		if err != nil {
+			t.Fatal(err)
+		}
+		fmt.Fprint(file, "hello ")
+		fmt.Fprint(file, name)
+		file.SetRows(7)
+		if err := file.Close(); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if _, err := f.Create("open.csv"); err != nil {
+		t.Fatal(err)
+	}
+	out := f.Outputs()
+	if len(out) != 2 || out[0].Name != "a.csv" || out[1].Name != "b.csv" {
+		t.Fatalf("outputs %v", out)
+	}
+	sum := sha256.Sum256([]byte("hello a.csv"))
+	if out[0].SHA256 != hex.EncodeToString(sum[:]) || out[0].Bytes != 11 || out[0].Rows != 7 {
+		t.Errorf("output %+v", out[0])
+	}
+}
+
+func TestBusy(t *testing.T) {
+	out := t.TempDir()
+	first := mustFolder(t, out, false)
+	if _, err := NewFolder(out, "day", false); !errors.Is(err, ErrBusy) {
+		t.Errorf("second run: %v", err)
+	}
+	other, err := NewFolder(out, "other", false) // another folder is no matter
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := other.Abort(); err != nil {
+		t.Error(err)
+	}
+	if err := fill(first, "one"); err != nil {
+		t.Error(err)
+	}
+	wantEntries(t, out, "day")
+}
+
+// Only names of this folder's own may be cleared away.
+func TestOthersAreLeftAlone(t *testing.T) {
+	out := t.TempDir()
+	others := []string{".day.nightbook-part2", ".day2" + partSuffix, ".day2" + lockSuffix, "day" + partSuffix}
+	for _, name := range others {
+		if err := os.Mkdir(filepath.Join(out, name), 0o777); err != nil {
+			t.Fatal(err)
+		}
+	}
+	if err := fill(mustFolder(t, out, false), "one"); err != nil {
+		t.Fatal(err)
+	}
+	want := append([]string{"day"}, others...)
+	slices.Sort(want)
+	wantEntries(t, out, want...)
+}
+
+const childVariable = "WRITER_TEST_CHILD_OUT"
+
+// TestMain lets the test program be its own child, which writes the same folder
+// over and over until it is killed.
+func TestMain(m *testing.M) {
+	if out := os.Getenv(childVariable); out != "" {
+		for i := 0; ; i++ {
+			f, err := NewFolder(out, "day", true)
+			if err == nil {
+				err = fill(f, fmt.Sprint("run ", i))
+			}
+			if err != nil {
+				fmt.Println("child:", err)
+				os.Exit(1)
+			}
+			fmt.Println("done", i)
+		}
+	}
+	os.Exit(m.Run())
+}
+
+// Whenever a run is killed, there are whole old results, whole new ones or
+// none, and the next run finds its way.
+func TestKilled(t *testing.T) {
+	self, err := os.Executable()
+	if err != nil {
+		t.Fatal(err)
+	}
+	out := t.TempDir()
+	random := rand.New(rand.NewPCG(1, 2))
+	for range 30 {
+		child := exec.Command(self)
+		child.Env = append(os.Environ(), childVariable+"="+out)
+		stdout, err := child.StdoutPipe()
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := child.Start(); err != nil {
+			t.Fatal(err)
+		}
+		lines := bufio.NewScanner(stdout)
+		if !lines.Scan() || !strings.HasPrefix(lines.Text(), "done") {
+			t.Errorf("the child after a kill: %q", lines.Text())
+		}
+		time.Sleep(time.Duration(random.IntN(5000)) * time.Microsecond)
+		if err := child.Process.Kill(); err != nil {
+			t.Fatal(err)
+		}
+		last := ""
+		for lines.Scan() {
+			last = lines.Text()
+		}
+		child.Wait() // it was killed
+		if strings.HasPrefix(last, "child:") {
+			t.Error(last)
+		}
+		if state(t, out) == "" {
+			t.Error("results that were there are gone")
+		}
+		for _, name := range entries(t, out) {
+			if name != "day" && name != ".day"+partSuffix && name != ".day"+lockSuffix {
+				t.Errorf("left behind: %s", name)
+			}
+		}
+	}
+	if err := fill(mustFolder(t, out, true), "last"); err != nil {
+		t.Fatal(err)
+	}
+	wantEntries(t, out, "day")
+}
