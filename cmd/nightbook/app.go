@@ -63,6 +63,11 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 }
 
 func newApp(stdout, stderr io.Writer) *cli.App {
+	wrongUsage := func(_ *cli.Context, err error, _ bool) error { return &statusError{exitUsage, err} }
+	commands := []*cli.Command{runCommand(), checkCommand(), columnsCommand(), demoCommand()}
+	for _, c := range commands {
+		c.OnUsageError, c.HideHelpCommand = wrongUsage, true
+	}
 	return &cli.App{
 		Name:            "nightbook",
 		Usage:           "price a desk's positions, add up its books, and write the day's risk",
@@ -78,12 +83,11 @@ Exit status: 0 done · 1 failed · 2 wrong usage · 3 done, with rejected rows
 
 The values are estimates from models, not advice; they are to be checked by
 qualified staff, and local regulation prevails.`,
-		Writer:          stdout,
-		ErrWriter:       stderr,
-		ExitErrHandler:  func(*cli.Context, error) {},
-		OnUsageError:    func(_ *cli.Context, err error, _ bool) error { return &statusError{exitUsage, err} },
-		CommandNotFound: nil,
-		Commands:        []*cli.Command{runCommand(), checkCommand(), columnsCommand(), demoCommand()},
+		Writer:         stdout,
+		ErrWriter:      stderr,
+		ExitErrHandler: func(*cli.Context, error) {},
+		OnUsageError:   wrongUsage,
+		Commands:       commands,
 		Action: func(c *cli.Context) error {
 			if c.Args().Present() {
 				return usagef("there is no command %q; the commands are run, check, columns and demo", c.Args().First())

@@ -1,6 +1,7 @@
 package main
 
 import (
+	"errors"
 	"path/filepath"
 	"slices"
 	"strconv"
@@ -54,7 +55,11 @@ func newOutputs(o *options, cfg *schema.Config, dicts *schema.Dicts, extra []str
 		out.rejected = &tableFile{Table: w}
 		return out, err
 	}
-	if out.folder, err = writer.NewFolder(o.out, cfg.AsOf.Day.String(), o.replace); err != nil {
+	out.folder, err = writer.NewFolder(o.out, cfg.AsOf.Day.String(), o.replace)
+	if errors.Is(err, writer.ErrExists) {
+		return nil, &hinted{err, "the results of an earlier run are kept; give --replace to put these in their place, or another --out"}
+	}
+	if err != nil {
 		return nil, err
 	}
 	if err := out.open(schema.LinesTable(extra)); err != nil {

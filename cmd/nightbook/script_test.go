@@ -24,6 +24,7 @@ func TestScripts(t *testing.T) {
 	testscript.Run(t, testscript.Params{
 		Dir:                 "testdata/script",
 		RequireExplicitExec: true,
+		Cmds:                scriptCommands,
 		Setup: func(e *testscript.Env) error {
 			e.Setenv("SAMPLES", samples+"/../../samples")
 			return nil
