@@ -62,14 +62,14 @@ func (b *BSM) All() {
 	if len(b.CarryRho) != n || len(b.Vanna) != n || len(b.Volga) != n || len(b.Charm) != n || len(b.Residual) != n {
 		panic(lengthMismatch)
 	}
-	b.all()
+	b.run(allOutputs)
 }
 
 // Core fills Price, Delta, Gamma, Vega, Theta and Rho, with the bits All gives.
 func (b *BSM) Core() {
 	b.checkInputs()
 	b.checkCore()
-	b.core()
+	b.run(coreOutputs)
 }
 
 // Prices fills Price, with the bits All gives.
@@ -78,8 +78,17 @@ func (b *BSM) Prices() {
 	if len(b.Price) != len(b.Spot) {
 		panic(lengthMismatch)
 	}
-	b.prices()
+	b.run(priceOnly)
 }
+
+// outputs says which outputs a run fills.
+type outputs int
+
+const (
+	priceOnly outputs = iota
+	coreOutputs
+	allOutputs
+)
 
 const lengthMismatch = "vec: slices of different lengths"
 

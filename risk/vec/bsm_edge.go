@@ -38,7 +38,7 @@ func bsmEdge(s, k, t, v, r, q, w float64) bsmResult {
 		}
 		o.volga = saturate(saturate(o.vega*float64(d1*d2)) / v)
 		decay := saturate(saturate(saturate(s*n)*v) / sq * -0.5)
-		carry := w * saturate(saturate(q*an)-saturate(r*bn))
+		carry := float64(w * saturate(saturate(q*an)-saturate(r*bn)))
 		o.theta = saturate(decay + carry)
 		drift := saturate(saturate(saturate(d2*0.5)/t) - saturate(saturate(r-q)/vs))
 		o.charm = saturate(saturate(q*o.delta) + saturate(n*drift))
@@ -79,7 +79,15 @@ func bsmResidual(s, v, r, q float64, o bsmResult) float64 {
 
 // saturate keeps a finite number where a product has overflowed, so that no
 // later Inf − Inf or 0·Inf can make a NaN of it, and turns −0 into +0.
-func saturate(x float64) float64 { return min(max(x, -math.MaxFloat64), math.MaxFloat64) + 0 }
+func saturate(x float64) float64 {
+	if x > math.MaxFloat64 {
+		return math.MaxFloat64
+	}
+	if x < -math.MaxFloat64 {
+		return -math.MaxFloat64
+	}
+	return float64(x) + 0 // not fused with the product x may be
+}
 
 // clampTail bounds d where both Φ and φ have long reached their limits.
 func clampTail(d float64) float64 { return min(max(d, -1e6), 1e6) }
@@ -90,11 +98,23 @@ var allNaN = bsmResult{nan, nan, nan, nan, nan, nan, nan, nan, nan, nan, nan}
 
 var nan = math.NaN()
 
-func (b *BSM) storeCore(i int, o bsmResult) {
-	b.Price[i], b.Delta[i], b.Gamma[i], b.Vega[i], b.Theta[i], b.Rho[i] = o.price, o.delta, o.gamma, o.vega, o.theta, o.rho
+// edge values line i, which is outside the box.
+func (b *BSM) edge(want outputs, i int) {
+	o := bsmEdge(b.Spot[i], b.Strike[i], b.Time[i], b.Vol[i], b.Rate[i], b.Yield[i], b.Sign[i])
+	b.Price[i] = o.price
+	if want >= coreOutputs {
+		b.Delta[i], b.Gamma[i], b.Vega[i], b.Theta[i], b.Rho[i] = o.delta, o.gamma, o.vega, o.theta, o.rho
+	}
+	if want >= allOutputs {
+		b.CarryRho[i], b.Vanna[i], b.Volga[i], b.Charm[i], b.Residual[i] = o.carryRho, o.vanna, o.volga, o.charm, o.residual
+	}
 }
 
-func (b *BSM) storeAll(i int, o bsmResult) {
-	b.storeCore(i, o)
-	b.CarryRho[i], b.Vanna[i], b.Volga[i], b.Charm[i], b.Residual[i] = o.carryRho, o.vanna, o.volga, o.charm, o.residual
+// edgeLines values those of lines lo to hi that are outside the box.
+func (b *BSM) edgeLines(want outputs, lo, hi int) {
+	for i := lo; i < hi; i++ {
+		if !inBox(b.Spot[i], b.Strike[i], b.Time[i], b.Vol[i], b.Rate[i], b.Yield[i], b.Sign[i]) {
+			b.edge(want, i)
+		}
+	}
 }

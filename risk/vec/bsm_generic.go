@@ -11,18 +11,29 @@ import "math"
 // A product that may be −0 is written as FMA(x, y, 0), which is +0: a put out of
 // reach has a delta of 0, not of −0.
 
+func (b *BSM) runGeneric(want outputs, lo, hi int) {
+	switch want {
+	case allOutputs:
+		b.allGeneric(lo, hi)
+	case coreOutputs:
+		b.coreGeneric(lo, hi)
+	default:
+		b.pricesGeneric(lo, hi)
+	}
+}
+
 func (b *BSM) allGeneric(lo, hi int) {
 	for i := lo; i < hi; i++ {
 		s, k, t, v, r, q, w := b.Spot[i], b.Strike[i], b.Time[i], b.Vol[i], b.Rate[i], b.Yield[i], b.Sign[i]
 		if !inBox(s, k, t, v, r, q, w) {
-			b.storeAll(i, bsmEdge(s, k, t, v, r, q, w))
+			b.edge(allOutputs, i)
 			continue
 		}
 		an, bn, x, rv, sq, d1, d2 := bsmTerms(s, k, t, v, r, q, w)
 		rs := 1 / s
 		g := x * rv
 		gs := g * rs
-		halfVar := v * float64(v*0.5)
+		halfVar := float64(v * float64(v*0.5))
 		price := an - bn
 		delta := an * rs
 		gamma := gs * rs
@@ -48,13 +59,13 @@ func (b *BSM) coreGeneric(lo, hi int) {
 	for i := lo; i < hi; i++ {
 		s, k, t, v, r, q, w := b.Spot[i], b.Strike[i], b.Time[i], b.Vol[i], b.Rate[i], b.Yield[i], b.Sign[i]
 		if !inBox(s, k, t, v, r, q, w) {
-			b.storeCore(i, bsmEdge(s, k, t, v, r, q, w))
+			b.edge(coreOutputs, i)
 			continue
 		}
 		an, bn, x, rv, sq, _, _ := bsmTerms(s, k, t, v, r, q, w)
 		rs := 1 / s
 		g := x * rv
-		halfVar := v * float64(v*0.5)
+		halfVar := float64(v * float64(v*0.5))
 		b.Price[i] = an - bn
 		b.Delta[i] = an * rs
 		b.Gamma[i] = float64(g*rs) * rs
@@ -68,7 +79,7 @@ func (b *BSM) pricesGeneric(lo, hi int) {
 	for i := lo; i < hi; i++ {
 		s, k, t, v, r, q, w := b.Spot[i], b.Strike[i], b.Time[i], b.Vol[i], b.Rate[i], b.Yield[i], b.Sign[i]
 		if !inBox(s, k, t, v, r, q, w) {
-			b.Price[i] = bsmEdge(s, k, t, v, r, q, w).price
+			b.edge(priceOnly, i)
 			continue
 		}
 		an, bn, _, _, _, _, _ := bsmTerms(s, k, t, v, r, q, w)
@@ -84,17 +95,19 @@ const residualFloor = 1e-4 // of the spot: below it a price is too small to scal
 // infinities fall outside by themselves. Within it no step overflows, divides by
 // zero or meets a subnormal number it must keep.
 const (
-	priceGear = (1023 - 128) << 52
-	timeGear  = (1023 - 24) << 52
-	priceMask = 0xF << 60  // beyond the 256 binades above priceGear
-	timeMask  = 0x7F << 57 // beyond the 32 binades above timeGear
+	priceFrom = (1023 - 128) << 52
+	timeFrom  = (1023 - 24) << 52
+	priceMask = 0xF << 60  // beyond the 256 binades above priceFrom
+	timeMask  = 0x7F << 57 // beyond the 32 binades above timeFrom
 	rateMask  = 1 << 62    // set from 2 upwards
 )
 
 func inBox(s, k, t, v, r, q, w float64) bool {
 	sb, kb, tb, vb := math.Float64bits(s), math.Float64bits(k), math.Float64bits(t), math.Float64bits(v)
 	rb, qb, wb := math.Float64bits(r), math.Float64bits(q), math.Float64bits(w)
-	return (sb-priceGear|kb-priceGear)&priceMask|(tb-timeGear|vb-timeGear)&timeMask|(rb|qb)&rateMask|(wb&absBits^oneBits) == 0
+	prices := ((sb - priceFrom) | (kb - priceFrom)) & priceMask
+	times := ((tb - timeFrom) | (vb - timeFrom)) & timeMask
+	return prices|times|(rb|qb)&rateMask|(wb&absBits^oneBits) == 0
 }
 
 // bsmTerms returns, for an option in the box,
@@ -102,13 +115,13 @@ func inBox(s, k, t, v, r, q, w float64) bool {
 //	an = w·S·e^(−qT)·Φ(w·d₁)    bn = w·K·e^(−rT)·Φ(w·d₂)
 //	x  = S·e^(−qT)·φ(d₁)        rv = 1/(σ√T)    sq = √T
 func bsmTerms(s, k, t, v, r, q, w float64) (an, bn, x, rv, sq, d1, d2 float64) {
-	a := s * discount(q, t)
-	b := k * discount(r, t)
+	a := float64(s * discount(q, t))
+	b := float64(k * discount(r, t))
 	sq = math.Sqrt(t)
-	vs := v * sq
+	vs := float64(v * sq)
 	rv = 1 / vs
 	m := math.FMA(r-q, t, logRatio(s, k))
-	d := m * rv
+	d := float64(m * rv)
 	d = math.FMA(math.FMA(d, 0-vs, m), rv, d) // m/vs as if divided
 	d1 = math.FMA(vs, 0.5, d)
 	d2 = math.FMA(vs, -0.5, d)

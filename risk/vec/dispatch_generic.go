@@ -12,6 +12,4 @@ func logRatioSlice(dst, s, k []float64) { logRatioGeneric(dst, s, k) }
 func normPDFSlice(dst, x []float64)     { normPDFGeneric(dst, x) }
 func normCDFSlice(dst, x []float64)     { normCDFGeneric(dst, x) }
 
-func (b *BSM) all()    { b.allGeneric(0, len(b.Spot)) }
-func (b *BSM) core()   { b.coreGeneric(0, len(b.Spot)) }
-func (b *BSM) prices() { b.pricesGeneric(0, len(b.Spot)) }
+func (b *BSM) run(want outputs) { b.runGeneric(want, 0, len(b.Spot)) }

@@ -41,7 +41,7 @@ func expReduced(hi, lo float64) (p, t float64) {
 
 // scaleOnce returns p·2^k where the result is a normal number.
 func scaleOnce(p, t float64) float64 {
-	return p * math.Float64frombits(math.Float64bits(t)<<52+oneBits)
+	return float64(p * math.Float64frombits(math.Float64bits(t)<<52+oneBits))
 }
 
 // scaleTwice returns p·2^k for any k: 2^k alone may be out of range, so it is
@@ -49,13 +49,13 @@ func scaleOnce(p, t float64) float64 {
 func scaleTwice(p, t float64) float64 {
 	h := math.FMA(t-roundShift, 0.5, roundShift)
 	tb, hb := math.Float64bits(t), math.Float64bits(h)
-	return float64(p*math.Float64frombits(hb<<52+oneBits)) * math.Float64frombits((tb-hb)<<52+oneBits)
+	return float64(float64(p*math.Float64frombits(hb<<52+oneBits)) * math.Float64frombits((tb-hb)<<52+oneBits))
 }
 
 // discount returns e^(−rate·t) for |rate·t| < 512, with the rounding error of
 // the product carried along: it would cost the digits of a long-dated discount.
 func discount(rate, t float64) float64 {
 	n := 0 - rate
-	e := n * t
+	e := float64(n * t)
 	return scaleOnce(expReduced(e, math.FMA(n, t, 0-e)))
 }

@@ -39,11 +39,11 @@ func LogRatio1(s, k float64) float64 {
 
 // inLogBox reports whether both numbers lie in [2^−512, 2^512), where aligning
 // the exponents and adding cannot leave the normal numbers.
-func inLogBox(sb, kb uint64) bool { return (sb-logGear|kb-logGear)&logMask == 0 }
+func inLogBox(sb, kb uint64) bool { return ((sb-logFrom)|(kb-logFrom))&logMask == 0 }
 
 const (
-	logGear = (1023 - 512) << 52
-	logMask = 3 << 62 // set by anything outside the 1024 binades above logGear
+	logFrom = (1023 - 512) << 52
+	logMask = 3 << 62 // set by anything outside the 1024 binades above logFrom
 )
 
 // logRatio returns ln(s/k) in the box.

@@ -34,14 +34,14 @@ func NormCDF1(x float64) float64 {
 		return math.NaN()
 	}
 	y := math.Abs(x)
-	t := gauss(min(y, gaussEnd)) * mills(min(y, millsEnd))
+	t := float64(gauss(min(y, gaussEnd)) * mills(min(y, millsEnd)))
 	return selectFloat(x > 0, 1-t, t)
 }
 
 // gauss returns e^(−y²/2) for 0 ≤ y ≤ gaussEnd. Without lo, rounding y² would
 // cost y² ulp.
 func gauss(y float64) float64 {
-	h := float64(y*0.5) * y
+	h := float64(float64(y*0.5) * y)
 	lo := math.FMA(float64(y*-0.5), y, h)
 	return scaleTwice(expReduced(0-h, lo))
 }

@@ -1,0 +1,84 @@
+//go:build goexperiment.simd && amd64
+
+package vec
+
+import "simd/archsimd"
+
+// A switch at each entry, rather than a table of functions, lets the compiler see
+// that no argument escapes: a caller's BSM stays on its stack.
+
+func bestTier() tier {
+	switch {
+	case archsimd.X86.AVX512():
+		return avx512
+	case archsimd.X86.AVX2() && archsimd.X86.FMA():
+		return avx2
+	}
+	return scalar
+}
+
+func (b *BSM) run(want outputs) {
+	switch active {
+	case avx512:
+		b.run8(want)
+	case avx2:
+		b.run4(want)
+	default:
+		b.runGeneric(want, 0, len(b.Spot))
+	}
+}
+
+func expSlice(dst, x []float64) {
+	switch active {
+	case avx512:
+		exp8(dst, x)
+	case avx2:
+		exp4(dst, x)
+	default:
+		expGeneric(dst, x)
+	}
+}
+
+func logSlice(dst, x []float64) {
+	switch active {
+	case avx512:
+		log8(dst, x)
+	case avx2:
+		log4(dst, x)
+	default:
+		logGeneric(dst, x)
+	}
+}
+
+func logRatioSlice(dst, s, k []float64) {
+	switch active {
+	case avx512:
+		logRatio8(dst, s, k)
+	case avx2:
+		logRatio4(dst, s, k)
+	default:
+		logRatioGeneric(dst, s, k)
+	}
+}
+
+func normPDFSlice(dst, x []float64) {
+	switch active {
+	case avx512:
+		normPDF8(dst, x)
+	case avx2:
+		normPDF4(dst, x)
+	default:
+		normPDFGeneric(dst, x)
+	}
+}
+
+func normCDFSlice(dst, x []float64) {
+	switch active {
+	case avx512:
+		normCDF8(dst, x)
+	case avx2:
+		normCDF4(dst, x)
+	default:
+		normCDFGeneric(dst, x)
+	}
+}
