@@ -64,6 +64,9 @@ func (g *gate) rows(b *schema.Batch) error {
 		r := &b.Rejects[i]
 		if r.File == "" { // refused after reading: the columns bear our names still
 			r.File, r.Sheet = g.positions.Name(), g.positions.Sheet()
+			if cell, ok := g.positions.Cell(r.Row, r.Column); ok {
+				r.Value = cell
+			}
 			r.Column = g.positions.Header(r.Column)
 		}
 	}

@@ -1,0 +1,36 @@
+package main
+
+import (
+	"context"
+	"io"
+	"path/filepath"
+	"runtime"
+	"testing"
+
+	"nightbook/samples"
+)
+
+// benchmarkRun runs a demo snapshot from file to file.
+func benchmarkRun(b *testing.B, lines int64, formats ...string) {
+	dir := filepath.Join(b.TempDir(), "demo")
+	if err := samples.Demo(dir, lines, 1); err != nil {
+		b.Fatal(err)
+	}
+	o := &options{snapshot: dir, out: b.TempDir(), formats: formats, workers: runtime.GOMAXPROCS(0), replace: true}
+	con := newConsole(io.Discard, "text")
+	var before, after runtime.MemStats
+	runtime.ReadMemStats(&before)
+	for b.Loop() {
+		if _, err := pipeline(context.Background(), o, con); err != nil {
+			b.Fatal(err)
+		}
+	}
+	runtime.ReadMemStats(&after)
+	total := float64(lines) * float64(b.N)
+	b.ReportMetric(total/b.Elapsed().Seconds(), "lines/s")
+	b.ReportMetric(float64(after.TotalAlloc-before.TotalAlloc)/total, "B/line")
+}
+
+func BenchmarkRunParquet(b *testing.B) { benchmarkRun(b, 200_000, "parquet") }
+func BenchmarkRunCSV(b *testing.B)     { benchmarkRun(b, 200_000, "csv") }
+func BenchmarkRunXLSX(b *testing.B)    { benchmarkRun(b, 10_000, "xlsx") }
