@@ -3,6 +3,7 @@ package writer
 import (
 	"bytes"
 	"encoding/json"
+	"errors"
 	"fmt"
 	"math"
 
@@ -10,7 +11,7 @@ import (
 )
 
 // Caution stands in the manifest and in the workbook.
-const Caution = "Estimates from models, not advice. To be checked by qualified staff; local regulation prevails."
+const Caution = schema.Caution
 
 // manifest is the shape of manifest.json. The order of the fields is that of
 // the file.
@@ -61,6 +62,7 @@ type manifestCounts struct {
 	Priced         int64       `json:"priced"`
 	Expired        int64       `json:"expired"`
 	Rejected       int64       `json:"rejected"`
+	MarketRejected int64       `json:"rejected_market_rows"` // not part of rows_in
 	RowsAccounted  bool        `json:"rows_accounted"`
 	RejectedByCode []codeCount `json:"rejected_by_code"`
 	WarningsByCode []codeCount `json:"warnings_by_code"`
@@ -71,30 +73,35 @@ type codeCount struct {
 	Count int64  `json:"count"`
 }
 
+// manifestTotals are the figures to add up again from the tables.
 type manifestTotals struct {
-	Quantity    float64        `json:"quantity"`
-	Measures    measures       `json:"measures"`
-	MaxResidual *float64       `json:"max_pde_residual"`
-	BooksOwn    []manifestBook `json:"books_own"`
+	quantity    float64
+	measures    [schema.NumMeasures]float64 // in the reporting currency
+	maxResidual float64                     // NaN where no option was priced
+	books       []manifestBook
 }
 
-// measures are sums in the reporting currency.
-type measures [schema.NumMeasures]float64
-
-// MarshalJSON writes the measures as an object, in their order.
-func (m measures) MarshalJSON() ([]byte, error) {
+// MarshalJSON writes the measures under their column names, in their order.
+func (t manifestTotals) MarshalJSON() ([]byte, error) {
 	b := []byte{'{'}
-	for i, x := range m {
-		if i > 0 {
-			b = append(b, ',')
-		}
-		value, err := json.Marshal(x)
-		if err != nil {
-			return nil, err
-		}
-		b = fmt.Appendf(b, "%q:%s", schema.MeasureNames[i]+"_base", value)
+	var failed error
+	field := func(name string, value any) {
+		v, err := json.Marshal(value)
+		failed = errors.Join(failed, err)
+		b = fmt.Appendf(b, "%q:%s,", name, v)
 	}
-	return append(b, '}'), nil
+	field("quantity", t.quantity)
+	for m, x := range t.measures {
+		field(schema.MeasureNames[m]+"_base", x)
+	}
+	if math.IsNaN(t.maxResidual) {
+		field("max_pde_residual", nil)
+	} else {
+		field("max_pde_residual", t.maxResidual)
+	}
+	field("books_own", t.books)
+	b[len(b)-1] = '}'
+	return b, failed
 }
 
 type manifestBook struct {
@@ -137,28 +144,27 @@ func Manifest(s *schema.Summary, kernel string, outputs []schema.OutputFile) ([]
 		Conventions:       theConventions,
 		Counts: manifestCounts{
 			RowsIn: s.RowsIn, Priced: s.Total.Priced, Expired: s.Total.Expired, Rejected: s.Rejects,
+			MarketRejected: s.Faults,
 			RowsAccounted:  s.RowsAccounted(),
 			RejectedByCode: []codeCount{},
 			WarningsByCode: noteCounts(s.Notes),
 		},
 		Totals: manifestTotals{
-			Quantity: s.Total.Quantity,
-			Measures: s.Total.Measures,
-			BooksOwn: []manifestBook{},
+			quantity:    s.Total.Quantity,
+			measures:    s.Total.Measures,
+			maxResidual: s.MaxResidual,
+			books:       []manifestBook{},
 		},
 		Inputs:  []manifestInput{},
 		Outputs: []manifestFile{},
 		Caution: Caution,
-	}
-	if !math.IsNaN(s.MaxResidual) {
-		m.Totals.MaxResidual = &s.MaxResidual
 	}
 	for _, c := range s.RejectCount {
 		m.Counts.RejectedByCode = append(m.Counts.RejectedByCode, codeCount(c))
 	}
 	for i := range s.Books {
 		b := &s.Books[i]
-		m.Totals.BooksOwn = append(m.Totals.BooksOwn,
+		m.Totals.books = append(m.Totals.books,
 			manifestBook{b.Book, b.Own.Lines, b.Own.Quantity, b.Own.Measures[schema.Value]})
 	}
 	for _, f := range s.Inputs {

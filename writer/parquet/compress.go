@@ -5,8 +5,8 @@ import (
 	"errors"
 	"fmt"
 
+	"github.com/golang/snappy"
 	"github.com/klauspost/compress/gzip"
-	"github.com/klauspost/compress/snappy"
 	"github.com/klauspost/compress/zstd"
 	"github.com/xitongsys/parquet-go/parquet"
 )
