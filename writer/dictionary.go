@@ -166,7 +166,7 @@ func dictionaryJSON(b *bytes.Buffer) error {
 	codes := func(list []schema.CodeDoc) []dictionaryCode {
 		var out []dictionaryCode
 		for _, c := range list {
-			out = append(out, dictionaryCode(c))
+			out = append(out, dictionaryCode{c.Code, c.Doc})
 		}
 		return out
 	}
