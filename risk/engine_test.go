@@ -257,3 +257,56 @@ func TestVolatilityPrecedence(t *testing.T) {
 		t.Errorf("warnings %v", b.Notes)
 	}
 }
+
+func TestPricingAllocatesNothingPerLine(t *testing.T) {
+	d := newDesk(t)
+	d.rate("EUR", 0.03)
+	d.underlying("U", schema.Equity, "EUR", 100, 0.01, 0.2)
+	d.underlying("F", schema.FuturePrice, "EUR", 100, 0, 0.2)
+	lines := make([]line, schema.BatchRows)
+	for i := range lines {
+		lines[i] = option([]string{"U", "F"}[i%2], schema.Call+schema.Choice(i/2%2), 80+float64(i%40), 1+i%300, 0)
+	}
+	m, _, err := market.New(&d.cfg, &d.raw, d.dicts)
+	if err != nil {
+		t.Fatal(err)
+	}
+	e, w, b := NewEngine(m, d.dicts), NewWorker(), d.batch(lines)
+	allocs := testing.AllocsPerRun(5, func() {
+		clear(b.Status)
+		b.Notes = b.Notes[:0]
+		e.Price(b, w)
+	})
+	if len(b.Rejects) > 0 {
+		t.Fatal(b.Rejects[0])
+	}
+	if allocs > 100 { // a few slice headers a batch
+		t.Errorf("%v allocations for %d lines", allocs, b.N)
+	}
+}
+
+func BenchmarkPrice(bench *testing.B) {
+	d := newDesk(&testing.T{})
+	d.rate("EUR", 0.03)
+	d.underlying("U", schema.Equity, "EUR", 100, 0.01, nan)
+	for days := 30; days < 400; days += 30 {
+		for k := 60.0; k < 150; k += 5 {
+			d.raw.Vols = append(d.raw.Vols, schema.VolRow{Underlying: "U", Day: d.cfg.AsOf.Day + schema.Date(days), Minute: schema.NoMinute, Strike: k, Vol: 0.2 + (k-100)*(k-100)/1e5})
+		}
+	}
+	lines := make([]line, schema.BatchRows)
+	for i := range lines {
+		lines[i] = option("U", schema.Call+schema.Choice(i%2), 70+float64(i%60), 30+(i*37)%330, 0)
+	}
+	m, _, err := market.New(&d.cfg, &d.raw, d.dicts)
+	if err != nil {
+		bench.Fatal(err)
+	}
+	e, w, b := NewEngine(m, d.dicts), NewWorker(), d.batch(lines)
+	for bench.Loop() {
+		clear(b.Status)
+		b.Notes = b.Notes[:0]
+		e.Price(b, w)
+	}
+	bench.ReportMetric(float64(bench.Elapsed().Nanoseconds())/float64(bench.N)/schema.BatchRows, "ns/line")
+}

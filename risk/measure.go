@@ -32,7 +32,7 @@ func measure(b *schema.Batch) {
 			b.MeasuresInBase[m][i] = x
 			check += notFinite(x)
 		}
-		for _, s := range [...][]float64{b.CarryRho, b.Vanna, b.Volga, b.Charm, b.Theta} {
+		for _, s := range [...][]float64{b.Price, b.Delta, b.Gamma, b.Vega, b.Rho, b.CarryRho, b.Vanna, b.Volga, b.Charm, b.Theta} {
 			check += notFinite(s[i])
 		}
 		if check != 0 {
@@ -42,9 +42,10 @@ func measure(b *schema.Batch) {
 	}
 }
 
-// notFinite is 0 for a finite x, else NaN.
+// notFinite is 0 for an x below half the largest double, else NaN: a kernel
+// gives the largest double itself for a result that is beyond it.
 func notFinite(x float64) float64 {
-	x = float64(x) // no fused product may stand for x here
+	x = float64(x * 2) // no fused product may stand for x here
 	return x - x
 }
 

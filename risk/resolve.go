@@ -24,6 +24,10 @@ type term struct {
 	dividend            schema.Date // first ex-date up to expiry; NoDate where there is none
 }
 
+// maxTerms bounds a worker's memory of terms, for files in which every line has
+// an expiry of its own.
+const maxTerms = 1 << 15
+
 // resolve finds for row i what it is priced with, and how, and writes the
 // inputs used. It returns the row's route, or noRoute for a refused row.
 func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
@@ -169,6 +173,9 @@ func (e *Engine) term(u *market.Underlying, b *schema.Batch, i int, w *Worker) t
 			if ex <= key.day && (t.dividend == schema.NoDate || ex < t.dividend) {
 				t.dividend = ex
 			}
+		}
+		if len(w.terms) == maxTerms {
+			clear(w.terms)
 		}
 		w.terms[key] = t
 	}

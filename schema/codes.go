@@ -69,6 +69,7 @@ const (
 	SliceExpired    NoteCode = "slice_expired"
 	NoHolidays      NoteCode = "no_holidays"
 	FormatDetected  NoteCode = "format_detected"
+	NoPositions     NoteCode = "no_positions"
 )
 
 // NoteCodes is the closed list of warnings.
@@ -84,4 +85,5 @@ var NoteCodes = []CodeDoc{
 	{string(SliceExpired), "a surface has slices that are not after as_of: they are not used"},
 	{string(NoHolidays), "no holidays are given for the calendar: business days are Monday to Friday"},
 	{string(FormatDetected), "the encoding of a file was detected, not declared"},
+	{string(NoPositions), "the position file has a header and no rows"},
 }

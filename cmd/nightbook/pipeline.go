@@ -97,6 +97,10 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 	s := &schema.Summary{Config: cfg, Version: version, RowsIn: gate.rowsIn, Faults: int64(len(raw.Faults)), Inputs: folder.Inputs()}
 	totals.Summary(s)
 	s.Notes = slices.Concat(s.Notes, gate.notes(), folder.Notes(), raw.Notes, marketNotes)
+	if s.RowsIn == 0 {
+		s.Notes = append(s.Notes, schema.Note{Code: schema.NoPositions, Subject: positions.Name(), File: positions.Name(), Count: 1,
+			Message: "the position file has no rows: every total is 0"})
+	}
 	sortNotes(s.Notes)
 	if !s.RowsAccounted() {
 		return nil, fmt.Errorf("%d rows came in, but %d were priced, %d expired and %d rejected: nothing is written, because rows were lost; this is a fault of the program",
