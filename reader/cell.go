@@ -21,7 +21,7 @@ var (
 	notNumber   = &finding{schema.BadNumber, "expected a number such as 1234.5 or 1.2e6, without thousands separators; if the file writes decimal commas, set [csv] decimal_comma = true"}
 	notComma    = &finding{schema.BadNumber, "expected a number with a decimal comma such as 1.234,5, as [csv] decimal_comma = true says"}
 	notFinite   = &finding{schema.BadNumber, "expected a finite number"}
-	faultCell   = &finding{schema.BadNumber, "the workbook's cell holds an error value: correct its formula"}
+	faultCell   = &finding{schema.BadNumber, "the cell holds an error value, or a formula that was never calculated: correct it in the workbook and save that"}
 	notUTF8     = &finding{schema.BadText, "the text is not valid UTF-8: save the file as UTF-8, or declare its encoding in [csv] encoding"}
 	hasControl  = &finding{schema.BadText, "the text holds a control character"}
 	tooLongText = &finding{schema.BadText, "the text is longer than 256 bytes"}
@@ -133,6 +133,9 @@ func (c *cells) number(col, i int) (float64, *finding) {
 func (c *cells) date(col, i int) (schema.Date, int16, *finding) {
 	switch v := &c.Cols[col]; v.Kind {
 	case schema.KindDates:
+		if d := v.Dates[i]; d != schema.NoDate && (d < firstDay || d > lastDay) {
+			return schema.NoDate, schema.NoMinute, offCalendar
+		}
 		return v.Dates[i], schema.NoMinute, nil
 	case schema.KindStrings:
 		b := trim(v.Strings.Bytes(i))
@@ -140,14 +143,12 @@ func (c *cells) date(col, i int) (schema.Date, int16, *finding) {
 			return schema.NoDate, schema.NoMinute, nil
 		}
 		switch c.Cell(col, i) {
-		case table.Text:
-			return c.style.dates.parse(b)
 		case table.Date:
 			return isoDate.parse(b)
 		case table.Fault:
 			return schema.NoDate, schema.NoMinute, faultCell
 		}
-		return schema.NoDate, schema.NoMinute, notDate
+		return c.style.dates.parse(b)
 	}
 	// A number is no date, but its text may be one where dates are written
 	// without anything between the digits: 20260320.

@@ -38,10 +38,17 @@ func (f *dateFormat) String() string {
 
 // Findings on dates. They carry no value: a Reject has its own place for it.
 var (
-	notDate  = &finding{schema.BadDate, "expected a date such as 2026-03-20, or a date and time such as 2026-03-20T15:30; if the file writes dates in another order, say so in [csv] date_format"}
-	notDay   = &finding{schema.BadDate, "there is no such day in the calendar"}
-	notClock = &finding{schema.BadDate, "expected a time of day as HH:MM or HH:MM:SS behind the date"}
-	zoned    = &finding{schema.BadDate, "times are the desk's own clock: write the time without Z or offset"}
+	notDate     = &finding{schema.BadDate, "expected a date such as 2026-03-20, or a date and time such as 2026-03-20T15:30; if the file writes dates in another order, say so in [csv] date_format"}
+	notDay      = &finding{schema.BadDate, "there is no such day in the calendar"}
+	notClock    = &finding{schema.BadDate, "expected a time of day as HH:MM or HH:MM:SS behind the date"}
+	offCalendar = &finding{schema.BadDate, "the date is outside the years 1 to 9999"}
+	zoned       = &finding{schema.BadDate, "times are the desk's own clock: write the time without Z or offset"}
+)
+
+// The first and the last date that are written with four digits of the year.
+const (
+	firstDay schema.Date = -719162 // 0001-01-01
+	lastDay  schema.Date = 2932896 // 9999-12-31
 )
 
 // parse reads a date, and the time of day behind it if there is one: after a T

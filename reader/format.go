@@ -2,7 +2,9 @@ package reader
 
 import (
 	"nightbook/reader/csv"
+	"nightbook/reader/parquet"
 	"nightbook/reader/table"
+	"nightbook/reader/xlsx"
 	"nightbook/schema"
 )
 
@@ -19,6 +21,8 @@ func formats() []format {
 		{".csv", "", openCSV},
 		{".csv.gz", "gzip", openCSV},
 		{".csv.zst", "zstd", openCSV},
+		{".parquet", "", openParquet},
+		{".xlsx", "", openXLSX},
 	}
 }
 
@@ -82,4 +86,18 @@ func openCSV(f *file, cfg *schema.Config) (source, error) {
 		return nil, err
 	}
 	return &textFile{Scanner: s}, nil
+}
+
+func openParquet(f *file, _ *schema.Config) (source, error) {
+	if err := f.hashAll(); err != nil {
+		return nil, err
+	}
+	return parquet.Open(f.File, f.size)
+}
+
+func openXLSX(f *file, _ *schema.Config) (source, error) {
+	if err := f.hashAll(); err != nil {
+		return nil, err
+	}
+	return xlsx.Open(f.File, f.size)
 }

@@ -59,9 +59,6 @@ var (
 	nodeTooFar   = &finding{schema.OutOfRange, "the node is after the year 9999"}
 )
 
-// lastDay is 9999-12-31, the last date that is written with four digits.
-const lastDay schema.Date = 2932896
-
 func rateRows(m *schema.Market, cfg *schema.Config) func(*marketRow) {
 	type node struct {
 		curve string

@@ -1,0 +1,229 @@
+package parquet
+
+import (
+	"fmt"
+	"io"
+
+	"github.com/xitongsys/parquet-go/parquet"
+
+	"nightbook/reader/table"
+	"nightbook/schema"
+)
+
+// meaning is what the values of a column stand for.
+type meaning uint8
+
+const (
+	floats meaning = iota
+	ints
+	unsigned
+	bools
+	texts
+	decimals
+	days
+	timestamps
+	uuids
+)
+
+// column is a column of the file and how far it has been read.
+type column struct {
+	name     string
+	physical parquet.Type
+	length   int // of fixed-length values, in bytes
+	meaning  meaning
+	scale    int   // of decimals: digits behind the point
+	unit     int64 // of timestamps: units a second; INT96 has its own
+	optional bool
+
+	pages   pages
+	present []bool
+	values  values
+	clock   []byte // scratch
+}
+
+// columnsOf returns the columns of a flat schema.
+func columnsOf(elements []*parquet.SchemaElement) ([]*column, error) {
+	if len(elements) == 0 || elements[0] == nil {
+		return nil, damaged("it has no schema")
+	}
+	var columns []*column
+	for _, e := range elements[1:] {
+		if e == nil {
+			return nil, damaged("its schema has a hole")
+		}
+		if e.GetNumChildren() > 0 || e.Type == nil {
+			return nil, fmt.Errorf("column %s is nested (%s): only flat columns are read; write its fields as columns of their own", e.Name, describe(e))
+		}
+		if e.GetRepetitionType() == parquet.FieldRepetitionType_REPEATED {
+			return nil, fmt.Errorf("column %s repeats (a list of %s): only one value a row is read", e.Name, describe(e))
+		}
+		c := &column{name: e.Name, physical: *e.Type, length: int(e.GetTypeLength()),
+			optional: e.RepetitionType != nil && *e.RepetitionType == parquet.FieldRepetitionType_OPTIONAL}
+		if c.physical == parquet.Type_FIXED_LEN_BYTE_ARRAY && c.length <= 0 {
+			return nil, damaged("column %s has values of %d bytes", c.name, c.length)
+		}
+		if !c.classify(e) {
+			return nil, fmt.Errorf("column %s is of type %s, which is not read", e.Name, describe(e))
+		}
+		columns = append(columns, c)
+	}
+	return columns, nil
+}
+
+// classify finds out what the column's values stand for.
+func (c *column) classify(e *parquet.SchemaElement) bool {
+	converted := parquet.ConvertedType(-1)
+	if e.ConvertedType != nil {
+		converted = *e.ConvertedType
+	}
+	logical := e.LogicalType
+	if logical == nil {
+		logical = &parquet.LogicalType{}
+	}
+	if logical.DECIMAL != nil || converted == parquet.ConvertedType_DECIMAL {
+		c.meaning = decimals
+		if c.scale = int(e.GetScale()); logical.DECIMAL != nil {
+			c.scale = int(logical.DECIMAL.Scale)
+		}
+		switch c.physical {
+		case parquet.Type_INT32, parquet.Type_INT64, parquet.Type_BYTE_ARRAY, parquet.Type_FIXED_LEN_BYTE_ARRAY:
+			return 0 <= c.scale && c.scale <= 76 && c.length <= 64
+		}
+		return false
+	}
+	switch c.physical {
+	case parquet.Type_BOOLEAN:
+		c.meaning = bools
+		return true
+	case parquet.Type_FLOAT, parquet.Type_DOUBLE:
+		c.meaning = floats
+		return true
+	case parquet.Type_INT96:
+		c.meaning = timestamps
+		return true
+	case parquet.Type_BYTE_ARRAY:
+		c.meaning = texts
+		return logical.BSON == nil && converted != parquet.ConvertedType_BSON
+	case parquet.Type_FIXED_LEN_BYTE_ARRAY:
+		if logical.UUID != nil {
+			c.meaning = uuids
+			return c.length == 16
+		}
+		c.meaning = texts
+		return converted != parquet.ConvertedType_INTERVAL
+	case parquet.Type_INT32, parquet.Type_INT64:
+		return c.classifyInt(converted, logical)
+	}
+	return false
+}
+
+func (c *column) classifyInt(converted parquet.ConvertedType, logical *parquet.LogicalType) bool {
+	c.meaning = ints
+	switch {
+	case logical.DATE != nil || converted == parquet.ConvertedType_DATE:
+		c.meaning = days
+		return c.physical == parquet.Type_INT32
+	case logical.TIMESTAMP != nil:
+		c.meaning = timestamps
+		switch u := logical.TIMESTAMP.Unit; {
+		case u == nil:
+			return false
+		case u.MILLIS != nil:
+			c.unit = 1e3
+		case u.MICROS != nil:
+			c.unit = 1e6
+		case u.NANOS != nil:
+			c.unit = 1e9
+		default:
+			return false
+		}
+		return c.physical == parquet.Type_INT64
+	case converted == parquet.ConvertedType_TIMESTAMP_MILLIS:
+		c.meaning, c.unit = timestamps, 1e3
+		return c.physical == parquet.Type_INT64
+	case converted == parquet.ConvertedType_TIMESTAMP_MICROS:
+		c.meaning, c.unit = timestamps, 1e6
+		return c.physical == parquet.Type_INT64
+	case logical.TIME != nil || converted == parquet.ConvertedType_TIME_MILLIS || converted == parquet.ConvertedType_TIME_MICROS:
+		return false
+	case logical.INTEGER != nil && !logical.INTEGER.IsSigned,
+		parquet.ConvertedType_UINT_8 <= converted && converted <= parquet.ConvertedType_UINT_64:
+		c.meaning = unsigned
+	}
+	return true
+}
+
+// describe names the type of a schema element.
+func describe(e *parquet.SchemaElement) string {
+	name := "group"
+	if e.Type != nil {
+		name = e.Type.String()
+	}
+	switch {
+	case e.ConvertedType != nil:
+		name += "/" + e.ConvertedType.String()
+	case e.LogicalType != nil && e.LogicalType.TIME != nil:
+		name += "/TIME"
+	}
+	return name
+}
+
+// start begins with the column's part of a row group of that many rows.
+func (c *column) start(r io.ReaderAt, size int64, m *parquet.ColumnMetaData, rows int64) error {
+	if m.Type != c.physical {
+		return damaged("its type is %s, the schema says %s", m.Type, c.physical)
+	}
+	if m.NumValues != rows {
+		return damaged("it has %d values for %d rows", m.NumValues, rows)
+	}
+	return c.pages.start(r, size, m)
+}
+
+// read appends the next n values to column at of the rows.
+func (c *column) read(into *table.Rows, at, n int) error {
+	c.prepare(into, at)
+	for n > 0 {
+		if c.pages.left == 0 {
+			if err := c.nextPage(); err != nil {
+				return err
+			}
+			continue
+		}
+		k := min(n, c.pages.left)
+		stored, err := c.readPresent(k)
+		if err != nil {
+			return err
+		}
+		if err := c.values.read(c, stored); err != nil {
+			return err
+		}
+		c.convert(into, at)
+		c.pages.left -= k
+		n -= k
+	}
+	return nil
+}
+
+// readPresent finds out which of the next n rows have a value, and how many.
+func (c *column) readPresent(n int) (stored int, err error) {
+	if cap(c.present) < n {
+		c.present = make([]bool, schema.BatchRows)
+	}
+	c.present = c.present[:n]
+	if !c.optional {
+		for i := range c.present {
+			c.present[i] = true
+		}
+		return n, nil
+	}
+	levels, err := c.pages.levels.next(n)
+	if err != nil {
+		return 0, err
+	}
+	for i, l := range levels {
+		if c.present[i] = l == 1; l == 1 {
+			stored++
+		}
+	}
+	return stored, nil
+}

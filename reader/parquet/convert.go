@@ -1,0 +1,199 @@
+package parquet
+
+import (
+	"encoding/binary"
+	"encoding/hex"
+	"math"
+	"math/big"
+	"strconv"
+
+	"github.com/xitongsys/parquet-go/parquet"
+
+	"nightbook/reader/table"
+	"nightbook/schema"
+)
+
+const fixed = parquet.Type_FIXED_LEN_BYTE_ARRAY
+
+// prepare sets the kind of the vector that the column is read into.
+func (c *column) prepare(into *table.Rows, at int) {
+	v := &into.Cols[at]
+	switch c.meaning {
+	case floats:
+		v.Kind = schema.KindFloats
+	case ints:
+		v.Kind = schema.KindInts
+	case days:
+		v.Kind = schema.KindDates
+	default:
+		v.Kind = schema.KindStrings
+	}
+	switch c.meaning {
+	case unsigned, decimals:
+		into.Cells[at] = alike(table.Number)
+	case timestamps:
+		into.Cells[at] = alike(table.Date)
+	}
+}
+
+// alike returns the marks of a run of rows whose cells are all of one kind.
+func alike(kind table.Cell) []table.Cell {
+	if kind == table.Number {
+		return numbers[:]
+	}
+	return dates[:]
+}
+
+var numbers, dates = marks(table.Number), marks(table.Date)
+
+func marks(kind table.Cell) (m [schema.BatchRows]table.Cell) {
+	for i := range m {
+		m[i] = kind
+	}
+	return m
+}
+
+// convert appends the values read last to the vector, nulls where there is none.
+func (c *column) convert(into *table.Rows, at int) {
+	v := &into.Cols[at]
+	from := &c.values.plain
+	k := 0 // of the stored values
+	for _, present := range c.present {
+		switch {
+		case !present:
+			c.null(v)
+			continue
+		case c.meaning == floats:
+			v.Floats = append(v.Floats, from.floats[k])
+		case c.meaning == ints:
+			v.Ints = append(v.Ints, from.ints[k])
+		case c.meaning == days:
+			v.Dates = append(v.Dates, day(from.ints[k]))
+		case c.meaning == texts:
+			v.Strings.Append(from.bytes[k])
+		default:
+			c.clock = c.text(c.clock[:0], k)
+			v.Strings.Append(c.clock)
+		}
+		k++
+	}
+}
+
+func (c *column) null(v *schema.Vector) {
+	switch v.Kind {
+	case schema.KindFloats:
+		v.Floats = append(v.Floats, math.NaN())
+	case schema.KindInts:
+		v.Ints = append(v.Ints, schema.NoInt)
+	case schema.KindDates:
+		v.Dates = append(v.Dates, schema.NoDate)
+	default:
+		v.Strings.Append(nil)
+	}
+}
+
+// day returns a date of days since 1970-01-01. One that a Date cannot hold is
+// made the first that no calendar has, so that it is refused and not taken for null.
+func day(n int64) schema.Date {
+	if n < -math.MaxInt32 || n > math.MaxInt32 {
+		return schema.Date(math.MaxInt32)
+	}
+	return schema.Date(n)
+}
+
+// text appends the text of stored value k of a column whose values are none of
+// the vectors' own kinds.
+func (c *column) text(b []byte, k int) []byte {
+	from := &c.values.plain
+	switch c.meaning {
+	case bools:
+		return strconv.AppendBool(b, from.ints[k] != 0)
+	case unsigned:
+		if c.physical == parquet.Type_INT32 {
+			return strconv.AppendUint(b, uint64(uint32(from.ints[k])), 10)
+		}
+		return strconv.AppendUint(b, uint64(from.ints[k]), 10)
+	case timestamps:
+		if c.physical == parquet.Type_INT96 {
+			return appendINT96(b, from.bytes[k])
+		}
+		return appendMinute(b, floorDiv(from.ints[k], 60*c.unit))
+	case decimals:
+		if c.physical == parquet.Type_BYTE_ARRAY || c.physical == fixed {
+			return appendDecimal(b, bigEndian(from.bytes[k]), c.scale)
+		}
+		return appendDecimal(b, strconv.AppendInt(nil, from.ints[k], 10), c.scale)
+	}
+	// A UUID: 8-4-4-4-12 hexadecimal digits.
+	u := from.bytes[k]
+	for i := range u {
+		if i == 4 || i == 6 || i == 8 || i == 10 {
+			b = append(b, '-')
+		}
+		b = hex.AppendEncode(b, u[i:i+1])
+	}
+	return b
+}
+
+// appendMinute appends the minute since 1970 as a date, and a time of day
+// unless it is midnight.
+func appendMinute(b []byte, minute int64) []byte {
+	d := floorDiv(minute, 24*60)
+	b = day(d).AppendDate(b)
+	if m := minute - d*24*60; m != 0 {
+		b = append(b, 'T', byte('0'+m/600), byte('0'+m/60%10), ':', byte('0'+m%60/10), byte('0'+m%10))
+	}
+	return b
+}
+
+// appendINT96 appends the older form of a time: nanoseconds of the day and the
+// Julian day number.
+func appendINT96(b, v []byte) []byte {
+	const epoch = 2440588 // Julian day number of 1970-01-01
+	nanos := int64(binary.LittleEndian.Uint64(v))
+	days := int64(binary.LittleEndian.Uint32(v[8:])) - epoch
+	return appendMinute(b, days*24*60+floorDiv(nanos, 60e9))
+}
+
+func floorDiv(a, b int64) int64 {
+	q := a / b
+	if a%b < 0 {
+		q--
+	}
+	return q
+}
+
+// bigEndian returns a two's complement number as decimal digits. No decimal
+// has more than 76 digits: a longer value is not worth the work of writing it out.
+func bigEndian(v []byte) []byte {
+	if len(v) > 64 {
+		return []byte("beyond a decimal")
+	}
+	x := new(big.Int).SetBytes(v)
+	if len(v) > 0 && v[0] >= 0x80 {
+		x.Sub(x, new(big.Int).Lsh(big.NewInt(1), uint(8*len(v))))
+	}
+	return x.Append(nil, 10)
+}
+
+// appendDecimal puts the point into a whole number, scale digits from its end.
+func appendDecimal(b, digits []byte, scale int) []byte {
+	if digits[0] == '-' {
+		b = append(b, '-')
+		digits = digits[1:]
+	}
+	if scale == 0 {
+		return append(b, digits...)
+	}
+	whole := len(digits) - scale
+	if whole <= 0 {
+		b = append(b, '0')
+	} else {
+		b = append(b, digits[:whole]...)
+	}
+	b = append(b, '.')
+	for ; whole < 0; whole++ {
+		b = append(b, '0')
+	}
+	return append(b, digits[whole:]...)
+}

@@ -1,0 +1,170 @@
+package parquet
+
+import (
+	"encoding/binary"
+	"errors"
+	"fmt"
+	"io"
+
+	"github.com/xitongsys/parquet-go/parquet"
+	"github.com/xitongsys/parquet-go/reader"
+
+	"nightbook/reader/table"
+	"nightbook/schema"
+)
+
+// File is a Parquet file being read from its first row to its last.
+type File struct {
+	r       io.ReaderAt
+	size    int64
+	meta    *parquet.FileMetaData
+	columns []*column
+	header  []string
+
+	group int   // row group being read
+	left  int64 // of its rows
+	row   int64 // rows read so far
+	total int64
+}
+
+const magic = "PAR1"
+
+// maxFooter bounds the footer, in bytes.
+const maxFooter = 256 << 20
+
+var errDamaged = errors.New("the Parquet file is damaged")
+
+// damaged is errDamaged with what is wrong.
+func damaged(format string, a ...any) error {
+	return fmt.Errorf("%w: %s", errDamaged, fmt.Sprintf(format, a...))
+}
+
+// Open reads the footer of a file of that size in bytes. It refuses files that
+// nest or repeat columns, are encrypted, or hold a type that is not read.
+func Open(r io.ReaderAt, size int64) (f *File, err error) {
+	defer recovered(&err)
+	meta, err := readFooter(r, size)
+	if err != nil {
+		return nil, err
+	}
+	f = &File{r: r, size: size, meta: meta}
+	if f.columns, err = columnsOf(meta.Schema); err != nil {
+		return nil, err
+	}
+	for _, c := range f.columns {
+		f.header = append(f.header, c.name)
+	}
+	for i, g := range meta.RowGroups {
+		if g == nil || g.NumRows < 0 || len(g.Columns) != len(f.columns) {
+			return nil, damaged("row group %d does not have the columns of the schema", i+1)
+		}
+		f.total += g.NumRows
+	}
+	if f.total != meta.NumRows {
+		return nil, damaged("its row groups have %d rows, its footer says %d", f.total, meta.NumRows)
+	}
+	f.group = -1
+	return f, nil
+}
+
+// recovered turns a panic of the library over bytes it did not expect into an error.
+func recovered(err *error) {
+	if x := recover(); x != nil {
+		*err = damaged("%v", x)
+	}
+}
+
+func readFooter(r io.ReaderAt, size int64) (*parquet.FileMetaData, error) {
+	var tail [8]byte
+	if size < int64(len(magic)+len(tail)) {
+		return nil, fmt.Errorf("not a Parquet file: %w", io.ErrUnexpectedEOF)
+	}
+	if _, err := r.ReadAt(tail[:], size-8); err != nil {
+		return nil, err
+	}
+	var head [4]byte
+	if _, err := r.ReadAt(head[:], 0); err != nil {
+		return nil, err
+	}
+	switch {
+	case string(head[:]) == "PARE" || string(tail[4:]) == "PARE":
+		return nil, errors.New("encrypted Parquet files are not read")
+	case string(head[:]) != magic:
+		return nil, errors.New("not a Parquet file: it does not begin with PAR1")
+	case string(tail[4:]) != magic:
+		return nil, fmt.Errorf("a Parquet file without its end: %w", io.ErrUnexpectedEOF)
+	}
+	n := int64(binary.LittleEndian.Uint32(tail[:]))
+	if n > size-12 || n > maxFooter {
+		return nil, damaged("its footer of %d bytes does not fit into it", n)
+	}
+	footer := make([]byte, n)
+	if _, err := r.ReadAt(footer, size-8-n); err != nil {
+		return nil, err
+	}
+	if !wellFormed(footer) {
+		return nil, damaged("its footer cannot be read")
+	}
+	pr := reader.ParquetReader{PFile: newWindow(r, 0, size)}
+	if err := pr.ReadFooter(); err != nil {
+		return nil, damaged("its footer cannot be read: %v", err)
+	}
+	return pr.Footer, nil
+}
+
+// Header returns the names of the columns, in the order of the schema.
+func (f *File) Header() []string { return f.header }
+
+// Read returns the share of the rows read so far, from 0 to 1.
+func (f *File) Read() float64 {
+	if f.total == 0 {
+		return 1
+	}
+	return float64(f.row) / float64(f.total)
+}
+
+// Next reads the next rows: up to schema.BatchRows, never across the end of a
+// row group. io.EOF is the end.
+func (f *File) Next(into *table.Rows) (err error) {
+	defer recovered(&err)
+	for f.left == 0 {
+		if f.group+1 >= len(f.meta.RowGroups) {
+			return io.EOF
+		}
+		f.group++
+		if err := f.startGroup(f.meta.RowGroups[f.group]); err != nil {
+			return err
+		}
+	}
+	n := int(min(f.left, schema.BatchRows))
+	into.Reset(len(f.columns))
+	into.N = n
+	for i, c := range f.columns {
+		if err := c.read(into, i, n); err != nil {
+			return fmt.Errorf("column %s, row group %d: %w", c.name, f.group+1, err)
+		}
+	}
+	for range n {
+		f.row++
+		into.Line = append(into.Line, f.row)
+	}
+	f.left -= int64(n)
+	return nil
+}
+
+func (f *File) startGroup(g *parquet.RowGroup) error {
+	f.left = g.NumRows
+	for i, c := range f.columns {
+		chunk := g.Columns[i]
+		if chunk == nil || chunk.MetaData == nil {
+			return damaged("column %s of row group %d has no description", c.name, f.group+1)
+		}
+		if chunk.FilePath != nil && *chunk.FilePath != "" {
+			return errors.New("a Parquet file whose columns lie in other files is not read")
+		}
+		if err := c.start(f.r, f.size, chunk.MetaData, g.NumRows); err != nil {
+			return fmt.Errorf("column %s, row group %d: %w", c.name, f.group+1, err)
+		}
+	}
+	return nil
+}

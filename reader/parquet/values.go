@@ -1,0 +1,256 @@
+package parquet
+
+import (
+	"encoding/binary"
+	"fmt"
+	"math"
+
+	"github.com/xitongsys/parquet-go/parquet"
+)
+
+// values decodes the stored values of a column, page by page. What has been
+// read last stands in one of ints, floats and bytes, as the physical type says:
+// booleans and integers, floats, texts and twelve-byte times.
+type values struct {
+	encoding parquet.Encoding
+	data     []byte // of the page, not yet read
+	bit      int    // of data[0], of plain booleans
+	indices  hybrid
+	delta    delta
+	lengths  []int64 // of delta-coded texts not yet read
+	prefixes []int64
+	last     []byte // the text before, of which prefixes are taken
+	arena    []byte // memory of texts that are put together
+	count    int    // values of a byte-stream-split page, and how many are read
+	done     int
+
+	dictionary plain
+	plain
+}
+
+// plain are decoded values.
+type plain struct {
+	ints   []int64
+	floats []float64
+	bytes  [][]byte
+}
+
+func (c *column) tooShort() error { return damaged("a page has fewer values than its header says") }
+
+// setDictionary decodes the dictionary of a row group.
+func (v *values) setDictionary(c *column, data []byte, n int, e parquet.Encoding) error {
+	if e != parquet.Encoding_PLAIN && e != parquet.Encoding_PLAIN_DICTIONARY {
+		return fmt.Errorf("a dictionary in the encoding %s is not read", e)
+	}
+	if n < 0 || n > len(data) || c.physical == parquet.Type_BOOLEAN {
+		return damaged("a dictionary of %d values in %d bytes", n, len(data))
+	}
+	v.dictionary = plain{}
+	_, err := v.dictionary.read(c, data, n)
+	return err
+}
+
+// start begins with the values of a page.
+func (v *values) start(c *column, e parquet.Encoding, data []byte) error {
+	v.encoding, v.data, v.bit = e, data, 0
+	switch e {
+	case parquet.Encoding_PLAIN:
+		return nil
+	case parquet.Encoding_PLAIN_DICTIONARY, parquet.Encoding_RLE_DICTIONARY:
+		v.encoding = parquet.Encoding_RLE_DICTIONARY
+		if len(data) == 0 { // a page of nulls
+			v.indices.reset(nil, 0)
+			return nil
+		}
+		if data[0] > 32 {
+			return damaged("indices of %d bits", data[0])
+		}
+		v.indices.reset(data[1:], int(data[0]))
+		return nil
+	case parquet.Encoding_RLE:
+		if c.physical != parquet.Type_BOOLEAN || len(data) < 4 {
+			break
+		}
+		v.indices.reset(data[4:], 1)
+		return nil
+	case parquet.Encoding_BYTE_STREAM_SPLIT:
+		if w := c.width(); w > 0 {
+			v.count, v.done = len(data)/w, 0
+			return nil
+		}
+	case parquet.Encoding_DELTA_BINARY_PACKED:
+		if c.physical == parquet.Type_INT32 || c.physical == parquet.Type_INT64 {
+			return v.startDelta(data)
+		}
+	case parquet.Encoding_DELTA_LENGTH_BYTE_ARRAY:
+		if c.physical == parquet.Type_BYTE_ARRAY {
+			return v.startLengths(data)
+		}
+	case parquet.Encoding_DELTA_BYTE_ARRAY:
+		if c.physical == parquet.Type_BYTE_ARRAY || c.physical == parquet.Type_FIXED_LEN_BYTE_ARRAY {
+			return v.startPrefixes(data)
+		}
+	}
+	return fmt.Errorf("%s in the encoding %s is not read", c.physical, e)
+}
+
+// width returns the bytes of a value of fixed width; 0 is that it has none.
+func (c *column) width() int {
+	switch c.physical {
+	case parquet.Type_INT32, parquet.Type_FLOAT:
+		return 4
+	case parquet.Type_INT64, parquet.Type_DOUBLE:
+		return 8
+	case parquet.Type_INT96:
+		return 12
+	case parquet.Type_FIXED_LEN_BYTE_ARRAY:
+		return c.length
+	}
+	return 0
+}
+
+// read decodes the next n values.
+func (v *values) read(c *column, n int) (err error) {
+	switch v.encoding {
+	case parquet.Encoding_PLAIN:
+		if c.physical == parquet.Type_BOOLEAN {
+			return v.readBits(c, n)
+		}
+		v.data, err = v.plain.read(c, v.data, n)
+		return err
+	case parquet.Encoding_RLE_DICTIONARY:
+		return v.readIndices(c, n)
+	case parquet.Encoding_RLE:
+		bits, err := v.indices.next(n)
+		v.ints = v.ints[:0]
+		for _, b := range bits {
+			v.ints = append(v.ints, int64(b))
+		}
+		return err
+	case parquet.Encoding_BYTE_STREAM_SPLIT:
+		return v.readSplit(c, n)
+	case parquet.Encoding_DELTA_BINARY_PACKED:
+		v.ints, err = v.delta.next(v.ints[:0], n)
+		if c.physical == parquet.Type_INT32 { // its differences wrap around at 32 bits
+			for i, x := range v.ints {
+				v.ints[i] = int64(int32(x))
+			}
+		}
+		return err
+	case parquet.Encoding_DELTA_LENGTH_BYTE_ARRAY:
+		return v.readLengths(c, n)
+	}
+	return v.readPrefixes(c, n)
+}
+
+// readBits reads plain booleans: a bit each.
+func (v *values) readBits(c *column, n int) error {
+	if v.bit+n > 8*len(v.data) {
+		return c.tooShort()
+	}
+	v.ints = v.ints[:0]
+	for range n {
+		v.ints = append(v.ints, int64(v.data[v.bit>>3]>>(v.bit&7)&1))
+		v.bit++
+	}
+	return nil
+}
+
+func (v *values) readIndices(c *column, n int) error {
+	indices, err := v.indices.next(n)
+	if err != nil {
+		return err
+	}
+	v.ints, v.floats, v.bytes = v.ints[:0], v.floats[:0], v.bytes[:0]
+	d := &v.dictionary
+	size := uint32(max(len(d.ints), len(d.floats), len(d.bytes)))
+	for _, i := range indices {
+		if i >= size {
+			return damaged("an index of %d into a dictionary of %d values", i, size)
+		}
+	}
+	switch {
+	case len(d.ints) > 0:
+		for _, i := range indices {
+			v.ints = append(v.ints, d.ints[i])
+		}
+	case len(d.floats) > 0:
+		for _, i := range indices {
+			v.floats = append(v.floats, d.floats[i])
+		}
+	default:
+		for _, i := range indices {
+			v.bytes = append(v.bytes, d.bytes[i])
+		}
+	}
+	return nil
+}
+
+// readSplit reads values whose first bytes stand together, then their second, …
+func (v *values) readSplit(c *column, n int) error {
+	if v.done+n > v.count {
+		return c.tooShort()
+	}
+	w := c.width()
+	v.arena = v.arena[:0]
+	for i := v.done; i < v.done+n; i++ {
+		for k := range w {
+			v.arena = append(v.arena, v.data[k*v.count+i])
+		}
+	}
+	v.done += n
+	_, err := v.plain.read(c, v.arena, n)
+	return err
+}
+
+// read decodes n plain values and returns the bytes behind them. Texts are
+// parts of data.
+func (p *plain) read(c *column, data []byte, n int) (rest []byte, err error) {
+	p.ints, p.floats, p.bytes = p.ints[:0], p.floats[:0], p.bytes[:0]
+	if c.physical == parquet.Type_BYTE_ARRAY {
+		for range n {
+			if len(data) < 4 {
+				return nil, c.tooShort()
+			}
+			size := uint64(binary.LittleEndian.Uint32(data))
+			if size > uint64(len(data)-4) {
+				return nil, damaged("a text longer than its page")
+			}
+			p.bytes = append(p.bytes, data[4:4+size])
+			data = data[4+size:]
+		}
+		return data, nil
+	}
+	w := c.width()
+	if w == 0 || n > len(data)/w {
+		return nil, c.tooShort()
+	}
+	switch at := data; c.physical {
+	case parquet.Type_INT32:
+		for range n {
+			p.ints = append(p.ints, int64(int32(binary.LittleEndian.Uint32(at))))
+			at = at[4:]
+		}
+	case parquet.Type_INT64:
+		for range n {
+			p.ints = append(p.ints, int64(binary.LittleEndian.Uint64(at)))
+			at = at[8:]
+		}
+	case parquet.Type_FLOAT:
+		for range n {
+			p.floats = append(p.floats, float64(math.Float32frombits(binary.LittleEndian.Uint32(at))))
+			at = at[4:]
+		}
+	case parquet.Type_DOUBLE:
+		for range n {
+			p.floats = append(p.floats, math.Float64frombits(binary.LittleEndian.Uint64(at)))
+			at = at[8:]
+		}
+	default:
+		for range n {
+			p.bytes = append(p.bytes, at[:w])
+			at = at[w:]
+		}
+	}
+	return data[n*w:], nil
+}
