@@ -129,7 +129,9 @@ func tail4(p, d, x, w []lanes4, c *table4) {
 	p, d, x = p[:n], d[:n], x[:n]
 	for j := range w {
 		dv, sign, pv := load4(&d[j]), load4(&w[j]), load4(&p[j])
-		tail := load4(&x[j]).Mul(mills4(abs4(dv, c), c))
+		y := abs4(dv, c)
+		z := y.Mul(y)
+		tail := load4(&x[j]).Mul(millsTop4(y, z, c).Div(millsBottom4(y, z, c)))
 		zero := load4(&c.zero)
 		tail = pv.Sub(tail).Merge(tail, sign.Mul(dv).Greater(zero))
 		sign.MulAdd(tail, zero).Store(&p[j])

@@ -127,7 +127,9 @@ func tail8(p, d, x, w []lanes8, c *table8) {
 	p, d, x = p[:n], d[:n], x[:n]
 	for j := range w {
 		dv, sign, pv := load8(&d[j]), load8(&w[j]), load8(&p[j])
-		tail := load8(&x[j]).Mul(mills8(abs8(dv, c), c))
+		y := abs8(dv, c)
+		z := y.Mul(y)
+		tail := load8(&x[j]).Mul(millsTop8(y, z, c).Div(millsBottom8(y, z, c)))
 		zero := load8(&c.zero)
 		tail = pv.Sub(tail).Merge(tail, sign.Mul(dv).Greater(zero))
 		sign.MulAdd(tail, zero).Store(&p[j])

@@ -67,11 +67,20 @@ func halfSquare4(y float4, c *table4) (hi, lo float4) {
 	return load4(&c.zero).Sub(h), y.Mul(load4(&c.negHalf)).MulAdd(y, h)
 }
 
+// millsTop4 over millsBottom4 is mills; z = y².
+func millsTop4(y, z float4, c *table4) float4 {
+	even := z.MulAdd(load4(&c.millsP10), load4(&c.millsP8)).MulAdd(z, load4(&c.millsP6)).MulAdd(z, load4(&c.millsP4)).MulAdd(z, load4(&c.millsP2)).MulAdd(z, load4(&c.millsP0))
+	odd := z.MulAdd(load4(&c.millsP9), load4(&c.millsP7)).MulAdd(z, load4(&c.millsP5)).MulAdd(z, load4(&c.millsP3)).MulAdd(z, load4(&c.millsP1))
+	return odd.MulAdd(y, even)
+}
+
+func millsBottom4(y, z float4, c *table4) float4 {
+	even := z.MulAdd(load4(&c.millsQ10), load4(&c.millsQ8)).MulAdd(z, load4(&c.millsQ6)).MulAdd(z, load4(&c.millsQ4)).MulAdd(z, load4(&c.millsQ2)).MulAdd(z, load4(&c.millsQ0))
+	odd := z.MulAdd(load4(&c.millsQ11), load4(&c.millsQ9)).MulAdd(z, load4(&c.millsQ7)).MulAdd(z, load4(&c.millsQ5)).MulAdd(z, load4(&c.millsQ3)).MulAdd(z, load4(&c.millsQ1))
+	return odd.MulAdd(y, even)
+}
+
 func mills4(y float4, c *table4) float4 {
 	z := y.Mul(y)
-	pe := z.MulAdd(load4(&c.millsP10), load4(&c.millsP8)).MulAdd(z, load4(&c.millsP6)).MulAdd(z, load4(&c.millsP4)).MulAdd(z, load4(&c.millsP2)).MulAdd(z, load4(&c.millsP0))
-	po := z.MulAdd(load4(&c.millsP9), load4(&c.millsP7)).MulAdd(z, load4(&c.millsP5)).MulAdd(z, load4(&c.millsP3)).MulAdd(z, load4(&c.millsP1))
-	qe := z.MulAdd(load4(&c.millsQ10), load4(&c.millsQ8)).MulAdd(z, load4(&c.millsQ6)).MulAdd(z, load4(&c.millsQ4)).MulAdd(z, load4(&c.millsQ2)).MulAdd(z, load4(&c.millsQ0))
-	qo := z.MulAdd(load4(&c.millsQ11), load4(&c.millsQ9)).MulAdd(z, load4(&c.millsQ7)).MulAdd(z, load4(&c.millsQ5)).MulAdd(z, load4(&c.millsQ3)).MulAdd(z, load4(&c.millsQ1))
-	return po.MulAdd(y, pe).Div(qo.MulAdd(y, qe))
+	return millsTop4(y, z, c).Div(millsBottom4(y, z, c))
 }

@@ -65,11 +65,20 @@ func halfSquare8(y float8, c *table8) (hi, lo float8) {
 	return load8(&c.zero).Sub(h), y.Mul(load8(&c.negHalf)).MulAdd(y, h)
 }
 
+// millsTop8 over millsBottom8 is mills; z = y².
+func millsTop8(y, z float8, c *table8) float8 {
+	even := z.MulAdd(load8(&c.millsP10), load8(&c.millsP8)).MulAdd(z, load8(&c.millsP6)).MulAdd(z, load8(&c.millsP4)).MulAdd(z, load8(&c.millsP2)).MulAdd(z, load8(&c.millsP0))
+	odd := z.MulAdd(load8(&c.millsP9), load8(&c.millsP7)).MulAdd(z, load8(&c.millsP5)).MulAdd(z, load8(&c.millsP3)).MulAdd(z, load8(&c.millsP1))
+	return odd.MulAdd(y, even)
+}
+
+func millsBottom8(y, z float8, c *table8) float8 {
+	even := z.MulAdd(load8(&c.millsQ10), load8(&c.millsQ8)).MulAdd(z, load8(&c.millsQ6)).MulAdd(z, load8(&c.millsQ4)).MulAdd(z, load8(&c.millsQ2)).MulAdd(z, load8(&c.millsQ0))
+	odd := z.MulAdd(load8(&c.millsQ11), load8(&c.millsQ9)).MulAdd(z, load8(&c.millsQ7)).MulAdd(z, load8(&c.millsQ5)).MulAdd(z, load8(&c.millsQ3)).MulAdd(z, load8(&c.millsQ1))
+	return odd.MulAdd(y, even)
+}
+
 func mills8(y float8, c *table8) float8 {
 	z := y.Mul(y)
-	pe := z.MulAdd(load8(&c.millsP10), load8(&c.millsP8)).MulAdd(z, load8(&c.millsP6)).MulAdd(z, load8(&c.millsP4)).MulAdd(z, load8(&c.millsP2)).MulAdd(z, load8(&c.millsP0))
-	po := z.MulAdd(load8(&c.millsP9), load8(&c.millsP7)).MulAdd(z, load8(&c.millsP5)).MulAdd(z, load8(&c.millsP3)).MulAdd(z, load8(&c.millsP1))
-	qe := z.MulAdd(load8(&c.millsQ10), load8(&c.millsQ8)).MulAdd(z, load8(&c.millsQ6)).MulAdd(z, load8(&c.millsQ4)).MulAdd(z, load8(&c.millsQ2)).MulAdd(z, load8(&c.millsQ0))
-	qo := z.MulAdd(load8(&c.millsQ11), load8(&c.millsQ9)).MulAdd(z, load8(&c.millsQ7)).MulAdd(z, load8(&c.millsQ5)).MulAdd(z, load8(&c.millsQ3)).MulAdd(z, load8(&c.millsQ1))
-	return po.MulAdd(y, pe).Div(qo.MulAdd(y, qe))
+	return millsTop8(y, z, c).Div(millsBottom8(y, z, c))
 }
