@@ -1,0 +1,38 @@
+package report
+
+import (
+	"fmt"
+
+	"nightbook/schema"
+	"nightbook/writer/xlsx"
+)
+
+// fillLines completes the sheet of lines, whose rows are already there.
+func (r *Report) fillLines(*schema.Summary) error {
+	sheet := r.book.Sheet("Lines")
+	r.lines.Finish()
+	sheet.Print(tableHead)
+	return r.top(sheet, "Lines", r.linesNote())
+}
+
+// linesNote says which lines are on the sheet.
+func (r *Report) linesNote() string {
+	shown := int64(r.lines.Written())
+	note := fmt.Sprintf("all %s", count(r.linesSeen, "line"))
+	if shown < r.linesSeen {
+		note = fmt.Sprintf("first %s of %s; all are in lines.parquet or lines.csv", thousands(shown), count(r.linesSeen, "line"))
+	}
+	if r.lines.Columns() < r.lineColumns {
+		note += fmt.Sprintf("; first %s of %s", thousands(int64(r.lines.Columns())), count(int64(r.lineColumns), "column"))
+	}
+	return note + cutNote(r.book.Sheet("Lines"))
+}
+
+// cutNote says how many texts a sheet could not hold in full.
+func cutNote(s *xlsx.Sheet) string {
+	n := s.Cut()
+	if n == 0 {
+		return ""
+	}
+	return fmt.Sprintf("; %s too long for a cell and cut, marked so", count(int64(n), "text"))
+}

@@ -1,0 +1,121 @@
+package xlsx
+
+import (
+	"fmt"
+	"slices"
+
+	"github.com/xuri/excelize/v2"
+)
+
+// Sheet is a sheet of a workbook: settings, and runs of rows.
+type Sheet struct {
+	Name string
+
+	part string // its name in the file
+	file *excelize.File
+	runs []*Rows
+	done error
+}
+
+// Rows starts a run of rows at a row. Runs may be written at the same time and
+// in any order, but must not overlap.
+func (s *Sheet) Rows(first int) *Rows {
+	r := newRows(first)
+	s.runs = append(s.runs, r)
+	return r
+}
+
+// Cut is how many texts were too long for a cell.
+func (s *Sheet) Cut() int {
+	n := 0
+	for _, r := range s.runs {
+		n += r.cut
+	}
+	return n
+}
+
+// keep notes the first error of a setting, to be returned by the book's Close.
+func (s *Sheet) keep(err error) {
+	if s.done == nil {
+		s.done = err
+	}
+}
+
+// Widths sets the widths of columns, in characters, beginning with the first.
+func (s *Sheet) Widths(widths ...float64) {
+	for i, w := range widths {
+		name := columnName(i + 1)
+		s.keep(s.file.SetColWidth(s.Name, name, name, w))
+	}
+}
+
+// Freeze keeps the first rows and columns in sight. The sheet opens at the top.
+func (s *Sheet) Freeze(rows, columns int) {
+	pane := "bottomRight"
+	switch {
+	case columns == 0:
+		pane = "bottomLeft"
+	case rows == 0:
+		pane = "topRight"
+	}
+	s.keep(s.file.SetPanes(s.Name, &excelize.Panes{
+		Freeze: true, XSplit: columns, YSplit: rows, TopLeftCell: Ref(columns+1, rows+1), ActivePane: pane,
+	}))
+}
+
+// Filter lets the reader filter the rows below a header.
+func (s *Sheet) Filter(header, columns, lastRow int) {
+	s.keep(s.file.AutoFilter(s.Name, rangeRef(1, header, columns, max(header, lastRow)), nil))
+}
+
+// HideGrid turns the grid lines off.
+func (s *Sheet) HideGrid() {
+	off := false
+	s.keep(s.file.SetSheetView(s.Name, 0, &excelize.ViewOptions{ShowGridLines: &off}))
+}
+
+// OutlineAbove says that the row which adds others up stands above them.
+func (s *Sheet) OutlineAbove() {
+	below := false
+	s.keep(s.file.SetSheetProps(s.Name, &excelize.SheetPropsOptions{OutlineSummaryBelow: &below}))
+}
+
+// Print sets the sheet to print in landscape, as wide as a page, with a footer,
+// repeating the header rows if there are any.
+func (s *Sheet) Print(headerRows int) {
+	yes, landscape, one, any := true, "landscape", 1, 0
+	a4 := 9
+	s.keep(s.file.SetSheetProps(s.Name, &excelize.SheetPropsOptions{FitToPage: &yes}))
+	s.keep(s.file.SetPageLayout(s.Name, &excelize.PageLayoutOptions{
+		Size: &a4, Orientation: &landscape, FitToWidth: &one, FitToHeight: &any,
+	}))
+	s.keep(s.file.SetHeaderFooter(s.Name, &excelize.HeaderFooterOptions{OddFooter: "&L&A&RPage &P of &N"}))
+	if headerRows > 0 {
+		s.keep(s.file.SetDefinedName(&excelize.DefinedName{
+			Name: "_xlnm.Print_Titles", Scope: s.Name, RefersTo: fmt.Sprintf("'%s'!$1:$%d", s.Name, headerRows),
+		}))
+	}
+}
+
+// finish completes the runs and tells the sheet its size.
+func (s *Sheet) finish() error {
+	slices.SortStableFunc(s.runs, func(a, b *Rows) int { return a.first - b.first })
+	next, widest := 1, 1
+	for _, r := range s.runs {
+		if r.first < next {
+			panic("xlsx: runs of rows overlap")
+		}
+		s.keep(r.finish())
+		next, widest = r.next, max(widest, r.widest)
+	}
+	s.keep(s.file.SetSheetDimension(s.Name, rangeRef(1, 1, widest, max(1, next-1))))
+	return s.done
+}
+
+func (s *Sheet) pieces() []*piece {
+	var p []*piece
+	for _, r := range s.runs {
+		p = append(p, r.out)
+	}
+	return p
+}
