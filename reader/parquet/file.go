@@ -132,8 +132,10 @@ func (f *File) Next(into *table.Rows) (err error) {
 			return io.EOF
 		}
 		f.group++
-		if err := f.startGroup(f.meta.RowGroups[f.group]); err != nil {
-			return err
+		if g := f.meta.RowGroups[f.group]; g.NumRows > 0 { // a group without rows has no pages
+			if err := f.startGroup(g); err != nil {
+				return err
+			}
 		}
 	}
 	n := int(min(f.left, schema.BatchRows))

@@ -1,0 +1,219 @@
+package parquet
+
+import (
+	"bytes"
+	"fmt"
+	"io"
+	"math"
+	"os"
+	"path/filepath"
+	"strconv"
+	"strings"
+	"testing"
+
+	"nightbook/reader/table"
+	"nightbook/schema"
+)
+
+// rendered reads a file whole and returns it as texts, "∅" for an empty cell.
+func rendered(r io.ReaderAt, size int64) (header []string, rows [][]string, err error) {
+	f, err := Open(r, size)
+	if err != nil {
+		return nil, nil, err
+	}
+	var run table.Rows
+	for {
+		err := f.Next(&run)
+		if err == io.EOF {
+			return f.Header(), rows, nil
+		}
+		if err != nil {
+			return nil, nil, err
+		}
+		for i := range run.N {
+			if got, want := run.Line[i], int64(len(rows)+1); got != want {
+				return nil, nil, fmt.Errorf("line %d, want %d", got, want)
+			}
+			var row []string
+			for c := range run.Cols {
+				text := string(run.AppendText(nil, c, i))
+				if text == "" {
+					text = "∅"
+				}
+				row = append(row, text)
+			}
+			rows = append(rows, row)
+		}
+	}
+}
+
+func readFile(t testing.TB, name string) []byte {
+	t.Helper()
+	b, err := os.ReadFile(filepath.Join("testdata", name))
+	if err != nil {
+		t.Fatal(err)
+	}
+	return b
+}
+
+var wantedHeader = strings.Fields("id text f64 f64n f32 i8 i32 i64 u32 u64 flag day ms us ns dec9 dec18 dec38 fixed void")
+
+// wanted is row i of the files of testdata.
+func wanted(i int) []string {
+	n := int64(i)
+	float := func(x float64) string { return strconv.FormatFloat(x, 'f', -1, 64) }
+	decimal := func(scale int) string {
+		x := (n - 150) * 1237
+		sign := ""
+		if x < 0 {
+			sign, x = "-", -x
+		}
+		ten := int64(math.Pow10(scale))
+		return fmt.Sprintf("%s%d.%0*d", sign, x/ten, scale, x%ten)
+	}
+	clock := func() string {
+		minute := (n-100)*100_003 + 24*60
+		if i%4 == 0 {
+			minute = (n - 100) * 24 * 60
+		}
+		day := schema.Date(math.Floor(float64(minute) / 1440))
+		if m := minute - int64(day)*1440; m != 0 {
+			return day.String() + "T" + schema.Clock(int16(m))
+		}
+		return day.String()
+	}
+	row := []string{
+		fmt.Sprintf("L%05d", i), []string{"north", "south", "ä€𝄞", `a "q", b`, "x\ny"}[i%5], float(float64(i)/8 - 3), float(float64(i)/8 - 3),
+		float(float64(float32(i) / 10)), fmt.Sprint(i%200 - 100), fmt.Sprint(int32(i*i*7919) - 1<<30), fmt.Sprint((n - 150) * 1_000_000_007_000),
+		fmt.Sprint(4_000_000_000 + n), fmt.Sprint(uint64(18_000_000_000_000_000_000) + uint64(n)), fmt.Sprint(i%3 == 0), schema.Date(20000 + 3*i - 450).String(),
+		clock(), clock(), clock(), decimal(2), decimal(4), decimal(10), fmt.Sprintf("%04d", i), "∅",
+	}
+	for k := range row {
+		if k != 0 && k != 2 && (i+k)%7 == 0 {
+			row[k] = "∅"
+		}
+	}
+	return row
+}
+
+// The same rows come out of every layout, encoding and compression.
+func TestFiles(t *testing.T) {
+	for _, name := range []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip", "int96"} {
+		t.Run(name, func(t *testing.T) {
+			b := readFile(t, name+".parquet")
+			header, rows, err := rendered(bytes.NewReader(b), int64(len(b)))
+			if err != nil {
+				t.Fatal(err)
+			}
+			if got := strings.Join(header, " "); got != strings.Join(wantedHeader, " ") {
+				t.Fatalf("header %s", got)
+			}
+			if len(rows) != 300 {
+				t.Fatalf("%d rows", len(rows))
+			}
+			for i, row := range rows {
+				for k, want := range wanted(i) {
+					if row[k] != want {
+						t.Errorf("row %d, %s: %q, want %q", i, header[k], row[k], want)
+					}
+				}
+				if t.Failed() {
+					t.FailNow()
+				}
+			}
+		})
+	}
+}
+
+func TestKinds(t *testing.T) {
+	b := readFile(t, "plain.parquet")
+	f, err := Open(bytes.NewReader(b), int64(len(b)))
+	if err != nil {
+		t.Fatal(err)
+	}
+	var run table.Rows
+	if err := f.Next(&run); err != nil {
+		t.Fatal(err)
+	}
+	for name, want := range map[string]struct {
+		kind schema.Kind
+		cell table.Cell
+	}{
+		"id": {schema.KindStrings, table.Text}, "f64": {schema.KindFloats, 0}, "f32": {schema.KindFloats, 0}, "i64": {schema.KindInts, 0},
+		"u32": {schema.KindStrings, table.Number}, "flag": {schema.KindStrings, table.Text}, "day": {schema.KindDates, 0},
+		"ns": {schema.KindStrings, table.Date}, "dec9": {schema.KindStrings, table.Number},
+	} {
+		for c, h := range f.Header() {
+			if h != name {
+				continue
+			}
+			if got := run.Cols[c].Kind; got != want.kind {
+				t.Errorf("%s: kind %d, want %d", name, got, want.kind)
+			}
+			if got := run.Cell(c, 0); got != want.cell {
+				t.Errorf("%s: cell %d, want %d", name, got, want.cell)
+			}
+		}
+	}
+}
+
+func TestEmpty(t *testing.T) {
+	b := readFile(t, "empty.parquet")
+	header, rows, err := rendered(bytes.NewReader(b), int64(len(b)))
+	if err != nil || len(rows) != 0 || len(header) != 1 {
+		t.Errorf("%v %v %v", header, rows, err)
+	}
+}
+
+// What is not read is refused by name.
+func TestRefused(t *testing.T) {
+	for name, want := range map[string]string{
+		"list":   "column odd is nested (group/LIST)",
+		"struct": "column odd is nested",
+		"time":   "column odd is of type INT32/TIME, which is not read",
+		"brotli": "packed with BROTLI",
+	} {
+		b := readFile(t, name+".parquet")
+		_, _, err := rendered(bytes.NewReader(b), int64(len(b)))
+		if err == nil || !strings.Contains(err.Error(), want) {
+			t.Errorf("%s: %v, want %q", name, err, want)
+		}
+	}
+}
+
+// A file cut short anywhere, or with bytes changed anywhere, is an error or
+// reads on: it never panics, and a file cut short never reads well.
+func TestDamaged(t *testing.T) {
+	for _, name := range []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip"} {
+		whole := readFile(t, name+".parquet")
+		for n := 0; n < len(whole); n += 1 + len(whole)/60 {
+			if _, _, err := rendered(bytes.NewReader(whole[:n]), int64(n)); err == nil {
+				t.Errorf("%s cut to %d bytes reads well", name, n)
+			}
+		}
+		for at := 4; at < len(whole); at += 1 + len(whole)/150 {
+			b := bytes.Clone(whole)
+			b[at] ^= 0x5a
+			rendered(bytes.NewReader(b), int64(len(b)))
+		}
+	}
+}
+
+// A page that ends early while the footer still promises rows is an error.
+func TestTruncatedPage(t *testing.T) {
+	whole := readFile(t, "plain.parquet")
+	b := bytes.Clone(whole)
+	clear(b[len(b)/3 : len(b)/2])
+	if _, _, err := rendered(bytes.NewReader(b), int64(len(b))); err == nil {
+		t.Error("pages of zeros read well")
+	}
+}
+
+func FuzzParquet(f *testing.F) {
+	for _, name := range []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip", "int96", "list", "empty"} {
+		f.Add(readFile(f, name+".parquet"))
+	}
+	f.Fuzz(func(t *testing.T, b []byte) {
+		rendered(bytes.NewReader(b), int64(len(b)))
+	})
+}
