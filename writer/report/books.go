@@ -51,7 +51,7 @@ func (r *Report) fillBooks(s *schema.Summary) error {
 	sheet.Freeze(tableHead, 1)
 	sheet.OutlineAbove()
 	sheet.HideGrid()
-	sheet.Print(tableHead)
+	sheet.Print(tableHead, tableHead, false)
 	return nil
 }
 

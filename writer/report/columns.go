@@ -37,7 +37,7 @@ func (r *Report) fillColumns(*schema.Summary) error {
 	sheet.Widths(14, 22, 9, 34, 9, 110)
 	sheet.Freeze(tableHead, 2)
 	sheet.Filter(tableHead, 6, c.Next()-1)
-	sheet.Print(tableHead)
+	sheet.Print(tableHead, tableHead, false)
 	return nil
 }
 

@@ -15,7 +15,7 @@ func (r *Report) fillControls(s *schema.Summary) error {
 		return err
 	}
 	c := cells{sheet.Rows(4), &r.look}
-	if err := c.header(1, "Control", "Expected", "Found", "Difference", "Tolerance", "Result"); err != nil {
+	if err := c.header(2, "Control", "Result", "Expected", "Found", "Difference", "Tolerance"); err != nil {
 		return err
 	}
 	for i := range list {
@@ -29,10 +29,10 @@ func (r *Report) fillControls(s *schema.Summary) error {
 			return err
 		}
 	}
-	sheet.Widths(44, 22, 22, 16, 16, 70)
+	sheet.Widths(44, 13, 22, 22, 16, 16)
 	sheet.Freeze(4, 1)
 	sheet.HideGrid()
-	sheet.Print(4)
+	sheet.Print(4, 4, false)
 	return nil
 }
 
@@ -53,25 +53,29 @@ func (r *Report) controlRow(c cells, x *control) error {
 	c.Begin(0, 0)
 	c.Text(r.look.text, x.name)
 	if x.absent {
-		c.Jump(6)
 		c.Text(r.look.note, "nothing to check")
 		return c.End()
 	}
-	amount := r.look.money
-	switch {
-	case x.whole:
-		amount = r.look.whole
-	case x.expected == 0 && x.found != 0:
-		amount = r.look.tiny
-	}
-	c.Number(amount, x.expected)
-	c.Number(amount, x.found)
-	c.Number(r.look.tiny, x.found-x.expected)
-	c.Number(r.look.tiny, x.tolerance)
 	if x.passes() {
 		c.Text(r.look.good, "pass")
 	} else {
 		c.Text(r.look.bad, "FAIL")
+	}
+	amount := r.look.money
+	if x.whole {
+		amount = r.look.whole
+	}
+	for _, n := range []struct {
+		style int
+		x     float64
+	}{{amount, x.expected}, {amount, x.found}, {r.look.tiny, x.found - x.expected}, {r.look.tiny, x.tolerance}} {
+		switch {
+		case n.x == 0:
+			n.style = r.look.whole
+		case n.style == r.look.money && -0.01 < n.x && n.x < 0.01:
+			n.style = r.look.tiny
+		}
+		c.Number(n.style, n.x)
 	}
 	return c.End()
 }
@@ -83,6 +87,7 @@ func (r *Report) controlTotals(c cells, s *schema.Summary) error {
 	row := func(name string, x float64) error {
 		c.Begin(0, 0)
 		c.Text(r.look.text, name)
+		c.Jump(3)
 		c.Number(r.look.money, x)
 		return c.End()
 	}
@@ -107,6 +112,7 @@ func (r *Report) rejectCounts(c cells, s *schema.Summary) error {
 	for _, n := range s.RejectCount {
 		c.Begin(0, 0)
 		c.Text(r.look.text, n.Code)
+		c.Jump(3)
 		c.Int(r.look.whole, n.Count)
 		if err := c.End(); err != nil {
 			return err
@@ -120,10 +126,13 @@ func (r *Report) inputFiles(c cells, s *schema.Summary) error {
 		return err
 	}
 	c.Begin(16, 0)
-	for i, title := range []string{"File", "Rows", "Bytes", "Table", "", "SHA-256"} {
+	for i, title := range []string{"File", "Table", "Rows", "Bytes", "SHA-256", ""} {
 		style := r.look.head
-		if i == 1 || i == 2 {
+		switch i {
+		case 2, 3:
 			style = r.look.headRight
+		case 4:
+			style = r.look.headAfter
 		}
 		c.Text(style, title)
 	}
@@ -133,11 +142,10 @@ func (r *Report) inputFiles(c cells, s *schema.Summary) error {
 	for _, f := range s.Inputs {
 		c.Begin(0, 0)
 		c.Text(r.look.text, f.Name)
+		c.Text(r.look.text, f.Table)
 		c.Int(r.look.whole, f.Rows)
 		c.Int(r.look.whole, f.Bytes)
-		c.Text(r.look.text, f.Table)
-		c.Jump(6)
-		c.Text(r.look.text, f.SHA256)
+		c.Text(r.look.after, f.SHA256)
 		if err := c.End(); err != nil {
 			return err
 		}

@@ -11,7 +11,7 @@ import (
 func (r *Report) fillLines(*schema.Summary) error {
 	sheet := r.book.Sheet("Lines")
 	r.lines.Finish()
-	sheet.Print(tableHead)
+	sheet.Print(tableHead-1, tableHead, true)
 	return r.top(sheet, "Lines", r.linesNote())
 }
 

@@ -13,13 +13,13 @@ const tableHead = 5
 
 // styles are the looks that the sheets share.
 type styles struct {
-	title, note, section, text, bold, wrap, muted int
-	head, headRight                               int
-	whole, money, ratio, integer, tiny            int
-	total, totalWhole                             int
-	good, bad, flag                               int
-	indent                                        [maxIndent + 1]int // of a book's name by level
-	wholeBold                                     int
+	title, note, section, text, bold int
+	after, noteAfter                 int // of texts beside numbers
+	head, headRight, headAfter       int
+	whole, wholeBold, money, ratio   int
+	tiny, total, totalWhole          int
+	good, bad                        int
+	indent                           [maxIndent + 1]int // of a book's name by level
 }
 
 // maxIndent is the deepest level of books that is still indented further.
@@ -38,15 +38,15 @@ func newStyles(b *xlsx.Book) (styles, error) {
 	set(&s.section, xlsx.Style{Bold: true, Size: 12})
 	set(&s.text, xlsx.Style{})
 	set(&s.bold, xlsx.Style{Bold: true})
-	set(&s.wrap, xlsx.Style{Wrap: true})
-	set(&s.muted, xlsx.Style{Color: xlsx.Muted, Right: true})
 	set(&s.head, xlsx.Style{Bold: true, Head: true})
+	set(&s.headAfter, xlsx.Style{Bold: true, Head: true, Indent: 1})
+	set(&s.after, xlsx.Style{Indent: 1})
+	set(&s.noteAfter, xlsx.Style{Color: xlsx.Muted, Indent: 1})
 	set(&s.headRight, xlsx.Style{Bold: true, Head: true, Right: true})
 	set(&s.whole, xlsx.Style{Format: xlsx.FormatWhole})
 	set(&s.wholeBold, xlsx.Style{Format: xlsx.FormatWhole, Bold: true})
 	set(&s.money, xlsx.Style{Format: xlsx.FormatMoney})
 	set(&s.ratio, xlsx.Style{Format: xlsx.FormatRatio})
-	set(&s.integer, xlsx.Style{Format: xlsx.FormatInteger})
 	set(&s.tiny, xlsx.Style{Format: xlsx.FormatTiny})
 	set(&s.total, xlsx.Style{Bold: true, Total: true})
 	set(&s.totalWhole, xlsx.Style{Bold: true, Total: true, Format: xlsx.FormatWhole})

@@ -10,8 +10,8 @@ import (
 func (r *Report) fillRejects(s *schema.Summary) error {
 	sheet := r.book.Sheet("Rejects")
 	r.rejects.Finish()
-	sheet.Widths(16, 10, 8, 16, 20, 18, 60, 60)
-	sheet.Print(tableHead)
+	sheet.Widths(16, 10, 8, 16, 20, 18, 100, 80)
+	sheet.Print(tableHead, tableHead, false)
 	note := fmt.Sprintf("%s of the position file, as they came: they are in no total", count(s.Rejects, "row"))
 	if s.Faults > 0 {
 		note += fmt.Sprintf("; %s of market data", count(s.Faults, "row"))

@@ -34,7 +34,7 @@ func (r *Report) fillSummary(s *schema.Summary) error {
 	}
 	sheet.Widths(30, 18, 12, 17, 17, 17, 17, 17, 17, 17)
 	sheet.HideGrid()
-	sheet.Print(0)
+	sheet.Print(0, 0, false)
 	return nil
 }
 
@@ -61,7 +61,7 @@ func (r *Report) summaryRows(c cells, s *schema.Summary) error {
 		c.Text(r.look.text, row.name)
 		c.Int(r.look.whole, row.n)
 		if row.n > 0 && row.note != "" {
-			c.Text(r.look.note, row.note)
+			c.Text(r.look.noteAfter, row.note)
 		}
 		if err := c.End(); err != nil {
 			return err
@@ -96,12 +96,19 @@ func (r *Report) verdict(c cells, name string, list []control) error {
 	return c.End()
 }
 
+// rateTitle heads a column of numbers among those of texts.
+const rateTitle = "Rate"
+
 // measureHeader heads a block of totals.
 func (r *Report) measureHeader(c cells, section string, titles ...string) error {
 	if err := c.line(r.look.section, section); err != nil {
 		return err
 	}
-	return c.header(2, append(append(titles, "Lines"), measureTitles[:]...)...)
+	left := len(titles)
+	if titles[left-1] == rateTitle {
+		left--
+	}
+	return c.header(left, append(append(titles, "Lines"), measureTitles[:]...)...)
 }
 
 // totals writes a row of a block of totals. An empty second cell stays empty.
@@ -166,7 +173,7 @@ func (r *Report) summaryUnderlyings(c cells, s *schema.Summary) error {
 }
 
 func (r *Report) summaryCurrencies(c cells, s *schema.Summary) error {
-	if err := r.measureHeader(c, "Currencies, in "+r.cfg.ReportingCurrency, "Currency", "Rate"); err != nil {
+	if err := r.measureHeader(c, "Currencies, in "+r.cfg.ReportingCurrency, "Currency", rateTitle); err != nil {
 		return err
 	}
 	for i := range s.Currencies {
@@ -199,7 +206,7 @@ func (r *Report) summaryWarnings(c cells, s *schema.Summary) error {
 		c.Begin(0, 0)
 		c.Text(r.look.text, code.Code)
 		c.Int(r.look.whole, int64(n))
-		c.Text(r.look.note, code.Doc)
+		c.Text(r.look.noteAfter, code.Doc)
 		if err := c.End(); err != nil {
 			return err
 		}

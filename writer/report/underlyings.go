@@ -14,7 +14,7 @@ func (r *Report) fillUnderlyings(s *schema.Summary) error {
 		return err
 	}
 	t.Finish()
-	sheet.Print(tableHead)
+	sheet.Print(tableHead-1, tableHead, true)
 	note := count(int64(f.N), "underlying") + " with lines, by name; measures in the price currency and, with _base, in " + r.cfg.ReportingCurrency
 	if t.Written() < f.N {
 		note += "; first " + thousands(int64(t.Written())) + " here, all are in the underlyings table"

@@ -15,7 +15,7 @@ func (r *Report) fillWarnings(s *schema.Summary) error {
 	}
 	t.Finish()
 	sheet.Widths(20, 24, 80, 18, 8, 10)
-	sheet.Print(tableHead)
+	sheet.Print(tableHead, tableHead, false)
 	note := count(int64(f.N), "warning") + "; like ones are counted together"
 	if t.Written() < f.N {
 		note += "; first " + thousands(int64(t.Written())) + " here, all are in warnings.csv"

@@ -80,20 +80,24 @@ func (s *Sheet) OutlineAbove() {
 	s.keep(s.file.SetSheetProps(s.Name, &excelize.SheetPropsOptions{OutlineSummaryBelow: &below}))
 }
 
-// Print sets the sheet to print in landscape, as wide as a page, with a footer,
-// repeating the header rows if there are any.
-func (s *Sheet) Print(headerRows int) {
-	yes, landscape, one, any := true, "landscape", 1, 0
-	a4 := 9
-	s.keep(s.file.SetSheetProps(s.Name, &excelize.SheetPropsOptions{FitToPage: &yes}))
-	s.keep(s.file.SetPageLayout(s.Name, &excelize.PageLayoutOptions{
-		Size: &a4, Orientation: &landscape, FitToWidth: &one, FitToHeight: &any,
-	}))
+// Print sets the sheet to print in landscape on A4, with its name and the page
+// in the footer, repeating the header rows first to last (0 for none) and, where
+// it is too wide for one page, its first column.
+func (s *Sheet) Print(first, last int, wide bool) {
+	yes, landscape, one, any, a4, small := true, "landscape", 1, 0, 9, uint(60)
+	layout := &excelize.PageLayoutOptions{Size: &a4, Orientation: &landscape}
+	titles := fmt.Sprintf("'%s'!$%d:$%d", s.Name, first, last)
+	if wide {
+		layout.AdjustTo = &small
+		titles = fmt.Sprintf("'%s'!$A:$A,%s", s.Name, titles)
+	} else {
+		layout.FitToWidth, layout.FitToHeight = &one, &any
+		s.keep(s.file.SetSheetProps(s.Name, &excelize.SheetPropsOptions{FitToPage: &yes}))
+	}
+	s.keep(s.file.SetPageLayout(s.Name, layout))
 	s.keep(s.file.SetHeaderFooter(s.Name, &excelize.HeaderFooterOptions{OddFooter: "&L&A&RPage &P of &N"}))
-	if headerRows > 0 {
-		s.keep(s.file.SetDefinedName(&excelize.DefinedName{
-			Name: "_xlnm.Print_Titles", Scope: s.Name, RefersTo: fmt.Sprintf("'%s'!$1:$%d", s.Name, headerRows),
-		}))
+	if last > 0 {
+		s.keep(s.file.SetDefinedName(&excelize.DefinedName{Name: "_xlnm.Print_Titles", Scope: s.Name, RefersTo: titles}))
 	}
 }
 

@@ -12,11 +12,9 @@ type Table struct {
 	table schema.Table
 	rows  *Rows
 	sheet *Sheet
-	head  int // row of the header
+	at    int // row of the header
 
-	whole, other []int // styles of each column
-	headStyle    [2]int
-	unitStyle    [2]int
+	whole, other, head, unit []int // styles of each column
 }
 
 // NewTable starts a table on a sheet, its header in row head (2 or more) and
@@ -24,7 +22,7 @@ type Table struct {
 // left out: see Columns.
 func (b *Book) NewTable(s *Sheet, t schema.Table, head int) (*Table, error) {
 	t.Columns = t.Columns[:min(len(t.Columns), MaxColumns)]
-	x := &Table{table: t, sheet: s, head: head, rows: s.Rows(head + 1)}
+	x := &Table{table: t, sheet: s, at: head, rows: s.Rows(head + 1)}
 	var err error
 	style := func(s Style) int {
 		if err != nil {
@@ -38,13 +36,15 @@ func (b *Book) NewTable(s *Sheet, t schema.Table, head int) (*Table, error) {
 	for i := range t.Columns {
 		c := &t.Columns[i]
 		whole, other := FormatOf(c)
-		x.whole = append(x.whole, style(Style{Format: whole}))
-		x.other = append(x.other, style(Style{Format: other}))
+		indent := 0
+		if i > 0 && right(c) == 0 && right(&t.Columns[i-1]) == 1 {
+			indent = 1 // numbers end where this text would begin
+		}
+		x.whole = append(x.whole, style(Style{Format: whole, Indent: indent}))
+		x.other = append(x.other, style(Style{Format: other, Indent: indent}))
+		x.head = append(x.head, style(Style{Bold: true, Head: true, Right: right(c) == 1, Indent: indent}))
+		x.unit = append(x.unit, style(Style{Color: Muted, Size: 8, Right: right(c) == 1, Indent: indent}))
 		widths[i] = WidthOf(c)
-	}
-	for right := range 2 {
-		x.headStyle[right] = style(Style{Bold: true, Head: true, Right: right == 1})
-		x.unitStyle[right] = style(Style{Color: Muted, Size: 8, Right: right == 1})
 	}
 	if err != nil {
 		return nil, err
@@ -58,14 +58,14 @@ func (b *Book) NewTable(s *Sheet, t schema.Table, head int) (*Table, error) {
 			h.Jump(i + 2)
 			continue
 		}
-		h.Text(x.unitStyle[right(&t.Columns[i])], c.Unit)
+		h.Text(x.unit[i], c.Unit)
 	}
 	if err := h.End(); err != nil {
 		return nil, err
 	}
 	h.Begin(16, 0)
 	for i, c := range t.Columns {
-		h.Text(x.headStyle[right(&t.Columns[i])], c.Name)
+		h.Text(x.head[i], c.Name)
 	}
 	return x, h.End()
 }
@@ -82,7 +82,7 @@ func right(c *schema.Column) int {
 func (x *Table) Columns() int { return len(x.table.Columns) }
 
 // Written is how many rows were written.
-func (x *Table) Written() int { return x.rows.next - x.head - 1 }
+func (x *Table) Written() int { return x.rows.next - x.at - 1 }
 
 // Room is how many rows can still be written, with some kept for notes.
 func (x *Table) Room() int { return MaxRows - 10 - x.rows.next + 1 }
@@ -104,7 +104,7 @@ func (x *Table) Write(f *schema.Frame, n int) error {
 // Finish ends the table: the rows that were written can be filtered. It returns
 // the rows below, for notes.
 func (x *Table) Finish() *Rows {
-	x.sheet.Filter(x.head, x.Columns(), x.rows.next-1)
+	x.sheet.Filter(x.at, x.Columns(), x.rows.next-1)
 	return x.rows
 }
 
