@@ -97,7 +97,7 @@ func distances4(sc *scratch4, s, k, t, v, r, q, w []lanes4, c *table4) bool {
 		inv := load4(&c.one).Div(vs)
 		inv.Store(&rv[j])
 		k2, e := alignBinades4(sv, kv, c)
-		m := rt.Sub(qt).MulAdd(tv, atanhSum4(sv, k2, e, c))
+		m := e.MulAdd(load4(&c.ln2Hi), rt.Sub(qt).MulAdd(tv, atanhSum4(sv, k2, e, c)))
 		d := m.Mul(inv)
 		d = d.MulAdd(load4(&c.zero).Sub(vs), m).MulAdd(inv, d)
 		vs.MulAdd(load4(&c.half), d).Store(&d1[j])

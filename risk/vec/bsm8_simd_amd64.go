@@ -95,7 +95,7 @@ func distances8(sc *scratch8, s, k, t, v, r, q, w []lanes8, c *table8) bool {
 		inv := load8(&c.one).Div(vs)
 		inv.Store(&rv[j])
 		k2, e := alignBinades8(sv, kv, c)
-		m := rt.Sub(qt).MulAdd(tv, atanhSum8(sv, k2, e, c))
+		m := e.MulAdd(load8(&c.ln2Hi), rt.Sub(qt).MulAdd(tv, atanhSum8(sv, k2, e, c)))
 		d := m.Mul(inv)
 		d = d.MulAdd(load8(&c.zero).Sub(vs), m).MulAdd(inv, d)
 		vs.MulAdd(load8(&c.half), d).Store(&d1[j])

@@ -120,7 +120,8 @@ func bsmTerms(s, k, t, v, r, q, w float64) (an, bn, x, rv, sq, d1, d2 float64) {
 	sq = math.Sqrt(t)
 	vs := float64(v * sq)
 	rv = 1 / vs
-	m := math.FMA(r-q, t, logRatio(s, k))
+	n, rest := logRatio(s, k)
+	m := math.FMA(n, ln2Hi, math.FMA(r-q, t, rest)) // ln(S/K) + (r−q)T
 	d := float64(m * rv)
 	d = math.FMA(math.FMA(d, 0-vs, m), rv, d) // m/vs as if divided
 	d1 = math.FMA(vs, 0.5, d)

@@ -22,3 +22,9 @@ func ChooseTier(asked, best string) (name, note string) {
 
 // InBox reports whether a line is left to vector code.
 var InBox = inBox
+
+// EdgeValue values a line as if it were outside the box.
+func EdgeValue(s, k, t, v, r, q, w float64) [11]float64 {
+	o := bsmEdge(s, k, t, v, r, q, w)
+	return [11]float64{o.price, o.delta, o.gamma, o.vega, o.theta, o.rho, o.carryRho, o.vanna, o.volga, o.charm, o.residual}
+}

@@ -58,7 +58,7 @@ func atanhSum4(s, k, n float4, c *table4) float4 {
 	even := w.MulAdd(load4(&c.logC6), load4(&c.logC4)).MulAdd(w, load4(&c.logC2)).MulAdd(w, load4(&c.logC0))
 	odd := w.MulAdd(load4(&c.logC7), load4(&c.logC5)).MulAdd(w, load4(&c.logC3)).MulAdd(w, load4(&c.logC1))
 	sum := u.Mul(z).Mul(odd.MulAdd(z, even))
-	return n.MulAdd(load4(&c.ln2Hi), u.MulAdd(load4(&c.two), n.MulAdd(load4(&c.ln2Lo), sum)))
+	return u.MulAdd(load4(&c.two), n.MulAdd(load4(&c.ln2Lo), sum))
 }
 
 // halfSquare4 returns −y²/2 in two parts, as gauss takes it.

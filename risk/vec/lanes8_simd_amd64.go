@@ -56,7 +56,7 @@ func atanhSum8(s, k, n float8, c *table8) float8 {
 	even := w.MulAdd(load8(&c.logC6), load8(&c.logC4)).MulAdd(w, load8(&c.logC2)).MulAdd(w, load8(&c.logC0))
 	odd := w.MulAdd(load8(&c.logC7), load8(&c.logC5)).MulAdd(w, load8(&c.logC3)).MulAdd(w, load8(&c.logC1))
 	sum := u.Mul(z).Mul(odd.MulAdd(z, even))
-	return n.MulAdd(load8(&c.ln2Hi), u.MulAdd(load8(&c.two), n.MulAdd(load8(&c.ln2Lo), sum)))
+	return u.MulAdd(load8(&c.two), n.MulAdd(load8(&c.ln2Lo), sum))
 }
 
 // halfSquare8 returns −y²/2 in two parts, as gauss takes it.

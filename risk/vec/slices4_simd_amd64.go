@@ -34,7 +34,7 @@ func log4(dst, x []float64) {
 			continue
 		}
 		k2, n := alignBinades4(xv, one, c)
-		atanhSum4(xv, k2, n, c).Store((*lanes4)(dst[i:]))
+		n.MulAdd(load4(&c.ln2Hi), atanhSum4(xv, k2, n, c)).Store((*lanes4)(dst[i:]))
 	}
 	archsimd.ClearAVXUpperBits()
 	logGeneric(dst[i:], x[i:])
@@ -49,7 +49,7 @@ func logRatio4(dst, s, k []float64) {
 			continue
 		}
 		k2, n := alignBinades4(sv, kv, c)
-		atanhSum4(sv, k2, n, c).Store((*lanes4)(dst[i:]))
+		n.MulAdd(load4(&c.ln2Hi), atanhSum4(sv, k2, n, c)).Store((*lanes4)(dst[i:]))
 	}
 	archsimd.ClearAVXUpperBits()
 	logRatioGeneric(dst[i:], s[i:], k[i:])

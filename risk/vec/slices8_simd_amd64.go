@@ -32,7 +32,7 @@ func log8(dst, x []float64) {
 			continue
 		}
 		k2, n := alignBinades8(xv, one, c)
-		atanhSum8(xv, k2, n, c).Store((*lanes8)(dst[i:]))
+		n.MulAdd(load8(&c.ln2Hi), atanhSum8(xv, k2, n, c)).Store((*lanes8)(dst[i:]))
 	}
 	archsimd.ClearAVXUpperBits()
 	logGeneric(dst[i:], x[i:])
@@ -47,7 +47,7 @@ func logRatio8(dst, s, k []float64) {
 			continue
 		}
 		k2, n := alignBinades8(sv, kv, c)
-		atanhSum8(sv, k2, n, c).Store((*lanes8)(dst[i:]))
+		n.MulAdd(load8(&c.ln2Hi), atanhSum8(sv, k2, n, c)).Store((*lanes8)(dst[i:]))
 	}
 	archsimd.ClearAVXUpperBits()
 	logRatioGeneric(dst[i:], s[i:], k[i:])
