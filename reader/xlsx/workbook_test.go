@@ -85,7 +85,7 @@ func TestCells(t *testing.T) {
 		f.SetSheetRow("Sheet1", "A3", &[]any{"plain", 0.1, nil, nil})
 		f.SetSheetRow("Sheet1", "A4", &[]any{"123", 123, "x", true})
 		f.SetSheetRow("Sheet1", "A6", &[]any{"tiny & <big>", 1e-9, 12345678901.5, false}) // row 5 is empty
-		f.SetCellValue("Sheet1", "B7", 1.0/3) // the library writes 15 digits
+		f.SetCellValue("Sheet1", "B7", 1.0/3)                                             // the library writes 15 digits
 		f.SetCellValue("Sheet1", "D7", time.Date(2026, 3, 20, 15, 30, 59, 0, time.UTC))
 		f.SetCellValue("Sheet1", "D8", time.Date(2026, 3, 20, 0, 0, 0, 0, time.UTC))
 		percent, _ := f.NewStyle(&excelize.Style{NumFmt: 10})
