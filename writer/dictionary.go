@@ -102,7 +102,7 @@ func sentence(s string) string {
 
 func dictionaryCSV(b *bytes.Buffer) error {
 	w := csv.NewWriter(b)
-	w.Write([]string{"part", "table", "column", "type", "unit", "required", "if_empty", "meaning", "values"})
+	w.Write([]string{"table", "part", "column", "type", "unit", "required", "if_empty", "meaning", "values"})
 	for _, part := range []struct {
 		name   string
 		tables []schema.Table
@@ -113,13 +113,13 @@ func dictionaryCSV(b *bytes.Buffer) error {
 				if part.name == "output" {
 					values = words(c.Name)
 				}
-				w.Write([]string{part.name, t.Name, c.Name, c.Type.String(), c.Unit, strconv.FormatBool(c.Required), c.Default, c.Doc, values})
+				w.Write([]string{t.Name, part.name, c.Name, c.Type.String(), c.Unit, strconv.FormatBool(c.Required), c.Default, c.Doc, values})
 			}
 		}
 	}
 	for _, list := range codeLists {
 		for _, c := range list.codes {
-			w.Write([]string{"code", list.name, c.Code, "", "", "", "", c.Doc, ""})
+			w.Write([]string{list.name, "code", c.Code, "", "", "", "", c.Doc, ""})
 		}
 	}
 	w.Flush()

@@ -11,13 +11,12 @@ const (
 	FormatWhole    = "#,##0"
 	FormatMoney    = "#,##0.00"
 	FormatPrice    = "#,##0.0000"
-	FormatPercent  = "0.00%"
+	FormatRate     = "0.00000"
 	FormatRatio    = "0.000000"
 	FormatYears    = "0.0000"
 	FormatTiny     = "0.0E+00"
 	FormatInteger  = "0"
 	FormatDate     = "yyyy-mm-dd"
-	FormatAsItIs   = "General"
 	formatMeasured = "#,##0.######"
 )
 
@@ -44,10 +43,7 @@ func FormatOf(c *schema.Column) (whole, other string) {
 	case "units of the underlying":
 		return same(FormatMoney)
 	case "1/year", "1/√year":
-		if c.Name == "charm" {
-			return same(FormatRatio)
-		}
-		return same(FormatPercent)
+		return same(FormatRate) // in the unit that stands above, not in per cent
 	case "year":
 		return same(FormatYears)
 	case "price currency", "reporting currency":
