@@ -1,0 +1,44 @@
+"""Writes the reference tables of the closed-form models into a folder.
+
+usage: closed_forms.py FOLDER [TABLE...]
+
+Inputs are float64 numbers printed in full, results 17 digits of 50.
+"""
+
+import csv
+import os
+import random
+import sys
+
+from mpmath import mpf, nstr
+
+from digital import DIGITAL_INPUTS, NORMAL_INPUTS, digital_lines, digital_values, normal_lines, normal_values
+from numeric import GREEKS
+
+# name: columns, lines of inputs, values of a line
+TABLES = {
+    "digital": (DIGITAL_INPUTS, digital_lines, digital_values),
+    "bachelier": (NORMAL_INPUTS, normal_lines, normal_values),
+}
+
+
+def show(x):
+    if isinstance(x, str):
+        return x
+    if isinstance(x, mpf):
+        return nstr(x, 17, min_fixed=-5, max_fixed=17)
+    return repr(float(x))
+
+
+def main():
+    folder, names = sys.argv[1], sys.argv[2:] or TABLES
+    for name in names:
+        columns, lines, values = TABLES[name]
+        with open(os.path.join(folder, name + ".csv"), "w", newline="") as f:
+            out = csv.writer(f, lineterminator="\n")
+            out.writerow(columns + GREEKS)
+            for line in lines(random.Random(name)):
+                out.writerow([show(x) for x in line + values(line)])
+
+
+main()
