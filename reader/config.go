@@ -62,7 +62,7 @@ type runFile struct {
 	Parquet struct {
 		Compression string `toml:"compression"`
 	} `toml:"parquet"`
-	Columns map[string]map[string]string `toml:"columns"`
+	Columns any `toml:"columns"`
 }
 
 // configName is the file of the snapshot folder that holds the configuration.
@@ -117,8 +117,10 @@ func parseConfig(text, asOf, folder string) (*schema.Config, error) {
 		}
 		return nil, err
 	}
-	if unknown := meta.Undecoded(); len(unknown) > 0 {
-		return nil, fmt.Errorf("unknown key %s", unknown[0])
+	for _, key := range meta.Undecoded() {
+		if key[0] != "columns" { // checkColumns looks at those
+			return nil, fmt.Errorf("unknown key %s", key)
+		}
 	}
 	cfg := &schema.Config{ReportingCurrency: strings.ToUpper(r.ReportingCurrency), Calendar: r.Calendar}
 	if !isCurrency(cfg.ReportingCurrency) {
@@ -154,11 +156,8 @@ func parseConfig(text, asOf, folder string) (*schema.Config, error) {
 	default:
 		return nil, fmt.Errorf("parquet.compression is %q: expected zstd, snappy, gzip or none", r.Parquet.Compression)
 	}
-	if err := checkColumns(r.Columns); err != nil {
-		return nil, err
-	}
-	cfg.Columns = r.Columns
-	return cfg, nil
+	cfg.Columns, err = checkColumns(r.Columns)
+	return cfg, err
 }
 
 func (r *runFile) csv() (c schema.CSVConfig, err error) {
@@ -184,22 +183,40 @@ func (r *runFile) csv() (c schema.CSVConfig, err error) {
 }
 
 // checkColumns refuses a mapping of a table or a column that does not exist.
-func checkColumns(mapping map[string]map[string]string) error {
-	for _, table := range sortedKeys(mapping) {
-		t := inputTable(table)
-		if t == nil {
-			return fmt.Errorf("columns.%s: there is no such table; the tables are %s", table, strings.Join(inputNames(), ", "))
-		}
-		for _, ours := range sortedKeys(mapping[table]) {
-			if t.Column(ours) == nil {
-				return fmt.Errorf("columns.%s.%s: there is no such column in %s; see nightbook columns", table, ours, table)
-			}
-			if strings.TrimSpace(mapping[table][ours]) == "" {
-				return fmt.Errorf("columns.%s.%s is empty: expected a header of the file", table, ours)
-			}
-		}
+// The library passes over other values where a map is expected, so the types
+// are looked at here.
+func checkColumns(columns any) (map[string]map[string]string, error) {
+	sections, ok := columns.(map[string]any)
+	if !ok && columns != nil {
+		return nil, errors.New("columns: expected sections such as [columns.positions]")
 	}
-	return nil
+	var mapping map[string]map[string]string
+	for _, name := range sortedKeys(sections) {
+		t := inputTable(name)
+		if t == nil {
+			return nil, fmt.Errorf("columns.%s: there is no such table; the tables are %s", name, strings.Join(inputNames(), ", "))
+		}
+		section, ok := sections[name].(map[string]any)
+		if !ok {
+			return nil, fmt.Errorf("columns.%s: expected a section [columns.%s] with lines such as strike = \"Strike Px\"", name, name)
+		}
+		columns := map[string]string{}
+		for _, ours := range sortedKeys(section) {
+			theirs, ok := section[ours].(string)
+			if t.Column(ours) == nil {
+				return nil, fmt.Errorf("columns.%s.%s: there is no such column in %s; see nightbook columns", name, ours, name)
+			}
+			if theirs = strings.TrimSpace(theirs); !ok || theirs == "" {
+				return nil, fmt.Errorf("columns.%s.%s: expected a header of the file, in quotation marks", name, ours)
+			}
+			columns[ours] = theirs
+		}
+		if mapping == nil {
+			mapping = map[string]map[string]string{}
+		}
+		mapping[name] = columns
+	}
+	return mapping, nil
 }
 
 // asOfFrom picks the moment of the valuation: the command line's, the file's,

@@ -34,7 +34,7 @@ func bind(in *input, header []string, mapping map[string]string) (*binding, erro
 		for at, h := range header {
 			mine := strings.EqualFold(h, ours)
 			if mapped {
-				mine = mine || strings.EqualFold(h, strings.TrimSpace(theirs))
+				mine = mine || strings.EqualFold(h, theirs)
 			}
 			if !mine {
 				continue
@@ -46,7 +46,7 @@ func bind(in *input, header []string, mapping map[string]string) (*binding, erro
 			b.at[k], b.names[k] = at, h
 			taken[at] = true
 		}
-		if mapped && (b.at[k] < 0 || !strings.EqualFold(b.names[k], strings.TrimSpace(theirs))) {
+		if mapped && (b.at[k] < 0 || !strings.EqualFold(b.names[k], theirs)) {
 			return nil, fmt.Errorf("%s: [columns.%s] of %s maps %s to %q, which is not in the header; the columns found are %s",
 				in.path, t.Name, configName, ours, theirs, headerList(header))
 		}

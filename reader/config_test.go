@@ -1,0 +1,168 @@
+package reader
+
+import (
+	"reflect"
+	"strings"
+	"testing"
+
+	"nightbook/schema"
+)
+
+// moment returns a moment that is known to be well written.
+func moment(t *testing.T, s string) schema.Moment {
+	t.Helper()
+	day, minute, why := isoDate.parse([]byte(s))
+	if why != nil {
+		t.Fatal(s)
+	}
+	return schema.Moment{Day: day, Minute: minute}
+}
+
+func TestConfigDefaults(t *testing.T) {
+	got, err := parseConfig(`reporting_currency = "eur"`, "", "2026-03-20")
+	if err != nil {
+		t.Fatal(err)
+	}
+	want := &schema.Config{AsOf: moment(t, "2026-03-20"), ReportingCurrency: "EUR",
+		Workbook: schema.WorkbookConfig{MaxLines: schema.DefaultMaxLines}, Parquet: schema.ParquetConfig{Compression: "zstd"}}
+	if !reflect.DeepEqual(got, want) {
+		t.Errorf("%+v, want %+v", got, want)
+	}
+}
+
+func TestConfigAll(t *testing.T) {
+	got, err := parseConfig(`
+as_of = 2026-03-20T17:30:00
+reporting_currency = "USD"
+calendar = "Northport"
+[csv]
+delimiter = ";"
+decimal_comma = true
+date_format = "DD.MM.YYYY"
+encoding = "windows-1252"
+[vols]
+unit = "percent"
+[workbook]
+max_lines = 0
+[parquet]
+compression = "none"
+[columns.positions]
+strike = "Strike Px"
+[columns.vols]
+vol = "IV"
+`, "", "x")
+	if err != nil {
+		t.Fatal(err)
+	}
+	want := &schema.Config{AsOf: moment(t, "2026-03-20T17:30"), ReportingCurrency: "USD", Calendar: "Northport",
+		CSV:  schema.CSVConfig{Delimiter: ';', DecimalComma: true, DateFormat: "DD.MM.YYYY", Encoding: "windows-1252"},
+		Vols: schema.VolsConfig{Percent: true}, Parquet: schema.ParquetConfig{Compression: "none"},
+		Columns: map[string]map[string]string{"positions": {"strike": "Strike Px"}, "vols": {"vol": "IV"}}}
+	if !reflect.DeepEqual(got, want) {
+		t.Errorf("%+v, want %+v", got, want)
+	}
+}
+
+// The command line wins over the file, the file over the folder's name.
+func TestAsOf(t *testing.T) {
+	for _, c := range []struct{ file, flag, folder, want string }{
+		{"", "", "2026-03-20", "2026-03-20"},
+		{"as_of = 2026-03-21", "", "2026-03-20", "2026-03-21"},
+		{`as_of = "2026-03-21"`, "", "x", "2026-03-21"},
+		{`as_of = "2026-03-21 09:15"`, "", "x", "2026-03-21T09:15"},
+		{"as_of = 2026-03-21T09:15:59", "", "x", "2026-03-21T09:15"},
+		{"as_of = 2026-03-21 00:00:00", "", "x", "2026-03-21T00:00"},
+		{"as_of = 2026-03-21", "2026-03-22", "2026-03-20", "2026-03-22"},
+		{"", "2026-03-22T18:00", "2026-03-20", "2026-03-22T18:00"},
+		{"", "", "monday", "! as_of is not given"},
+		{"", "", "2026-02-30", "! as_of is not given"},
+		{"", "", "2026-03-20T10:00", "! as_of is not given"},
+		{"", "20.3.2026", "2026-03-20", "! --as-of is"},
+		{"", "2026-03-20T10:00Z", "x", "! desk's own clock"},
+		{`as_of = "soon"`, "", "2026-03-20", `! as_of is "soon"`},
+		{`as_of = "2026-02-30"`, "", "2026-03-20", "! no such day"},
+		{"as_of = 2026-03-21T09:15:00Z", "", "x", "! desk's own clock"},
+		{"as_of = 2026-03-21T09:15:00+02:00", "", "x", "! desk's own clock"},
+		{"as_of = 09:15:00", "", "x", "! a time without a date"},
+		{"as_of = 20260321", "", "x", "! expected a date"},
+		{"as_of = {}", "", "x", "! expected a date"},
+	} {
+		cfg, err := parseConfig("reporting_currency = \"USD\"\n"+c.file, c.flag, c.folder)
+		want, refused := strings.CutPrefix(c.want, "! ")
+		switch {
+		case refused && (err == nil || !strings.Contains(err.Error(), want)):
+			t.Errorf("%+v: %v", c, err)
+		case !refused && err != nil:
+			t.Errorf("%+v: %v", c, err)
+		case !refused && cfg.AsOf.String() != want:
+			t.Errorf("%+v: %s", c, cfg.AsOf)
+		}
+	}
+}
+
+// Each error names the key at fault.
+func TestConfigErrors(t *testing.T) {
+	for text, want := range map[string]string{
+		`x = 1`:                               "unknown key x",
+		"[csv]\nseparator = ';'":              "unknown key csv.separator",
+		"[spreadsheet]\nmax_lines = 1":        "unknown key spreadsheet",
+		"[csv]\ndelimiter = ':'":              `csv.delimiter is ":"`,
+		"[csv]\ndelimiter = ',,'":             `csv.delimiter is ",,"`,
+		"[csv]\ndecimal_comma = 'yes'":        "decimal_comma",
+		"[csv]\ndate_format = 'D.M.Y'":        `csv.date_format is "D.M.Y"`,
+		"[csv]\nencoding = 'latin'":           `csv.encoding is "latin": expected one of utf-8, windows-1252, utf-16`,
+		"[vols]\nunit = 'bp'":                 `vols.unit is "bp"`,
+		"[workbook]\nmax_lines = -1":          "workbook.max_lines is -1",
+		"[workbook]\nmax_lines = 1000001":     "workbook.max_lines is 1000001",
+		"[parquet]\ncompression = 'lz4'":      `parquet.compression is "lz4"`,
+		"[columns.quotes]\nprice = 'Px'":      "columns.quotes: there is no such table; the tables are positions, underlyings",
+		"[columns.positions]\nprice = 'Px'":   "columns.positions.price: there is no such column",
+		"[columns.positions]\nstrike = ' '":   "columns.positions.strike: expected a header",
+		"calendar = \"a\\u0001\"":             "calendar: the text holds a control character",
+		"a = ":                                "line 2",
+		"reporting_currency = 'EUR'":          "line 2",
+		"[csv]\n[csv]":                        "csv",
+		"csv = 1":                             "csv",
+		"columns = 1":                         "columns",
+		"[[columns.positions]]\nstrike = 'K'": "columns.positions: expected a section",
+		"[columns]\npositions = 'strike'":     "columns.positions: expected a section",
+		"[columns.positions]\nstrike = 1":     "columns.positions.strike: expected a header",
+		"[columns.positions.strike]\nx = 'y'": "columns.positions.strike: expected a header",
+	} {
+		_, err := parseConfig("reporting_currency = \"USD\"\n"+text, "2026-03-20", "x")
+		if err == nil || !strings.Contains(err.Error(), want) {
+			t.Errorf("%q: %v, want %q", text, err, want)
+		}
+	}
+	for _, text := range []string{"", `reporting_currency = ""`, `reporting_currency = "US"`, `reporting_currency = "U1D"`, `reporting_currency = "dollar"`} {
+		if _, err := parseConfig(text, "2026-03-20", "x"); err == nil || !strings.Contains(err.Error(), "reporting_currency is needed") {
+			t.Errorf("%q: %v", text, err)
+		}
+	}
+}
+
+// The error of a folder's configuration begins with the file's path.
+func TestConfigPath(t *testing.T) {
+	dir := folderOf(t, map[string]string{"run.toml": "colour = 1\nreporting_currency = 'USD'"})
+	f, err := OpenFolder(dir)
+	if err != nil {
+		t.Fatal(err)
+	}
+	if _, err := f.Config("2026-03-20"); err == nil || !strings.HasPrefix(err.Error(), dir) || !strings.Contains(err.Error(), "run.toml: unknown key colour") {
+		t.Error(err)
+	}
+}
+
+func FuzzConfig(f *testing.F) {
+	f.Add("as_of = 2026-03-20\nreporting_currency = \"USD\"\n[columns.positions]\nstrike = \"K\"", "", "x")
+	f.Add("reporting_currency = 'eur'\n[csv]\ndelimiter = ';'\ndate_format='DD.MM.YYYY'", "2026-03-20T10:00", "2026-03-20")
+	f.Fuzz(func(t *testing.T, text, asOf, folder string) {
+		cfg, err := parseConfig(text, asOf, folder)
+		if err != nil {
+			return
+		}
+		if !isCurrency(cfg.ReportingCurrency) || cfg.AsOf.Day < firstDay || cfg.AsOf.Day > lastDay || cfg.Parquet.Compression == "" {
+			t.Errorf("%+v", cfg)
+		}
+	})
+}
