@@ -33,9 +33,31 @@ func (c *capture) AddFS(fs.FS) error { panic("xlsx: unexpected call") }
 // Close does nothing.
 func (c *capture) Close() error { return nil }
 
+// chunks is a buffer that grows without moving what it holds.
+type chunks struct {
+	list [][]byte
+	size int64
+}
+
+func (c *chunks) Write(b []byte) (int, error) {
+	n := len(b)
+	c.size += int64(n)
+	for len(b) > 0 {
+		last := len(c.list) - 1
+		if last < 0 || len(c.list[last]) == cap(c.list[last]) {
+			c.list = append(c.list, make([]byte, 0, 1<<10<<min(len(c.list), 6)))
+			last++
+		}
+		fits := min(len(b), cap(c.list[last])-len(c.list[last]))
+		c.list[last] = append(c.list[last], b[:fits]...)
+		b = b[fits:]
+	}
+	return n, nil
+}
+
 // piece is a stretch of a part, compressed on its own.
 type piece struct {
-	packed bytes.Buffer
+	packed chunks
 	flate  *flate.Writer
 	sum    uint32 // CRC of the stretch
 	size   int64  // before compression
@@ -90,7 +112,7 @@ func writeZip(w io.Writer, parts []part) error {
 		for _, s := range p.pieces {
 			h.CRC32 = combineCRC(h.CRC32, s.sum, s.size)
 			h.UncompressedSize64 += uint64(s.size)
-			h.CompressedSize64 += uint64(s.packed.Len())
+			h.CompressedSize64 += uint64(s.packed.size)
 		}
 		h.CompressedSize64 += uint64(len(finalBlock))
 		entry, err := zw.CreateRaw(h)
@@ -98,8 +120,10 @@ func writeZip(w io.Writer, parts []part) error {
 			return err
 		}
 		for _, s := range p.pieces {
-			if _, err := entry.Write(s.packed.Bytes()); err != nil {
-				return err
+			for _, b := range s.packed.list {
+				if _, err := entry.Write(b); err != nil {
+					return err
+				}
 			}
 		}
 		if _, err := entry.Write(finalBlock); err != nil {
