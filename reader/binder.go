@@ -151,7 +151,7 @@ func (n *Binder) refuse(b *schema.Batch) {
 		x := n.problems[k]
 		var others []string
 		for k++; k < len(n.problems) && n.problems[k].row == x.row; k++ {
-			if c := n.p.o.names[n.problems[k].column]; !slices.Contains(others, c) {
+			if c, _ := n.named(n.problems[k].column); !slices.Contains(others, c) {
 				others = append(others, c)
 			}
 		}
@@ -171,8 +171,8 @@ func (n *Binder) reject(b *schema.Batch, x problem, others []string) schema.Reje
 	if x.column < 0 {
 		return r
 	}
-	r.Column = n.p.o.names[x.column]
-	if at := n.p.o.at[x.column]; at >= 0 {
+	var at int
+	if r.Column, at = n.named(x.column); at >= 0 {
 		r.Value = n.cells.value(at, x.row)
 	} else {
 		r.Reason += "; the file has no such column"

@@ -2,6 +2,7 @@ package reader
 
 import (
 	"math"
+	"unicode/utf8"
 
 	"nightbook/schema"
 )
@@ -11,7 +12,8 @@ type need func(i int) *finding
 
 func none(int) *finding { return nil }
 
-// extra carries the house's own columns through as they came.
+// extra carries the house's own columns through as they came. A text that is
+// not UTF-8 could not be written again.
 func (n *Binder) extra(b *schema.Batch) {
 	for k, at := range n.p.o.extra {
 		to := &b.Extra[k]
@@ -25,11 +27,27 @@ func (n *Binder) extra(b *schema.Batch) {
 				to.AppendSpan(uint32(start), uint32(len(b.Raw.Data)))
 			}
 		}
+		to.Data = b.Raw.Data
+		for i := range n.cells.N {
+			if !utf8.Valid(to.Bytes(i)) {
+				n.wrong(i, positionColumns+k, notUTF8)
+			}
+		}
 	}
 	b.LineID.Data = b.Raw.Data
 	for k := range b.Extra {
-		b.Extra[k].Data = b.Raw.Data
+		b.Extra[k].Data = b.Raw.Data // it may have grown
 	}
+}
+
+// named returns a column's name in the file and its place there, or -1: one of
+// ours or, behind those, one of the house's own.
+func (n *Binder) named(column int) (name string, at int) {
+	if column >= positionColumns {
+		k := column - positionColumns
+		return n.p.extra[k], n.p.o.extra[k]
+	}
+	return n.p.o.names[column], n.p.o.at[column]
 }
 
 // ids reads line_id.
