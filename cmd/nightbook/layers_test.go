@@ -36,7 +36,7 @@ var layers = []struct {
 	{"writer/parquet", []string{"schema"}},
 	{"writer/xlsx", []string{"schema"}},
 	{"writer/report", []string{"schema", "writer/xlsx"}},
-	{"samples", []string{"schema"}},
+	{"samples", []string{"schema", "samples"}},
 	{"cmd", []string{"schema", "reader", "risk", "writer", "samples"}},
 }
 
