@@ -17,104 +17,122 @@ import (
 // a = S·e^(−qT) and b = K·e^(−rT). See bsmTerms for the names.
 type scratch4 struct{ an, bn, d1, d2, rv, sq, x [blockLines / width4]lanes4 }
 
-// columns4 views lines i to i+lines of a slice as vectors.
-func columns4(s []float64, i, lines int) []lanes4 {
-	return unsafe.Slice((*lanes4)(unsafe.Pointer(&s[i : i+lines][0])), lines/width4)
+// columns4 views n vectors of a slice from line i on.
+func columns4(s []float64, i, n int) []lanes4 {
+	return unsafe.Slice((*lanes4)(unsafe.Pointer(&s[i : i+n*width4][0])), n)
 }
 
 func (b *BSM) run4(want outputs) {
-	n := len(b.Spot)
-	if n < width4 {
-		b.runGeneric(want, 0, n)
+	lines := len(b.Spot)
+	if lines < width4 {
+		b.runGeneric(want, 0, lines)
 		return
 	}
 	var room [unsafe.Sizeof(scratch4{}) + 64]byte
 	sc := (*scratch4)(aligned(unsafe.Pointer(&room)))
-	for i := 0; i < n; {
-		if n-i < width4 {
-			i = n - width4 // value some lines twice rather than the last few one by one
+	for i := 0; i < lines; {
+		if lines-i < width4 {
+			i = lines - width4 // value some lines twice rather than the last few one by one
 		}
-		lines := min(n-i, blockLines) &^ (width4 - 1)
-		if b.block4(sc, want, i, lines) {
-			b.edgeLines(want, i, i+lines)
+		n := min(lines-i, blockLines) / width4
+		if b.block4(sc, want, i, n) {
+			b.edgeLines(want, i, i+n*width4)
 		}
-		i += lines
+		i += n * width4
 	}
 	archsimd.ClearAVXUpperBits()
 }
 
-// block4 runs one block and reports whether a line in it lies outside the box.
-func (b *BSM) block4(sc *scratch4, want outputs, i, lines int) bool {
+// block4 runs n vectors from line i on through the stages, and reports whether a
+// line among them lies outside the box.
+func (b *BSM) block4(sc *scratch4, want outputs, i, n int) bool {
 	c := consts4
-	s, k, t, v := columns4(b.Spot, i, lines), columns4(b.Strike, i, lines), columns4(b.Time, i, lines), columns4(b.Vol, i, lines)
-	r, q, w := columns4(b.Rate, i, lines), columns4(b.Yield, i, lines), columns4(b.Sign, i, lines)
-	discounted4(sc.an[:], s, q, t, c)
-	discounted4(sc.bn[:], k, r, t, c)
-	outside := distances4(sc, s, k, t, v, r, q, w, c)
-	density4(sc, len(s), c)
-	tail4(sc.an[:], sc.d1[:], sc.x[:], w, c)
-	tail4(sc.bn[:], sc.d2[:], sc.x[:], w, c)
-	price := columns4(b.Price, i, lines)
+	s, k, t, v := columns4(b.Spot, i, n), columns4(b.Strike, i, n), columns4(b.Time, i, n), columns4(b.Vol, i, n)
+	r, q, w := columns4(b.Rate, i, n), columns4(b.Yield, i, n), columns4(b.Sign, i, n)
+	outside := outside4(s, k, t, v, r, q, w, c)
+	discounted4(sc.an[:n], s, q, t, c)
+	discounted4(sc.bn[:n], k, r, t, c)
+	drifted4(sc.d1[:n], s, k, t, r, q, c)
+	distances4(sc, t, v, c)
+	density4(sc, n, c)
+	tail4(sc.an[:n], sc.d1[:n], sc.x[:n], w, c)
+	tail4(sc.bn[:n], sc.d2[:n], sc.x[:n], w, c)
 	if want == priceOnly {
-		prices4(sc, price)
+		difference4(columns4(b.Price, i, n), sc.an[:n], sc.bn[:n])
 		return outside
 	}
-	delta, gamma, vega := columns4(b.Delta, i, lines), columns4(b.Gamma, i, lines), columns4(b.Vega, i, lines)
-	theta, rho := columns4(b.Theta, i, lines), columns4(b.Rho, i, lines)
-	core4(sc, s, t, v, r, q, price, delta, gamma, vega, theta, rho, c)
+	b.core4(sc, i, n, c)
 	if want == allOutputs {
-		second4(sc, s, t, v, r, q, delta, columns4(b.CarryRho, i, lines), columns4(b.Vanna, i, lines), columns4(b.Volga, i, lines), columns4(b.Charm, i, lines), c)
-		residual4(s, v, r, q, price, delta, gamma, theta, columns4(b.Residual, i, lines), c)
+		b.further4(sc, i, n, c)
 	}
 	return outside
 }
 
 // discounted4 sets dst to p·e^(−rate·t).
 func discounted4(dst, p, rate, t []lanes4, c *table4) {
-	n := len(p)
-	dst, rate, t = dst[:n], rate[:n], t[:n]
-	for j := range p {
-		tm := load4(&t[j])
-		neg := load4(&c.zero).Sub(load4(&rate[j]))
-		e := neg.Mul(tm)
-		red, shifted := expReduce4(e, neg.MulAdd(tm, load4(&c.zero).Sub(e)), c)
-		load4(&p[j]).Mul(scaleOnce4(expSum4(red, c), shifted, c)).Store(&dst[j])
+	n := len(dst)
+	p, rate, t = p[:n], rate[:n], t[:n]
+	for j := range dst {
+		zero, tv := load4(&c.zero), load4(&t[j])
+		neg := zero.Sub(load4(&rate[j]))
+		e := neg.Mul(tv)
+		r, shifted := expReduce4(e, neg.MulAdd(tv, zero.Sub(e)), c)
+		load4(&p[j]).Mul(scaleOnce4(expSum4(r, c), shifted, c)).Store(&dst[j])
 	}
 }
 
-// distances4 sets d1, d2, rv and sq, and reports whether any line is outside the box.
-func distances4(sc *scratch4, s, k, t, v, r, q, w []lanes4, c *table4) bool {
+// outside4 reports whether a line is outside the box.
+func outside4(s, k, t, v, r, q, w []lanes4, c *table4) bool {
 	n := len(s)
 	k, t, v, r, q, w = k[:n], t[:n], v[:n], r[:n], q[:n], w[:n]
-	d1, d2, rv, sq := sc.d1[:n], sc.d2[:n], sc.rv[:n], sc.sq[:n]
-	out := loadBits4(&c.oneBits)
-	out = out.Xor(out)
+	priceFrom, timeFrom := loadBits4(&c.priceFrom), loadBits4(&c.timeFrom)
+	out := priceFrom.Xor(priceFrom)
 	for j := range s {
-		sv, kv, tv, vv, rt, qt := load4(&s[j]), load4(&k[j]), load4(&t[j]), load4(&v[j]), load4(&r[j]), load4(&q[j])
-		root := tv.Sqrt()
-		root.Store(&sq[j])
-		vs := vv.Mul(root)
-		inv := load4(&c.one).Div(vs)
-		inv.Store(&rv[j])
-		k2, e := alignBinades4(sv, kv, c)
-		m := e.MulAdd(load4(&c.ln2Hi), rt.Sub(qt).MulAdd(tv, atanhSum4(sv, k2, e, c)))
-		d := m.Mul(inv)
-		d = d.MulAdd(load4(&c.zero).Sub(vs), m).MulAdd(inv, d)
-		vs.MulAdd(load4(&c.half), d).Store(&d1[j])
-		vs.MulAdd(load4(&c.negHalf), d).Store(&d2[j])
-		prices := sv.AsUint64x4().Sub(loadBits4(&c.priceFrom)).Or(kv.AsUint64x4().Sub(loadBits4(&c.priceFrom))).And(loadBits4(&c.priceMask))
-		times := tv.AsUint64x4().Sub(loadBits4(&c.timeFrom)).Or(vv.AsUint64x4().Sub(loadBits4(&c.timeFrom))).And(loadBits4(&c.timeMask))
-		rates := rt.AsUint64x4().Or(qt.AsUint64x4()).And(loadBits4(&c.rateMask))
+		prices := load4(&s[j]).AsUint64x4().Sub(priceFrom).Or(load4(&k[j]).AsUint64x4().Sub(priceFrom)).And(loadBits4(&c.priceMask))
+		times := load4(&t[j]).AsUint64x4().Sub(timeFrom).Or(load4(&v[j]).AsUint64x4().Sub(timeFrom)).And(loadBits4(&c.timeMask))
+		rates := load4(&r[j]).AsUint64x4().Or(load4(&q[j]).AsUint64x4()).And(loadBits4(&c.rateMask))
 		signs := load4(&w[j]).AsUint64x4().And(loadBits4(&c.absBits)).Xor(loadBits4(&c.oneBits))
 		out = out.Or(prices.Or(times)).Or(rates.Or(signs))
 	}
 	return any4(out)
 }
 
+// drifted4 sets dst to ln(s/k) + (r−q)·t.
+func drifted4(dst, s, k, t, r, q []lanes4, c *table4) {
+	n := len(dst)
+	s, k, t, r, q = s[:n], k[:n], t[:n], r[:n], q[:n]
+	for j := range dst {
+		sv := load4(&s[j])
+		k2, e := alignBinades4(sv, load4(&k[j]), c)
+		rest := atanhSum4(sv, k2, e, c)
+		rest = load4(&r[j]).Sub(load4(&q[j])).MulAdd(load4(&t[j]), rest)
+		e.MulAdd(load4(&c.ln2Hi), rest).Store(&dst[j])
+	}
+}
+
+// distances4 sets sq, rv and d2, and turns d1 from ln(S/K) + (r−q)T into d₁.
+func distances4(sc *scratch4, t, v []lanes4, c *table4) {
+	n := len(t)
+	v = v[:n]
+	d1, d2, rv, sq := sc.d1[:n], sc.d2[:n], sc.rv[:n], sc.sq[:n]
+	for j := range t {
+		root := load4(&t[j]).Sqrt()
+		root.Store(&sq[j])
+		vs := load4(&v[j]).Mul(root)
+		inv := load4(&c.one).Div(vs)
+		inv.Store(&rv[j])
+		m := load4(&d1[j])
+		d := m.Mul(inv)
+		d = d.MulAdd(load4(&c.zero).Sub(vs), m).MulAdd(inv, d)
+		vs.MulAdd(load4(&c.half), d).Store(&d1[j])
+		vs.MulAdd(load4(&c.negHalf), d).Store(&d2[j])
+	}
+}
+
 // density4 sets x to √(2π)·S·e^(−qT)·φ(d₁), from the smaller distance.
 func density4(sc *scratch4, n int, c *table4) {
 	a, b, d1, d2, x := sc.an[:n], sc.bn[:n], sc.d1[:n], sc.d2[:n], sc.x[:n]
-	for j := range a {
+	for j := range n {
 		y1, y2 := abs4(load4(&d1[j]), c), abs4(load4(&d2[j]), c)
 		hi, lo := halfSquare4(y1.Min(y2).Min(load4(&c.gaussEnd)), c)
 		r, t := expReduce4(hi, lo, c)
@@ -125,74 +143,68 @@ func density4(sc *scratch4, n int, c *table4) {
 
 // tail4 turns p, a discounted price, into w·p·Φ(w·d).
 func tail4(p, d, x, w []lanes4, c *table4) {
-	n := len(w)
-	p, d, x = p[:n], d[:n], x[:n]
-	for j := range w {
-		dv, sign, pv := load4(&d[j]), load4(&w[j]), load4(&p[j])
+	n := len(p)
+	d, x, w = d[:n], x[:n], w[:n]
+	for j := range p {
+		dv, sign, pv, zero := load4(&d[j]), load4(&w[j]), load4(&p[j]), load4(&c.zero)
 		y := abs4(dv, c)
 		z := y.Mul(y)
 		tail := load4(&x[j]).Mul(millsTop4(y, z, c).Div(millsBottom4(y, z, c)))
-		zero := load4(&c.zero)
 		tail = pv.Sub(tail).Merge(tail, sign.Mul(dv).Greater(zero))
 		sign.MulAdd(tail, zero).Store(&p[j])
 	}
 }
 
-func prices4(sc *scratch4, price []lanes4) {
-	an, bn := sc.an[:len(price)], sc.bn[:len(price)]
-	for j := range price {
-		load4(&an[j]).Sub(load4(&bn[j])).Store(&price[j])
+// difference4 sets dst to x − y: the price, where nothing else is wanted.
+func difference4(dst, x, y []lanes4) {
+	n := len(dst)
+	x, y = x[:n], y[:n]
+	for j := range dst {
+		load4(&x[j]).Sub(load4(&y[j])).Store(&dst[j])
 	}
 }
 
-func core4(sc *scratch4, s, t, v, r, q, price, delta, gamma, vega, theta, rho []lanes4, c *table4) {
-	n := len(s)
-	t, v, r, q = t[:n], v[:n], r[:n], q[:n]
-	price, delta, gamma, vega, theta, rho = price[:n], delta[:n], gamma[:n], vega[:n], theta[:n], rho[:n]
-	sa, sb, srv, ssq, sx := sc.an[:n], sc.bn[:n], sc.rv[:n], sc.sq[:n], sc.x[:n]
-	for j := range s {
-		zero := load4(&c.zero)
-		an, bn, x := load4(&sa[j]), load4(&sb[j]), load4(&sx[j]).Mul(load4(&c.invSqrt2Pi))
+// core4 sets the outputs of Core, as coreGeneric does.
+func (b *BSM) core4(sc *scratch4, i, n int, c *table4) {
+	s, t, v, r, q := columns4(b.Spot, i, n), columns4(b.Time, i, n), columns4(b.Vol, i, n), columns4(b.Rate, i, n), columns4(b.Yield, i, n)
+	price, delta, gamma := columns4(b.Price, i, n), columns4(b.Delta, i, n), columns4(b.Gamma, i, n)
+	vega, theta, rho := columns4(b.Vega, i, n), columns4(b.Theta, i, n), columns4(b.Rho, i, n)
+	san, sbn, srv, ssq, sx := sc.an[:n], sc.bn[:n], sc.rv[:n], sc.sq[:n], sc.x[:n]
+	for j := range n {
+		zero, vv := load4(&c.zero), load4(&v[j])
+		an, bn, x := load4(&san[j]), load4(&sbn[j]), load4(&sx[j]).Mul(load4(&c.invSqrt2Pi))
 		rs := load4(&c.one).Div(load4(&s[j]))
 		g := x.Mul(load4(&srv[j]))
 		an.Sub(bn).Store(&price[j])
 		an.Mul(rs).Store(&delta[j])
 		g.Mul(rs).Mul(rs).Store(&gamma[j])
 		x.Mul(load4(&ssq[j])).Store(&vega[j])
-		vv := load4(&v[j])
 		decay := g.MulAdd(zero.Sub(vv.Mul(vv.Mul(load4(&c.half)))), zero)
 		load4(&q[j]).MulAdd(an, zero.Sub(load4(&r[j])).MulAdd(bn, decay)).Store(&theta[j])
 		load4(&t[j]).Mul(bn).Store(&rho[j])
 	}
 }
 
-// second4 sets the remaining derivatives.
-func second4(sc *scratch4, s, t, v, r, q, delta, carryRho, vanna, volga, charm []lanes4, c *table4) {
-	n := len(s)
-	t, v, r, q, delta, carryRho, vanna, volga, charm = t[:n], v[:n], r[:n], q[:n], delta[:n], carryRho[:n], vanna[:n], volga[:n], charm[:n]
-	sa, srv, ssq, sx, sd1, sd2 := sc.an[:n], sc.rv[:n], sc.sq[:n], sc.x[:n], sc.d1[:n], sc.d2[:n]
-	for j := range s {
-		zero := load4(&c.zero)
-		rs := load4(&c.one).Div(load4(&s[j]))
-		rv, tv, d2, vv, qt := load4(&srv[j]), load4(&t[j]), load4(&sd2[j]), load4(&v[j]), load4(&q[j])
+// further4 sets what All gives beyond Core, as allGeneric does.
+func (b *BSM) further4(sc *scratch4, i, n int, c *table4) {
+	s, t, v, r, q := columns4(b.Spot, i, n), columns4(b.Time, i, n), columns4(b.Vol, i, n), columns4(b.Rate, i, n), columns4(b.Yield, i, n)
+	price, delta, gamma, theta := columns4(b.Price, i, n), columns4(b.Delta, i, n), columns4(b.Gamma, i, n), columns4(b.Theta, i, n)
+	carryRho, vanna, volga := columns4(b.CarryRho, i, n), columns4(b.Vanna, i, n), columns4(b.Volga, i, n)
+	charm, residual := columns4(b.Charm, i, n), columns4(b.Residual, i, n)
+	san, srv, ssq, sx, sd1, sd2 := sc.an[:n], sc.rv[:n], sc.sq[:n], sc.x[:n], sc.d1[:n], sc.d2[:n]
+	for j := range n {
+		zero, sv, tv, vv, rt, qt := load4(&c.zero), load4(&s[j]), load4(&t[j]), load4(&v[j]), load4(&r[j]), load4(&q[j])
+		rs := load4(&c.one).Div(sv)
+		rv, d2 := load4(&srv[j]), load4(&sd2[j])
 		g := load4(&sx[j]).Mul(load4(&c.invSqrt2Pi)).Mul(rv)
 		gs := g.Mul(rs)
-		zero.Sub(tv).MulAdd(load4(&sa[j]), zero).Store(&carryRho[j])
+		zero.Sub(tv).MulAdd(load4(&san[j]), zero).Store(&carryRho[j])
 		gs.Mul(load4(&ssq[j])).MulAdd(zero.Sub(d2), zero).Store(&vanna[j])
 		g.Mul(tv).MulAdd(load4(&sd1[j]).Mul(d2), zero).Store(&volga[j])
-		drift := d2.Mul(vv.Mul(vv.Mul(load4(&c.half)))).MulAdd(rv, qt.Sub(load4(&r[j])))
-		qt.MulAdd(load4(&delta[j]), gs.MulAdd(drift, zero)).Store(&charm[j])
-	}
-}
-
-func residual4(s, v, r, q, price, delta, gamma, theta, residual []lanes4, c *table4) {
-	n := len(s)
-	v, r, q, price, delta, gamma, theta, residual = v[:n], r[:n], q[:n], price[:n], delta[:n], gamma[:n], theta[:n], residual[:n]
-	for j := range s {
-		sv, vv, rt, p := load4(&s[j]), load4(&v[j]), load4(&r[j]), load4(&price[j])
-		e := vv.Mul(vv.Mul(load4(&c.half))).MulAdd(load4(&gamma[j]).Mul(sv).Mul(sv), load4(&theta[j]))
-		e = rt.Sub(load4(&q[j])).MulAdd(sv.Mul(load4(&delta[j])), e)
-		e = load4(&c.zero).Sub(rt).MulAdd(p, e)
-		abs4(e, c).Div(abs4(p, c).Max(sv.Mul(load4(&c.residualFloor)))).Store(&residual[j])
+		halfVar, dv, pv := vv.Mul(vv.Mul(load4(&c.half))), load4(&delta[j]), load4(&price[j])
+		qt.MulAdd(dv, gs.MulAdd(d2.Mul(halfVar).MulAdd(rv, qt.Sub(rt)), zero)).Store(&charm[j])
+		e := halfVar.MulAdd(load4(&gamma[j]).Mul(sv).Mul(sv), load4(&theta[j]))
+		e = zero.Sub(rt).MulAdd(pv, rt.Sub(qt).MulAdd(sv.Mul(dv), e))
+		abs4(e, c).Div(abs4(pv, c).Max(sv.Mul(load4(&c.residualFloor)))).Store(&residual[j])
 	}
 }

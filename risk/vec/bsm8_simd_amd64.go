@@ -15,104 +15,122 @@ import (
 // a = S·e^(−qT) and b = K·e^(−rT). See bsmTerms for the names.
 type scratch8 struct{ an, bn, d1, d2, rv, sq, x [blockLines / width8]lanes8 }
 
-// columns8 views lines i to i+lines of a slice as vectors.
-func columns8(s []float64, i, lines int) []lanes8 {
-	return unsafe.Slice((*lanes8)(unsafe.Pointer(&s[i : i+lines][0])), lines/width8)
+// columns8 views n vectors of a slice from line i on.
+func columns8(s []float64, i, n int) []lanes8 {
+	return unsafe.Slice((*lanes8)(unsafe.Pointer(&s[i : i+n*width8][0])), n)
 }
 
 func (b *BSM) run8(want outputs) {
-	n := len(b.Spot)
-	if n < width8 {
-		b.runGeneric(want, 0, n)
+	lines := len(b.Spot)
+	if lines < width8 {
+		b.runGeneric(want, 0, lines)
 		return
 	}
 	var room [unsafe.Sizeof(scratch8{}) + 64]byte
 	sc := (*scratch8)(aligned(unsafe.Pointer(&room)))
-	for i := 0; i < n; {
-		if n-i < width8 {
-			i = n - width8 // value some lines twice rather than the last few one by one
+	for i := 0; i < lines; {
+		if lines-i < width8 {
+			i = lines - width8 // value some lines twice rather than the last few one by one
 		}
-		lines := min(n-i, blockLines) &^ (width8 - 1)
-		if b.block8(sc, want, i, lines) {
-			b.edgeLines(want, i, i+lines)
+		n := min(lines-i, blockLines) / width8
+		if b.block8(sc, want, i, n) {
+			b.edgeLines(want, i, i+n*width8)
 		}
-		i += lines
+		i += n * width8
 	}
 	archsimd.ClearAVXUpperBits()
 }
 
-// block8 runs one block and reports whether a line in it lies outside the box.
-func (b *BSM) block8(sc *scratch8, want outputs, i, lines int) bool {
+// block8 runs n vectors from line i on through the stages, and reports whether a
+// line among them lies outside the box.
+func (b *BSM) block8(sc *scratch8, want outputs, i, n int) bool {
 	c := consts8
-	s, k, t, v := columns8(b.Spot, i, lines), columns8(b.Strike, i, lines), columns8(b.Time, i, lines), columns8(b.Vol, i, lines)
-	r, q, w := columns8(b.Rate, i, lines), columns8(b.Yield, i, lines), columns8(b.Sign, i, lines)
-	discounted8(sc.an[:], s, q, t, c)
-	discounted8(sc.bn[:], k, r, t, c)
-	outside := distances8(sc, s, k, t, v, r, q, w, c)
-	density8(sc, len(s), c)
-	tail8(sc.an[:], sc.d1[:], sc.x[:], w, c)
-	tail8(sc.bn[:], sc.d2[:], sc.x[:], w, c)
-	price := columns8(b.Price, i, lines)
+	s, k, t, v := columns8(b.Spot, i, n), columns8(b.Strike, i, n), columns8(b.Time, i, n), columns8(b.Vol, i, n)
+	r, q, w := columns8(b.Rate, i, n), columns8(b.Yield, i, n), columns8(b.Sign, i, n)
+	outside := outside8(s, k, t, v, r, q, w, c)
+	discounted8(sc.an[:n], s, q, t, c)
+	discounted8(sc.bn[:n], k, r, t, c)
+	drifted8(sc.d1[:n], s, k, t, r, q, c)
+	distances8(sc, t, v, c)
+	density8(sc, n, c)
+	tail8(sc.an[:n], sc.d1[:n], sc.x[:n], w, c)
+	tail8(sc.bn[:n], sc.d2[:n], sc.x[:n], w, c)
 	if want == priceOnly {
-		prices8(sc, price)
+		difference8(columns8(b.Price, i, n), sc.an[:n], sc.bn[:n])
 		return outside
 	}
-	delta, gamma, vega := columns8(b.Delta, i, lines), columns8(b.Gamma, i, lines), columns8(b.Vega, i, lines)
-	theta, rho := columns8(b.Theta, i, lines), columns8(b.Rho, i, lines)
-	core8(sc, s, t, v, r, q, price, delta, gamma, vega, theta, rho, c)
+	b.core8(sc, i, n, c)
 	if want == allOutputs {
-		second8(sc, s, t, v, r, q, delta, columns8(b.CarryRho, i, lines), columns8(b.Vanna, i, lines), columns8(b.Volga, i, lines), columns8(b.Charm, i, lines), c)
-		residual8(s, v, r, q, price, delta, gamma, theta, columns8(b.Residual, i, lines), c)
+		b.further8(sc, i, n, c)
 	}
 	return outside
 }
 
 // discounted8 sets dst to p·e^(−rate·t).
 func discounted8(dst, p, rate, t []lanes8, c *table8) {
-	n := len(p)
-	dst, rate, t = dst[:n], rate[:n], t[:n]
-	for j := range p {
-		tm := load8(&t[j])
-		neg := load8(&c.zero).Sub(load8(&rate[j]))
-		e := neg.Mul(tm)
-		red, shifted := expReduce8(e, neg.MulAdd(tm, load8(&c.zero).Sub(e)), c)
-		load8(&p[j]).Mul(scaleOnce8(expSum8(red, c), shifted, c)).Store(&dst[j])
+	n := len(dst)
+	p, rate, t = p[:n], rate[:n], t[:n]
+	for j := range dst {
+		zero, tv := load8(&c.zero), load8(&t[j])
+		neg := zero.Sub(load8(&rate[j]))
+		e := neg.Mul(tv)
+		r, shifted := expReduce8(e, neg.MulAdd(tv, zero.Sub(e)), c)
+		load8(&p[j]).Mul(scaleOnce8(expSum8(r, c), shifted, c)).Store(&dst[j])
 	}
 }
 
-// distances8 sets d1, d2, rv and sq, and reports whether any line is outside the box.
-func distances8(sc *scratch8, s, k, t, v, r, q, w []lanes8, c *table8) bool {
+// outside8 reports whether a line is outside the box.
+func outside8(s, k, t, v, r, q, w []lanes8, c *table8) bool {
 	n := len(s)
 	k, t, v, r, q, w = k[:n], t[:n], v[:n], r[:n], q[:n], w[:n]
-	d1, d2, rv, sq := sc.d1[:n], sc.d2[:n], sc.rv[:n], sc.sq[:n]
-	out := loadBits8(&c.oneBits)
-	out = out.Xor(out)
+	priceFrom, timeFrom := loadBits8(&c.priceFrom), loadBits8(&c.timeFrom)
+	out := priceFrom.Xor(priceFrom)
 	for j := range s {
-		sv, kv, tv, vv, rt, qt := load8(&s[j]), load8(&k[j]), load8(&t[j]), load8(&v[j]), load8(&r[j]), load8(&q[j])
-		root := tv.Sqrt()
-		root.Store(&sq[j])
-		vs := vv.Mul(root)
-		inv := load8(&c.one).Div(vs)
-		inv.Store(&rv[j])
-		k2, e := alignBinades8(sv, kv, c)
-		m := e.MulAdd(load8(&c.ln2Hi), rt.Sub(qt).MulAdd(tv, atanhSum8(sv, k2, e, c)))
-		d := m.Mul(inv)
-		d = d.MulAdd(load8(&c.zero).Sub(vs), m).MulAdd(inv, d)
-		vs.MulAdd(load8(&c.half), d).Store(&d1[j])
-		vs.MulAdd(load8(&c.negHalf), d).Store(&d2[j])
-		prices := sv.AsUint64x8().Sub(loadBits8(&c.priceFrom)).Or(kv.AsUint64x8().Sub(loadBits8(&c.priceFrom))).And(loadBits8(&c.priceMask))
-		times := tv.AsUint64x8().Sub(loadBits8(&c.timeFrom)).Or(vv.AsUint64x8().Sub(loadBits8(&c.timeFrom))).And(loadBits8(&c.timeMask))
-		rates := rt.AsUint64x8().Or(qt.AsUint64x8()).And(loadBits8(&c.rateMask))
+		prices := load8(&s[j]).AsUint64x8().Sub(priceFrom).Or(load8(&k[j]).AsUint64x8().Sub(priceFrom)).And(loadBits8(&c.priceMask))
+		times := load8(&t[j]).AsUint64x8().Sub(timeFrom).Or(load8(&v[j]).AsUint64x8().Sub(timeFrom)).And(loadBits8(&c.timeMask))
+		rates := load8(&r[j]).AsUint64x8().Or(load8(&q[j]).AsUint64x8()).And(loadBits8(&c.rateMask))
 		signs := load8(&w[j]).AsUint64x8().And(loadBits8(&c.absBits)).Xor(loadBits8(&c.oneBits))
 		out = out.Or(prices.Or(times)).Or(rates.Or(signs))
 	}
 	return any8(out)
 }
 
+// drifted8 sets dst to ln(s/k) + (r−q)·t.
+func drifted8(dst, s, k, t, r, q []lanes8, c *table8) {
+	n := len(dst)
+	s, k, t, r, q = s[:n], k[:n], t[:n], r[:n], q[:n]
+	for j := range dst {
+		sv := load8(&s[j])
+		k2, e := alignBinades8(sv, load8(&k[j]), c)
+		rest := atanhSum8(sv, k2, e, c)
+		rest = load8(&r[j]).Sub(load8(&q[j])).MulAdd(load8(&t[j]), rest)
+		e.MulAdd(load8(&c.ln2Hi), rest).Store(&dst[j])
+	}
+}
+
+// distances8 sets sq, rv and d2, and turns d1 from ln(S/K) + (r−q)T into d₁.
+func distances8(sc *scratch8, t, v []lanes8, c *table8) {
+	n := len(t)
+	v = v[:n]
+	d1, d2, rv, sq := sc.d1[:n], sc.d2[:n], sc.rv[:n], sc.sq[:n]
+	for j := range t {
+		root := load8(&t[j]).Sqrt()
+		root.Store(&sq[j])
+		vs := load8(&v[j]).Mul(root)
+		inv := load8(&c.one).Div(vs)
+		inv.Store(&rv[j])
+		m := load8(&d1[j])
+		d := m.Mul(inv)
+		d = d.MulAdd(load8(&c.zero).Sub(vs), m).MulAdd(inv, d)
+		vs.MulAdd(load8(&c.half), d).Store(&d1[j])
+		vs.MulAdd(load8(&c.negHalf), d).Store(&d2[j])
+	}
+}
+
 // density8 sets x to √(2π)·S·e^(−qT)·φ(d₁), from the smaller distance.
 func density8(sc *scratch8, n int, c *table8) {
 	a, b, d1, d2, x := sc.an[:n], sc.bn[:n], sc.d1[:n], sc.d2[:n], sc.x[:n]
-	for j := range a {
+	for j := range n {
 		y1, y2 := abs8(load8(&d1[j]), c), abs8(load8(&d2[j]), c)
 		hi, lo := halfSquare8(y1.Min(y2).Min(load8(&c.gaussEnd)), c)
 		r, t := expReduce8(hi, lo, c)
@@ -123,74 +141,68 @@ func density8(sc *scratch8, n int, c *table8) {
 
 // tail8 turns p, a discounted price, into w·p·Φ(w·d).
 func tail8(p, d, x, w []lanes8, c *table8) {
-	n := len(w)
-	p, d, x = p[:n], d[:n], x[:n]
-	for j := range w {
-		dv, sign, pv := load8(&d[j]), load8(&w[j]), load8(&p[j])
+	n := len(p)
+	d, x, w = d[:n], x[:n], w[:n]
+	for j := range p {
+		dv, sign, pv, zero := load8(&d[j]), load8(&w[j]), load8(&p[j]), load8(&c.zero)
 		y := abs8(dv, c)
 		z := y.Mul(y)
 		tail := load8(&x[j]).Mul(millsTop8(y, z, c).Div(millsBottom8(y, z, c)))
-		zero := load8(&c.zero)
 		tail = pv.Sub(tail).Merge(tail, sign.Mul(dv).Greater(zero))
 		sign.MulAdd(tail, zero).Store(&p[j])
 	}
 }
 
-func prices8(sc *scratch8, price []lanes8) {
-	an, bn := sc.an[:len(price)], sc.bn[:len(price)]
-	for j := range price {
-		load8(&an[j]).Sub(load8(&bn[j])).Store(&price[j])
+// difference8 sets dst to x − y: the price, where nothing else is wanted.
+func difference8(dst, x, y []lanes8) {
+	n := len(dst)
+	x, y = x[:n], y[:n]
+	for j := range dst {
+		load8(&x[j]).Sub(load8(&y[j])).Store(&dst[j])
 	}
 }
 
-func core8(sc *scratch8, s, t, v, r, q, price, delta, gamma, vega, theta, rho []lanes8, c *table8) {
-	n := len(s)
-	t, v, r, q = t[:n], v[:n], r[:n], q[:n]
-	price, delta, gamma, vega, theta, rho = price[:n], delta[:n], gamma[:n], vega[:n], theta[:n], rho[:n]
-	sa, sb, srv, ssq, sx := sc.an[:n], sc.bn[:n], sc.rv[:n], sc.sq[:n], sc.x[:n]
-	for j := range s {
-		zero := load8(&c.zero)
-		an, bn, x := load8(&sa[j]), load8(&sb[j]), load8(&sx[j]).Mul(load8(&c.invSqrt2Pi))
+// core8 sets the outputs of Core, as coreGeneric does.
+func (b *BSM) core8(sc *scratch8, i, n int, c *table8) {
+	s, t, v, r, q := columns8(b.Spot, i, n), columns8(b.Time, i, n), columns8(b.Vol, i, n), columns8(b.Rate, i, n), columns8(b.Yield, i, n)
+	price, delta, gamma := columns8(b.Price, i, n), columns8(b.Delta, i, n), columns8(b.Gamma, i, n)
+	vega, theta, rho := columns8(b.Vega, i, n), columns8(b.Theta, i, n), columns8(b.Rho, i, n)
+	san, sbn, srv, ssq, sx := sc.an[:n], sc.bn[:n], sc.rv[:n], sc.sq[:n], sc.x[:n]
+	for j := range n {
+		zero, vv := load8(&c.zero), load8(&v[j])
+		an, bn, x := load8(&san[j]), load8(&sbn[j]), load8(&sx[j]).Mul(load8(&c.invSqrt2Pi))
 		rs := load8(&c.one).Div(load8(&s[j]))
 		g := x.Mul(load8(&srv[j]))
 		an.Sub(bn).Store(&price[j])
 		an.Mul(rs).Store(&delta[j])
 		g.Mul(rs).Mul(rs).Store(&gamma[j])
 		x.Mul(load8(&ssq[j])).Store(&vega[j])
-		vv := load8(&v[j])
 		decay := g.MulAdd(zero.Sub(vv.Mul(vv.Mul(load8(&c.half)))), zero)
 		load8(&q[j]).MulAdd(an, zero.Sub(load8(&r[j])).MulAdd(bn, decay)).Store(&theta[j])
 		load8(&t[j]).Mul(bn).Store(&rho[j])
 	}
 }
 
-// second8 sets the remaining derivatives.
-func second8(sc *scratch8, s, t, v, r, q, delta, carryRho, vanna, volga, charm []lanes8, c *table8) {
-	n := len(s)
-	t, v, r, q, delta, carryRho, vanna, volga, charm = t[:n], v[:n], r[:n], q[:n], delta[:n], carryRho[:n], vanna[:n], volga[:n], charm[:n]
-	sa, srv, ssq, sx, sd1, sd2 := sc.an[:n], sc.rv[:n], sc.sq[:n], sc.x[:n], sc.d1[:n], sc.d2[:n]
-	for j := range s {
-		zero := load8(&c.zero)
-		rs := load8(&c.one).Div(load8(&s[j]))
-		rv, tv, d2, vv, qt := load8(&srv[j]), load8(&t[j]), load8(&sd2[j]), load8(&v[j]), load8(&q[j])
+// further8 sets what All gives beyond Core, as allGeneric does.
+func (b *BSM) further8(sc *scratch8, i, n int, c *table8) {
+	s, t, v, r, q := columns8(b.Spot, i, n), columns8(b.Time, i, n), columns8(b.Vol, i, n), columns8(b.Rate, i, n), columns8(b.Yield, i, n)
+	price, delta, gamma, theta := columns8(b.Price, i, n), columns8(b.Delta, i, n), columns8(b.Gamma, i, n), columns8(b.Theta, i, n)
+	carryRho, vanna, volga := columns8(b.CarryRho, i, n), columns8(b.Vanna, i, n), columns8(b.Volga, i, n)
+	charm, residual := columns8(b.Charm, i, n), columns8(b.Residual, i, n)
+	san, srv, ssq, sx, sd1, sd2 := sc.an[:n], sc.rv[:n], sc.sq[:n], sc.x[:n], sc.d1[:n], sc.d2[:n]
+	for j := range n {
+		zero, sv, tv, vv, rt, qt := load8(&c.zero), load8(&s[j]), load8(&t[j]), load8(&v[j]), load8(&r[j]), load8(&q[j])
+		rs := load8(&c.one).Div(sv)
+		rv, d2 := load8(&srv[j]), load8(&sd2[j])
 		g := load8(&sx[j]).Mul(load8(&c.invSqrt2Pi)).Mul(rv)
 		gs := g.Mul(rs)
-		zero.Sub(tv).MulAdd(load8(&sa[j]), zero).Store(&carryRho[j])
+		zero.Sub(tv).MulAdd(load8(&san[j]), zero).Store(&carryRho[j])
 		gs.Mul(load8(&ssq[j])).MulAdd(zero.Sub(d2), zero).Store(&vanna[j])
 		g.Mul(tv).MulAdd(load8(&sd1[j]).Mul(d2), zero).Store(&volga[j])
-		drift := d2.Mul(vv.Mul(vv.Mul(load8(&c.half)))).MulAdd(rv, qt.Sub(load8(&r[j])))
-		qt.MulAdd(load8(&delta[j]), gs.MulAdd(drift, zero)).Store(&charm[j])
-	}
-}
-
-func residual8(s, v, r, q, price, delta, gamma, theta, residual []lanes8, c *table8) {
-	n := len(s)
-	v, r, q, price, delta, gamma, theta, residual = v[:n], r[:n], q[:n], price[:n], delta[:n], gamma[:n], theta[:n], residual[:n]
-	for j := range s {
-		sv, vv, rt, p := load8(&s[j]), load8(&v[j]), load8(&r[j]), load8(&price[j])
-		e := vv.Mul(vv.Mul(load8(&c.half))).MulAdd(load8(&gamma[j]).Mul(sv).Mul(sv), load8(&theta[j]))
-		e = rt.Sub(load8(&q[j])).MulAdd(sv.Mul(load8(&delta[j])), e)
-		e = load8(&c.zero).Sub(rt).MulAdd(p, e)
-		abs8(e, c).Div(abs8(p, c).Max(sv.Mul(load8(&c.residualFloor)))).Store(&residual[j])
+		halfVar, dv, pv := vv.Mul(vv.Mul(load8(&c.half))), load8(&delta[j]), load8(&price[j])
+		qt.MulAdd(dv, gs.MulAdd(d2.Mul(halfVar).MulAdd(rv, qt.Sub(rt)), zero)).Store(&charm[j])
+		e := halfVar.MulAdd(load8(&gamma[j]).Mul(sv).Mul(sv), load8(&theta[j]))
+		e = zero.Sub(rt).MulAdd(pv, rt.Sub(qt).MulAdd(sv.Mul(dv), e))
+		abs8(e, c).Div(abs8(pv, c).Max(sv.Mul(load8(&c.residualFloor)))).Store(&residual[j])
 	}
 }
