@@ -34,6 +34,8 @@ import (
 //	[vols]
 //	unit = "decimal"                # decimal: 0.20 is 20 %; percent: 20 is. Holds for the vol columns of
 //	                                # positions, underlyings and vols; default "decimal"
+//	from = "vols"                   # vols: the surface is the vols table; quotes: it is implied by the quotes
+//	                                # table; default "vols"
 //
 //	[workbook]
 //	max_lines = 50000               # rows of the workbook's Lines sheet, 0 to 1000000; default 50000
@@ -55,6 +57,7 @@ type runFile struct {
 	} `toml:"csv"`
 	Vols struct {
 		Unit string `toml:"unit"`
+		From string `toml:"from"`
 	} `toml:"vols"`
 	Workbook struct {
 		MaxLines *int `toml:"max_lines"`
@@ -141,6 +144,13 @@ func parseConfig(text, asOf, folder string) (*schema.Config, error) {
 		cfg.Vols.Percent = true
 	default:
 		return nil, fmt.Errorf("vols.unit is %q: expected decimal or percent", r.Vols.Unit)
+	}
+	switch r.Vols.From {
+	case "", "vols":
+	case "quotes":
+		cfg.Vols.FromQuotes = true
+	default:
+		return nil, fmt.Errorf("vols.from is %q: expected vols or quotes", r.Vols.From)
 	}
 	cfg.Workbook.MaxLines = schema.DefaultMaxLines
 	if n := r.Workbook.MaxLines; n != nil {

@@ -115,7 +115,7 @@ func TestConfigErrors(t *testing.T) {
 		"[workbook]\nmax_lines = -1":          "workbook.max_lines is -1",
 		"[workbook]\nmax_lines = 1000001":     "workbook.max_lines is 1000001",
 		"[parquet]\ncompression = 'lz4'":      `parquet.compression is "lz4"`,
-		"[columns.quotes]\nprice = 'Px'":      "columns.quotes: there is no such table; the tables are positions, underlyings",
+		"[columns.limits]\nlower = 'Lo'":      "columns.limits: there is no such table; the tables are positions, underlyings",
 		"[columns.positions]\nprice = 'Px'":   "columns.positions.price: there is no such column",
 		"[columns.positions]\nstrike = ' '":   "columns.positions.strike: expected a header",
 		"calendar = \"a\\u0001\"":             "calendar: the text holds a control character",

@@ -27,10 +27,13 @@ type Folder struct {
 var neededTables = []string{"positions", "underlyings", "rates"}
 
 // OpenFolder finds the tables of the snapshot folder dir by the stems of their
-// files, compared without regard to case. It is an error if a table is missing
-// that every run needs, if two files hold the same table, or if the file of a
+// files, compared without regard to case. It is an error if one of the needed
+// tables is missing (by default those of a run), if two files hold the same table, or if the file of a
 // table is in a form that is not read. Other data files are noted as not used.
-func OpenFolder(dir string) (*Folder, error) {
+func OpenFolder(dir string, needed ...string) (*Folder, error) {
+	if len(needed) == 0 {
+		needed = neededTables
+	}
 	entries, err := os.ReadDir(dir)
 	if err != nil {
 		return nil, fmt.Errorf("snapshot folder: %w", err)
@@ -60,9 +63,9 @@ func OpenFolder(dir string) (*Folder, error) {
 		}
 		f.note(unused(name))
 	}
-	for _, table := range neededTables {
+	for _, table := range needed {
 		if f.tables[table] == nil {
-			return nil, fmt.Errorf("%s: there is no %s file: a run needs %s.csv (or %s); the folder holds %s",
+			return nil, fmt.Errorf("%s: there is no %s file: it takes %s.csv (or %s); the folder holds %s",
 				dir, table, table, strings.Join(formatNames()[1:], ", "), listed(files))
 		}
 	}

@@ -176,7 +176,7 @@ func TestFilesNotUsed(t *testing.T) {
 		}
 		got = append(got, n.Subject)
 	}
-	if got := strings.Join(got, " "); got != "limits.csv.gz quotes.csv positions.csv.bak" {
+	if got := strings.Join(got, " "); got != "limits.csv.gz positions.csv.bak quotes.csv" {
 		t.Errorf("not used: %s", got)
 	}
 }

@@ -25,7 +25,15 @@ func (f *Folder) Market(cfg *schema.Config) (*schema.Market, error) {
 		{"books", bookRows(m)},
 		{"dividends", dividendRows(m)},
 		{"holidays", holidayRows(m)},
+		{"quotes", quoteRows(m)},
 	} {
+		if t.name == "quotes" && !cfg.Vols.FromQuotes {
+			if in := f.tables[t.name]; in != nil {
+				f.note(schema.Note{Code: schema.FileNotUsed, Subject: in.name, File: in.name, Count: 1,
+					Message: `the quotes are not used: the surface is that of vols, unless [vols] from = "quotes"`})
+			}
+			continue
+		}
 		if err := f.readMarket(t.name, cfg, m, t.row); err != nil {
 			return nil, err
 		}
@@ -87,9 +95,13 @@ func (r *marketRow) start(i int) {
 
 // end puts a refused row among the faults.
 func (r *marketRow) end() {
-	if r.why == nil {
-		return
+	if r.why != nil {
+		r.m.Faults = append(r.m.Faults, schema.Fault{Table: r.o.in.table.Name, Name: r.name, Reject: r.rejected()})
 	}
+}
+
+// rejected tells what is wrong with the row, and where.
+func (r *marketRow) rejected() schema.Reject {
 	x := schema.Reject{
 		File: r.o.in.name, Sheet: r.o.sheet, Line: r.line(),
 		Code: r.why.code, Reason: r.why.reason + r.also, Row: string(appendRaw(nil, r.Rows, r.i)),
@@ -100,7 +112,7 @@ func (r *marketRow) end() {
 			x.Value = r.value(at, r.i)
 		}
 	}
-	r.m.Faults = append(r.m.Faults, schema.Fault{Table: r.o.in.table.Name, Name: r.name, Reject: x})
+	return x
 }
 
 // ok reports whether nothing is wrong with the row so far.

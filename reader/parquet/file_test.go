@@ -186,12 +186,12 @@ func TestRefused(t *testing.T) {
 func TestDamaged(t *testing.T) {
 	for _, name := range []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip"} {
 		whole := readFile(t, name+".parquet")
-		for n := 0; n < len(whole); n += 1 + len(whole)/60 {
+		for n := 0; n < len(whole); n += 1 + len(whole)/30 {
 			if _, _, err := rendered(bytes.NewReader(whole[:n]), int64(n)); err == nil {
 				t.Errorf("%s cut to %d bytes reads well", name, n)
 			}
 		}
-		for at := 4; at < len(whole); at += 1 + len(whole)/150 {
+		for at := 4; at < len(whole); at += 1 + len(whole)/80 {
 			b := bytes.Clone(whole)
 			b[at] ^= 0x5a
 			rendered(bytes.NewReader(b), int64(len(b)))

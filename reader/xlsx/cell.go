@@ -15,11 +15,12 @@ type rawCell struct {
 	style   int
 	value   string // of v, or of is
 	formula string
+	stored  bool // there is a value, if an empty one
 }
 
 // read returns what a cell holds, as text and what that is; "" is an empty cell.
 func (w *Workbook) read(c *rawCell) (string, table.Cell, error) {
-	if c.formula != "" && c.value == "" && c.kind != "str" {
+	if c.formula != "" && (!c.stored || c.value == "" && c.kind != "str") {
 		// A program wrote the formula, and no workbook program has computed it yet.
 		return "=" + c.formula, table.Fault, nil
 	}

@@ -235,10 +235,12 @@ func (s *sheet) readCell(e xml.StartElement, next int) (column int, c *rawCell, 
 		case xml.StartElement:
 			switch e.Name.Local {
 			case "v":
+				c.stored = true
 				if c.value, err = s.charData(); c.kind == "str" {
 					c.value = unescape(c.value)
 				}
 			case "is":
+				c.stored = true
 				c.value, err = richText(s.xml)
 			case "f":
 				c.formula, err = s.charData()

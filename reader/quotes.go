@@ -1,0 +1,56 @@
+package reader
+
+import (
+	"math"
+
+	"nightbook/schema"
+)
+
+var (
+	priceOrSides = &finding{schema.MissingValue, "expected a price, or a bid and an ask"}
+	quoteTypes   = choiceFinding("option_type")
+	quoteStyles  = choiceFinding("exercise")
+)
+
+// quoteRows returns what reads one quote into the market. A refused quote stands
+// among the quotes, so that each can be answered, and is no fault of the market.
+func quoteRows(m *schema.Market) func(*marketRow) {
+	return func(r *marketRow) {
+		q := schema.QuoteRow{Line: r.line(), Underlying: r.key("underlying"), Exercise: schema.European}
+		q.Day, q.Minute = r.neededDay("expiry")
+		q.Strike = r.needed("strike", anyNumber)
+		q.OptionType = r.chosen("option_type", schema.OptionTypes, quoteTypes)
+		if q.OptionType == 0 {
+			r.refuse(r.col("option_type"), missing)
+		}
+		if e := r.chosen("exercise", schema.Exercises, quoteStyles); e != 0 {
+			q.Exercise = e
+		}
+		nan := math.NaN()
+		q.Price = r.optional("price", nan, notBelow0)
+		q.Bid, q.Ask = r.optional("bid", nan, notBelow0), r.optional("ask", nan, notBelow0)
+		if r.ok() && math.IsNaN(q.Price) && (math.IsNaN(q.Bid) || math.IsNaN(q.Ask)) {
+			r.refuse(r.col("price"), priceOrSides)
+		}
+		if !r.ok() {
+			x := r.rejected()
+			q.Reject = &x
+			r.why = nil
+		}
+		m.Quotes = append(m.Quotes, q)
+	}
+}
+
+// chosen returns a word of a closed list, 0 for an empty cell or a column that
+// is not there.
+func (r *marketRow) chosen(name string, list schema.Choices, other *finding) schema.Choice {
+	k := r.col(name)
+	if r.o.at[k] < 0 {
+		return 0
+	}
+	c, why := r.choice(r.o.at[k], r.i, list, other)
+	if why != nil {
+		r.refuse(k, why)
+	}
+	return c
+}
