@@ -129,8 +129,22 @@ func TestManyBatches(t *testing.T) {
 
 func BenchmarkCSVBind(b *testing.B) {
 	const rows = 200_000
-	text := desk(rows, 3)
-	dir := folderOf(b, map[string]string{"positions.csv": text})
+	benchmarkBind(b, "positions.csv", desk(rows, 3), rows)
+}
+
+func BenchmarkParquetBind(b *testing.B) {
+	const rows = 100_000
+	benchmarkBind(b, "positions.parquet", parquetOf(b, desk(rows, 3)), rows)
+}
+
+func BenchmarkXLSXBind(b *testing.B) {
+	const rows = 10_000
+	benchmarkBind(b, "positions.xlsx", sheetOf(b, desk(rows, 3)), rows)
+}
+
+// benchmarkBind reads and binds a position file on one goroutine.
+func benchmarkBind(b *testing.B, name, file string, rows int) {
+	dir := folderOf(b, map[string]string{"positions.csv": "", name: file})
 	f, err := OpenFolder(dir)
 	if err != nil {
 		b.Fatal(err)
@@ -142,7 +156,7 @@ func BenchmarkCSVBind(b *testing.B) {
 	dicts := schema.NewDicts()
 	var pc Piece
 	var batch schema.Batch
-	b.SetBytes(int64(len(text)))
+	b.SetBytes(int64(len(file)))
 	b.ReportAllocs()
 	for b.Loop() {
 		p, err := f.Positions(cfg, dicts)
@@ -165,5 +179,5 @@ func BenchmarkCSVBind(b *testing.B) {
 		}
 		p.Close()
 	}
-	b.ReportMetric(rows*float64(b.N)/b.Elapsed().Seconds(), "rows/s")
+	b.ReportMetric(float64(rows)*float64(b.N)/b.Elapsed().Seconds(), "rows/s")
 }

@@ -9,7 +9,7 @@ import (
 )
 
 // moment returns a moment that is known to be well written.
-func moment(t *testing.T, s string) schema.Moment {
+func moment(t testing.TB, s string) schema.Moment {
 	t.Helper()
 	day, minute, why := isoDate.parse([]byte(s))
 	if why != nil {

@@ -151,7 +151,7 @@ func parquetOf(t testing.TB, text string) string {
 			row.Mark = &n
 		}
 		if f[11] != "" {
-			m := moment(t.(*testing.T), f[11])
+			m := moment(t, f[11])
 			ms := (int64(m.Day)*1440 + int64(max(m.Minute, 0))) * 60_000
 			row.Expiry = &ms
 		}

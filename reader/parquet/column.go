@@ -39,6 +39,8 @@ type column struct {
 	present []bool
 	values  values
 	clock   []byte // scratch
+	minute  int64  // the time written out last, and its text: rows have few expiries
+	dated   []byte
 }
 
 // columnsOf returns the columns of a flat schema.

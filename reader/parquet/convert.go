@@ -58,37 +58,56 @@ func (c *column) convert(into *table.Rows, at int) {
 	v := &into.Cols[at]
 	from := &c.values.plain
 	k := 0 // of the stored values
-	for _, present := range c.present {
-		switch {
-		case !present:
-			c.null(v)
-			continue
-		case c.meaning == floats:
-			v.Floats = append(v.Floats, from.floats[k])
-		case c.meaning == ints:
-			v.Ints = append(v.Ints, from.ints[k])
-		case c.meaning == days:
-			v.Dates = append(v.Dates, day(from.ints[k]))
-		case c.meaning == texts:
-			v.Strings.Append(from.bytes[k])
-		default:
-			c.clock = c.text(c.clock[:0], k)
+	switch c.meaning {
+	case floats:
+		if len(from.floats) == len(c.present) {
+			v.Floats = append(v.Floats, from.floats...)
+			return
+		}
+		for _, present := range c.present {
+			x := math.NaN()
+			if present {
+				x = from.floats[k]
+				k++
+			}
+			v.Floats = append(v.Floats, x)
+		}
+	case ints:
+		for _, present := range c.present {
+			x := int64(schema.NoInt)
+			if present {
+				x = from.ints[k]
+				k++
+			}
+			v.Ints = append(v.Ints, x)
+		}
+	case days:
+		for _, present := range c.present {
+			x := schema.NoDate
+			if present {
+				x = day(from.ints[k])
+				k++
+			}
+			v.Dates = append(v.Dates, x)
+		}
+	case texts:
+		for _, present := range c.present {
+			var x []byte
+			if present {
+				x = from.bytes[k]
+				k++
+			}
+			v.Strings.Append(x)
+		}
+	default:
+		for _, present := range c.present {
+			c.clock = c.clock[:0]
+			if present {
+				c.clock = c.text(c.clock, k)
+				k++
+			}
 			v.Strings.Append(c.clock)
 		}
-		k++
-	}
-}
-
-func (c *column) null(v *schema.Vector) {
-	switch v.Kind {
-	case schema.KindFloats:
-		v.Floats = append(v.Floats, math.NaN())
-	case schema.KindInts:
-		v.Ints = append(v.Ints, schema.NoInt)
-	case schema.KindDates:
-		v.Dates = append(v.Dates, schema.NoDate)
-	default:
-		v.Strings.Append(nil)
 	}
 }
 
@@ -117,7 +136,10 @@ func (c *column) text(b []byte, k int) []byte {
 		if c.physical == parquet.Type_INT96 {
 			return appendINT96(b, from.bytes[k])
 		}
-		return appendMinute(b, floorDiv(from.ints[k], 60*c.unit))
+		if minute := floorDiv(from.ints[k], 60*c.unit); minute != c.minute || len(c.dated) == 0 {
+			c.minute, c.dated = minute, appendMinute(c.dated[:0], minute)
+		}
+		return append(b, c.dated...)
 	case decimals:
 		if c.physical == parquet.Type_BYTE_ARRAY || c.physical == fixed {
 			return appendDecimal(b, bigEndian(from.bytes[k]), c.scale)
