@@ -3,7 +3,7 @@ package vec
 // BSM is a batch of European options under the generalised Black–Scholes–Merton
 // formula, row i of every slice being one option.
 //
-// Computes, with w = Sign and all sums of the usual names,
+// Computes, with w = Sign and the usual letters for the other inputs,
 //
 //	d₁,₂     = (ln(S/K) + (r−q)T)/(σ√T) ± ½σ√T
 //	Price    = w(S·e^(−qT)·Φ(w·d₁) − K·e^(−rT)·Φ(w·d₂))
@@ -19,7 +19,8 @@ package vec
 //	Residual = |Theta + ½σ²S²·Gamma + (r−q)S·Delta − r·Price| / max(|Price|, 10⁻⁴·S)
 //
 // The residual is taken from the finished outputs: it is what their rounding
-// errors leave of the Black–Scholes equation, and shows a fault in any of them.
+// errors leave of the Black–Scholes equation, and shows a fault in any of the
+// four it is made of.
 //
 // Shapes: all slices have the length of Spot. Core and Prices need only the
 // outputs they fill. No output may share memory with an input or with another
@@ -45,9 +46,10 @@ package vec
 // Accuracy: the price within 5e-16 of S·e^(−qT) + K·e^(−rT), and within 2e-15 of
 // S·e^(−qT)·Φ(w·d₁) + K·e^(−rT)·Φ(w·d₂) while |d₁| < 6 (3e-15 to |d₁| = 30). The
 // sensitivities within 2.5e-14 of themselves (4e-13 to |d₁| = 30), or of the sum of
-// their terms where they cross 0; their error is that of d, multiplied by d. These
-// hold in the box of inputs that bsm_generic.go describes, and beyond it as far
-// as the textbook formula keeps them.
+// their terms where they cross 0: through the density they take on the error of d
+// times d. Measured for 1 day to 20 years and 1 % to 200 %, in
+// bsm_reference_test.go; beyond the box of bsm_generic.go, lines are valued by
+// the textbook formula as it stands.
 // Source: F. Black & M. Scholes, J. Political Economy 81 (1973); R. C. Merton,
 // Bell J. Economics 4 (1973).
 type BSM struct {

@@ -8,8 +8,8 @@ import "math"
 // serves both tails, a·Φ(−|d₁|) and b·Φ(−|d₂|), through the Mills ratio; it is
 // taken at the smaller of |d₁| and |d₂|, where it loses least.
 //
-// A product that may be −0 is written as FMA(x, y, 0), which is +0: a put out of
-// reach has a delta of 0, not of −0.
+// Where a factor may be 0 a product is written as FMA(x, y, 0), which is never −0:
+// a put out of reach has a delta of 0.
 
 func (b *BSM) runGeneric(want outputs, lo, hi int) {
 	switch want {

@@ -15,6 +15,9 @@
 // (zero volatility, an expiry within seconds, NaN) is handed to the scalar code,
 // where it can be dealt with in plain words.
 //
+// Folder gen holds the generators of the constants and of the 4-lane files, the
+// checks that go with them, and the same loop in C to compare times with.
+//
 // The package knows nothing of positions, currencies or dates. It allocates
 // nothing, keeps no state besides the chosen tier, and may be called from
 // several goroutines at once on slices that do not overlap.
