@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"fmt"
 	"io"
+	"slices"
 	"strings"
 
 	"github.com/xuri/excelize/v2"
@@ -88,7 +89,7 @@ func (b *Book) Close() error {
 		p := part{name: name, pieces: []*piece{wholePiece(content.Bytes())}}
 		for _, s := range b.sheets {
 			if s.part == name {
-				before, after, err := splitSheet(content.Bytes())
+				before, after, err := splitSheet(content.Bytes(), s.columns())
 				if err != nil {
 					return err
 				}
@@ -103,13 +104,14 @@ func (b *Book) Close() error {
 // Abort lets go of what the workbook holds. After Close it does nothing.
 func (b *Book) Abort() error { return b.file.Close() }
 
-// splitSheet cuts the part of an empty sheet where its rows belong.
-func splitSheet(xml []byte) (before, after []byte, err error) {
+// splitSheet cuts the part of an empty sheet where its rows belong, and puts
+// the columns before them.
+func splitSheet(xml, columns []byte) (before, after []byte, err error) {
 	const open, end = "<sheetData>", "</sheetData>"
 	for _, empty := range []string{open + end, "<sheetData/>"} {
 		if i := bytes.Index(xml, []byte(empty)); i >= 0 {
-			before = append(bytes.Clone(xml[:i]), open...)
-			return before, append([]byte(end), xml[i+len(empty):]...), nil
+			before = slices.Concat(xml[:i], columns, []byte(open))
+			return before, slices.Concat([]byte(end), xml[i+len(empty):]), nil
 		}
 	}
 	return nil, nil, fmt.Errorf("workbook: a sheet made by excelize does not have the shape that is known")

@@ -11,10 +11,11 @@ import (
 type Sheet struct {
 	Name string
 
-	part string // its name in the file
-	file *excelize.File
-	runs []*Rows
-	done error
+	part   string // its name in the file
+	file   *excelize.File
+	widths []float64
+	runs   []*Rows
+	done   error
 }
 
 // Rows starts a run of rows at a row. Runs may be written at the same time and
@@ -42,11 +43,18 @@ func (s *Sheet) keep(err error) {
 }
 
 // Widths sets the widths of columns, in characters, beginning with the first.
-func (s *Sheet) Widths(widths ...float64) {
-	for i, w := range widths {
-		name := columnName(i + 1)
-		s.keep(s.file.SetColWidth(s.Name, name, name, w))
+func (s *Sheet) Widths(widths ...float64) { s.widths = widths }
+
+// columns is what the sheet says of its columns.
+func (s *Sheet) columns() []byte {
+	if len(s.widths) == 0 {
+		return nil
 	}
+	b := []byte("<cols>")
+	for i, w := range s.widths {
+		b = fmt.Appendf(b, `<col min="%d" max="%d" width="%g" customWidth="1"/>`, i+1, i+1, w)
+	}
+	return append(b, "</cols>"...)
 }
 
 // Freeze keeps the first rows and columns in sight. The sheet opens at the top.
