@@ -25,7 +25,8 @@ type CSVConfig struct {
 
 // VolsConfig says how volatilities are written.
 type VolsConfig struct {
-	Percent bool // 20 stands for 0.20
+	Percent    bool // 20 stands for 0.20
+	FromQuotes bool // the surface is that of quotes, not of vols
 }
 
 // WorkbookConfig bounds the workbook.

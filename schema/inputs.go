@@ -2,7 +2,7 @@ package schema
 
 // Inputs is the dictionary of the snapshot folder: every file the program
 // reads, with its columns. The readers are built on it.
-var Inputs = []Table{PositionsTable, UnderlyingsTable, RatesTable, VolsTable, FXTable, BooksTable, DividendsTable, HolidaysTable}
+var Inputs = []Table{PositionsTable, UnderlyingsTable, RatesTable, VolsTable, FXTable, BooksTable, DividendsTable, HolidaysTable, QuotesTable}
 
 // PositionsTable describes positions.
 var PositionsTable = Table{"positions", "one row a position line; further columns travel through to the lines", []Column{

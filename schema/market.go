@@ -10,6 +10,7 @@ type Market struct {
 	Books       []BookRow
 	Dividends   []DividendRow
 	Holidays    []HolidayRow
+	Quotes      []QuoteRow // refused rows included
 
 	// Faults are the refused market rows. What they belong to (a curve, a
 	// surface, a currency, an underlying) must not be used as if they had not been there.

@@ -7,7 +7,7 @@ python=${PYTHON:-/usr/bin/python3}
 fresh=$(mktemp)
 trap 'rm -f "$fresh"' EXIT
 status=0
-for name in functions bsm; do
+for name in functions bsm implied; do
 	"$python" $name.py >"$fresh"
 	if [ "${1:-}" = write ]; then
 		gzip -9n <"$fresh" >$name.csv.gz
