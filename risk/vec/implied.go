@@ -195,20 +195,21 @@ func scaledTail(z float64) float64 {
 	return Exp1(float64(0.5*float64(z*z))) - mills(z)
 }
 
-// omega returns y with y + ln y = z to about 1e-3 relative: enough for a start,
-// and below the answer or so close that the bracket takes it.
+// omega returns y with y + ln y = z to about 1e-2 relative, from below. Both
+// starts are below y (W(u) ≥ u/(1+u) for Lambert's function, and y ≤ z from 1 up),
+// and Newton's method on a concave function stays there.
 func omega(z float64) float64 {
-	if z < -2 {
-		return Exp1(z)
+	var y float64
+	if z > 1 {
+		y = z - Log1(z)
+	} else {
+		u := Exp1(z)
+		y = u / (1 + u)
 	}
-	y := 0.6
-	if z > 0.1 {
-		y = z
-		if z > 2 {
-			y = z - Log1(z)
-		}
+	if z < -5 {
+		return y
 	}
-	for range 2 { // Newton's method on y + ln y − z
+	for range 2 {
 		y = float64(y*(1+z-Log1(y))) / (1 + y)
 	}
 	return y

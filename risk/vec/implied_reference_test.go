@@ -29,7 +29,7 @@ func TestImpliedVolAgainstReference(t *testing.T) {
 		vega := q.Forward * math.Exp(-d1*d1/2) / math.Sqrt(2*math.Pi) // per unit of s
 		limit := 12*eps + 2*eps*q.Price/(s*vega)                      // the attainable one, and six units in the last place
 		err := math.Abs(vol[0]/s - 1)
-		if err > limit {
+		if !(err <= limit) {
 			t.Errorf("%+v: %v, relative error %.3g, limit %.3g", q, vol[0], err, limit)
 		}
 		worst, smallest = max(worst, err/limit), min(smallest, q.Price)
