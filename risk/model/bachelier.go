@@ -66,7 +66,7 @@ func BachelierPrice(price, future, strike, time, vol, rate, sign []float64) {
 }
 
 func validNormal(f, k, t, v, r, w float64) bool {
-	return isAmount(f) && isAmount(k) && isAmount(v) && v >= 0 && t >= 0 && t <= largestSpread && isRate(r, t) && isSign(w)
+	return isAmount(f) && isAmount(k) && isAmount(v) && v >= 0 && t >= 0 && t <= largestTime && isRate(r, t) && isSign(w)
 }
 
 // normalOption is what the results of one contract are made of.

@@ -34,15 +34,16 @@ const certainBelow = 0x1p-60
 
 // The range of inputs within which no step of a lognormal formula overflows.
 const (
-	largestPrice  = 1e100 // and 1/largestPrice the smallest
-	largestSpread = 1e6   // of T and of σ
-	largestRate   = 100   // of |r|·T and of |q|·T
+	largestPrice = 1e100 // and 1/largestPrice the smallest
+	largestTime  = 1000
+	largestVol   = 100
+	largestRate  = 100 // of |r|·T and of |q|·T
 )
 
 // valid reports whether a contract makes sense and is within range: prices
 // positive, time and volatility not negative, a sign of ±1.
 func valid(s, k, t, vol, r, q, sign float64) bool {
-	return isPrice(s) && isPrice(k) && t >= 0 && t <= largestSpread && vol >= 0 && vol <= largestSpread &&
+	return isPrice(s) && isPrice(k) && t >= 0 && t <= largestTime && vol >= 0 && vol <= largestVol &&
 		isRate(r, t) && isRate(q, t) && isSign(sign)
 }
 
@@ -69,7 +70,7 @@ func discounted[N number[N]](c, x, t N) N { return c.times(expOf(x.times(t).scal
 func black[N number[N]](f, m, v N, w float64) N {
 	mv, vv := m.value(), v.value()
 	i := 1 / vv
-	d := mv * i
+	d := float64(mv * i)
 	d1, d2 := d+float64(0.5*vv), d-float64(0.5*vv)
 	n1 := float64(w * vec.NormCDF1(float64(w*d1)))
 	n2 := float64(float64(w*vec.NormCDF1(float64(w*d2))) * vec.Exp1(-mv))

@@ -12,13 +12,16 @@ import sys
 
 from mpmath import mpf, nstr
 
+from barrier import BARRIER_INPUTS, TOUCH_INPUTS, TOUCH_RESULTS, barrier_lines, barrier_values, touch_lines, touch_values
 from digital import DIGITAL_INPUTS, NORMAL_INPUTS, digital_lines, digital_values, normal_lines, normal_values
 from numeric import GREEKS
 
-# name: columns, lines of inputs, values of a line
+# name: inputs, results, lines of inputs, results of a line
 TABLES = {
-    "digital": (DIGITAL_INPUTS, digital_lines, digital_values),
-    "bachelier": (NORMAL_INPUTS, normal_lines, normal_values),
+    "touch": (TOUCH_INPUTS, TOUCH_RESULTS, touch_lines, touch_values),
+    "digital": (DIGITAL_INPUTS, GREEKS, digital_lines, digital_values),
+    "barrier": (BARRIER_INPUTS, GREEKS, barrier_lines, barrier_values),
+    "bachelier": (NORMAL_INPUTS, GREEKS, normal_lines, normal_values),
 }
 
 
@@ -33,10 +36,10 @@ def show(x):
 def main():
     folder, names = sys.argv[1], sys.argv[2:] or TABLES
     for name in names:
-        columns, lines, values = TABLES[name]
+        inputs, results, lines, values = TABLES[name]
         with open(os.path.join(folder, name + ".csv"), "w", newline="") as f:
             out = csv.writer(f, lineterminator="\n")
-            out.writerow(columns + GREEKS)
+            out.writerow(inputs + results)
             for line in lines(random.Random(name)):
                 out.writerow([show(x) for x in line + values(line)])
 
