@@ -1,0 +1,28 @@
+// Package pde prices European and American vanilla options by finite
+// differences: the backward equation
+//
+//	∂V/∂t + ½σ²S²·∂²V/∂S² + (r−q)S·∂V/∂S − rV = 0
+//
+// with a continuous rate and yield of either sign and a list of cash dividends,
+// under which the price of the underlying drops on each ex-date.
+//
+// A Solver takes a Chain, the options of one type, style and expiry on one
+// underlying, and gives each line its value, all its sensitivities, an estimate
+// of its error, and what is known of early exercise. The work goes through these
+// files:
+//
+//	chain.go     what goes in and what comes out
+//	solver.go    lines → sweeps, two meshes each, finer ones where the error asks
+//	plan.go      how wide, how dense, how many steps
+//	mesh.go      nodes dense at the strike, differences between them
+//	grid.go      a sweep: eight lanes, one for each set of parameters
+//	step.go      one step back in time, TR-BDF2
+//	exercise.go  where exercise begins, found inside its cell
+//	interval.go  the same where exercise is optimal between two prices only
+//	jump.go      an ex-date
+//	read.go      values and derivatives between nodes
+//	certain.go   options whose underlying has no volatility to speak of
+//
+// The package knows nothing of positions, currencies or dates. Its arithmetic
+// gives the same bits on every machine; see package vec for how.
+package pde
