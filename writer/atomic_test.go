@@ -322,73 +322,138 @@ func TestOthersAreLeftAlone(t *testing.T) {
 	wantEntries(t, out, want...)
 }
 
-const childVariable = "WRITER_TEST_CHILD_OUT"
+const (
+	childVariable  = "WRITER_TEST_CHILD_OUT"
+	renameVariable = "WRITER_TEST_CHILD_TWO_RENAMES"
+)
 
 // TestMain lets the test program be its own child, which writes the same folder
 // over and over until it is killed.
 func TestMain(m *testing.M) {
-	if out := os.Getenv(childVariable); out != "" {
-		for i := 0; ; i++ {
-			f, err := NewFolder(out, "day", true)
-			if err == nil {
-				err = fill(f, fmt.Sprint("run ", i))
-			}
-			if err != nil {
-				fmt.Println("child:", err)
-				os.Exit(1)
-			}
-			fmt.Println("done", i)
-		}
+	out := os.Getenv(childVariable)
+	if out == "" {
+		os.Exit(m.Run())
 	}
-	os.Exit(m.Run())
+	for i := 0; ; i++ {
+		f, err := NewFolder(out, "day", true)
+		if err == nil {
+			if os.Getenv(renameVariable) != "" {
+				f.exchange = func(string, string) (bool, error) { return false, nil }
+			}
+			err = fill(f, fmt.Sprint("run ", i))
+		}
+		if err != nil {
+			fmt.Println("child:", err)
+			os.Exit(1)
+		}
+		fmt.Println("done", i)
+	}
 }
 
-// Whenever a run is killed, there are whole old results, whole new ones or
-// none, and the next run finds its way.
-func TestKilled(t *testing.T) {
+// killed starts a child on OUT, waits until it has finished a run or, with
+// fresh, only until it has begun, kills it at a random moment, and returns what
+// it printed.
+func killed(t *testing.T, out string, random *rand.Rand, fresh, twoRenames bool) []string {
+	t.Helper()
 	self, err := os.Executable()
 	if err != nil {
 		t.Fatal(err)
 	}
-	out := t.TempDir()
-	random := rand.New(rand.NewPCG(1, 2))
-	for range 30 {
-		child := exec.Command(self)
-		child.Env = append(os.Environ(), childVariable+"="+out)
-		stdout, err := child.StdoutPipe()
-		if err != nil {
-			t.Fatal(err)
+	child := exec.Command(self)
+	child.Env = append(os.Environ(), childVariable+"="+out)
+	if twoRenames {
+		child.Env = append(child.Env, renameVariable+"=1")
+	}
+	stdout, err := child.StdoutPipe()
+	if err != nil {
+		t.Fatal(err)
+	}
+	if err := child.Start(); err != nil {
+		t.Fatal(err)
+	}
+	lines := bufio.NewScanner(stdout)
+	var printed []string
+	if fresh {
+		for begun := false; !begun; { // until the hidden folder or its lock is there
+			list, _ := os.ReadDir(out)
+			begun = len(list) > 0
 		}
-		if err := child.Start(); err != nil {
-			t.Fatal(err)
-		}
-		lines := bufio.NewScanner(stdout)
-		if !lines.Scan() || !strings.HasPrefix(lines.Text(), "done") {
-			t.Errorf("the child after a kill: %q", lines.Text())
-		}
-		time.Sleep(time.Duration(random.IntN(5000)) * time.Microsecond)
-		if err := child.Process.Kill(); err != nil {
-			t.Fatal(err)
-		}
-		last := ""
-		for lines.Scan() {
-			last = lines.Text()
-		}
-		child.Wait() // it was killed
-		if strings.HasPrefix(last, "child:") {
-			t.Error(last)
-		}
-		if state(t, out) == "" {
-			t.Error("results that were there are gone")
-		}
-		for _, name := range entries(t, out) {
-			if name != "day" && name != ".day"+partSuffix && name != ".day"+lockSuffix {
-				t.Errorf("left behind: %s", name)
-			}
+	} else if lines.Scan() {
+		printed = append(printed, lines.Text())
+	}
+	time.Sleep(time.Duration(random.IntN(4000)) * time.Microsecond)
+	if err := child.Process.Kill(); err != nil {
+		t.Fatal(err)
+	}
+	for lines.Scan() {
+		printed = append(printed, lines.Text())
+	}
+	child.Wait() // it was killed
+	for _, line := range printed {
+		if !strings.HasPrefix(line, "done") {
+			t.Error(line)
 		}
 	}
+	return printed
+}
+
+// Whenever a run is killed, there are whole old results, whole new ones or, at
+// the first run, none; and the next run finds its way.
+func TestKilled(t *testing.T) {
+	random := rand.New(rand.NewPCG(1, 2))
+	t.Run("replacing", func(t *testing.T) {
+		out := t.TempDir()
+		for range 30 {
+			if printed := killed(t, out, random, false, false); len(printed) == 0 {
+				t.Error("the child did not come through after a kill")
+			}
+			if state(t, out) == "" {
+				t.Error("results that were there are gone")
+			}
+			for _, name := range entries(t, out) {
+				if name != "day" && name != ".day"+partSuffix && name != ".day"+lockSuffix {
+					t.Errorf("left behind: %s", name)
+				}
+			}
+		}
+		finishUp(t, out)
+	})
+	t.Run("by two renames", func(t *testing.T) {
+		out := t.TempDir()
+		for range 30 {
+			if printed := killed(t, out, random, false, true); len(printed) == 0 {
+				t.Error("the child did not come through after a kill")
+			}
+			// Between the two renames the old results bear the hidden name.
+			if _, err := os.Stat(filepath.Join(out, ".day"+oldSuffix)); state(t, out) == "" && err != nil {
+				t.Error("results that were there are gone")
+			}
+		}
+		finishUp(t, out)
+	})
+	t.Run("first run", func(t *testing.T) {
+		whole := 0
+		for range 30 {
+			out := t.TempDir()
+			killed(t, out, random, true, false)
+			if state(t, out) != "" {
+				whole++
+			}
+			finishUp(t, out)
+		}
+		t.Logf("%d of 30 had results", whole)
+	})
+}
+
+// finishUp checks that a run after a kill does what it should and leaves
+// nothing else behind.
+func finishUp(t *testing.T, out string) {
+	t.Helper()
 	if err := fill(mustFolder(t, out, true), "last"); err != nil {
 		t.Fatal(err)
+	}
+	if got := state(t, out); got != "last" {
+		t.Errorf("the run after a kill: %q", got)
 	}
 	wantEntries(t, out, "day")
 }

@@ -18,8 +18,10 @@ const (
 	// groupRows is how many rows a row group holds at most.
 	groupRows = 8 * pageRows
 
-	// groupBytes ends a row group early: it bounds the memory that long texts take.
-	groupBytes = 256 << 20
+	// groupBytes ends a row group early: it bounds the memory that long texts
+	// take. It is looked at every checkRows rows.
+	groupBytes = 128 << 20
+	checkRows  = 4 << 10
 )
 
 // Options are settings of the format; the zero value serves.
@@ -75,13 +77,13 @@ func (p *Writer) Write(f *schema.Frame) error {
 		panic("parquet: the frame's columns are not the table's")
 	}
 	for from := 0; from < f.N && p.failed == nil; {
-		// Slices end where pages may end, so that all columns stand at the same
-		// row when the size of the row group is looked at.
-		to := min(f.N, from+pageRows-int(p.groupRows%pageRows))
+		// Slices end at the same rows whatever the frames, and all columns stand
+		// at the same row when the size of the row group is looked at.
+		to := min(f.N, from+checkRows-int(p.groupRows%checkRows))
 		p.failed = p.add(f, from, to)
 		p.groupRows += int64(to - from)
 		from = to
-		if p.failed == nil && p.groupRows%pageRows == 0 && (p.groupRows == groupRows || p.held() > groupBytes) {
+		if p.failed == nil && p.groupRows%checkRows == 0 && (p.groupRows == groupRows || p.held() > groupBytes) {
 			p.failed = p.flush()
 		}
 	}
