@@ -112,6 +112,14 @@ func unused(name string) schema.Note {
 		Message: "this version does not use the file; the tables it reads are " + strings.Join(inputNames(), ", ")}
 }
 
+// FileOf returns the name of the file that holds a table, "" where there is none.
+func (f *Folder) FileOf(table string) string {
+	if in := f.tables[table]; in != nil {
+		return in.name
+	}
+	return ""
+}
+
 // name returns the name of the folder itself, which may be its date.
 func (f *Folder) name() string {
 	if abs, err := filepath.Abs(f.dir); err == nil {

@@ -96,7 +96,7 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 		r.Spot[j], r.Strike[j], r.Time[j] = b.Spot[i], b.Strike[i], b.Time[i]
 		r.Vol[j], r.Rate[j], r.Yield[j] = b.VolUsed[i], b.Rate[i], b.Carry[i]
 		r.Entry[j] = b.EntryPrice[i]
-		r.Sign[j] = sign(b.OptionType[i])
+		r.Sign[j] = orientation(b.OptionType[i])
 		for s := range instrument.Steps {
 			r.TimeAfter[s][j] = e.timeAfter(b, int(i), s)
 		}
@@ -131,7 +131,8 @@ func scatter(to, from []float64, rows []int32) {
 	}
 }
 
-func sign(t schema.Choice) float64 {
+// orientation is +1 for a call, −1 for a put, 0 for neither.
+func orientation(t schema.Choice) float64 {
 	switch t {
 	case schema.Call:
 		return 1

@@ -70,6 +70,7 @@ const (
 	NoHolidays      NoteCode = "no_holidays"
 	FormatDetected  NoteCode = "format_detected"
 	NoPositions     NoteCode = "no_positions"
+	QuoteNotUsed    NoteCode = "quote_not_used"
 )
 
 // NoteCodes is the closed list of warnings.
@@ -85,5 +86,6 @@ var NoteCodes = []CodeDoc{
 	{string(SliceExpired), "a surface has slices that are not after as_of: they are not used"},
 	{string(NoHolidays), "no holidays are given for the calendar: business days are Monday to Friday"},
 	{string(FormatDetected), "the encoding of a file was detected, not declared"},
+	{string(QuoteNotUsed), "quotes gave no volatility and are not in the surface"},
 	{string(NoPositions), "the position file has a header and no rows"},
 }

@@ -64,7 +64,7 @@ func run(ctx context.Context, args []string, stdout, stderr io.Writer) int {
 
 func newApp(stdout, stderr io.Writer) *cli.App {
 	wrongUsage := func(_ *cli.Context, err error, _ bool) error { return &statusError{exitUsage, err} }
-	commands := []*cli.Command{runCommand(), checkCommand(), columnsCommand(), demoCommand()}
+	commands := []*cli.Command{runCommand(), checkCommand(), impliedCommand(), columnsCommand(), demoCommand()}
 	for _, c := range commands {
 		c.OnUsageError, c.HideHelpCommand = wrongUsage, true
 	}
@@ -90,7 +90,7 @@ qualified staff, and local regulation prevails.`,
 		Commands:       commands,
 		Action: func(c *cli.Context) error {
 			if c.Args().Present() {
-				return usagef("there is no command %q; the commands are run, check, columns and demo", c.Args().First())
+				return usagef("there is no command %q; the commands are run, check, implied, columns and demo", c.Args().First())
 			}
 			return cli.ShowAppHelp(c)
 		},

@@ -36,7 +36,7 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 		return nil, err
 	}
 	dicts := schema.NewDicts()
-	mkt, marketNotes, err := market.New(cfg, raw, dicts)
+	mkt, marketNotes, err := buildMarket(folder, cfg, raw, dicts)
 	if err != nil {
 		return nil, err
 	}
@@ -110,6 +110,23 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 		return nil, err
 	}
 	return s, out.finish(s)
+}
+
+// buildMarket builds the market; where run.toml says so, its surfaces are those
+// that the quotes imply.
+func buildMarket(folder *reader.Folder, cfg *schema.Config, raw *schema.Market, dicts *schema.Dicts) (*market.Market, []schema.Note, error) {
+	if !cfg.Vols.FromQuotes {
+		return market.New(cfg, raw, dicts)
+	}
+	raw.Vols = nil
+	bare, _, err := market.New(cfg, raw, dicts)
+	if err != nil {
+		return nil, nil, err
+	}
+	vols, lost := risk.SurfaceOf(risk.Imply(bare, dicts, raw.Quotes), folder.FileOf("quotes"))
+	raw.Vols = vols
+	m, notes, err := market.New(cfg, raw, dicts)
+	return m, append(lost, notes...), err
 }
 
 // timed runs the pipeline and tells how it went.
