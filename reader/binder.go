@@ -40,7 +40,7 @@ type problem struct {
 // NewBinder returns a binder for one goroutine.
 func (p *Positions) NewBinder() *Binder {
 	n := &Binder{
-		p: p, words: newPositionChoices(), vol: volBounds(p.cfg), cells: cells{style: p.o.style},
+		p: p, words: newPositionChoices(), vol: lineVolBounds(p.cfg), cells: cells{style: p.o.style},
 		books: schema.NewInterner(p.dicts.Books), underlyings: schema.NewInterner(p.dicts.Underlyings),
 		currencies: schema.NewInterner(p.dicts.Currencies), strategies: schema.NewInterner(p.dicts.Strategies),
 	}
@@ -121,6 +121,7 @@ func (n *Binder) columns(b *schema.Batch) {
 	n.choices(barrierType, schema.BarrierTypes, n.words.barrierType, b.BarrierType, none)
 	n.numbers(barrier, &anyNumber, b.Barrier, nan, none)
 	n.numbers(rebate, &anyNumber, b.Rebate, nan, none)
+	n.choices(monitoring, schema.Monitorings, n.words.monitoring, b.Monitoring, none)
 	n.dates(averageStart, b.AverageStart, nil, none)
 	n.numbers(averageSoFar, &anyNumber, b.AverageSoFar, nan, none)
 	n.numbers(entryPrice, &anyNumber, b.EntryPrice, nan, none)

@@ -14,8 +14,8 @@ type bounds struct {
 	why      *finding
 }
 
-// Bounds of the columns. A rate or a volatility beyond 1000 % is most often a
-// percentage where a decimal is expected.
+// Bounds of the columns. A rate beyond 1000 % is most often a percentage where a
+// decimal is expected.
 var (
 	anyNumber = bounds{from: math.Inf(-1), to: math.Inf(1)}
 	positive  = bounds{from: 0, to: math.Inf(1), open: true, why: &finding{schema.OutOfRange, "expected a number above 0"}}
@@ -26,14 +26,31 @@ var (
 		`expected a volatility as a decimal, from 0 to 10 (1000 %): 0.20 is 20 %; if the files give percent, set [vols] unit = "percent"`}}
 	volPercent = bounds{from: 0, to: 10, scale: 100, why: &finding{schema.OutOfRange,
 		`expected a volatility in percent, from 0 to 1000, as [vols] unit = "percent" says`}}
+
+	// The volatility of a spread is in units of its price, whatever the others'.
+	volSpread = bounds{from: 0, to: math.Inf(1), why: &finding{schema.OutOfRange, "expected a volatility of 0 or above, in units of the price"}}
+	// A line does not tell the kind of its underlying: how high is too high is for the core to say.
+	volLine        = bounds{from: 0, to: math.Inf(1), why: &finding{schema.OutOfRange, "expected a volatility of 0 or above, as a decimal: 0.20 is 20 %"}}
+	volLinePercent = bounds{from: 0, to: math.Inf(1), scale: 100, why: &finding{schema.OutOfRange, "expected a volatility of 0 or above, in percent: 20 is 20 %"}}
 )
 
-// volBounds are the bounds of a volatility in the unit of the files.
-func volBounds(cfg *schema.Config) bounds {
-	if cfg.Vols.Percent {
+// volBounds are the bounds of a volatility of that kind in the unit of the files.
+func volBounds(cfg *schema.Config, kind schema.Choice) bounds {
+	switch {
+	case kind == schema.Spread:
+		return volSpread
+	case cfg.Vols.Percent:
 		return volPercent
 	}
 	return volDecimal
+}
+
+// lineVolBounds are the bounds of a line's own volatility.
+func lineVolBounds(cfg *schema.Config) bounds {
+	if cfg.Vols.Percent {
+		return volLinePercent
+	}
+	return volLine
 }
 
 // check scales a finite number to our unit and holds it to the bounds. Of a

@@ -16,16 +16,16 @@ func (f *Folder) Market(cfg *schema.Config) (*schema.Market, error) {
 	m := &schema.Market{}
 	for _, t := range []struct {
 		name string
-		row  func(*marketRow) // reads one row and adds it to the market
+		rows func(*schema.Market, *schema.Config) func(*marketRow) // what reads one row into the market
 	}{
-		{"underlyings", underlyingRows(m, cfg)},
-		{"rates", rateRows(m, cfg)},
-		{"vols", volRows(m, cfg)},
-		{"fx", fxRows(m)},
-		{"books", bookRows(m)},
-		{"dividends", dividendRows(m)},
-		{"holidays", holidayRows(m)},
-		{"quotes", quoteRows(m)},
+		{"underlyings", underlyingRows},
+		{"rates", rateRows},
+		{"vols", volRows},
+		{"fx", fxRows},
+		{"books", bookRows},
+		{"dividends", dividendRows},
+		{"holidays", holidayRows},
+		{"quotes", quoteRows},
 	} {
 		if t.name == "quotes" && !cfg.Vols.FromQuotes {
 			if in := f.tables[t.name]; in != nil {
@@ -34,7 +34,7 @@ func (f *Folder) Market(cfg *schema.Config) (*schema.Market, error) {
 			}
 			continue
 		}
-		if err := f.readMarket(t.name, cfg, m, t.row); err != nil {
+		if err := f.readMarket(t.name, cfg, m, t.rows(m, cfg)); err != nil {
 			return nil, err
 		}
 	}

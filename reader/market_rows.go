@@ -9,7 +9,7 @@ import (
 // Each function returns what reads one row of its table into the market.
 
 func underlyingRows(m *schema.Market, cfg *schema.Config) func(*marketRow) {
-	vol, seen := volBounds(cfg), map[string]int64{}
+	seen := map[string]int64{}
 	kinds := choiceFinding("kind")
 	return func(r *marketRow) {
 		u := schema.UnderlyingRow{Line: r.line(), Name: r.key("underlying")}
@@ -29,7 +29,7 @@ func underlyingRows(m *schema.Market, cfg *schema.Config) func(*marketRow) {
 		}
 		u.Price = r.needed("price", price)
 		u.CarryYield = r.optional("carry_yield", 0, rateRange)
-		u.Vol = r.optional("vol", math.NaN(), vol)
+		u.Vol = r.optional("vol", math.NaN(), volBounds(cfg, kind))
 		u.Curve = r.text("curve")
 		u.Lot = r.optional("lot", 1, positive)
 		u.ObservedAt = r.text("observed_at")
@@ -138,12 +138,20 @@ func volRows(m *schema.Market, cfg *schema.Config) func(*marketRow) {
 		minute     int16
 		strike     float64
 	}
-	vol, seen := volBounds(cfg), map[point]int64{}
+	seen := map[point]int64{}
+	spreads := map[string]bool{}
+	for _, u := range m.Underlyings { // read before the vols are
+		spreads[u.Name] = u.Kind == schema.Spread
+	}
 	return func(r *marketRow) {
 		v := schema.VolRow{Line: r.line(), Underlying: r.key("underlying")}
 		v.Day, v.Minute = r.neededDay("expiry")
 		v.Strike = r.needed("strike", anyNumber)
-		v.Vol = r.needed("vol", vol)
+		kind := schema.Choice(0)
+		if spreads[v.Underlying] {
+			kind = schema.Spread
+		}
+		v.Vol = r.needed("vol", volBounds(cfg, kind))
 		if v.Underlying != "" && v.Day != schema.NoDate && !math.IsNaN(v.Strike) {
 			key := point{v.Underlying, v.Day, v.Minute, v.Strike}
 			if first, double := seen[key]; double {
@@ -157,7 +165,7 @@ func volRows(m *schema.Market, cfg *schema.Config) func(*marketRow) {
 	}
 }
 
-func fxRows(m *schema.Market) func(*marketRow) {
+func fxRows(m *schema.Market, _ *schema.Config) func(*marketRow) {
 	seen := map[string]int64{}
 	return func(r *marketRow) {
 		x := schema.FXRow{Line: r.line(), Currency: r.currency("currency")}
@@ -175,7 +183,7 @@ func fxRows(m *schema.Market) func(*marketRow) {
 
 var ownParent = &finding{schema.OutOfRange, "the book is its own parent: name the book above it, or leave the cell empty"}
 
-func bookRows(m *schema.Market) func(*marketRow) {
+func bookRows(m *schema.Market, _ *schema.Config) func(*marketRow) {
 	seen := map[string]int64{}
 	return func(r *marketRow) {
 		b := schema.BookRow{Line: r.line(), Book: r.key("book"), Parent: r.text("parent"), Owner: r.text("owner")}
@@ -192,7 +200,7 @@ func bookRows(m *schema.Market) func(*marketRow) {
 	}
 }
 
-func dividendRows(m *schema.Market) func(*marketRow) {
+func dividendRows(m *schema.Market, _ *schema.Config) func(*marketRow) {
 	return func(r *marketRow) {
 		d := schema.DividendRow{Line: r.line(), Underlying: r.key("underlying")}
 		d.ExDate, _ = r.neededDay("ex_date")
@@ -203,7 +211,7 @@ func dividendRows(m *schema.Market) func(*marketRow) {
 	}
 }
 
-func holidayRows(m *schema.Market) func(*marketRow) {
+func holidayRows(m *schema.Market, _ *schema.Config) func(*marketRow) {
 	return func(r *marketRow) {
 		h := schema.HolidayRow{Line: r.line(), Calendar: r.key("calendar")}
 		h.Day, _ = r.neededDay("date")

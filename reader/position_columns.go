@@ -22,6 +22,7 @@ const (
 	barrierType
 	barrier
 	rebate
+	monitoring
 	averageStart
 	averageSoFar
 	entryPrice
@@ -32,13 +33,13 @@ const (
 // positionChoices are the closed lists among them and what to say of a word
 // that is in none.
 type positionChoices struct {
-	instrument, optionType, exercise, payoff, barrierType *finding
+	instrument, optionType, exercise, payoff, barrierType, monitoring *finding
 }
 
 func newPositionChoices() positionChoices {
 	return positionChoices{
 		instrument: choiceFinding("instrument"), optionType: choiceFinding("option_type"), exercise: choiceFinding("exercise"),
-		payoff: choiceFinding("payoff"), barrierType: choiceFinding("barrier_type"),
+		payoff: choiceFinding("payoff"), barrierType: choiceFinding("barrier_type"), monitoring: choiceFinding("monitoring"),
 	}
 }
 

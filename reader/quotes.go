@@ -14,7 +14,7 @@ var (
 
 // quoteRows returns what reads one quote into the market. A refused quote stands
 // among the quotes, so that each can be answered, and is no fault of the market.
-func quoteRows(m *schema.Market) func(*marketRow) {
+func quoteRows(m *schema.Market, _ *schema.Config) func(*marketRow) {
 	return func(r *marketRow) {
 		q := schema.QuoteRow{Line: r.line(), Underlying: r.key("underlying"), Exercise: schema.European}
 		q.Day, q.Minute = r.neededDay("expiry")
