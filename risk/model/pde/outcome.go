@@ -4,8 +4,8 @@ import "math"
 
 // Steps by which the lanes differ.
 const (
-	volBump  = 0.02 // of the volatility
-	rateBump = 2e-3 // over max(1, T)
+	volBump  = 0.015 // of the volatility
+	rateBump = 1e-3 // over max(1, T)
 )
 
 // bumped returns the terms of all lanes.

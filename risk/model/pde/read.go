@@ -8,6 +8,7 @@ const readNodes = 6
 // reading is how V and its derivatives by S are read at a price: by the
 // polynomial through nodes on the same side of any boundary.
 type reading struct {
+	x            float64
 	first, nodes int
 	f, fs, fss   [readNodes]float64
 }
@@ -19,7 +20,7 @@ type reading struct {
 func (c *reading) aim(m *mesh, x float64, from, until int) {
 	k := min(readNodes, until-from)
 	i := min(max(m.beyond(x)-k/2, from), until-k)
-	c.first, c.nodes = i, k
+	c.x, c.first, c.nodes = x, i, k
 	p := m.s[i : i+k]
 	for a := range k {
 		v, d, dd, q := 1.0, 0.0, 0.0, 1.0
@@ -95,7 +96,7 @@ func (g *grid) read(c *reading, v []row, j int, x float64) point {
 			return point{value: float64(g.sign*x) + (g.pay[edge] - float64(g.sign*g.s[edge])) + g.offset[j], slope: g.sign, exercised: true}
 		}
 	}
-	if c.nodes == 0 || c.first < from || c.first+c.nodes > until || c.nodes < min(readNodes, until-from) {
+	if c.x != x || c.first < from || c.first+c.nodes > until || c.nodes < min(readNodes, until-from) {
 		c.aim(&g.mesh, x, from, until)
 	}
 	return point{value: c.sum(&c.f, v, j), slope: c.sum(&c.fs, v, j), curve: c.sum(&c.fss, v, j)}

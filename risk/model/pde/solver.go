@@ -42,7 +42,7 @@ const finestLevel = 3
 // both ways, extrapolated to none; see the package comment. Sensitivities to the
 // spot and to time are read from the finished values, those to volatility, rate
 // and yield from lanes that sweep along on the same mesh with one of them moved
-// by 2 % and 0.002/max(1, T). Lines of one volatility share a sweep where there
+// by 1.5 % and 0.001/max(1, T). Lines of one volatility share a sweep where there
 // are no dividends, for then V depends on S/K only.
 //
 // Shapes: Strike and Vol have one length; r is resized to it, and nothing is
