@@ -61,6 +61,7 @@ func (n *Binder) Bind(pc *Piece, b *schema.Batch) error {
 	for len(b.Extra) < len(n.p.extra) {
 		b.Extra = append(b.Extra, schema.Strings{})
 	}
+	b.Extra = b.Extra[:len(n.p.extra)]
 	rows := &pc.rows
 	if pc.text {
 		rows = &n.split
