@@ -101,17 +101,14 @@ func same(got, want string) error {
 func TestBytesDependOnRowsOnly(t *testing.T) {
 	const n = 5000
 	want := write(t, Options{}, invent.Rows(0, n, schema.NewDict()))
-	for _, size := range []int{1, 255, 256, 1000, n} {
-		for workers := 1; workers <= 4; workers++ {
-			dict := schema.NewDict()
-			for i := range 40 * workers { // other codes for the same texts
-				dict.Code(fmt.Sprintf("Book %02d", 39-i%40))
-			}
-			var frames []*schema.Frame
-			for from := 0; from < n; from += size {
-				frames = append(frames, invent.Rows(from, min(size, n-from), dict))
-			}
-			if got := write(t, Options{Workers: workers}, frames...); got != want {
+	for workers := 1; workers <= 4; workers++ {
+		dict := schema.NewDict()
+		for i := range 40 * workers { // other codes for the same texts
+			dict.Code(fmt.Sprintf("Book %02d", 39-i%40))
+		}
+		whole := invent.Rows(0, n, dict)
+		for _, size := range []int{1, 255, 256, 1000, n} {
+			if got := write(t, Options{Workers: workers}, invent.Slices(whole, size)...); got != want {
 				t.Errorf("frames of %d rows, %d workers: other bytes", size, workers)
 			}
 		}

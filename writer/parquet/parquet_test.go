@@ -146,12 +146,8 @@ func TestRoundTrip(t *testing.T) {
 }
 
 func TestRowGroups(t *testing.T) {
-	dict := schema.NewDict()
-	var frames []*schema.Frame
 	const n = 2*groupRows + 5000
-	for from := 0; from < n; from += 4096 {
-		frames = append(frames, invent.Rows(from, min(4096, n-from), dict))
-	}
+	frames := invent.Slices(invent.Rows(0, n, schema.NewDict()), 4096)
 	data := write(t, invent.Table, Options{Workers: 2, Version: "1.2.3", Metadata: map[string]string{"b": "2", "a": "1"}}, frames...)
 	compare(t, data, frames...)
 	footer := open(t, data).Footer
@@ -170,23 +166,20 @@ func TestRowGroups(t *testing.T) {
 // workers, or on which code a text got.
 func TestBytesDependOnRowsOnly(t *testing.T) {
 	const n = groupRows + 3*pageRows/2
-	for codec, sizes := range map[string][]int{"zstd": {n, 4096, 1000, pageRows}, "snappy": {n, 1000}, "gzip": {1000}} {
-		var want []byte
-		for _, size := range sizes {
-			for workers := 1; workers <= 3; workers++ {
-				dict := schema.NewDict()
-				for i := range 40 * workers { // other codes for the same texts
-					dict.Code(fmt.Sprintf("Book %02d", 39-i%40))
+	want := map[string][]byte{}
+	for workers := 1; workers <= 3; workers++ {
+		dict := schema.NewDict()
+		for i := range 40 * workers { // other codes for the same texts
+			dict.Code(fmt.Sprintf("Book %02d", 39-i%40))
+		}
+		whole := invent.Rows(0, n, dict)
+		for codec, sizes := range map[string][]int{"zstd": {n, 4096, 1000}, "snappy": {n}, "gzip": {1000}} {
+			for _, size := range sizes {
+				got := write(t, invent.Table, Options{Workers: workers, Compression: codec}, invent.Slices(whole, size)...)
+				if want[codec] == nil {
+					want[codec] = got
 				}
-				var frames []*schema.Frame
-				for from := 0; from < n; from += size {
-					frames = append(frames, invent.Rows(from, min(size, n-from), dict))
-				}
-				got := write(t, invent.Table, Options{Workers: workers, Compression: codec}, frames...)
-				if want == nil {
-					want = got
-				}
-				if !bytes.Equal(got, want) {
+				if !bytes.Equal(got, want[codec]) {
 					t.Errorf("%s, frames of %d rows, %d workers: other bytes", codec, size, workers)
 				}
 			}

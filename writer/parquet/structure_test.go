@@ -289,7 +289,7 @@ func TestDictionaryGivenUp(t *testing.T) {
 		"nothing at first":   {3 * pageRows, func(i int) string { return strings.Repeat("x", i/pageRows) }, [][2]int{{2, 1}}},
 		"different later":    {3 * pageRows, func(i int) string { return number(max(0, i-pageRows)) }, [][2]int{{3, 0}}},
 		"a large dictionary": {2 * pageRows, func(i int) string { return strings.Repeat("x", 500) + number(i/8) }, nil},
-		"long texts":         {3000, func(i int) string { return strings.Repeat("y", 30_000) + number(i%2000) }, nil},
+		"long texts":         {200, func(i int) string { return strings.Repeat("y", 30_000) + number(i%150) }, nil},
 	} {
 		table, f := texts(c.n, c.text)
 		data := write(t, table, Options{}, f)

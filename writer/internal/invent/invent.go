@@ -121,3 +121,28 @@ func hash(x uint64) uint64 {
 	x = (x ^ x>>27) * 0x94d049bb133111eb
 	return x ^ x>>31
 }
+
+// Slices cuts a frame into frames of size rows that share its memory.
+func Slices(f *schema.Frame, size int) []*schema.Frame {
+	var list []*schema.Frame
+	for from := 0; from < f.N; from += size {
+		to := min(from+size, f.N)
+		part := &schema.Frame{N: to - from, Cols: append([]schema.Vector(nil), f.Cols...)}
+		for i := range part.Cols {
+			v := &part.Cols[i]
+			v.Strings.Start, v.Strings.End = cut(v.Strings.Start, from, to), cut(v.Strings.End, from, to)
+			v.Codes, v.Choices = cut(v.Codes, from, to), cut(v.Choices, from, to)
+			v.Floats, v.Ints = cut(v.Floats, from, to), cut(v.Ints, from, to)
+			v.Dates, v.Bools = cut(v.Dates, from, to), cut(v.Bools, from, to)
+		}
+		list = append(list, part)
+	}
+	return list
+}
+
+func cut[T any](s []T, from, to int) []T {
+	if s == nil {
+		return nil
+	}
+	return s[from:to]
+}
