@@ -52,14 +52,13 @@ func TestRejects(t *testing.T) {
 		{"A,North,ALBA,option,1,,,call,,,10,19.06.2026", "expiry", schema.BadDate, "19.06.2026", "expected a date"},
 		{"A,North,ALBA,option,1,,,call,,,10,2026-06-31", "expiry", schema.BadDate, "2026-06-31", "no such day"},
 		{"A,North,ALBA,option,1,,,call,,,10,2026-06-19T15:00Z", "expiry", schema.BadDate, "2026-06-19T15:00Z", "own clock"},
-		{"A,North,ALBA,option,1,,,call,,,10,2026-06-19,20", "vol", schema.OutOfRange, "20", "percent"},
-		{"A,North,ALBA,option,1,,,call,,,10,2026-06-19,-0.2", "vol", schema.OutOfRange, "-0.2", "from 0 to 10"},
+		{"A,North,ALBA,option,1,,,call,,,10,2026-06-19,-0.2", "vol", schema.OutOfRange, "-0.2", "0 or above"},
 		{"A,North,ALBA,stock,1,,,,,,,,,12x", "mark", schema.BadNumber, "12x", "expected a number"},
 		{"A,North,ALBA,stock,1,,,,,,,,,,,,soon", "average_start", schema.BadDate, "soon", "expected a date"},
 		{"A,North,ALBA,stock,1,,,,,,,,,,,,,\x02", "strategy", schema.BadText, "\x02", "control character"},
 		{"A,North,ALBA,stock,1,,,,,,,,,,,,,,\xFF", "note", schema.BadText, "\xFF", "not valid UTF-8"},
 		{"A,North,ALBA,option,x,,,call,,,,", "quantity", schema.BadNumber, "x", "; also: strike, expiry"},
-		{"A,North,ALBA,option,,-1,,call,,,1,,99", "quantity", schema.MissingValue, "", "; also: multiplier, expiry, vol"},
+		{"A,North,ALBA,option,,-1,,call,,,1,,-9", "quantity", schema.MissingValue, "", "; also: multiplier, expiry, vol"},
 		{"A,North,\"ALBA,stock,1", "", schema.BadRow, "", "not closed"},
 	} {
 		row := c.row
@@ -140,14 +139,14 @@ func TestRejectOfMappedColumn(t *testing.T) {
 func TestVolsInPercent(t *testing.T) {
 	s := mustRead(t, map[string]string{
 		"run.toml":        smallest["run.toml"] + "[vols]\nunit = \"percent\"\n",
-		"positions.csv":   "line_id,book,underlying,instrument,quantity,option_type,strike,expiry,vol\nA,North,ALBA,option,1,call,10,2026-06-19,20\nB,North,ALBA,option,1,call,10,2026-06-19,1001\n",
+		"positions.csv":   "line_id,book,underlying,instrument,quantity,option_type,strike,expiry,vol\nA,North,ALBA,option,1,call,10,2026-06-19,20\nB,North,ALBA,option,1,call,10,2026-06-19,-1001\n",
 		"underlyings.csv": "underlying,kind,currency,price,vol\nALBA,equity,USD,100,25\n",
 		"vols.csv":        "underlying,expiry,strike,vol\nALBA,2026-06-19,100,22.5\n",
 	})
 	if got := []float64{s.batches[0].Vol[0], s.market.Underlyings[0].Vol, s.market.Vols[0].Vol}; got[0] != 0.2 || got[1] != 0.25 || got[2] != 0.225 {
 		t.Errorf("%v", got)
 	}
-	if r := s.rejects(); len(r) != 1 || r[0].Code != schema.OutOfRange || r[0].Value != "1001" || !strings.Contains(r[0].Reason, "in percent") {
+	if r := s.rejects(); len(r) != 1 || r[0].Code != schema.OutOfRange || r[0].Value != "-1001" || !strings.Contains(r[0].Reason, "in percent") {
 		t.Errorf("%+v", r)
 	}
 }

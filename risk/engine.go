@@ -101,6 +101,9 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 			r.TimeAfter[s][j] = e.timeAfter(b, int(i), s)
 		}
 	}
+	if p.payoff > schema.Vanilla {
+		e.gatherTerms(b, r, rows)
+	}
 	price(r)
 	for k, s := range r.Greeks.Slices() {
 		scatter(*greekColumns(&b.Results)[k], *s, rows)

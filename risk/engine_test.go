@@ -19,11 +19,14 @@ type desk struct {
 
 // line is a position in words; zero values are absent.
 type line struct {
-	underlying, currency            string
-	instrument, kind, payoff, style schema.Choice // kind is call or put
-	quantity, multiplier            float64
-	strike, vol, entry              float64
-	days                            int // to expiry
+	underlying, currency             string
+	instrument, kind, payoff, style  schema.Choice // kind is call or put
+	quantity, multiplier             float64
+	strike, vol, entry               float64
+	days                             int // to expiry
+	payout, barrier, rebate, average float64
+	barrierType, monitoring          schema.Choice
+	start                            int // days to the start of the average
 }
 
 func newDesk(t *testing.T) *desk {
@@ -74,12 +77,15 @@ func (d *desk) batch(lines []line) *schema.Batch {
 		b.Book[i] = d.dicts.Books.Code("B")
 		b.Underlying[i] = d.dicts.Underlyings.Code(l.underlying)
 		b.Currency[i] = d.dicts.Currencies.Code(l.currency)
-		b.Strategy[i], b.BarrierType[i] = 0, 0
+		b.Strategy[i], b.BarrierType[i], b.Monitoring[i] = 0, l.barrierType, l.monitoring
 		b.Instrument[i], b.OptionType[i], b.Payoff[i], b.Exercise[i] = l.instrument, l.kind, l.payoff, l.style
 		b.Quantity[i], b.Multiplier[i] = or(l.quantity, 1), or(l.multiplier, 1)
 		b.Strike[i], b.Vol[i], b.EntryPrice[i] = or(l.strike, nan), or(l.vol, nan), or(l.entry, nan)
-		b.Mark[i], b.Payout[i], b.Barrier[i], b.Rebate[i], b.AverageSoFar[i] = nan, nan, nan, nan, nan
+		b.Mark[i], b.Payout[i], b.Barrier[i], b.Rebate[i], b.AverageSoFar[i] = nan, or(l.payout, nan), or(l.barrier, nan), or(l.rebate, nan), or(l.average, nan)
 		b.Expiry[i], b.ExpiryMinute[i], b.AverageStart[i] = schema.NoDate, schema.NoMinute, schema.NoDate
+		if l.start != 0 {
+			b.AverageStart[i] = d.cfg.AsOf.Day + schema.Date(l.start)
+		}
 		if l.days != 0 {
 			b.Expiry[i] = d.cfg.AsOf.Day + schema.Date(l.days)
 		}

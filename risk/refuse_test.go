@@ -36,6 +36,23 @@ func TestRefusals(t *testing.T) {
 	american, digital, other, zero, huge := call("U"), call("U"), call("U"), call("U"), call("U")
 	american.style, digital.payoff, other.currency, zero.strike, huge.quantity = schema.American, schema.CashDigital, "USD", -1, 1e307
 	huge.multiplier = 1e300
+	onSpread := digital
+	onSpread.underlying, onSpread.payout = "gap", 5
+	barrier := func(kind schema.Choice, level float64) line {
+		l := call("U")
+		l.payoff, l.barrierType, l.barrier = schema.Barrier, kind, level
+		return l
+	}
+	lowRebate := barrier(schema.UpIn, 120)
+	lowRebate.rebate = -1
+	asian := func(start int, average float64) line {
+		l := call("U")
+		l.payoff, l.start, l.average = schema.AsianArithmetic, start, average
+		return l
+	}
+	strayBarrier, strayType, strayPayout, strayRebate, strayMonitoring, strayStart, strayAverage, percent := call("U"), call("U"), call("U"), call("U"), call("U"), call("U"), call("U"), call("U")
+	strayBarrier.barrier, strayType.barrierType, strayPayout.payout, strayRebate.rebate = 90, schema.DownIn, 5, 1
+	strayMonitoring.monitoring, strayStart.start, strayAverage.average, percent.vol = schema.Daily, 9, 90, 20
 	for _, c := range []struct {
 		what   string
 		l      line
@@ -49,8 +66,24 @@ func TestRefusals(t *testing.T) {
 		{"no curve", call("usd"), schema.NoRate, "underlying", "no curve USD"},
 		{"no volatility", call("bare"), schema.NoVol, "vol", "give the line a vol"},
 		{"american", american, schema.Unsupported, "exercise", "never priced as European"},
-		{"digital", digital, schema.Unsupported, "payoff", "cash_digital"},
-		{"option on a spread", call("gap"), schema.Unsupported, "underlying", "spread"},
+		{"digital on a spread", onSpread, schema.Unsupported, "payoff", "cash_digital on an underlying of kind spread"},
+		{"digital without its amount", digital, schema.MissingValue, "payout", "cash_digital needs"},
+		{"barrier without a kind", barrier(0, 90), schema.MissingValue, "barrier_type", "barrier needs"},
+		{"barrier without a level", barrier(schema.DownOut, 0), schema.MissingValue, "barrier", "its level"},
+		{"barrier below 0", barrier(schema.DownOut, -1), schema.OutOfRange, "barrier", "positive"},
+		{"rebate below 0", lowRebate, schema.OutOfRange, "rebate", "negative"},
+		{"Asian without a start", asian(0, 0), schema.MissingValue, "average_start", "first day"},
+		{"Asian that starts too late", asian(51, 0), schema.OutOfRange, "average_start", "on or before the expiry"},
+		{"Asian begun, without its average", asian(-5, 0), schema.MissingValue, "average_so_far", "past"},
+		{"Asian with an average below 0", asian(-5, -1), schema.OutOfRange, "average_so_far", "positive"},
+		{"vanilla with a barrier", strayBarrier, schema.TermsMismatch, "barrier", "vanilla knows no barrier"},
+		{"vanilla with a barrier type", strayType, schema.TermsMismatch, "barrier_type", "mend the payoff"},
+		{"vanilla with a payout", strayPayout, schema.TermsMismatch, "payout", "mend the payoff"},
+		{"vanilla with a rebate", strayRebate, schema.TermsMismatch, "rebate", "mend the payoff"},
+		{"vanilla watched daily", strayMonitoring, schema.TermsMismatch, "monitoring", "mend the payoff"},
+		{"vanilla with an average", strayStart, schema.TermsMismatch, "average_start", "mend the payoff"},
+		{"vanilla with an average so far", strayAverage, schema.TermsMismatch, "average_so_far", "mend the payoff"},
+		{"volatility in percent", percent, schema.OutOfRange, "vol", "unit ="},
 		{"negative futures price", call("fut"), schema.OutOfRange, "underlying", "not positive"},
 		{"negative share price", line{underlying: "neg", instrument: schema.Stock}, schema.OutOfRange, "underlying", "negative"},
 		{"strike", zero, schema.OutOfRange, "strike", "positive"},
@@ -113,6 +146,14 @@ func TestTableIsWhole(t *testing.T) {
 					l := line{underlying: "U", instrument: inst, payoff: payoff, style: style, strike: 100, days: 50}
 					if inst == schema.Option {
 						l.kind = schema.Put
+					}
+					switch payoff {
+					case schema.CashDigital:
+						l.payout = 5
+					case schema.Barrier:
+						l.barrierType, l.barrier = schema.DownOut, 80
+					case schema.AsianGeometric, schema.AsianArithmetic:
+						l.start = 10
 					}
 					b := d.price(l)
 					at := productAt[inst][kind][payoff][style]

@@ -4,7 +4,6 @@ import (
 	"math"
 
 	"nightbook/risk/market"
-	"nightbook/risk/vec"
 	"nightbook/schema"
 )
 
@@ -53,10 +52,14 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 	if !e.exchange(b, i) {
 		return noRoute
 	}
-	at := productAt[inst][u.Kind][b.Payoff[i]][b.Exercise[i]]
+	var payoff, exercise schema.Choice
+	if inst == schema.Option {
+		payoff, exercise = b.Payoff[i], b.Exercise[i]
+	}
+	at := productAt[inst][u.Kind][payoff][exercise]
 	if at == 0 {
-		code, column, reason := unsupported(inst, u.Kind, b.Payoff[i], b.Exercise[i])
-		return refuse(b, i, code, column, choiceText(b, i, column, u), reason)
+		code, column, reason := unsupported(inst, u.Kind, payoff, exercise)
+		return refuse(b, i, code, column, choiceText(b, i, column), reason)
 	}
 	p := &products[at-1]
 	route := 2 * (at - 1)
@@ -73,13 +76,17 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 		}
 		return route
 	}
-	if inst == schema.Option {
+	if inst == schema.Option && u.Kind != schema.Spread {
 		if u.Price <= 0 {
 			return refuse(b, i, schema.OutOfRange, "underlying", u.Name, "the price of "+u.Name+" is not positive, and model "+schema.Models[p.model]+" needs it to be")
 		}
 		if b.Strike[i] <= 0 {
 			return refuse(b, i, schema.OutOfRange, "strike", number(b.Strike[i]), "the strike must be positive for model "+schema.Models[p.model])
 		}
+	}
+
+	if inst == schema.Option && !e.checkTerms(b, i) {
+		return noRoute
 	}
 
 	t := e.term(u, b, i, w)
@@ -96,7 +103,7 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 	}
 	b.Time[i], b.Rate[i], b.Forward[i] = t.time, t.rate, t.forward
 	b.Curve[i] = u.CurveID
-	if b.Carry[i] = u.Yield; u.Kind == schema.FuturePrice {
+	if b.Carry[i] = u.Yield; u.Kind == schema.FuturePrice || u.Kind == schema.Spread {
 		b.Carry[i] = t.rate
 	}
 	if !t.curveInside {
@@ -135,12 +142,17 @@ func (e *Engine) exchange(b *schema.Batch, i int) bool {
 func (e *Engine) volatility(b *schema.Batch, i int, u *market.Underlying, t term, w *Worker) bool {
 	switch {
 	case !math.IsNaN(b.Vol[i]):
-		b.VolUsed[i], b.VolSource[i] = b.Vol[i], schema.VolFromLine
+		vol, tooHigh := e.market.LineVol(b.Vol[i], u.Kind)
+		if tooHigh != "" {
+			refuse(b, i, schema.OutOfRange, "vol", number(b.Vol[i]), tooHigh)
+			return false
+		}
+		b.VolUsed[i], b.VolSource[i] = vol, schema.VolFromLine
 	case u.VolFault != "":
 		refuse(b, i, schema.BadMarketData, "underlying", u.Name, u.VolFault)
 		return false
 	case u.Surface != nil:
-		vol, inside := u.Surface.Vol(vec.LogRatio1(b.Strike[i], t.forward), t.time)
+		vol, inside := u.Surface.Vol(b.Strike[i], t.forward, t.time)
 		b.VolUsed[i], b.VolSource[i] = vol, schema.VolFromSurface
 		if !inside {
 			w.note(b, i, schema.SurfaceFlatEnd, b.Underlying[i])
@@ -183,15 +195,13 @@ func (e *Engine) term(u *market.Underlying, b *schema.Batch, i int, w *Worker) t
 	return t
 }
 
-// choiceText returns the text at fault for a product that does not exist.
-func choiceText(b *schema.Batch, i int, column string, u *market.Underlying) string {
+// choiceText returns the word at fault for a product that does not exist.
+func choiceText(b *schema.Batch, i int, column string) string {
 	switch column {
-	case "instrument":
-		return schema.Instruments[b.Instrument[i]]
 	case "exercise":
 		return schema.Exercises[b.Exercise[i]]
 	case "payoff":
 		return schema.Payoffs[b.Payoff[i]]
 	}
-	return u.Name
+	return schema.Instruments[b.Instrument[i]]
 }

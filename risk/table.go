@@ -1,6 +1,9 @@
 package risk
 
 import (
+	"cmp"
+	"slices"
+
 	"nightbook/risk/instrument"
 	"nightbook/schema"
 )
@@ -15,25 +18,41 @@ type product struct {
 }
 
 // products is the whole list of what can be priced.
-var products = []product{
-	{schema.Option, schema.Equity, schema.Vanilla, schema.European, schema.ModelBSM, instrument.VanillaOnSpot, instrument.ExpiredVanilla},
-	{schema.Option, schema.Index, schema.Vanilla, schema.European, schema.ModelBSM, instrument.VanillaOnSpot, instrument.ExpiredVanilla},
-	{schema.Option, schema.FX, schema.Vanilla, schema.European, schema.ModelGarmanKohlhagen, instrument.VanillaOnSpot, instrument.ExpiredVanilla},
-	{schema.Option, schema.FuturePrice, schema.Vanilla, schema.European, schema.ModelBlack76, instrument.VanillaOnFuture, instrument.ExpiredVanilla},
+var products = slices.Concat(
+	options(schema.Vanilla, 0, instrument.VanillaOnSpot, instrument.VanillaOnFuture, instrument.ExpiredVanilla),
+	options(schema.CashDigital, schema.ModelCashOrNothing, instrument.CashDigitalOnSpot, instrument.CashDigitalOnFuture, instrument.ExpiredCashDigital),
+	options(schema.AssetDigital, schema.ModelAssetOrNothing, instrument.AssetDigitalOnSpot, instrument.AssetDigitalOnFuture, instrument.ExpiredAssetDigital),
+	options(schema.Barrier, schema.ModelReinerRubinstein, instrument.BarrierOnSpot, instrument.BarrierOnFuture, instrument.ExpiredBarrier),
+	options(schema.AsianGeometric, schema.ModelKemnaVorst, instrument.GeometricAsianOnSpot, instrument.GeometricAsianOnFuture, instrument.ExpiredGeometricAsian),
+	options(schema.AsianArithmetic, schema.ModelTurnbullWakeman, instrument.ArithmeticAsianOnSpot, instrument.ArithmeticAsianOnFuture, instrument.ExpiredArithmeticAsian),
+	[]product{
+		{schema.Option, schema.Spread, schema.Vanilla, schema.European, schema.ModelBachelier, instrument.VanillaOnSpread, instrument.ExpiredVanilla},
 
-	{schema.Forward, schema.Equity, 0, 0, schema.ModelDiscountedForward, instrument.ForwardOnSpot, instrument.ExpiredForward},
-	{schema.Forward, schema.Index, 0, 0, schema.ModelDiscountedForward, instrument.ForwardOnSpot, instrument.ExpiredForward},
-	{schema.Forward, schema.FX, 0, 0, schema.ModelDiscountedForward, instrument.ForwardOnSpot, instrument.ExpiredForward},
-	{schema.Forward, schema.FuturePrice, 0, 0, schema.ModelDiscountedForward, instrument.ForwardOnFuture, instrument.ExpiredForward},
+		{schema.Forward, schema.Equity, 0, 0, schema.ModelDiscountedForward, instrument.ForwardOnSpot, instrument.ExpiredForward},
+		{schema.Forward, schema.Index, 0, 0, schema.ModelDiscountedForward, instrument.ForwardOnSpot, instrument.ExpiredForward},
+		{schema.Forward, schema.FX, 0, 0, schema.ModelDiscountedForward, instrument.ForwardOnSpot, instrument.ExpiredForward},
+		{schema.Forward, schema.FuturePrice, 0, 0, schema.ModelDiscountedForward, instrument.ForwardOnFuture, instrument.ExpiredForward},
 
-	{schema.Stock, schema.Equity, 0, 0, schema.ModelMark, instrument.Stock, nil},
-	{schema.Stock, schema.Index, 0, 0, schema.ModelMark, instrument.Stock, nil},
-	{schema.Stock, schema.FX, 0, 0, schema.ModelMark, instrument.Stock, nil},
+		{schema.Stock, schema.Equity, 0, 0, schema.ModelMark, instrument.Stock, nil},
+		{schema.Stock, schema.Index, 0, 0, schema.ModelMark, instrument.Stock, nil},
+		{schema.Stock, schema.FX, 0, 0, schema.ModelMark, instrument.Stock, nil},
 
-	{schema.Future, schema.FuturePrice, 0, 0, schema.ModelMark, instrument.Future, instrument.Future},
-	{schema.Future, schema.Spread, 0, 0, schema.ModelMark, instrument.Future, instrument.Future},
+		{schema.Future, schema.FuturePrice, 0, 0, schema.ModelMark, instrument.Future, instrument.Future},
+		{schema.Future, schema.Spread, 0, 0, schema.ModelMark, instrument.Future, instrument.Future},
 
-	{schema.Cash, 0, 0, 0, schema.ModelFace, instrument.Cash, nil},
+		{schema.Cash, 0, 0, 0, schema.ModelFace, instrument.Cash, nil},
+	},
+)
+
+// options are the products of one European payoff on the kinds whose price is
+// lognormal. Model 0 is the kind's own name for the Black–Scholes–Merton formula.
+func options(payoff, model schema.Choice, onSpot, onFuture, expired func(*instrument.Run)) []product {
+	return []product{
+		{schema.Option, schema.Equity, payoff, schema.European, cmp.Or(model, schema.ModelBSM), onSpot, expired},
+		{schema.Option, schema.Index, payoff, schema.European, cmp.Or(model, schema.ModelBSM), onSpot, expired},
+		{schema.Option, schema.FX, payoff, schema.European, cmp.Or(model, schema.ModelGarmanKohlhagen), onSpot, expired},
+		{schema.Option, schema.FuturePrice, payoff, schema.European, cmp.Or(model, schema.ModelBlack76), onFuture, expired},
+	}
 }
 
 // productAt finds a product by its four choices: index into products + 1, 0
@@ -56,8 +75,6 @@ func unsupported(instrument, kind, payoff, exercise schema.Choice) (schema.Rejec
 		return schema.KindMismatch, "instrument", "a future line needs an underlying of kind future or spread: list the contract in underlyings with its futures price"
 	case exercise == schema.American:
 		return schema.Unsupported, "exercise", "American exercise is not priced by this version, and is never priced as European: take the line out or price it elsewhere"
-	case payoff != schema.Vanilla:
-		return schema.Unsupported, "payoff", "payoff " + schema.Payoffs[payoff] + " is not priced by this version: take the line out or price it elsewhere"
 	}
-	return schema.Unsupported, "underlying", "options on an underlying of kind " + schema.Kinds[kind] + " are not priced by this version: take the line out or price it elsewhere"
+	return schema.Unsupported, "payoff", "payoff " + schema.Payoffs[payoff] + " on an underlying of kind " + schema.Kinds[kind] + " is not priced by this version: take the line out or price it elsewhere"
 }

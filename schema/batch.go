@@ -41,6 +41,7 @@ type Positions struct {
 	BarrierType  []Choice
 	Barrier      []float64
 	Rebate       []float64
+	Monitoring   []Choice
 	AverageStart []Date
 	AverageSoFar []float64
 	EntryPrice   []float64
@@ -166,7 +167,7 @@ func (b *Batch) codes() []*[]Code {
 }
 
 func (b *Batch) choices() []*[]Choice {
-	return []*[]Choice{&b.Instrument, &b.OptionType, &b.Exercise, &b.Payoff, &b.BarrierType, &b.Status, &b.Model, &b.VolSource}
+	return []*[]Choice{&b.Instrument, &b.OptionType, &b.Exercise, &b.Payoff, &b.BarrierType, &b.Monitoring, &b.Status, &b.Model, &b.VolSource}
 }
 
 func (b *Batch) texts() []*Strings {

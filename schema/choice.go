@@ -107,22 +107,38 @@ const (
 	ModelMark   // price as quoted
 	ModelFace   // cash at face value
 	ModelPayoff // payoff at the current price: expired lines
+	ModelBachelier
+	ModelCashOrNothing
+	ModelAssetOrNothing
+	ModelReinerRubinstein
+	ModelKemnaVorst
+	ModelTurnbullWakeman
+)
+
+// How often a barrier is watched.
+const (
+	Continuous Choice = 1 + iota
+	Daily
+	Weekly
+	Monthly
 )
 
 // The closed lists, by column.
 var (
-	Instruments   = Choices{"", "option", "stock", "future", "forward", "cash"}
-	Kinds         = Choices{"", "equity", "index", "fx", "future", "spread"}
-	OptionTypes   = Choices{"", "call", "put"}
-	Exercises     = Choices{"", "european", "american"}
-	Payoffs       = Choices{"", "vanilla", "cash_digital", "asset_digital", "barrier", "asian_geometric", "asian_arithmetic"}
-	BarrierTypes  = Choices{"", "down_in", "down_out", "up_in", "up_out"}
-	Statuses      = Choices{"", "priced", "expired", "rejected"}
-	VolSources    = Choices{"", "line", "surface", "underlying"}
-	Models        = Choices{"", "black_scholes_merton", "black_76", "garman_kohlhagen", "discounted_forward", "mark", "face", "payoff"}
+	Instruments  = Choices{"", "option", "stock", "future", "forward", "cash"}
+	Kinds        = Choices{"", "equity", "index", "fx", "future", "spread"}
+	OptionTypes  = Choices{"", "call", "put"}
+	Exercises    = Choices{"", "european", "american"}
+	Payoffs      = Choices{"", "vanilla", "cash_digital", "asset_digital", "barrier", "asian_geometric", "asian_arithmetic"}
+	BarrierTypes = Choices{"", "down_in", "down_out", "up_in", "up_out"}
+	Statuses     = Choices{"", "priced", "expired", "rejected"}
+	VolSources   = Choices{"", "line", "surface", "underlying"}
+	Models       = Choices{"", "black_scholes_merton", "black_76", "garman_kohlhagen", "discounted_forward", "mark", "face", "payoff",
+		"bachelier", "cash_or_nothing", "asset_or_nothing", "reiner_rubinstein", "kemna_vorst", "turnbull_wakeman"}
+	Monitorings   = Choices{"", "continuous", "daily", "weekly", "monthly"}
 	choiceColumns = map[string]Choices{
 		"instrument": Instruments, "kind": Kinds, "option_type": OptionTypes, "exercise": Exercises,
-		"payoff": Payoffs, "barrier_type": BarrierTypes, "status": Statuses, "vol_source": VolSources, "model": Models,
+		"payoff": Payoffs, "barrier_type": BarrierTypes, "status": Statuses, "vol_source": VolSources, "model": Models, "monitoring": Monitorings,
 	}
 )
 

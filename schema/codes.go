@@ -21,6 +21,7 @@ const (
 	NoVol             RejectCode = "no_vol"
 	NoFX              RejectCode = "no_fx"
 	BadMarketData     RejectCode = "bad_market_data"
+	TermsMismatch     RejectCode = "terms_mismatch"
 	Unsupported       RejectCode = "unsupported"
 	NotFinite         RejectCode = "not_finite"
 )
@@ -49,6 +50,7 @@ var RejectCodes = []CodeDoc{
 	{string(NoVol), "there is no volatility for the line: not its own, no surface, no flat volatility"},
 	{string(NoFX), "there is no rate into the reporting currency"},
 	{string(BadMarketData), "the market data that the line needs has a refused row"},
+	{string(TermsMismatch), "the line has terms that its payoff does not know"},
 	{string(Unsupported), "this version does not price such a line"},
 	{string(NotFinite), "the result is not a finite number"},
 }
@@ -78,7 +80,7 @@ var NoteCodes = []CodeDoc{
 	{string(FileNotUsed), "a file of the snapshot folder is not used by this version"},
 	{string(ColumnEmptyName), "a column has no name in the header and is dropped"},
 	{string(BookNotInTree), "a book is not in books: it is added up as a book of its own at the top"},
-	{string(CarryIgnored), "carry_yield of an underlying of kind future has no meaning and is not used"},
+	{string(CarryIgnored), "carry_yield of an underlying of kind future or spread has no meaning and is not used"},
 	{string(VolFallback), "the underlying has no surface: its flat volatility was used"},
 	{string(CurveFlatEnd), "an expiry lies beyond the ends of the zero curve: the end rate was used"},
 	{string(SurfaceFlatEnd), "an expiry lies beyond the ends of the surface: the end slice was used"},

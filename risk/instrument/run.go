@@ -18,6 +18,7 @@ type Run struct {
 	Sign                                 []float64 // +1 call, −1 put, 0 neither
 	Entry                                []float64 // last margined price of a future
 	TimeAfter                            [Steps][]float64
+	Terms
 
 	model.Greeks
 	After [Steps][]float64 // price with TimeAfter to expiry, all else held
@@ -42,7 +43,7 @@ func (r *Run) slices() []*[]float64 {
 	for _, g := range r.Greeks.Slices() {
 		s = append(s, g)
 	}
-	return s
+	return append(s, r.Terms.slices()...)
 }
 
 // held says that the passing of a day changes nothing.

@@ -17,6 +17,7 @@ type Market struct {
 	AsOf      schema.Moment
 	Calendar  *Calendar
 	Reporting string
+	percent   bool // volatilities came in percent
 
 	underlyings []*Underlying // by schema.Code of the underlying
 	fx          []Currency    // by schema.Code of the currency
@@ -39,6 +40,26 @@ type Underlying struct {
 	VolFault   string // not "": neither surface nor flat volatility may be used
 	Dividends  []schema.Date
 }
+
+// LineVol returns a line's own volatility in the unit of its kind, or what is
+// wrong with it. The reader has taken it for one in the files' unit; that of a
+// spread is in units of its price, whatever the others'.
+func (m *Market) LineVol(vol float64, kind schema.Choice) (float64, string) {
+	switch {
+	case kind == schema.Spread && m.percent:
+		return 100 * vol, ""
+	case kind == schema.Spread:
+		return vol, ""
+	case vol > maxVol && m.percent:
+		return vol, `expected a volatility in percent, from 0 to 1000, as [vols] unit = "percent" says`
+	case vol > maxVol:
+		return vol, `expected a volatility as a decimal, from 0 to 10 (1000 %): 0.20 is 20 %; if the files give percent, set [vols] unit = "percent"`
+	}
+	return vol, ""
+}
+
+// maxVol is the largest volatility that is believed: 1000 %.
+const maxVol = 10
 
 // Problem is a reason for refusing a line.
 type Problem struct {
@@ -71,7 +92,7 @@ func (m *Market) FX(c schema.Code) Currency {
 // New builds a market. The notes are warnings about the snapshot. The error is
 // a fault that leaves no line to price.
 func New(cfg *schema.Config, raw *schema.Market, d *schema.Dicts) (*Market, []schema.Note, error) {
-	b := builder{cfg: cfg, raw: raw, dicts: d, m: &Market{AsOf: cfg.AsOf, Reporting: cfg.ReportingCurrency}, faults: faultsByName(raw.Faults)}
+	b := builder{cfg: cfg, raw: raw, dicts: d, m: &Market{AsOf: cfg.AsOf, Reporting: cfg.ReportingCurrency, percent: cfg.Vols.Percent}, faults: faultsByName(raw.Faults)}
 	if f := b.faults["holidays"]; len(f) > 0 {
 		return nil, nil, errors.New("holidays has refused rows, and every line's theta_cash_1bd depends on it: mend " + f.any())
 	}
@@ -217,7 +238,7 @@ func (b *builder) underlying(r schema.UnderlyingRow, vols []schema.VolRow, divid
 	if at, bad := b.faults["dividends"][r.Name]; bad {
 		u.Fault = "its cash dividends have a refused row: mend " + at
 	}
-	if r.Kind == schema.FuturePrice && r.CarryYield != 0 {
+	if (r.Kind == schema.FuturePrice || r.Kind == schema.Spread) && r.CarryYield != 0 {
 		u.Yield = 0
 		b.note(schema.CarryIgnored, r.Name, "carry_yield %v of %s is not used: a futures price carries nothing", r.CarryYield, r.Name)
 	}
@@ -234,11 +255,11 @@ func (b *builder) underlying(r schema.UnderlyingRow, vols []schema.VolRow, divid
 	if len(vols) == 0 {
 		return u
 	}
-	if u.Curve == nil || r.Price <= 0 {
+	if u.Curve == nil || r.Price <= 0 && r.Kind != schema.Spread {
 		u.VolFault = "its volatility surface needs a forward price, and there is none: see its curve and price"
 		return u
 	}
-	s, past, err := newSurface(vols, b.cfg.AsOf, func(T float64) float64 {
+	s, past, err := newSurface(vols, b.cfg.AsOf, r.Kind == schema.Spread, func(T float64) float64 {
 		rate, _ := u.Curve.Rate(T)
 		return u.Forward(rate, T)
 	})
@@ -268,7 +289,7 @@ func joinDates(days []schema.Date) string {
 
 // Forward returns the forward price to T years at a zero rate.
 func (u *Underlying) Forward(rate, T float64) float64 {
-	if u.Kind == schema.FuturePrice || T <= 0 {
+	if u.Kind == schema.FuturePrice || u.Kind == schema.Spread || T <= 0 {
 		return u.Price
 	}
 	return u.Price * vec.Exp1(float64((rate-u.Yield)*T))

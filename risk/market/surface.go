@@ -13,15 +13,24 @@ import (
 // Surface is an implied volatility surface.
 //
 // Computes the total variance w(k, T) = σ²T at log forward moneyness
-// k = ln(K/F(T)). Within a slice, w is the monotone piecewise cubic of Fritsch
+// k = ln(K/F(T)), of a spread at absolute moneyness k = K − F(T). Within a slice, w is the monotone piecewise cubic of Fritsch
 // and Butland in k, flat beyond the end strikes. Between two expiries, w is
 // linear in T at the same k. Before the first and beyond the last expiry, σ is
 // that of the end slice at the same k.
-// Units: T in years, k dimensionless, σ per √year.
+// Units: T in years, k dimensionless, σ per √year; of a spread k and σ in units
+// of its price.
 // Source: F. N. Fritsch and J. Butland, A method for constructing local
 // monotone piecewise cubic interpolants, SIAM J. Sci. Stat. Comput. 5 (1984).
 type Surface struct {
-	slices []slice // by T ascending
+	slices   []slice // by T ascending
+	absolute bool    // of a spread
+}
+
+func moneyness(strike, forward float64, absolute bool) float64 {
+	if absolute {
+		return strike - forward
+	}
+	return vec.LogRatio1(strike, forward)
 }
 
 // slice is the smile of one expiry: w and its slope in k at each strike.
@@ -34,11 +43,11 @@ type slice struct {
 type point struct{ strike, vol float64 }
 
 // newSlice builds the smile of one expiry from points with different strikes.
-func newSlice(T, forward float64, points []point) (slice, error) {
+func newSlice(T, forward float64, points []point, absolute bool) (slice, error) {
 	sort.Slice(points, func(i, j int) bool { return points[i].strike < points[j].strike })
 	s := slice{T: T}
 	for i, p := range points {
-		k := vec.LogRatio1(p.strike, forward)
+		k := moneyness(p.strike, forward, absolute)
 		if i > 0 && !(k > s.k[i-1]) {
 			return s, fmt.Errorf("strikes %v and %v of the expiry in %.6g years cannot be told apart", points[i-1].strike, p.strike, T)
 		}
@@ -112,9 +121,13 @@ func (s *slice) variance(k float64) float64 {
 	return float64(float64(v*v)*v*b0) + float64(uv3*(float64(v*b1)+float64(u*b2))) + float64(float64(u*u)*u*b3)
 }
 
-// Vol returns σ at log forward moneyness k and T > 0, and whether T lies
-// within the expiries.
-func (s *Surface) Vol(k, T float64) (vol float64, inside bool) {
+// Vol returns σ at a strike, where the forward to T > 0 is forward, and whether T
+// lies within the expiries.
+func (s *Surface) Vol(strike, forward, T float64) (vol float64, inside bool) {
+	return s.at(moneyness(strike, forward, s.absolute), T)
+}
+
+func (s *Surface) at(k, T float64) (vol float64, inside bool) {
 	n := len(s.slices)
 	i := sort.Search(n, func(i int) bool { return s.slices[i].T >= T })
 	if i == n {
@@ -148,7 +161,7 @@ func (s *Surface) calendarFall() int {
 // newSurface builds a surface from the rows of one underlying. forward gives
 // the forward price to a time. It returns the days of the slices that are not
 // after as_of, which are left out; without any other slice the surface is nil.
-func newSurface(rows []schema.VolRow, asOf schema.Moment, forward func(T float64) float64) (*Surface, []schema.Date, error) {
+func newSurface(rows []schema.VolRow, asOf schema.Moment, absolute bool, forward func(T float64) float64) (*Surface, []schema.Date, error) {
 	byTime := map[float64][]point{}
 	var past []schema.Date
 	for _, r := range rows {
@@ -161,9 +174,9 @@ func newSurface(rows []schema.VolRow, asOf schema.Moment, forward func(T float64
 	}
 	slices.Sort(past)
 	past = slices.Compact(past)
-	s := &Surface{}
+	s := &Surface{absolute: absolute}
 	for T, points := range byTime {
-		sl, err := newSlice(T, forward(T), points)
+		sl, err := newSlice(T, forward(T), points, absolute)
 		if err != nil {
 			return nil, past, err
 		}

@@ -26,7 +26,7 @@ func smile(rng *rand.Rand, n int) []point {
 func TestSliceAgreesWithGeneralLibrary(t *testing.T) {
 	rng := rand.New(rand.NewPCG(1, 1))
 	for range 200 {
-		s, err := newSlice(0.7, 100, smile(rng, 2+rng.IntN(12)))
+		s, err := newSlice(0.7, 100, smile(rng, 2+rng.IntN(12)), false)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -48,7 +48,7 @@ func TestSliceIsMonotoneAndMeetsItsPoints(t *testing.T) {
 	rng := rand.New(rand.NewPCG(2, 1))
 	for range 200 {
 		p := smile(rng, 2+rng.IntN(10))
-		s, err := newSlice(0.5, 100, p)
+		s, err := newSlice(0.5, 100, p, false)
 		if err != nil {
 			t.Fatal(err)
 		}
@@ -78,7 +78,7 @@ func TestSurfaceInTime(t *testing.T) {
 	forward := func(T float64) float64 { return 100 * math.Exp(0.1*T) }
 	s, past, err := newSurface([]schema.VolRow{
 		at(365, 90, 0.25), at(365, 110, 0.21), at(730, 90, 0.24), at(730, 150, 0.20), at(-3, 100, 0.5),
-	}, as, forward)
+	}, as, false, forward)
 	if err != nil || len(past) != 1 || len(s.slices) != 2 {
 		t.Fatalf("surface %v, past %v, error %v", s, past, err)
 	}
@@ -91,22 +91,22 @@ func TestSurfaceInTime(t *testing.T) {
 		{1.25, math.Sqrt((0.75*w1 + 0.25*w2) / 1.25), true},
 		{0.3, math.Sqrt(w1), false}, {4, math.Sqrt(w2 / 2), false},
 	} {
-		vol, inside := s.Vol(0.05, x.T)
+		vol, inside := s.at(0.05, x.T)
 		if math.Abs(vol-x.vol) > 1e-15 || inside != x.inside {
 			t.Errorf("Vol(0.05, %v) = %v, %v; want %v, %v", x.T, vol, inside, x.vol, x.inside)
 		}
 	}
 	// flat ends in strike
-	if v, _ := s.Vol(-9, 1); math.Abs(v-0.25) > 1e-15 {
+	if v, _ := s.at(-9, 1); math.Abs(v-0.25) > 1e-15 {
 		t.Errorf("far below the strikes %v, want 0.25", v)
 	}
-	if v, _ := s.Vol(9, 1); math.Abs(v-0.21) > 1e-15 {
+	if v, _ := s.at(9, 1); math.Abs(v-0.21) > 1e-15 {
 		t.Errorf("far above the strikes %v, want 0.21", v)
 	}
 }
 
 func TestOnePointIsAFlatSlice(t *testing.T) {
-	s, err := newSlice(0.25, 100, []point{{120, 0.3}})
+	s, err := newSlice(0.25, 100, []point{{120, 0.3}}, false)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -118,7 +118,7 @@ func TestOnePointIsAFlatSlice(t *testing.T) {
 }
 
 func TestStrikesThatCannotBeToldApart(t *testing.T) {
-	if _, err := newSlice(1, 1, []point{{1, 0.2}, {1, 0.3}}); err == nil {
+	if _, err := newSlice(1, 1, []point{{1, 0.2}, {1, 0.3}}, false); err == nil {
 		t.Error("two volatilities at one strike were taken")
 	}
 }
