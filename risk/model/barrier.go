@@ -38,9 +38,9 @@ type BarrierTerms struct {
 // Special cases: a spot at or beyond H has touched it: an option that dies is
 // worth its rebate, without any sensitivity, an option that comes to life is the
 // vanilla option. σ√T = 0 lets the spot run along its forward.
-// NaN in all results: an input NaN or infinite, S, K or H not within 10^±100, T not
+// NaN in all results: an input NaN or infinite, S, K or H not within 10^±50, T not
 // within 0 … 1000, σ not within 0 … 100, Δ not within 0 … 10, |r|·T or |q|·T above
-// 100, |rebate| above 10^100, a sign, side or knock other than ±1. NaN in
+// 100, |rebate| above 10^50, a sign, side or knock other than ±1. NaN in
 // Residual: an option that has died.
 // Accuracy: the price within 1e-14 of S + K + rebate for ordinary contracts; see
 // the tables of internal/ref/closed_forms for the sensitivities.

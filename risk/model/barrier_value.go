@@ -41,13 +41,14 @@ func barrier[N number[N]](m market[N], o barrierOption) N {
 }
 
 // vanilla is the European option under market m.
-func vanilla[N number[N]](m market[N], k, w float64) N {
+func vanilla[N number[N]](m market[N], strike, w float64) N {
 	f := discounted(m.s, m.q, m.t)
+	k := expOf(m.r.times(m.t).scaled(-1)).scaled(strike)
 	if spread(m) < certainBelow {
-		return exchange(f, expOf(m.r.times(m.t).scaled(-1)).scaled(k), w)
+		return exchange(f, k, w)
 	}
-	forward := logOf(m.s, k).plus(m.r.minus(m.q).times(m.t))
-	return black(f, forward, m.vol.times(sqrtOf(m.t)), w)
+	moneyness := logOf(m.s, strike).plus(m.r.minus(m.q).times(m.t))
+	return black(f, k, moneyness, m.vol.times(sqrtOf(m.t)), w)
 }
 
 // certainBarrier lets the spot run along its forward: it touches the barrier at

@@ -63,3 +63,15 @@ func TestPublishedMonitoring(t *testing.T) {
 		}
 	}
 }
+
+// Haug's book: from memory, reproduced. The arithmetic ones are his example for
+// E. Levy 1992.
+func TestPublishedAsians(t *testing.T) {
+	p := one(0)
+	GeometricAsianPrice(p, one(80), one(85), one(0), one(0), one(0.25), one(0.2), one(0.05), one(-0.03), one(-1))
+	printed(t, "geometric put", p[0], 4.6922)
+	ArithmeticAsianPrice(p, one(6.8), one(6.9), one(0), one(0), one(0.5), one(0.14), one(0.07), one(0.09), one(1))
+	printed(t, "arithmetic call", p[0], 0.0944)
+	ArithmeticAsianPrice(p, one(6.8), one(6.9), one(0), one(0), one(0.5), one(0.14), one(0.07), one(0.09), one(-1))
+	printed(t, "arithmetic put", p[0], 0.2237)
+}

@@ -23,6 +23,7 @@ var referenceTables = []struct {
 	{"bachelier", func(map[string]string) string { return "bachelier" }, 120, 2e-13},
 	{"digital", func(text map[string]string) string { return text["kind"] + " digital" + onFuture[text["on"]] }, 160, 1e-13},
 	{"barrier", func(text map[string]string) string { return "barrier" + onFuture[text["on"]] }, 320, 5e-12},
+	{"asian", func(text map[string]string) string { return text["kind"] + " asian" + onFuture[text["on"]] }, 192, 2e-11},
 }
 
 var onFuture = map[string]string{"spot": "", "future": " on a future"}

@@ -9,9 +9,9 @@ package model
 // and K in one; T years, σ per √year, r and q per year.
 // Special cases: σ√T = 0 pays or does not by the side of the strike on which the
 // forward is; exactly at it half is paid, the limit of a vanishing spread.
-// NaN in all results: an input NaN or infinite, S or K not within 10^±100, T not
+// NaN in all results: an input NaN or infinite, S or K not within 10^±50, T not
 // within 0 … 1000 or σ not within 0 … 100, |r|·T or |q|·T above 100, |P| above
-// 10^100, a sign other than ±1.
+// 10^50, a sign other than ±1.
 // Accuracy: the price within 1e-15 of P·e^(−rT) for |rT| and |qT| below 1; the
 // rounding of S/K moves derivatives by φ(d₂)/(σ√T) ulp, further for each order.
 // Source: M. Rubinstein & E. Reiner, Unscrambling the binary code, Risk 4 (1991).

@@ -65,18 +65,26 @@ func discounted[N number[N]](c, x, t N) N { return c.times(expOf(x.times(t).scal
 // d₁,₂ = m/v ± ½v, on a lognormal forward f against a strike k, both
 // discounted, m = ln(f/k), with standard deviation v of its logarithm.
 //
-// It differentiates f·c(m, v), c = w·(Φ(w·d₁) − e^(−m)·Φ(w·d₂)), by hand: with
-// e^(−m)·φ(d₂) = φ(d₁) the terms of order 1/v² cancel on paper.
-func black[N number[N]](f, m, v N, w float64) N {
+// It is f·c(m, v), c = w·(Φ(w·d₁) − e^(−m)·Φ(w·d₂)), and k·c(m, v) with
+// c = w·(e^m·Φ(w·d₁) − Φ(w·d₂)): the one whose exponential is below 1 is taken,
+// and differentiated by hand. With e^(−m)·φ(d₂) = φ(d₁) the terms of order 1/v²
+// cancel on paper.
+func black[N number[N]](f, k, m, v N, w float64) N {
 	mv, vv := m.value(), v.value()
 	i := 1 / vv
 	d := float64(mv * i)
 	d1, d2 := d+float64(0.5*vv), d-float64(0.5*vv)
-	n1 := float64(w * vec.NormCDF1(float64(w*d1)))
-	n2 := float64(float64(w*vec.NormCDF1(float64(w*d2))) * vec.Exp1(-mv))
-	p := float64(vec.NormPDF1(d1))
-	pd := float64(float64(p*d1) * i)
-	return f.times(m.of2(v, n1-n2, n2, p, float64(p*i)-n2, -pd, float64(pd*d2)))
+	n1, n2 := float64(w*vec.NormCDF1(float64(w*d1))), float64(w*vec.NormCDF1(float64(w*d2)))
+	if mv > 0 {
+		n2 = float64(n2 * vec.Exp1(-mv))
+		p := float64(vec.NormPDF1(d1))
+		pd := float64(float64(p*d1) * i)
+		return f.times(m.of2(v, n1-n2, n2, p, float64(p*i)-n2, -pd, float64(pd*d2)))
+	}
+	n1 = float64(n1 * vec.Exp1(mv))
+	p := float64(vec.NormPDF1(d2))
+	pd := float64(float64(p*d2) * i)
+	return k.times(m.of2(v, n1-n2, n1, p, float64(p*i)+n1, -pd, float64(pd*d1)))
 }
 
 // exchange is black without any spread: max(w·(f − k), 0). At f = k its value is

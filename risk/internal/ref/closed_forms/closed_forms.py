@@ -12,6 +12,7 @@ import sys
 
 from mpmath import mpf, nstr
 
+from asian import ASIAN_INPUTS, MOMENT_INPUTS, MOMENT_RESULTS, asian_lines, asian_values, moment_lines, moment_values
 from barrier import BARRIER_INPUTS, TOUCH_INPUTS, TOUCH_RESULTS, barrier_lines, barrier_values, touch_lines, touch_values
 from digital import DIGITAL_INPUTS, NORMAL_INPUTS, digital_lines, digital_values, normal_lines, normal_values
 from numeric import GREEKS
@@ -21,6 +22,8 @@ TABLES = {
     "touch": (TOUCH_INPUTS, TOUCH_RESULTS, touch_lines, touch_values),
     "digital": (DIGITAL_INPUTS, GREEKS, digital_lines, digital_values),
     "barrier": (BARRIER_INPUTS, GREEKS, barrier_lines, barrier_values),
+    "moments": (MOMENT_INPUTS, MOMENT_RESULTS, moment_lines, moment_values),
+    "asian": (ASIAN_INPUTS, GREEKS, asian_lines, asian_values),
     "bachelier": (NORMAL_INPUTS, GREEKS, normal_lines, normal_values),
 }
 
