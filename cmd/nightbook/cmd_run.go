@@ -83,6 +83,9 @@ output as CSV, in the form of rejects.csv.`,
 	}
 }
 
+// maxWorkers bounds the memory that batches at work take.
+const maxWorkers = 256
+
 func parseOptions(c *cli.Context) (*options, error) {
 	snapshot, err := oneArgument(c, "the snapshot folder")
 	if err != nil {
@@ -92,11 +95,11 @@ func parseOptions(c *cli.Context) (*options, error) {
 		return nil, usagef("--log takes text or json, not %q", f)
 	}
 	o := &options{snapshot: snapshot, asOf: c.String("as-of"), strict: c.Bool("strict"), workers: c.Int("workers")}
-	if c.IsSet("workers") && o.workers < 1 {
-		return nil, usagef("--workers takes a number from 1, not %d", o.workers)
+	if c.IsSet("workers") && (o.workers < 1 || o.workers > maxWorkers) {
+		return nil, usagef("--workers takes a number from 1 to %d, not %d", maxWorkers, o.workers)
 	}
 	if o.workers == 0 {
-		o.workers = runtime.GOMAXPROCS(0)
+		o.workers = min(runtime.GOMAXPROCS(0), maxWorkers)
 	}
 	return o, nil
 }
