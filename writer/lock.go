@@ -28,9 +28,15 @@ func takeLock(path string) (*lock, error) {
 		}
 		// The holder before may have removed the file after it was opened here:
 		// then this lock is on a file that nobody else can find.
-		held, err1 := f.Stat()
-		found, err2 := os.Lstat(path)
-		if err1 == nil && err2 == nil && os.SameFile(held, found) {
+		held, err := f.Stat()
+		if err != nil {
+			return nil, errors.Join(err, f.Close())
+		}
+		found, err := os.Lstat(path)
+		if ignoreAbsent(err) != nil {
+			return nil, errors.Join(err, f.Close())
+		}
+		if err == nil && os.SameFile(held, found) {
 			return &lock{path, f}, nil
 		}
 		f.Close()

@@ -141,10 +141,11 @@ func TestLongTexts(t *testing.T) {
 
 func TestNumbers(t *testing.T) {
 	numbers := []float64{0, 1, -1, 0.1, 1.0 / 3, 123456789.123456789, 9007199254740993, 1e15, 1e300, -1e-300,
-		math.MaxFloat64, math.SmallestNonzeroFloat64, 20.231422587880235, 1e21, 999999999999999}
+		math.MaxFloat64, smallest, -smallest, 20.231422587880235, 1e21, 999999999999999}
+	zeros := []float64{math.Copysign(0, -1), math.SmallestNonzeroFloat64, -smallest / 2}
 	data := book(t, []string{"A"}, func(b *Book) {
 		r := b.Sheet("A").Rows(1)
-		for _, x := range append(numbers, math.Copysign(0, -1)) {
+		for _, x := range append(numbers, zeros...) {
 			r.Begin(0, 0)
 			r.Number(0, x)
 			if err := r.End(); err != nil {
@@ -168,10 +169,12 @@ func TestNumbers(t *testing.T) {
 			t.Errorf("%v comes back as %v (%v)", want, got, err)
 		}
 	}
-	at := len(numbers) + 1
-	if got := raw(t, f, "A", Ref(1, at)); got != "0" {
-		t.Errorf("-0 is written %s", got)
+	for i, x := range zeros {
+		if got := raw(t, f, "A", Ref(1, len(numbers)+i+1)); got != "0" {
+			t.Errorf("%v is written %s", x, got)
+		}
 	}
+	at := len(numbers) + len(zeros)
 	for i, want := range []string{"5", "-5", "9007199254740992", "9007199254740993", "9223372036854775807", "1", "0"} {
 		if got := raw(t, f, "A", Ref(i+1, at+1)); got != want {
 			t.Errorf("whole number or truth value %d is %s, want %s", i, got, want)
@@ -315,7 +318,7 @@ func TestTable(t *testing.T) {
 			switch v.Kind {
 			case schema.KindFloats:
 				x, err := strconv.ParseFloat(got, 64)
-				same = err == nil && x == v.Floats[i]
+				same = err == nil && (x == v.Floats[i] || x == 0 && math.Abs(v.Floats[i]) < smallest)
 			case schema.KindInts:
 				same = got == strconv.FormatInt(v.Ints[i], 10)
 			case schema.KindDates:

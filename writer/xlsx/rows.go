@@ -128,15 +128,18 @@ func (r *Rows) Blank(style int) {
 	r.buf = append(r.buf, "/>"...)
 }
 
-// Number writes a number with all its digits. A number that is not finite is an
-// error: a sheet has no such thing.
+// smallest is the smallest number above 0 that a sheet can hold.
+const smallest = 0x1p-1022
+
+// Number writes a number with all its digits. One too small for a sheet is
+// written as 0; one that is not finite is an error: a sheet has no such thing.
 func (r *Rows) Number(style int, x float64) {
 	r.cell(style)
 	if x-x != 0 {
 		r.fail(fmt.Errorf("cell %s: not a finite number", Ref(r.column, r.next)))
 	}
-	if x == 0 {
-		x = 0 // not -0, which some programs show
+	if math.Abs(x) < smallest {
+		x = 0 // also of -0, which some programs show
 	}
 	r.buf = append(r.buf, "><v>"...)
 	if n := int64(x); float64(n) == x && math.Abs(x) < 1e15 {
