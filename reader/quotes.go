@@ -19,11 +19,8 @@ func quoteRows(m *schema.Market, _ *schema.Config) func(*marketRow) {
 		q := schema.QuoteRow{Line: r.line(), Underlying: r.key("underlying"), Exercise: schema.European}
 		q.Day, q.Minute = r.neededDay("expiry")
 		q.Strike = r.needed("strike", anyNumber)
-		q.OptionType = r.chosen("option_type", schema.OptionTypes, quoteTypes)
-		if q.OptionType == 0 {
-			r.refuse(r.col("option_type"), missing)
-		}
-		if e := r.chosen("exercise", schema.Exercises, quoteStyles); e != 0 {
+		q.OptionType = r.chosen("option_type", schema.OptionTypes, quoteTypes, missing)
+		if e := r.chosen("exercise", schema.Exercises, quoteStyles, nil); e != 0 {
 			q.Exercise = e
 		}
 		nan := math.NaN()
@@ -42,13 +39,17 @@ func quoteRows(m *schema.Market, _ *schema.Config) func(*marketRow) {
 }
 
 // chosen returns a word of a closed list, 0 for an empty cell or a column that
-// is not there.
-func (r *marketRow) chosen(name string, list schema.Choices, other *finding) schema.Choice {
+// is not there; empty, if not nil, is what is wrong with those.
+func (r *marketRow) chosen(name string, list schema.Choices, other, empty *finding) schema.Choice {
 	k := r.col(name)
-	if r.o.at[k] < 0 {
-		return 0
+	var c schema.Choice
+	var why *finding
+	if r.o.at[k] >= 0 {
+		c, why = r.choice(r.o.at[k], r.i, list, other)
 	}
-	c, why := r.choice(r.o.at[k], r.i, list, other)
+	if why == nil && c == 0 {
+		why = empty
+	}
 	if why != nil {
 		r.refuse(k, why)
 	}
