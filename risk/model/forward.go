@@ -13,7 +13,7 @@ func Forward(g *Greeks, spot, strike, time, rate, yield []float64) {
 	for i, s := range spot {
 		t, r, q := time[i], rate[i], yield[i]
 		eq, er := vec.Exp1(0-float64(q*t)), vec.Exp1(0-float64(r*t))
-		a, b := s*eq, strike[i]*er
+		a, b := float64(s*eq), float64(strike[i]*er)
 		g.Price[i] = a - b
 		g.Delta[i] = eq
 		g.Theta[i] = float64(q*a) - float64(r*b)
