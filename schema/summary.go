@@ -16,6 +16,7 @@ type Summary struct {
 	Notes       []Note            // counted together, by code and subject
 	MaxResidual float64           // largest pde_residual of a priced option; NaN without one
 	Inputs      []InputFile
+	LinesFiles  []string // the files that hold every line
 }
 
 // Totals are sums over lines. The measures are in the reporting currency.

@@ -101,6 +101,7 @@ func (out *outputs) table(t schema.Table, format string) (*tableFile, error) {
 	}
 	w, err := writer.NewTable(format, f, t, writer.Options{
 		Compression: out.cfg.Parquet.Compression,
+		Version:     version,
 		Workers:     out.o.workers,
 		Metadata: map[string]string{
 			"nightbook.version": version, "nightbook.schema_revision": strconv.Itoa(schema.Revision),
@@ -176,6 +177,9 @@ func (out *outputs) finish(s *schema.Summary) error {
 	}
 	if err := whole(schema.WarningsOut, "csv", schema.NotesFrame(s.Notes)); err != nil {
 		return err
+	}
+	for _, format := range out.tableFormats() {
+		s.LinesFiles = append(s.LinesFiles, schema.Lines.Name+"."+format)
 	}
 	if out.report != nil {
 		if err := out.report.Finish(s); err != nil {

@@ -2,25 +2,30 @@ package report
 
 import (
 	"fmt"
+	"strings"
 
 	"nightbook/schema"
 	"nightbook/writer/xlsx"
 )
 
 // fillLines completes the sheet of lines, whose rows are already there.
-func (r *Report) fillLines(*schema.Summary) error {
+func (r *Report) fillLines(s *schema.Summary) error {
 	sheet := r.book.Sheet("Lines")
 	r.lines.Finish()
 	sheet.Print(tableHead-1, tableHead, true)
-	return r.top(sheet, "Lines", r.linesNote())
+	return r.top(sheet, "Lines", r.linesNote(s))
 }
 
-// linesNote says which lines are on the sheet.
-func (r *Report) linesNote() string {
+// linesNote says which lines are on the sheet, and where the others are.
+func (r *Report) linesNote(s *schema.Summary) string {
 	shown := int64(r.lines.Written())
 	note := fmt.Sprintf("all %s", count(r.linesSeen, "line"))
 	if shown < r.linesSeen {
-		note = fmt.Sprintf("first %s of %s; all are in lines.parquet or lines.csv", thousands(shown), count(r.linesSeen, "line"))
+		elsewhere := "the others are in no file: run with --formats parquet or csv"
+		if len(s.LinesFiles) > 0 {
+			elsewhere = "all are in " + strings.Join(s.LinesFiles, " and ")
+		}
+		note = fmt.Sprintf("first %s of %s; %s", thousands(shown), count(r.linesSeen, "line"), elsewhere)
 	}
 	if r.lines.Columns() < r.lineColumns {
 		note += fmt.Sprintf("; first %s of %s", thousands(int64(r.lines.Columns())), count(int64(r.lineColumns), "column"))

@@ -130,12 +130,16 @@ func TestLinesSheet(t *testing.T) {
 		note         string
 	}{
 		{n, n, "all 500 lines"},
-		{n - 1, n - 1, "first 499 of 500 lines; all are in lines.parquet or lines.csv"},
-		{65, 65, "first 65 of 500 lines; all are in lines.parquet or lines.csv"},
-		{0, 0, "first 0 of 500 lines; all are in lines.parquet or lines.csv"},
-		{-1, 0, "first 0 of 500 lines; all are in lines.parquet or lines.csv"},
+		{n - 1, n - 1, "first 499 of 500 lines; all are in lines.parquet and lines.csv"},
+		{65, 65, "first 65 of 500 lines; all are in lines.parquet and lines.csv"},
+		{0, 0, "first 0 of 500 lines; all are in lines.parquet and lines.csv"},
+		{-1, 0, "first 0 of 500 lines; the others are in no file: run with --formats parquet or csv"},
 	} {
 		r.summary.Config.Workbook.MaxLines = c.limit
+		r.summary.LinesFiles = []string{"lines.parquet", "lines.csv"}
+		if c.limit < 0 {
+			r.summary.LinesFiles = nil
+		}
 		f := reopen(t, r.workbook(t, 64))
 		rows := sheet(t, f, "Lines")
 		if rows[1][0] != c.note {

@@ -76,7 +76,7 @@ func (r *Report) summaryRows(c cells, s *schema.Summary) error {
 	}
 	c.Begin(0, 0)
 	c.Text(r.look.text, "Lines sheet")
-	c.Text(r.look.text, r.linesNote())
+	c.Text(r.look.text, r.linesNote(s))
 	return c.End()
 }
 
