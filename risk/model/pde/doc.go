@@ -18,7 +18,7 @@
 //	grid.go      a sweep: eight lanes, one for each set of parameters
 //	step.go      one step back in time, TR-BDF2
 //	exercise.go  where exercise begins, found inside its cell
-//	interval.go  the same where exercise is optimal between two prices only
+//	anywhere.go  the same where the exercised prices may be any set
 //	jump.go      an ex-date
 //	read.go      values and derivatives between nodes
 //	certain.go   options whose underlying has no volatility to speak of

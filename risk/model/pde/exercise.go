@@ -9,10 +9,7 @@ type edgeCell struct {
 	pull   float64 // by how much a ghost at the node before raises the excess
 }
 
-// held reports whether the boundary lies before node i.
-func (c *edgeCell) held() bool { return c.excess > -float64(c.pull*c.gain) }
-
-// cell examines node i of lane j.
+// cell examines node i of lane j, the first that is held.
 //
 // At the boundary of optimal exercise the value leaves the payoff smoothly,
 // V − payoff ≈ ½Γ(S−B)², and the equation itself gives ½σ²S²Γ = w(qS − rK), K
@@ -97,21 +94,28 @@ func (g *grid) substitute(dst []row, offset *row) {
 func (g *grid) search(j int, offset float64) int {
 	n := len(g.s)
 	i := min(g.edge[j]+1, n-1)
-	if c := g.cell(i, j, offset); c.held() {
-		for i > 0 {
-			if c := g.cell(i-1, j, offset); !c.held() {
-				break
-			}
+	if g.held(i, j, offset) {
+		for i > 0 && g.held(i-1, j, offset) {
 			i--
 		}
 	} else {
-		for i < n-1 {
-			i++
-			if c := g.cell(i, j, offset); c.held() {
-				break
-			}
+		for i++; i < n-1 && !g.held(i, j, offset); i++ {
 		}
+		i = min(i, n-1)
 	}
 	g.edge[j] = i - 1
 	return i
+}
+
+// held reports whether the boundary lies before node i, all nodes before it being
+// exercised: whether it is worth more than exercise, or would be if it saw the
+// continuation.
+func (g *grid) held(i, j int, offset float64) bool {
+	e := g.z[i][j] - (g.pay[i] + offset)
+	if i == 0 {
+		return e > 0
+	}
+	pull := g.g[i][j]
+	e = fma(pull, g.pay[i-1]+offset, e)
+	return e > 0 || e > -float64(pull*g.gain(i, j, g.s[i]-g.s[i-1]))
 }

@@ -27,7 +27,7 @@ type exercise int
 const (
 	never    exercise = iota // but at expiry
 	oneSided                 // from a boundary to the end of the prices
-	interval                 // between two boundaries
+	anywhere                 // at any prices
 )
 
 // grid is the state of one backward sweep, in prices over strike.
@@ -48,13 +48,17 @@ type grid struct {
 	sum          []row   // running integrals, see shift
 	k            float64 // of M; 0 if there is none yet
 
-	// Nodes first to edge are exercised, first being 0 but for an interval, and
-	// none if edge < first. ghost is by how much the smooth continuation of the
-	// held values exceeds exercise at the edge, ghostFirst at first.
-	edge, first       [lanes]int
-	ghost, ghostFirst row
+	// Nodes up to edge are exercised, none if it is −1; ghost is by how much the
+	// smooth continuation of the held values exceeds exercise there. Where the
+	// exercised prices may be any set, it is kept in any.
+	edge  [lanes]int
+	ghost row
+	any   scattered
+}
 
-	rhs, near, nearInv, nearUp []float64 // one lane, eliminated from the near end
+// exercised reports whether node i of lane j is.
+func (g *grid) exercised(i, j int) bool {
+	return g.right == oneSided && i <= g.edge[j] || g.right == anywhere && g.any.on[j][i]
 }
 
 // open prepares the sweep of a normalised option, at its expiry.
@@ -72,28 +76,28 @@ func (g *grid) open(l *layout, level int, strike float64) {
 		*p = resize(*p, n)
 	}
 	g.sum = resize(g.sum, n+1)
-	if g.right == interval {
-		for _, p := range [...]*[]float64{&g.rhs, &g.near, &g.nearInv, &g.nearUp} {
-			*p = resize(*p, n)
-		}
+	if g.right == anywhere {
+		g.any.size(n)
 	}
-	g.offset, g.ghost, g.ghostFirst = row{}, row{}, row{}
+	g.offset, g.ghost = row{}, row{}
 	edge := -1
 	for i, s := range g.s {
-		p := g.sign * (s - strike)
+		p := float64(g.sign * (s - strike))
 		g.pay[i] = p
 		if p >= 0 {
 			edge = i
 		}
-		v := positiveMean(g.sign*(g.edges[i]-strike), g.sign*(g.edges[i+1]-strike), p)
+		v := positiveMean(float64(g.sign*(g.edges[i]-strike)), float64(g.sign*(g.edges[i+1]-strike)), p)
 		for j := range lanes {
 			g.v[i][j] = v
 		}
 	}
 	for j := range lanes {
-		g.edge[j], g.first[j] = edge, 0
-		if g.right == never {
-			g.edge[j] = -1
+		g.edge[j] = edge
+		if g.right == anywhere {
+			for i := range n {
+				g.any.on[j][i] = i <= edge
+			}
 		}
 	}
 }
@@ -116,8 +120,8 @@ func (g *grid) factor(k float64) {
 	g.k = k
 	var drift, halfVar, growth row
 	for j := range lanes {
-		drift[j] = k * (g.rate[j] - g.yield[j])
-		halfVar[j] = 0.5 * k * float64(g.vol[j]*g.vol[j])
+		drift[j] = float64(k * (g.rate[j] - g.yield[j]))
+		halfVar[j] = float64(float64(0.5*k) * float64(g.vol[j]*g.vol[j]))
 		growth[j] = 1 + float64(k*g.rate[j])
 	}
 	g.factorLanes(&drift, &halfVar, &growth)

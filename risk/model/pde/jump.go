@@ -8,7 +8,11 @@ func (g *grid) exDate(drop float64, offset *row) {
 		g.shift(drop)
 	}
 	g.offset = *offset
-	g.ghost, g.ghostFirst = row{}, row{}
+	g.ghost = row{}
+	if g.right == anywhere {
+		clear(g.any.before)
+		clear(g.any.after)
+	}
 	if g.right != never {
 		for j := range lanes {
 			g.exerciseNow(j)
@@ -63,10 +67,8 @@ func (g *grid) shift(drop float64) {
 			for cell > 0 && (e[cell+1] > x) == ascending {
 				cell--
 			}
-			w := cubic(e[cell:cell+4:cell+4], x)
-			for j := range lanes {
-				at[j] = float64(w[0]*sum[cell][j]) + float64(w[1]*sum[cell+1][j]) + (float64(w[2]*sum[cell+2][j]) + float64(w[3]*sum[cell+3][j]))
-			}
+			w := g.cubic(cell, x)
+			g.blend(&at, sum[cell:cell+4:cell+4], &w)
 		}
 		if i > 0 {
 			h := e[i] - e[i-1]
@@ -78,14 +80,25 @@ func (g *grid) shift(drop float64) {
 	}
 }
 
-// cubic returns the weights of the values at four points in the cubic at x.
-func cubic(p []float64, x float64) (w [4]float64) {
+// cubic returns the weights of the integrals at four edges, the first being cell,
+// in the cubic at x.
+func (g *grid) cubic(cell int, x float64) (w [4]float64) {
+	if len(g.over) == 0 { // for this mesh not known yet
+		g.over = resize(g.over, len(g.edges)-3)
+		for i := range g.over {
+			p := g.edges[i : i+4]
+			g.over[i] = [4]float64{
+				1 / float64(float64((p[0]-p[1])*(p[0]-p[2]))*(p[0]-p[3])),
+				1 / float64(float64((p[1]-p[0])*(p[1]-p[2]))*(p[1]-p[3])),
+				1 / float64(float64((p[2]-p[0])*(p[2]-p[1]))*(p[2]-p[3])),
+				1 / float64(float64((p[3]-p[0])*(p[3]-p[1]))*(p[3]-p[2])),
+			}
+		}
+	}
+	p, o := g.edges[cell:cell+4], &g.over[cell]
 	a, b, c, d := x-p[0], x-p[1], x-p[2], x-p[3]
-	w[0] = float64(float64(b*c)*d) / float64(float64((p[0]-p[1])*(p[0]-p[2]))*(p[0]-p[3]))
-	w[1] = float64(float64(a*c)*d) / float64(float64((p[1]-p[0])*(p[1]-p[2]))*(p[1]-p[3]))
-	w[2] = float64(float64(a*b)*d) / float64(float64((p[2]-p[0])*(p[2]-p[1]))*(p[2]-p[3]))
-	w[3] = float64(float64(a*b)*c) / float64(float64((p[3]-p[0])*(p[3]-p[1]))*(p[3]-p[2]))
-	return w
+	ab, cd := float64(a*b), float64(c*d)
+	return [4]float64{float64(b * cd * o[0]), float64(a * cd * o[1]), float64(ab * d * o[2]), float64(ab * c * o[3])}
 }
 
 // lowTail is V below the lowest edge, value + slope·(S−edge), and its integral
@@ -122,37 +135,30 @@ func (t *lowTail) integral(at *row, x float64) {
 func (g *grid) exerciseNow(j int) {
 	n := len(g.s)
 	offset := g.offset[j]
-	first, edge := 0, -1
-	before := 0.0
-	d := g.pay[0] + offset - g.v[0][j]
+	g.edge[j] = -1
+	before, d := 0.0, g.pay[0]+offset-g.v[0][j]
 	for i := range n {
 		after := 0.0
 		if i < n-1 {
 			after = g.pay[i+1] + offset - g.v[i+1][j]
 		}
-		a, b := 0.5*(before+d), 0.5*(d+after)
+		a, b := float64(0.5*(before+d)), float64(0.5*(d+after))
 		if i == 0 {
 			a = d
 		}
 		if i == n-1 {
 			b = d
 		}
-		if d > 0 {
-			if edge < 0 {
-				first = i
-			}
-			if edge < 0 || edge == i-1 {
-				edge = i
-			}
+		if d > 0 && g.edge[j] == i-1 {
+			g.edge[j] = i
+		}
+		if g.right == anywhere {
+			g.any.on[j][i] = d > 0
 		}
 		if a > 0 || d > 0 || b > 0 {
 			g.v[i][j] += g.gainMean(i, a, d, b)
 		}
 		before, d = d, after
-	}
-	g.first[j], g.edge[j] = first, edge
-	if g.right == oneSided && first > 0 {
-		g.first[j], g.edge[j] = 0, -1
 	}
 }
 
@@ -163,5 +169,5 @@ func (g *grid) gainMean(i int, a, d, b float64) float64 {
 		return d
 	}
 	h, k := g.s[i]-g.edges[i], g.edges[i+1]-g.s[i]
-	return (float64(h*positiveMean(a, d, 0.5*(a+d))) + float64(k*positiveMean(d, b, 0.5*(d+b)))) / (h + k)
+	return (float64(h*positiveMean(a, d, float64(0.5*(a+d)))) + float64(k*positiveMean(d, b, float64(0.5*(d+b))))) / (h + k)
 }

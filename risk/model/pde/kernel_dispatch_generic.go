@@ -13,3 +13,5 @@ func (g *grid) backwardDifference() { g.backwardDifferenceGeneric() }
 func (g *grid) substituteHeld(dst []row, from int, x *row) { g.substituteHeldGeneric(dst, from, x) }
 
 func (g *grid) factorLanes(drift, halfVar, growth *row) { g.factorGeneric(drift, halfVar, growth) }
+
+func (g *grid) blend(dst *row, v []row, w *[4]float64) { blendGeneric(dst, v, w) }

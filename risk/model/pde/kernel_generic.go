@@ -90,3 +90,11 @@ func (g *grid) factorGeneric(drift, halfVar, growth *row) {
 		}
 	}
 }
+
+// blendGeneric is the weighted sum of four rows.
+func blendGeneric(dst *row, v []row, w *[4]float64) {
+	a, b, c, d := &v[0], &v[1], &v[2], &v[3]
+	for j := range lanes {
+		dst[j] = math.FMA(w[3], d[j], math.FMA(w[2], c[j], math.FMA(w[1], b[j], float64(w[0]*a[j]))))
+	}
+}

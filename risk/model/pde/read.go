@@ -52,25 +52,16 @@ type point struct {
 	exercised           bool
 }
 
-// boundary returns the price at the near or far end of the exercised nodes of
-// lane j, NaN if there are none or they reach the end of the mesh.
-func (g *grid) boundary(j int) (at, beyond float64) {
-	first, edge := g.first[j], g.edge[j]
-	at, beyond = math.NaN(), math.NaN()
-	if edge < first {
-		return at, beyond
+// within returns the boundary between the exercised node i and its held
+// neighbour k.
+func (g *grid) within(i, k, j int) float64 {
+	ghost := g.ghost[j]
+	if g.right == anywhere {
+		ghost = g.any.before[k][j]
+		if k < i {
+			ghost = g.any.after[k][j]
+		}
 	}
-	if edge < len(g.s)-1 {
-		at = g.within(edge, edge+1, j, g.ghost[j])
-	}
-	if first > 0 {
-		beyond = g.within(first, first-1, j, g.ghostFirst[j])
-	}
-	return at, beyond
-}
-
-// within returns the boundary between the exercised node i and the held node k.
-func (g *grid) within(i, k, j int, ghost float64) float64 {
 	s, h := g.s[i], g.s[k]-g.s[i]
 	if ghost == 0 {
 		return s
@@ -78,23 +69,83 @@ func (g *grid) within(i, k, j int, ghost float64) float64 {
 	return s + float64(h*min(1, math.Sqrt(ghost/g.gain(k, j, h))))
 }
 
+// region returns nodes from to until−1, those around price x that are all held,
+// or all exercised, in lane j.
+func (g *grid) region(x float64, j int) (from, until int, exercised bool) {
+	n := len(g.s)
+	if g.right == never {
+		return 0, n, false
+	}
+	k := g.beyond(x) // the first node past x
+	i := max(k-1, 0)
+	k = min(k, n-1)
+	exercised = g.exercised(i, j)
+	if exercised != g.exercised(k, j) { // a boundary between them
+		b := 0.0
+		if exercised {
+			b = g.within(i, k, j)
+		} else {
+			b = g.within(k, i, j)
+		}
+		if x != b && (x > b) == (g.s[k] > g.s[i]) {
+			i = k
+			exercised = g.exercised(k, j)
+		} else if x == b {
+			exercised = true
+			if !g.exercised(i, j) {
+				i = k
+			}
+		}
+	}
+	from, until = i, i+1
+	for from > 0 && g.exercised(from-1, j) == exercised {
+		from--
+	}
+	for until < n && g.exercised(until, j) == exercised {
+		until++
+	}
+	return from, until, exercised
+}
+
+// boundaries returns the ends of the exercised prices nearest to x in lane j: the
+// one that a price leaves upwards for a put and downwards for a call, and the
+// other. An end off the mesh, or too close to its end to be known, is NaN.
+func (g *grid) boundaries(x float64, j int) (at, beyond float64) {
+	n := len(g.s)
+	from, until, exercised := g.region(x, j)
+	if !exercised { // on to the exercised prices, those on the side where they are sought first
+		switch {
+		case from > 0:
+			until = from
+		case until < n:
+			from = until
+		default:
+			return math.NaN(), math.NaN()
+		}
+		for from > 0 && g.exercised(from-1, j) {
+			from--
+		}
+		for until < n && g.exercised(until, j) {
+			until++
+		}
+	}
+	const margin = 4 // held nodes beyond a boundary
+	at, beyond = math.NaN(), math.NaN()
+	if until <= n-margin {
+		at = g.within(until-1, until, j)
+	}
+	if from >= margin {
+		beyond = g.within(from, from-1, j)
+	}
+	return at, beyond
+}
+
 // read reads lane j of values v, which are those of now but for a step of time,
 // at price x. c is used again if it suits.
 func (g *grid) read(c *reading, v []row, j int, x float64) point {
-	n := len(g.s)
-	from, until := 0, n
-	if first, edge := g.first[j], g.edge[j]; edge >= first && g.right != never {
-		at, beyond := g.boundary(j)
-		// past says that x is further from exercise than b, seen from node i on
-		past := func(b float64, i, k int) bool { return b == b && (x > b) == (g.s[k] > g.s[i]) && x != b }
-		switch {
-		case past(at, edge, edge+1):
-			from = edge + 1
-		case first > 0 && past(beyond, first, first-1):
-			until = first
-		default:
-			return point{value: float64(g.sign*x) + (g.pay[edge] - float64(g.sign*g.s[edge])) + g.offset[j], slope: g.sign, exercised: true}
-		}
+	from, until, exercised := g.region(x, j)
+	if exercised {
+		return point{value: float64(g.sign*x) + (g.pay[from] - float64(g.sign*g.s[from])) + g.offset[j], slope: g.sign, exercised: true}
 	}
 	if c.x != x || c.first < from || c.first+c.nodes > until || c.nodes < min(readNodes, until-from) {
 		c.aim(&g.mesh, x, from, until)

@@ -128,7 +128,7 @@ func (w *work) sweep(c *Chain, r *Results, core, tolerance float64) {
 	w.plan.lay(lo, hi, strike, c.Vol[lead], c, w.divs, tolerance)
 	for _, g := range [...]*grid{&w.coarse, &w.fine} {
 		g.terms = bumped(c, c.Vol[lead])
-		g.sign, g.right = c.Sign, c.right()
+		g.sign, g.right = c.Sign, w.right(c)
 	}
 	w.aim(c, strike)
 	w.older, w.newer = resize(w.older, len(w.group)), resize(w.newer, len(w.group))
@@ -138,7 +138,7 @@ func (w *work) sweep(c *Chain, r *Results, core, tolerance float64) {
 		worst := 0.0
 		for k, i := range w.group {
 			scale := c.Strike[i] / strike * w.plan.unit
-			w.newer[k].store(&w.older[k], r, i, c, w.divs, scale)
+			w.newer[k].store(&w.older[k], r, i, c, w.divs, &w.plan, level, scale)
 			worst = max(worst, r.Error[i])
 			if r.Error[i] > tolerance*c.Spot {
 				r.Status[i] = Uncertain
@@ -151,15 +151,19 @@ func (w *work) sweep(c *Chain, r *Results, core, tolerance float64) {
 	}
 }
 
-// right returns what kind of exercise region the options of a chain have. A put
-// is exercised for rK − qS > 0, so between two prices only if q < r < 0; a call
-// is the same with S and K, q and r exchanged.
-func (c *Chain) right() exercise {
-	switch {
+// right returns where the options of a chain may be exercised before expiry.
+//
+// The value of a put falls by no more than the spot rises, if q ≥ 0 or if nothing
+// is held deep in the money, and that of a call rises by no more, if q ≥ 0: then
+// the exercised prices reach to the end. Exercise gains where w(qS − rK) > 0: for
+// q < r < 0 a put is exercised between two prices, a call for r < q < 0. A deep
+// put with q < 0 that is held for a dividend leaves exercised prices on both sides.
+func (w *work) right(c *Chain) exercise {
+	switch cash := len(w.divs) > 0; {
 	case !c.American:
 		return never
-	case c.Sign < 0 && c.Rate < 0 && c.Yield < c.Rate, c.Sign > 0 && c.Yield < 0 && c.Rate < c.Yield:
-		return interval
+	case c.Sign < 0 && c.Yield < 0 && (cash || c.Rate < 0 && c.Yield < c.Rate), c.Sign > 0 && c.Yield < 0 && c.Rate < c.Yield:
+		return anywhere
 	}
 	return oneSided
 }

@@ -22,8 +22,8 @@ func (g *grid) step(dt float64, offsetMid, offset *row) {
 	if k := float64(0.5 * gamma * dt); k != g.k {
 		g.factor(k)
 	}
-	if g.right == interval {
-		g.stepInterval(offsetMid, offset)
+	if g.right == anywhere {
+		g.stepAnywhere(offsetMid, offset)
 		return
 	}
 	n := len(g.s)
@@ -39,7 +39,7 @@ func (g *grid) step(dt float64, offsetMid, offset *row) {
 	}
 	var y, held row
 	for j := range lanes {
-		held[j] = 0.5 * (offsetMid[j] - g.offset[j])
+		held[j] = float64(0.5 * (offsetMid[j] - g.offset[j]))
 	}
 	g.explicitNode(n-1, &y, offsetMid)
 	g.explicitHeld(high, n-1, &y)
@@ -70,14 +70,14 @@ func (g *grid) explicitNode(i int, y, offsetMid *row) {
 // continuation of the held ones.
 func (g *grid) trapezoid(i, j int, offsetMid *row) float64 {
 	a, b, c := g.v[max(i-1, 0)][j], g.v[i][j], g.v[min(i+1, len(g.s)-1)][j]
-	if i == g.edge[j]+1 && i > g.first[j] {
+	switch {
+	case g.right == oneSided && i == g.edge[j]+1:
 		a += g.ghost[j]
-	}
-	if i == g.first[j]-1 && i < g.edge[j] {
-		c += g.ghostFirst[j]
+	case g.right == anywhere:
+		a, c = a+g.any.before[i][j], c+g.any.after[i][j]
 	}
 	x := fma(g.lo[i][j], a, fma(g.up[i][j], c, float64((2-g.di[i][j])*b)))
-	if i >= g.first[j] && i <= g.edge[j] {
+	if g.exercised(i, j) {
 		x = max(x, b+float64(0.5*(offsetMid[j]-g.offset[j])))
 	}
 	return x

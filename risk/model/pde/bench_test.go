@@ -1,0 +1,59 @@
+package pde_test
+
+import (
+	"testing"
+
+	"nightbook/risk/model/pde"
+)
+
+// Lines a second of one core, each with all sensitivities, an error estimate and
+// the exercise boundary.
+func BenchmarkSolve(b *testing.B) {
+	four := []pde.Dividend{{Time: .1, Amount: 1}, {Time: .35, Amount: 1}, {Time: .6, Amount: 1}, {Time: .85, Amount: 1}}
+	flat := func(c pde.Chain, n int) pde.Chain {
+		for i := range n {
+			c.Strike = append(c.Strike, 80+2*float64(i))
+			c.Vol = append(c.Vol, .25)
+		}
+		return c
+	}
+	one := pde.Chain{Spot: 100, Time: 1, Rate: .05, Yield: .01, Sign: -1, American: true}
+	cash := one
+	cash.Dividends = four
+	call := cash
+	call.Sign = 1
+	european := cash
+	european.American = false
+	for _, c := range []struct {
+		name      string
+		chain     pde.Chain
+		lines     int
+		tolerance float64
+	}{
+		{"american", one, 1, 0},
+		{"american/1e-4", one, 1, 1e-4},
+		{"four_dividends/european", european, 1, 1e-4},
+		{"four_dividends/put", cash, 1, 1e-4},
+		{"four_dividends/call", call, 1, 1e-4},
+		{"four_dividends/call/2e-5", call, 1, 2e-5},
+		{"four_dividends/20_strikes", call, 20, 1e-4},
+		{"20_strikes", one, 20, 1e-4},
+		{"20_strikes/2e-5", one, 20, 2e-5},
+	} {
+		b.Run(c.name, func(b *testing.B) {
+			s := pde.Solver{Tolerance: c.tolerance}
+			var r pde.Results
+			chain := flat(c.chain, c.lines)
+			b.ReportAllocs()
+			for b.Loop() {
+				s.Solve(&chain, &r)
+			}
+			b.ReportMetric(float64(c.lines*b.N)/b.Elapsed().Seconds(), "lines/s")
+			for i, e := range r.Error {
+				if r.Status[i] != pde.Held && r.Status[i] != pde.Exercised || e > max(c.tolerance, 1e-4)*chain.Spot {
+					b.Fatalf("line %d: status %v, error %v", i, r.Status[i], e)
+				}
+			}
+		})
+	}
+}
