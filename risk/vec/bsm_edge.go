@@ -109,12 +109,3 @@ func (b *BSM) edge(want outputs, i int) {
 		b.CarryRho[i], b.Vanna[i], b.Volga[i], b.Charm[i], b.Residual[i] = o.carryRho, o.vanna, o.volga, o.charm, o.residual
 	}
 }
-
-// edgeLines values those of lines lo to hi that are outside the box.
-func (b *BSM) edgeLines(want outputs, lo, hi int) {
-	for i := lo; i < hi; i++ {
-		if !inBox(b.Spot[i], b.Strike[i], b.Time[i], b.Vol[i], b.Rate[i], b.Yield[i], b.Sign[i]) {
-			b.edge(want, i)
-		}
-	}
-}

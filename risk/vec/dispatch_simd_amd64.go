@@ -82,3 +82,12 @@ func normCDFSlice(dst, x []float64) {
 		normCDFGeneric(dst, x)
 	}
 }
+
+// edgeLines values those of lines lo to hi that are outside the box.
+func (b *BSM) edgeLines(want outputs, lo, hi int) {
+	for i := lo; i < hi; i++ {
+		if !inBox(b.Spot[i], b.Strike[i], b.Time[i], b.Vol[i], b.Rate[i], b.Yield[i], b.Sign[i]) {
+			b.edge(want, i)
+		}
+	}
+}

@@ -52,7 +52,7 @@ type serializer struct{ t *thrift.TSerializer }
 
 func newSerializer() *serializer {
 	t := thrift.NewTSerializer()
-	t.Protocol = thrift.NewTCompactProtocolFactory().GetProtocol(t.Transport)
+	t.Protocol = thrift.NewTCompactProtocolFactoryConf(nil).GetProtocol(t.Transport)
 	return &serializer{t}
 }
 

@@ -24,7 +24,7 @@ func decode(t *testing.T, data []byte, into interface {
 	t.Helper()
 	m := thrift.NewTMemoryBuffer()
 	m.Write(data)
-	if err := into.Read(context.Background(), thrift.NewTCompactProtocolFactory().GetProtocol(m)); err != nil {
+	if err := into.Read(context.Background(), thrift.NewTCompactProtocolFactoryConf(nil).GetProtocol(m)); err != nil {
 		t.Fatal(err)
 	}
 	return len(data) - m.Len()

@@ -108,6 +108,7 @@ func writeZip(w io.Writer, parts []part) error {
 	}
 	zw := zip.NewWriter(w)
 	for _, p := range parts {
+		//lint:ignore SA1019 CreateRaw writes this field and does not look at Modified
 		h := &zip.FileHeader{Name: p.name, Method: zip.Deflate, ModifiedDate: dosEpoch}
 		for _, s := range p.pieces {
 			h.CRC32 = combineCRC(h.CRC32, s.sum, s.size)
