@@ -15,7 +15,8 @@ type Solver struct {
 	// means DefaultTolerance.
 	Tolerance float64
 
-	scratch sync.Pool // of *work
+	mu   sync.Mutex
+	free []*work // scratch that no call is using
 }
 
 // work is the scratch of one call.
@@ -62,16 +63,27 @@ func (s *Solver) Solve(c *Chain, r *Results) {
 	if len(c.Strike) != len(c.Vol) {
 		panic("pde: slices of different lengths")
 	}
-	w, _ := s.scratch.Get().(*work)
-	if w == nil {
-		w = new(work)
-	}
 	tolerance := s.Tolerance
 	if !(tolerance > 0) {
 		tolerance = DefaultTolerance
 	}
+	w := s.take()
 	w.solve(c, r, tolerance)
-	s.scratch.Put(w)
+	s.mu.Lock()
+	s.free = append(s.free, w)
+	s.mu.Unlock()
+}
+
+func (s *Solver) take() *work {
+	s.mu.Lock()
+	defer s.mu.Unlock()
+	n := len(s.free) - 1
+	if n < 0 {
+		return new(work)
+	}
+	w := s.free[n]
+	s.free = s.free[:n]
+	return w
 }
 
 func (w *work) solve(c *Chain, r *Results, tolerance float64) {
