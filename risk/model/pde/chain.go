@@ -87,7 +87,7 @@ func resize[T any](s []T, n int) []T {
 	return s[:n]
 }
 
-// clear sets line i to x throughout.
+// fill sets line i to x throughout.
 func (r *Results) fill(i int, x float64, s Status) {
 	for _, c := range r.columns() {
 		(*c)[i] = x

@@ -56,7 +56,8 @@ const finestLevel = 3
 // Sign other than ±1, an escrowed spot worth less than its dividends, or inputs
 // so wide (σ√T beyond 13, say) that prices overflow.
 //
-// Accuracy: the price within the tolerance; see pde_test.go for all outputs.
+// Accuracy: the price within the tolerance, unless the line is Uncertain; see
+// reference_test.go and identities_test.go for all outputs.
 // Source: L. F. Richardson, Phil. Trans. Royal Society A 226 (1927), for the
 // extrapolation; see step, substitute and shift for the rest.
 func (s *Solver) Solve(c *Chain, r *Results) {
