@@ -26,6 +26,10 @@ const (
 // be replaced.
 var ErrExists = errors.New("already exists")
 
+// ErrNotResults is returned where something other than a folder of results
+// bears the name of the folder to write.
+var ErrNotResults = errors.New("is not a folder of results, and is never replaced")
+
 // ErrBusy is returned where another run is writing the same folder.
 var ErrBusy = errors.New("another run is writing it")
 
@@ -44,8 +48,9 @@ type Folder struct {
 }
 
 // NewFolder starts the folder OUT/NAME, making OUT if need be. It fails with
-// ErrExists if OUT/NAME is there and replace is false, and with ErrBusy if
-// another run is writing OUT/NAME. What a killed run left behind is removed.
+// ErrNotResults if OUT/NAME is there and is not a folder of results, with
+// ErrExists if it is one and replace is false, and with ErrBusy if another run
+// is writing OUT/NAME. What a killed run left behind is removed.
 func NewFolder(out, name string, replace bool) (*Folder, error) {
 	if !plainName(name) {
 		return nil, fmt.Errorf("result folder %q: not a plain name", name)
@@ -100,8 +105,12 @@ func (f *Folder) checkTarget() (exists bool, err error) {
 	case err != nil:
 		return false, err
 	case !info.IsDir():
-		return true, fmt.Errorf("%s: %w and is not a folder", f.path(), ErrExists)
-	case !f.replace:
+		return true, fmt.Errorf("%s: %w", f.path(), ErrNotResults)
+	}
+	if err := checkResults(f.path()); err != nil {
+		return true, fmt.Errorf("%s: %w", f.path(), err)
+	}
+	if !f.replace {
 		return true, fmt.Errorf("%s: %w", f.path(), ErrExists)
 	}
 	return true, nil

@@ -4,6 +4,7 @@ import (
 	"bufio"
 	"crypto/sha256"
 	"encoding/hex"
+	"encoding/json"
 	"errors"
 	"fmt"
 	"math/rand/v2"
@@ -14,9 +15,11 @@ import (
 	"strings"
 	"testing"
 	"time"
+
+	"nightbook/schema"
 )
 
-// fill makes a folder of results whose every file says what.
+// fill makes a folder of results whose every file but the manifest says what.
 func fill(f *Folder, what string) error {
 	for i := range 4 {
 		file, err := f.Create(fmt.Sprintf("file%d.txt", i))
@@ -32,7 +35,31 @@ func fill(f *Folder, what string) error {
 			return err
 		}
 	}
+	outputs := f.Outputs()
+	file, err := f.Create(manifestName)
+	if err != nil {
+		return err
+	}
+	if _, err := file.Write(smallManifest(outputs)); err != nil {
+		return err
+	}
+	if err := file.Close(); err != nil {
+		return err
+	}
 	return f.Commit()
+}
+
+// smallManifest is as much of a manifest as tells a folder of results.
+func smallManifest(outputs []schema.OutputFile) []byte {
+	m := manifest{Program: program}
+	for _, o := range outputs {
+		m.Outputs = append(m.Outputs, manifestFile(o))
+	}
+	data, err := json.Marshal(&m)
+	if err != nil {
+		panic(err)
+	}
+	return data
 }
 
 func mustFolder(t *testing.T, out string, replace bool) *Folder {
@@ -56,11 +83,14 @@ func state(t *testing.T, out string) string {
 	if err != nil {
 		t.Fatal(err)
 	}
-	if len(entries) != 4 {
-		t.Fatalf("%d files, want 4", len(entries))
+	if len(entries) != 5 {
+		t.Fatalf("%d files, want 5", len(entries))
 	}
 	what := ""
 	for _, e := range entries {
+		if e.Name() == manifestName {
+			continue
+		}
 		data, err := os.ReadFile(filepath.Join(out, "day", e.Name()))
 		if err != nil {
 			t.Fatal(err)
@@ -193,16 +223,25 @@ func TestAbort(t *testing.T) {
 
 // The folder may have been made by somebody else while the run was at work.
 func TestExistsAtCommit(t *testing.T) {
-	for _, make := range []func(string) error{
-		func(p string) error { return os.Mkdir(p, 0o777) }, // a plain rename would take its place
-		func(p string) error { return os.WriteFile(p, nil, 0o666) },
+	results := func(p string) error {
+		return errors.Join(os.Mkdir(p, 0o777), os.WriteFile(filepath.Join(p, manifestName), smallManifest(nil), 0o666))
+	}
+	for _, c := range []struct {
+		make    func(string) error
+		replace bool
+		want    error
+	}{
+		{func(p string) error { return os.Mkdir(p, 0o777) }, false, ErrNotResults}, // a plain rename would take its place
+		{func(p string) error { return os.Mkdir(p, 0o777) }, true, ErrNotResults},
+		{func(p string) error { return os.WriteFile(p, nil, 0o666) }, true, ErrNotResults},
+		{results, false, ErrExists},
 	} {
 		out := t.TempDir()
-		f := mustFolder(t, out, false)
-		if err := make(filepath.Join(out, "day")); err != nil {
+		f := mustFolder(t, out, c.replace)
+		if err := c.make(filepath.Join(out, "day")); err != nil {
 			t.Fatal(err)
 		}
-		if err := fill(f, "one"); !errors.Is(err, ErrExists) {
+		if err := fill(f, "one"); !errors.Is(err, c.want) {
 			t.Errorf("commit over an existing name: %v", err)
 		}
 		if err := renameNew(f.hidden(partSuffix), f.path()); !errors.Is(err, ErrExists) {
@@ -221,10 +260,59 @@ func TestReplaceRefusesWhatIsNoFolder(t *testing.T) {
 	if err := os.Symlink(elsewhere, filepath.Join(out, "day")); err != nil {
 		t.Fatal(err)
 	}
-	if _, err := NewFolder(out, "day", true); !errors.Is(err, ErrExists) {
+	if _, err := NewFolder(out, "day", true); !errors.Is(err, ErrNotResults) {
 		t.Errorf("a link in the place of the folder: %v", err)
 	}
 	wantEntries(t, out, "day")
+}
+
+// Nothing but a folder of results may be replaced, nor does it count as one.
+func TestOnlyResultsAreReplaced(t *testing.T) {
+	listed := smallManifest([]schema.OutputFile{{Name: "a.csv"}, {Name: "sub"}})
+	for _, c := range []struct {
+		what  string
+		files map[string]string // a name that ends in / is a folder
+		want  [2]error          // without replace and with
+	}{
+		{"results", map[string]string{manifestName: string(listed), "a.csv": ""}, [2]error{ErrExists, nil}},
+		{"an empty folder", nil, [2]error{ErrNotResults, ErrNotResults}},
+		{"a snapshot", map[string]string{"positions.csv": "line_id\n"}, [2]error{ErrNotResults, ErrNotResults}},
+		{"a private file", map[string]string{manifestName: string(listed), "b.csv": ""}, [2]error{ErrNotResults, ErrNotResults}},
+		{"a folder under a listed name", map[string]string{manifestName: string(listed), "sub/": ""}, [2]error{ErrNotResults, ErrNotResults}},
+		{"a folder for a manifest", map[string]string{manifestName + "/": ""}, [2]error{ErrNotResults, ErrNotResults}},
+		{"another program's manifest", map[string]string{manifestName: `{"program":"other"}`}, [2]error{ErrNotResults, ErrNotResults}},
+		{"no JSON", map[string]string{manifestName: "nightbook"}, [2]error{ErrNotResults, ErrNotResults}},
+	} {
+		out := t.TempDir()
+		day := filepath.Join(out, "day")
+		if err := os.Mkdir(day, 0o777); err != nil {
+			t.Fatal(err)
+		}
+		for name, text := range c.files {
+			var err error
+			if folder, ok := strings.CutSuffix(name, "/"); ok {
+				err = os.Mkdir(filepath.Join(day, folder), 0o777)
+			} else {
+				err = os.WriteFile(filepath.Join(day, name), []byte(text), 0o666)
+			}
+			if err != nil {
+				t.Fatal(err)
+			}
+		}
+		for i, replace := range []bool{false, true} {
+			f, err := NewFolder(out, "day", replace)
+			if !errors.Is(err, c.want[i]) {
+				t.Errorf("%s, replace %v: %v, want %v", c.what, replace, err, c.want[i])
+			}
+			if err == nil {
+				f.Abort()
+			}
+			wantEntries(t, out, "day")
+			if got := entries(t, day); len(got) != len(c.files) {
+				t.Errorf("%s, replace %v: %q is left", c.what, replace, got)
+			}
+		}
+	}
 }
 
 func TestNames(t *testing.T) {

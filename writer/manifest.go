@@ -134,7 +134,7 @@ func Manifest(s *schema.Summary, kernel string, outputs []schema.OutputFile) ([]
 		return nil, err
 	}
 	m := manifest{
-		Program:           "nightbook",
+		Program:           program,
 		Version:           s.Version,
 		SchemaRevision:    schema.Revision,
 		Kernel:            kernel,
