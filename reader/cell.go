@@ -22,6 +22,7 @@ var (
 	notComma    = &finding{schema.BadNumber, "expected a number with a decimal comma such as 1.234,5, as [csv] decimal_comma = true says"}
 	notFinite   = &finding{schema.BadNumber, "expected a finite number"}
 	faultCell   = &finding{schema.BadNumber, "the cell holds an error value, or a formula that was never calculated: correct it in the workbook and save that"}
+	storedNaN   = &finding{schema.BadNumber, "the cell holds NaN, which is no number: write null for an empty cell"}
 	notUTF8     = &finding{schema.BadText, "the text is not valid UTF-8: save the file as UTF-8, or declare its encoding in [csv] encoding"}
 	hasControl  = &finding{schema.BadText, "the text holds a control character"}
 	tooLongText = &finding{schema.BadText, "the text is longer than 256 bytes"}
@@ -58,8 +59,8 @@ func (c *cells) text(col, i int) []byte {
 // control characters.
 func (c *cells) name(col, i int) ([]byte, *finding) {
 	b := c.text(col, i)
-	if c.Cell(col, i) == table.Fault {
-		return b, faultCell
+	if why := c.fault(col, i); why != nil {
+		return b, why
 	}
 	return b, checkName(b)
 }
@@ -89,6 +90,17 @@ func checkName(b []byte) *finding {
 	return nil
 }
 
+// fault returns what is wrong with a cell that holds an error instead of a value.
+func (c *cells) fault(col, i int) *finding {
+	switch {
+	case c.Cell(col, i) != table.Fault:
+		return nil
+	case c.Cols[col].Kind == schema.KindFloats:
+		return storedNaN
+	}
+	return faultCell
+}
+
 // number returns a cell's number; NaN is an empty cell.
 func (c *cells) number(col, i int) (float64, *finding) {
 	switch v := &c.Cols[col]; v.Kind {
@@ -97,7 +109,7 @@ func (c *cells) number(col, i int) (float64, *finding) {
 		if math.IsInf(x, 0) {
 			return math.NaN(), notFinite
 		}
-		return x, nil
+		return x, c.fault(col, i)
 	case schema.KindInts:
 		if v.Ints[i] == schema.NoInt {
 			return math.NaN(), nil
@@ -168,8 +180,8 @@ func (c *cells) choice(col, i int, list schema.Choices, other *finding) (schema.
 	if x, ok := findChoice(list, b); ok {
 		return x, nil
 	}
-	if c.Cell(col, i) == table.Fault {
-		return 0, faultCell
+	if why := c.fault(col, i); why != nil {
+		return 0, why
 	}
 	return 0, other
 }
@@ -180,8 +192,8 @@ func (c *cells) currency(col, i int) ([]byte, *finding) {
 	if len(b) == 0 {
 		return nil, nil
 	}
-	if c.Cell(col, i) == table.Fault {
-		return b, faultCell
+	if why := c.fault(col, i); why != nil {
+		return b, why
 	}
 	if len(b) != 3 {
 		return b, notCurrency

@@ -5,6 +5,7 @@ import (
 	"encoding/hex"
 	"math"
 	"math/big"
+	"slices"
 	"strconv"
 
 	"github.com/xitongsys/parquet-go/parquet"
@@ -60,7 +61,7 @@ func (c *column) convert(into *table.Rows, at int) {
 	k := 0 // of the stored values
 	switch c.meaning {
 	case floats:
-		if len(from.floats) == len(c.present) {
+		if len(from.floats) == len(c.present) && !slices.ContainsFunc(from.floats, math.IsNaN) {
 			v.Floats = append(v.Floats, from.floats...)
 			return
 		}
@@ -69,6 +70,9 @@ func (c *column) convert(into *table.Rows, at int) {
 			if present {
 				x = from.floats[k]
 				k++
+				if math.IsNaN(x) {
+					fault(into, at, len(v.Floats))
+				}
 			}
 			v.Floats = append(v.Floats, x)
 		}
@@ -109,6 +113,14 @@ func (c *column) convert(into *table.Rows, at int) {
 			v.Strings.Append(c.clock)
 		}
 	}
+}
+
+// fault marks a cell of a vector of floats as a stored NaN, which is no null.
+func fault(into *table.Rows, at, row int) {
+	if into.Cells[at] == nil {
+		into.Cells[at] = make([]table.Cell, schema.BatchRows)
+	}
+	into.Cells[at][row] = table.Fault
 }
 
 // day returns a date of days since 1970-01-01. One that a Date cannot hold is

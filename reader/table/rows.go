@@ -16,7 +16,7 @@ const (
 	Number
 	// Date came as a date: YYYY-MM-DD, with THH:MM behind it where there was a time of day.
 	Date
-	// Fault is the error value of a workbook's cell, such as #N/A.
+	// Fault is the error value of a workbook's cell, such as #N/A, or a NaN that the file holds.
 	Fault
 )
 
@@ -27,7 +27,8 @@ type Rows struct {
 	schema.Frame
 
 	// Cells says, of a text vector, how each cell is meant; nil is Text for all.
-	// It has an entry for every column.
+	// Of a vector of floats, Fault parts the NaN that the file holds from the empty
+	// cell. It has an entry for every column.
 	Cells [][]Cell
 
 	Line []int64        // where each row stands: line of the file, row of the sheet
@@ -61,8 +62,8 @@ func (r *Rows) Reset(columns int) {
 	r.Raw.Reset()
 }
 
-// Cell says how the cell in row i of column col is meant. It has a meaning for
-// text vectors only.
+// Cell says how the cell in row i of column col is meant. Of vectors that are
+// not of text, only Fault has a meaning.
 func (r *Rows) Cell(col, i int) Cell {
 	if c := r.Cells[col]; c != nil {
 		return c[i]
@@ -78,6 +79,9 @@ func (r *Rows) AppendText(b []byte, col, i int) []byte {
 	case schema.KindStrings:
 		return append(b, v.Strings.Bytes(i)...)
 	case schema.KindFloats:
+		if r.Cell(col, i) == Fault {
+			return append(b, "NaN"...)
+		}
 		return AppendFloat(b, v.Floats[i])
 	case schema.KindInts:
 		if v.Ints[i] == schema.NoInt {
