@@ -175,7 +175,7 @@ func TestLinearInstruments(t *testing.T) {
 		line{underlying: "S", instrument: schema.Forward, quantity: 1, strike: 48, days: 365},
 		line{underlying: "F", instrument: schema.Forward, quantity: 1, strike: 190, days: 365},
 		line{underlying: "USD", instrument: schema.Cash, quantity: 1000},
-		line{underlying: "nothing", currency: "EUR", instrument: schema.Cash, quantity: 7},
+		line{underlying: "eur", currency: "EUR", instrument: schema.Cash, quantity: 7},
 	)
 	if len(b.Rejects) > 0 {
 		t.Fatal(b.Rejects)

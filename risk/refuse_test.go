@@ -94,7 +94,11 @@ func TestRefusals(t *testing.T) {
 		{"broken curve", call("curve"), schema.BadMarketData, "underlying", "rates.csv line 7"},
 		{"broken surface", call("doubtful"), schema.BadMarketData, "underlying", "vols.csv line 8"},
 		{"broken underlying", call("broken"), schema.BadMarketData, "underlying", "underlyings.csv line 9"},
-		{"broken fx", line{underlying: "CHF", instrument: schema.Cash}, schema.BadMarketData, "currency", "fx.csv line 3"},
+		{"broken fx", line{underlying: "CHF", instrument: schema.Cash}, schema.BadMarketData, "underlying", "fx.csv line 3"},
+		{"cash of no currency", line{underlying: "U", instrument: schema.Cash}, schema.NoFX, "underlying", "add a row"},
+		{"cash of two currencies", line{underlying: "USD", currency: "EUR", instrument: schema.Cash}, schema.CurrencyMismatch, "currency", "it says USD"},
+		{"stock that is a call", line{underlying: "U", instrument: schema.Stock, kind: schema.Call}, schema.TermsMismatch, "option_type", "mend the instrument"},
+		{"future with a strike", line{underlying: "fut", instrument: schema.Future, strike: 9}, schema.TermsMismatch, "strike", "mend the instrument"},
 		{"beyond a double", huge, schema.NotFinite, "", "quantity 1e+307"},
 	} {
 		b := d.price(call("U"), c.l)
@@ -121,7 +125,7 @@ func TestRefusals(t *testing.T) {
 }
 
 func TestFaultsThatEndTheRun(t *testing.T) {
-	for table, name := range map[string]string{"holidays": "home", "rates": "", "underlyings": "", "fx": "", "vols": "", "dividends": ""} {
+	for table, name := range map[string]string{"holidays": "home", "books": "B", "rates": "", "underlyings": "", "fx": "", "vols": "", "dividends": ""} {
 		d := newDesk(t)
 		d.raw.Faults = []schema.Fault{{Table: table, Name: name, Reject: schema.Reject{File: table + ".csv", Line: 4, Code: schema.BadDate}}}
 		if _, _, err := market.New(&d.cfg, &d.raw, d.dicts); err == nil || !strings.Contains(err.Error(), table+".csv line 4") {
@@ -143,7 +147,10 @@ func TestTableIsWhole(t *testing.T) {
 					d := newDesk(t)
 					d.rate("EUR", 0.03)
 					d.underlying("U", kind, "EUR", 100, 0, 0.2)
-					l := line{underlying: "U", instrument: inst, payoff: payoff, style: style, strike: 100, days: 50}
+					l := line{underlying: "U", instrument: inst, payoff: payoff, style: style, days: 50}
+					if inst == schema.Option || inst == schema.Forward {
+						l.strike = 100
+					}
 					if inst == schema.Option {
 						l.kind = schema.Put
 					}
@@ -190,6 +197,59 @@ func TestResultsDoNotDependOnTheCompany(t *testing.T) {
 			if got, want := (*greekColumns(&all.Results)[k])[i], (*c)[0]; math.Float64bits(got) != math.Float64bits(want) {
 				t.Fatalf("line %d, result %d: %v in company, %v alone", i, k, got, want)
 			}
+		}
+	}
+}
+
+func TestReportingCurrencyHasTheRateOne(t *testing.T) {
+	d := newDesk(t)
+	d.raw.FX = append(d.raw.FX, schema.FXRow{Currency: "EUR", Rate: 1.08})
+	if _, _, err := market.New(&d.cfg, &d.raw, d.dicts); err == nil || !strings.Contains(err.Error(), "quoted in another currency") {
+		t.Errorf("error %v", err)
+	}
+	d = newDesk(t)
+	d.raw.Faults = []schema.Fault{{Table: "fx", Name: "EUR", Reject: schema.Reject{File: "fx.csv", Line: 2}}}
+	if _, _, err := market.New(&d.cfg, &d.raw, d.dicts); err == nil || !strings.Contains(err.Error(), "fx.csv line 2") {
+		t.Errorf("error %v", err)
+	}
+	d = newDesk(t)
+	d.raw.FX = append(d.raw.FX, schema.FXRow{Currency: "EUR", Rate: 1})
+	if _, _, err := market.New(&d.cfg, &d.raw, d.dicts); err != nil {
+		t.Error(err)
+	}
+}
+
+func TestMarketRowsThatMeetNoUnderlying(t *testing.T) {
+	d := newDesk(t)
+	d.underlying("U", schema.Equity, "EUR", 100, 0, 0.2)
+	d.raw.Dividends = []schema.DividendRow{{Underlying: "UU", ExDate: d.cfg.AsOf.Day + 9, Amount: 1}}
+	d.raw.Vols = []schema.VolRow{{Underlying: "V", Day: d.cfg.AsOf.Day + 9, Strike: 1, Vol: 1}, {Underlying: "V", Day: d.cfg.AsOf.Day + 9, Strike: 2, Vol: 1}}
+	_, notes, err := market.New(&d.cfg, &d.raw, d.dicts)
+	if err != nil {
+		t.Fatal(err)
+	}
+	got := map[string]int64{}
+	for _, n := range notes {
+		if n.Code == schema.MarketRowUnused {
+			got[n.Subject] = n.Count
+		}
+	}
+	if len(got) != 2 || got["UU"] != 1 || got["V"] != 2 {
+		t.Errorf("warnings %v", notes)
+	}
+}
+
+func TestSurfaceThatCannotBeBuilt(t *testing.T) {
+	for _, strikes := range [][]float64{{-5}, {0}, {-5, 0, 5}} {
+		d := newDesk(t)
+		d.rate("EUR", 0.03)
+		d.underlying("U", schema.Equity, "EUR", 100, 0, 0.2)
+		for _, k := range strikes {
+			d.raw.Vols = append(d.raw.Vols, schema.VolRow{Underlying: "U", Day: d.cfg.AsOf.Day + 9, Minute: schema.NoMinute, Strike: k, Vol: 0.2})
+		}
+		b := d.price(option("U", schema.Call, 100, 50, 0))
+		if len(b.Rejects) != 1 || b.Rejects[0].Code != schema.BadMarketData || !strings.Contains(b.Rejects[0].Reason, "cannot be set against") {
+			t.Errorf("strikes %v: %v", strikes, b.Rejects)
 		}
 	}
 }

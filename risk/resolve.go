@@ -2,6 +2,7 @@ package risk
 
 import (
 	"math"
+	"strings"
 
 	"nightbook/risk/market"
 	"nightbook/schema"
@@ -31,6 +32,9 @@ const maxTerms = 1 << 15
 // inputs used. It returns the row's route, or noRoute for a refused row.
 func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 	inst := b.Instrument[i]
+	if inst != schema.Option && !plainTerms(b, i) {
+		return noRoute
+	}
 	b.Model[i], b.VolSource[i], b.Curve[i] = 0, 0, 0
 	b.Forward[i], b.VolUsed[i], b.Rate[i], b.Carry[i], b.Time[i] = nan, nan, nan, nan, nan
 	if inst == schema.Cash {
@@ -115,13 +119,19 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 	return route
 }
 
+// resolveCash takes the underlying of a cash line for its currency.
 func (e *Engine) resolveCash(b *schema.Batch, i int) uint8 {
-	if b.Currency[i] == 0 {
-		b.Currency[i] = e.dicts.Currencies.Code(e.dicts.Underlyings.Name(b.Underlying[i]))
+	name := e.dicts.Underlyings.Name(b.Underlying[i])
+	currency := e.dicts.Currencies.Code(strings.ToUpper(name))
+	if b.Currency[i] != 0 && b.Currency[i] != currency {
+		return refuse(b, i, schema.CurrencyMismatch, "currency", e.dicts.Currencies.Name(b.Currency[i]),
+			"the underlying of a cash line is its currency, and it says "+name+": leave currency empty, or make the two the same")
 	}
-	if !e.exchange(b, i) {
-		return noRoute
+	b.Currency[i] = currency
+	if fx := e.market.FX(currency); fx.Problem.Code != "" {
+		return refuse(b, i, fx.Problem.Code, "underlying", name, fx.Problem.Reason)
 	}
+	e.exchange(b, i)
 	b.Spot[i] = 1
 	return 2 * (productAt[schema.Cash][0][0][0] - 1)
 }

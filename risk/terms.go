@@ -75,6 +75,22 @@ func (e *Engine) checkTerms(b *schema.Batch, i int) bool {
 	return true
 }
 
+// plainTerms refuses a line that is no option and yet has what only options
+// have: most often an option that bears the wrong word.
+func plainTerms(b *schema.Batch, i int) bool {
+	stray := func(column, value string) bool {
+		refuse(b, i, schema.TermsMismatch, column, value, "instrument "+schema.Instruments[b.Instrument[i]]+" knows no "+column+": mend the instrument, or empty the cell")
+		return false
+	}
+	switch {
+	case b.OptionType[i] != 0:
+		return stray("option_type", schema.OptionTypes[b.OptionType[i]])
+	case b.Instrument[i] != schema.Forward && given(b.Strike[i]):
+		return stray("strike", number(b.Strike[i]))
+	}
+	return true
+}
+
 // gatherTerms gathers the columns that only some payoffs have.
 func (e *Engine) gatherTerms(b *schema.Batch, r *instrument.Run, rows []int32) {
 	for j, i := range rows {

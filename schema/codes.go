@@ -50,7 +50,7 @@ var RejectCodes = []CodeDoc{
 	{string(NoVol), "there is no volatility for the line: not its own, no surface, no flat volatility"},
 	{string(NoFX), "there is no rate into the reporting currency"},
 	{string(BadMarketData), "the market data that the line needs has a refused row"},
-	{string(TermsMismatch), "the line has terms that its payoff does not know"},
+	{string(TermsMismatch), "the line has terms that its instrument or payoff does not know"},
 	{string(Unsupported), "this version does not price such a line"},
 	{string(NotFinite), "the result is not a finite number"},
 }
@@ -73,6 +73,7 @@ const (
 	FormatDetected  NoteCode = "format_detected"
 	NoPositions     NoteCode = "no_positions"
 	QuoteNotUsed    NoteCode = "quote_not_used"
+	MarketRowUnused NoteCode = "market_row_unused"
 )
 
 // NoteCodes is the closed list of warnings.
@@ -88,6 +89,7 @@ var NoteCodes = []CodeDoc{
 	{string(SliceExpired), "a surface has slices that are not after as_of: they are not used"},
 	{string(NoHolidays), "no holidays are given for the calendar: business days are Monday to Friday"},
 	{string(FormatDetected), "the encoding of a file was detected, not declared"},
+	{string(MarketRowUnused), "vols or dividends have rows of an underlying that is not in underlyings"},
 	{string(QuoteNotUsed), "quotes gave no volatility and are not in the surface"},
 	{string(NoPositions), "the position file has a header and no rows"},
 }

@@ -1,5 +1,10 @@
 package schema
 
+import (
+	"slices"
+	"strings"
+)
+
 // Lines is the dictionary of the lines table: one row a priced or expired
 // line, in the order of the position file, the house's own columns at the end.
 var Lines = Table{"lines", "one row a priced or expired line, in the order of the position file", lineColumns()}
@@ -160,13 +165,19 @@ func minutes(m []int16) []int64 {
 	return out
 }
 
+// hasColumn reports whether a name is taken, in large or small letters:
+// warehouses do not tell them apart.
+func (t *Table) hasColumn(name string) bool {
+	return slices.ContainsFunc(t.Columns, func(c Column) bool { return strings.EqualFold(c.Name, name) })
+}
+
 // LinesTable is Lines with the house's own columns behind it, as text. A house
 // column that bears the name of one of ours is renamed with "input_" before it.
 func LinesTable(extra []string) Table {
 	t := Lines
 	t.Columns = append([]Column(nil), Lines.Columns...)
 	for _, name := range extra {
-		for t.Column(name) != nil {
+		for t.hasColumn(name) {
 			name = "input_" + name
 		}
 		t.Columns = append(t.Columns, Column{Name: name, Type: Text, Doc: "column of the position file, carried through as it came"})

@@ -18,6 +18,9 @@ meaning, and the closed lists of reject and warning codes. With --format sql it
 prints CREATE TABLE statements for the result tables instead.`,
 		Flags: []cli.Flag{&cli.StringFlag{Name: "format", Value: "md", Usage: "`FORMAT` md, csv, json or sql"}, logFlag},
 		Action: func(c *cli.Context) error {
+			if err := checkLog(c); err != nil {
+				return err
+			}
 			if c.NArg() > 0 {
 				return usagef("columns takes no argument, but was given %q", c.Args().First())
 			}

@@ -21,6 +21,9 @@ same bytes on every machine. Desks, books and underlyings are invented.`,
 			logFlag,
 		},
 		Action: func(c *cli.Context) error {
+			if err := checkLog(c); err != nil {
+				return err
+			}
 			dir, err := oneArgument(c, "the folder to make")
 			if err != nil {
 				return err

@@ -34,8 +34,14 @@ surface of these volatilities.`,
 			logFlag,
 		},
 		Action: func(c *cli.Context) error {
+			if err := checkLog(c); err != nil {
+				return err
+			}
 			snapshot, err := oneArgument(c, "the snapshot folder")
 			if err != nil {
+				return err
+			}
+			if err := checkAsOf(c); err != nil {
 				return err
 			}
 			out, format := c.String("out"), "csv"

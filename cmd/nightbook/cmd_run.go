@@ -5,6 +5,7 @@ import (
 	"runtime"
 	"slices"
 	"strings"
+	"time"
 
 	"github.com/urfave/cli/v2"
 )
@@ -91,8 +92,11 @@ func parseOptions(c *cli.Context) (*options, error) {
 	if err != nil {
 		return nil, err
 	}
-	if f := c.String("log"); f != "text" && f != "json" {
-		return nil, usagef("--log takes text or json, not %q", f)
+	if err := checkLog(c); err != nil {
+		return nil, err
+	}
+	if err := checkAsOf(c); err != nil {
+		return nil, err
 	}
 	o := &options{snapshot: snapshot, asOf: c.String("as-of"), strict: c.Bool("strict"), workers: c.Int("workers")}
 	if c.IsSet("workers") && (o.workers < 1 || o.workers > maxWorkers) {
@@ -102,4 +106,23 @@ func parseOptions(c *cli.Context) (*options, error) {
 		o.workers = min(runtime.GOMAXPROCS(0), maxWorkers)
 	}
 	return o, nil
+}
+
+// checkLog refuses a --log that is none.
+func checkLog(c *cli.Context) error {
+	if f := c.String("log"); f != "text" && f != "json" {
+		return usagef("--log takes text or json, not %q", f)
+	}
+	return nil
+}
+
+// checkAsOf refuses an --as-of that is no date.
+func checkAsOf(c *cli.Context) error {
+	s := c.String("as-of")
+	for _, layout := range []string{time.DateOnly, "2006-01-02T15:04", "2006-01-02T15:04:05", "2006-01-02 15:04", "2006-01-02 15:04:05"} {
+		if _, err := time.Parse(layout, s); err == nil || s == "" {
+			return nil
+		}
+	}
+	return usagef("--as-of takes a date as YYYY-MM-DD, with THH:MM behind it if need be, not %q", s)
 }

@@ -132,6 +132,9 @@ func (c *console) finished(verb string, s *schema.Summary, dir string, took time
 	fmt.Fprintf(c.w, "%.2f s, %s rows a second\n", took.Seconds(), grouped(rate, 0))
 }
 
+// mostBooks is how many top-level books are told of.
+const mostBooks = 30
+
 // books prints value and sensitivities of the top-level books.
 func (c *console) books(s *schema.Summary) {
 	if len(s.Books) == 0 {
@@ -150,13 +153,23 @@ func (c *console) books(s *schema.Summary) {
 		}
 		fmt.Fprintln(w)
 	}
+	top, more := 0, 0
 	for i := range s.Books {
-		if b := &s.Books[i]; b.Level == 0 {
+		b := &s.Books[i]
+		switch {
+		case b.Level > 0:
+		case top < mostBooks:
 			row(b.Book, &b.Totals)
+			top++
+		default:
+			more++
 		}
 	}
 	row("total", &s.Total)
 	w.Flush()
+	if more > 0 {
+		fmt.Fprintf(c.w, "  and %s top-level books more: see books\n", grouped(float64(more), 0))
+	}
 }
 
 // grouped writes x with the given decimals and a comma between thousands.

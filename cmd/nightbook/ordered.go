@@ -3,7 +3,9 @@ package main
 import (
 	"context"
 	"errors"
+	"fmt"
 	"io"
+	"runtime/debug"
 	"sync"
 )
 
@@ -37,6 +39,7 @@ func ordered[J any](ctx context.Context, jobs []*J, workers int, next func(*J) e
 	wg.Go(func() {
 		defer close(todo)
 		defer close(line)
+		defer caught(cancel)
 		for {
 			select {
 			case <-ctx.Done():
@@ -58,7 +61,7 @@ func ordered[J any](ctx context.Context, jobs []*J, workers int, next func(*J) e
 		wg.Go(func() {
 			for t := range todo {
 				if ctx.Err() == nil {
-					if err := work(n, t.job); err != nil {
+					if err := guarded(func() error { return work(n, t.job) }); err != nil {
 						cancel(err)
 					}
 				}
@@ -77,4 +80,26 @@ func ordered[J any](ctx context.Context, jobs []*J, workers int, next func(*J) e
 		free <- t.job
 	}
 	return context.Cause(ctx)
+}
+
+// guarded runs f and makes an error of a panic: a fault of the program must
+// still let the run end in order, with nothing half-made left behind.
+func guarded(f func() error) (err error) {
+	defer func() {
+		if p := recover(); p != nil {
+			err = fault(p)
+		}
+	}()
+	return f()
+}
+
+// caught ends the stream with the panic of the goroutine that defers it.
+func caught(cancel context.CancelCauseFunc) {
+	if p := recover(); p != nil {
+		cancel(fault(p))
+	}
+}
+
+func fault(p any) error {
+	return fmt.Errorf("a fault of the program, nothing is written: %v\n%s", p, debug.Stack())
 }

@@ -6,6 +6,7 @@ import (
 	"io"
 	"math/rand/v2"
 	"runtime"
+	"strings"
 	"testing"
 	"time"
 )
@@ -102,5 +103,29 @@ func TestOrderedStopsWhenCancelled(t *testing.T) {
 		})
 	if !errors.Is(err, context.Canceled) {
 		t.Fatalf("error is %v", err)
+	}
+}
+
+func TestOrderedMakesAnErrorOfAPanic(t *testing.T) {
+	okWork := func(int, *numbered) error { return nil }
+	ok := func(*numbered) error { return nil }
+	next := upTo(100)
+	for name, err := range map[string]error{
+		"work": ordered(context.Background(), numberedJobs(4), 2, upTo(100), func(_ int, j *numbered) error {
+			if j.n == 50 {
+				panic("lost")
+			}
+			return nil
+		}, ok),
+		"next": ordered(context.Background(), numberedJobs(4), 2, func(j *numbered) error {
+			if j.n == 50 {
+				panic("lost")
+			}
+			return next(j)
+		}, okWork, ok),
+	} {
+		if err == nil || !strings.Contains(err.Error(), "fault of the program, nothing is written: lost") {
+			t.Errorf("%s: error %v", name, err)
+		}
 	}
 }

@@ -2,6 +2,8 @@ package main
 
 import (
 	"errors"
+	"fmt"
+	"os"
 	"path/filepath"
 	"slices"
 	"strconv"
@@ -54,6 +56,9 @@ func newOutputs(o *options, cfg *schema.Config, dicts *schema.Dicts, extra []str
 		w, err := writer.NewTable("csv", o.check, schema.RejectsOut, writer.Options{})
 		out.rejected = &tableFile{Table: w}
 		return out, err
+	}
+	if err := keepApart(o, cfg); err != nil {
+		return nil, err
 	}
 	out.folder, err = writer.NewFolder(o.out, cfg.AsOf.Day.String(), o.replace)
 	if errors.Is(err, writer.ErrExists) {
@@ -226,4 +231,22 @@ func (o *options) resultFolder(cfg *schema.Config) string {
 		return ""
 	}
 	return filepath.Join(o.out, cfg.AsOf.Day.String())
+}
+
+// keepApart refuses results that would take the place of what is read.
+func keepApart(o *options, cfg *schema.Config) error {
+	result, err := os.Stat(o.resultFolder(cfg))
+	if err != nil {
+		return nil // there is nothing to take the place of
+	}
+	dir, err := filepath.Abs(o.snapshot)
+	for ; err == nil; dir = filepath.Dir(dir) {
+		if info, err := os.Stat(dir); err == nil && os.SameFile(info, result) {
+			return fmt.Errorf("the results would take the place of the snapshot %s: give another --out", o.snapshot)
+		}
+		if dir == filepath.Dir(dir) {
+			return nil
+		}
+	}
+	return err
 }

@@ -192,19 +192,33 @@ func (t *Totals) sumBooks(s *schema.Summary) {
 			own[t.dicts.Books.Name(schema.Code(c))] = sum
 		}
 	}
-	var below func(n *node) *sums // the book and all under it
-	below = func(n *node) *sums {
-		all := &sums{}
-		if o := own[n.book]; o != nil {
-			all.merge(o)
-		}
-		for _, c := range n.children {
-			all.merge(below(c))
-		}
-		return all
-	}
 	total := &sums{}
 	total.merge(&t.noBook)
+	// Depth first, a book comes before the books below it: from the last to the
+	// first, each is whole by the time it is added to the one above.
+	var order []*node
+	t.tree.walk(func(n *node, _ int, _ string) { order = append(order, n) })
+	all := map[*node]*sums{}
+	of := func(n *node) *sums {
+		if all[n] == nil {
+			all[n] = &sums{}
+		}
+		return all[n]
+	}
+	rounded := make(map[*node]schema.Totals, len(order))
+	for _, n := range slices.Backward(order) {
+		s := of(n)
+		if o := own[n.book]; o != nil {
+			s.merge(o)
+		}
+		if n.parent != nil {
+			of(n.parent).merge(s)
+		} else {
+			total.merge(s)
+		}
+		rounded[n] = s.round()
+		delete(all, n)
+	}
 	t.tree.walk(func(n *node, level int, path string) {
 		b := schema.BookTotal{Book: n.book, Owner: n.owner, Path: path, Level: level, Listed: n.listed}
 		if n.parent != nil {
@@ -213,11 +227,7 @@ func (t *Totals) sumBooks(s *schema.Summary) {
 		if o := own[n.book]; o != nil {
 			b.Own = o.round()
 		}
-		all := below(n)
-		if level == 0 {
-			total.merge(all)
-		}
-		b.Totals = all.round()
+		b.Totals = rounded[n]
 		s.Books = append(s.Books, b)
 	})
 	s.Total = total.round()

@@ -95,12 +95,18 @@ func (t *tree) loop(rows []schema.BookRow) []string {
 	for name, n := range ids {
 		names[n] = name
 	}
-	var loop []string
-	for _, n := range err.(topo.Unorderable)[0] {
-		loop = append(loop, names[n.ID()])
+	var first []string // of several, the one with the first name
+	for _, nodes := range err.(topo.Unorderable) {
+		var loop []string
+		for _, n := range nodes {
+			loop = append(loop, names[n.ID()])
+		}
+		slices.Sort(loop)
+		if first == nil || loop[0] < first[0] {
+			first = loop
+		}
 	}
-	slices.Sort(loop)
-	return loop
+	return first
 }
 
 // walk calls f for every book, depth first, children by name, with its level

@@ -3,7 +3,9 @@ package market
 import (
 	"errors"
 	"fmt"
+	"maps"
 	"math"
+	"slices"
 	"sort"
 	"strings"
 
@@ -93,8 +95,18 @@ func (m *Market) FX(c schema.Code) Currency {
 // a fault that leaves no line to price.
 func New(cfg *schema.Config, raw *schema.Market, d *schema.Dicts) (*Market, []schema.Note, error) {
 	b := builder{cfg: cfg, raw: raw, dicts: d, m: &Market{AsOf: cfg.AsOf, Reporting: cfg.ReportingCurrency, percent: cfg.Vols.Percent}, faults: faultsByName(raw.Faults)}
-	if f := b.faults["holidays"]; len(f) > 0 {
-		return nil, nil, errors.New("holidays has refused rows, and every line's theta_cash_1bd depends on it: mend " + f.any())
+	for _, t := range []struct{ table, what string }{{"books", "every sum along the book tree"}, {"holidays", "every line's theta_cash_1bd"}} {
+		if f := b.faults[t.table]; len(f) > 0 {
+			return nil, nil, errors.New(t.table + " has refused rows, and " + t.what + " depends on it: mend " + f.any())
+		}
+	}
+	if at, bad := b.faults["fx"][cfg.ReportingCurrency]; bad {
+		return nil, nil, errors.New("the fx row of the reporting currency is refused: take it out, or mend " + at)
+	}
+	for _, r := range raw.FX {
+		if r.Currency == cfg.ReportingCurrency && r.Rate != 1 {
+			return nil, nil, fmt.Errorf("fx gives the reporting currency %s the rate %v: the table is quoted in another currency; rates are units of %s for one unit", r.Currency, r.Rate, r.Currency)
+		}
 	}
 	for _, table := range []string{"underlyings", "rates", "fx", "vols", "dividends"} {
 		if at, bad := b.faults[table][""]; bad {
@@ -220,8 +232,25 @@ func (b *builder) underlyings() {
 	for _, r := range b.raw.Underlyings {
 		set(r.Name, b.underlying(r, vols[r.Name], dividends[r.Name]))
 	}
+	unused(b, "vols", vols)
+	unused(b, "dividends", dividends)
 	for name, at := range b.faults["underlyings"] {
 		set(name, &Underlying{Name: name, Fault: "the underlying has a refused row: mend " + at})
+	}
+}
+
+// unused notes the names of a table that no underlying bears: a slip of the pen
+// there would leave the right underlying without its rows.
+func unused[V any](b *builder, table string, rows map[string][]V) {
+	known := map[string]bool{}
+	for _, r := range b.raw.Underlyings {
+		known[r.Name] = true
+	}
+	for _, name := range slices.Sorted(maps.Keys(rows)) {
+		if _, refused := b.faults["underlyings"][name]; !known[name] && !refused {
+			b.notes = append(b.notes, schema.Note{Code: schema.MarketRowUnused, Subject: name, Count: int64(len(rows[name])),
+				Message: table + " has rows of " + name + ", which is not in underlyings: they are not used"})
+		}
 	}
 }
 

@@ -2,6 +2,7 @@ package market
 
 import (
 	"fmt"
+	"maps"
 	"math"
 	"slices"
 	"sort"
@@ -48,6 +49,9 @@ func newSlice(T, forward float64, points []point, absolute bool) (slice, error) 
 	s := slice{T: T}
 	for i, p := range points {
 		k := moneyness(p.strike, forward, absolute)
+		if k-k != 0 {
+			return s, fmt.Errorf("strike %v cannot be set against the forward %v of the expiry in %.6g years", p.strike, forward, T)
+		}
 		if i > 0 && !(k > s.k[i-1]) {
 			return s, fmt.Errorf("strikes %v and %v of the expiry in %.6g years cannot be told apart", points[i-1].strike, p.strike, T)
 		}
@@ -175,8 +179,8 @@ func newSurface(rows []schema.VolRow, asOf schema.Moment, absolute bool, forward
 	slices.Sort(past)
 	past = slices.Compact(past)
 	s := &Surface{absolute: absolute}
-	for T, points := range byTime {
-		sl, err := newSlice(T, forward(T), points, absolute)
+	for _, T := range slices.Sorted(maps.Keys(byTime)) {
+		sl, err := newSlice(T, forward(T), byTime[T], absolute)
 		if err != nil {
 			return nil, past, err
 		}
@@ -185,6 +189,5 @@ func newSurface(rows []schema.VolRow, asOf schema.Moment, absolute bool, forward
 	if len(s.slices) == 0 {
 		return nil, past, nil
 	}
-	sort.Slice(s.slices, func(i, j int) bool { return s.slices[i].T < s.slices[j].T })
 	return s, past, nil
 }
