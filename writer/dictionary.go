@@ -59,6 +59,9 @@ func words(column string) string {
 	return strings.Join(list[1:], ", ")
 }
 
+// csvTexts says how a text of a CSV file may differ from the text it stands for.
+const csvTexts = "In CSV files a text that a spreadsheet would take for a formula, that is one that begins, after any apostrophes, with `=`, `+`, `-`, `@`, a tab or a line break and is no plain number, has an apostrophe before it."
+
 func dictionaryMarkdown(b *bytes.Buffer) {
 	cell := func(s string) string { return strings.ReplaceAll(s, "|", `\|`) }
 	fmt.Fprintf(b, "# Data dictionary\n\nRevision %d of the result tables.\n\n", schema.Revision)
@@ -73,7 +76,7 @@ func dictionaryMarkdown(b *bytes.Buffer) {
 			fmt.Fprintf(b, "| %s | %s | %s | %s | %s | %s |\n", c.Name, c.Type, cell(c.Unit), required, cell(c.Default), cell(c.Doc))
 		}
 	}
-	b.WriteString("\n# What is written\n")
+	b.WriteString("\n# What is written\n\n" + csvTexts + "\n")
 	for _, t := range schema.Outputs {
 		fmt.Fprintf(b, "\n## %s\n\n%s\n\n| column | type | unit | null | meaning | values |\n|---|---|---|---|---|---|\n", t.Name, sentence(t.Doc))
 		for _, c := range t.Columns {

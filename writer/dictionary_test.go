@@ -39,6 +39,9 @@ func TestDictionaryMarkdown(t *testing.T) {
 			}
 		}
 	}
+	if !strings.Contains(text, "\n\nIn CSV files a text that a spreadsheet would take for a formula, ") {
+		t.Error("what CSV files do to texts is missing")
+	}
 	for _, c := range allCodes() {
 		if !strings.Contains(text, "\n| "+c.Code+" | "+c.Doc+" |\n") {
 			t.Errorf("code %s is missing", c.Code)

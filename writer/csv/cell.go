@@ -99,15 +99,44 @@ func needsQuotes(s string) bool {
 }
 
 // looksLikeFormula reports whether s begins, after any apostrophes, with a
-// character that makes a spreadsheet read a cell as a formula.
+// character that makes a spreadsheet read a cell as a formula, and is no number.
 func looksLikeFormula(s string) bool {
 	s = strings.TrimLeft(s, "'")
 	if s == "" {
 		return false
 	}
 	switch s[0] {
-	case '=', '+', '-', '@', '\t', '\r', '\n':
+	case '+', '-':
+		return !isNumber(s)
+	case '=', '@', '\t', '\r', '\n':
 		return true
 	}
 	return false
+}
+
+// isNumber reports whether s as a whole is a decimal number: digits, and at most
+// a sign before them, decimals after a point or a comma, and an exponent.
+func isNumber(s string) bool {
+	s, ok := cutDigits(cutSign(s))
+	if ok && s != "" && (s[0] == '.' || s[0] == ',') {
+		s, ok = cutDigits(s[1:])
+	}
+	if ok && s != "" && (s[0] == 'e' || s[0] == 'E') {
+		s, ok = cutDigits(cutSign(s[1:]))
+	}
+	return ok && s == ""
+}
+
+func cutSign(s string) string {
+	if s != "" && (s[0] == '+' || s[0] == '-') {
+		return s[1:]
+	}
+	return s
+}
+
+// cutDigits returns s without the digits it begins with; ok is false if it
+// begins with none.
+func cutDigits(s string) (rest string, ok bool) {
+	rest = strings.TrimLeft(s, "0123456789")
+	return rest, len(rest) < len(s)
 }

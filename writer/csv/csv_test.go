@@ -149,8 +149,14 @@ func TestText(t *testing.T) {
 		{`a"b"`, `"a""b"""`, `"a""b"""`},
 		{"a\nb", "\"a\nb\"", "\"a\nb\""},
 		{"=1+1", "'=1+1", "=1+1"},
-		{"+1", "'+1", "+1"},
-		{"-1", "'-1", "-1"},
+		{"+a", "'+a", "+a"},
+		{"-a", "'-a", "-a"},
+		{"-5.25", "-5.25", "-5.25"},
+		{"+4512", "+4512", "+4512"},
+		{"-5,25", `"-5,25"`, `"-5,25"`},
+		{"'-5.25", "'-5.25", "'-5.25"},
+		{"-1+1", "'-1+1", "-1+1"},
+		{"=-1", "'=-1", "=-1"},
 		{"@x", "'@x", "@x"},
 		{"\tx", "'\tx", "\tx"},
 		{"\rx", "\"'\rx\"", "\"\rx\""},
@@ -170,10 +176,23 @@ func TestText(t *testing.T) {
 	}
 }
 
-// Taking one apostrophe off where apostrophes are followed by a character that
-// begins a formula must give every text back.
+func TestNumbers(t *testing.T) {
+	for _, s := range []string{"0", "-5", "+4512", "-5.25", "-5,25", "+1e5", "-1.5E-3", "-1,5e+300", "-007"} {
+		if !isNumber(s) {
+			t.Errorf("%q is no number", s)
+		}
+	}
+	for _, s := range []string{"", "-", "+", "--1", "-.", "-5.", "-.5", "-5e", "-5e+", "-1.2.3", "-1,234,567", "-1 ", "-1+1", "-1;2", "-A1", "-0x10", "-inf", "+1e5|cmd", "-٣"} {
+		if isNumber(s) {
+			t.Errorf("%q is a number", s)
+		}
+	}
+}
+
+// Taking one apostrophe off where apostrophes are followed by what reads like a
+// formula must give every text back.
 func TestGuardIsReversible(t *testing.T) {
-	for _, text := range append(invent.AwkwardTexts(), "'''", "'''=", "''x", "=", "'-", "-'") {
+	for _, text := range append(invent.AwkwardTexts(), "'''", "'''=", "''x", "=", "'-", "-'", "-1", "'-1", "''-1", "-1-") {
 		got := text
 		if looksLikeFormula(text) {
 			got = "'" + text
@@ -184,7 +203,7 @@ func TestGuardIsReversible(t *testing.T) {
 		if got != text {
 			t.Errorf("%q comes back as %q", text, got)
 		}
-		if got := string(appendText(nil, text, true)); strings.IndexAny(got, "=+-@\t") == 0 {
+		if got := string(appendText(nil, text, true)); strings.IndexAny(got, "=+-@\t") == 0 && !isNumber(text) {
 			t.Errorf("%q is written as the formula %q", text, got)
 		}
 	}

@@ -6,11 +6,13 @@
 //   - Dates are YYYY-MM-DD, booleans true and false, null is an empty cell.
 //   - A text is quoted where it holds a comma, a quote, CR or LF.
 //   - A text that a spreadsheet would take for a formula, that is one that begins
-//     with = + - @ or a tab, CR or LF, gets an apostrophe before it. So does a
-//     text that begins with apostrophes and then one of these, which makes the
-//     rule reversible: take one apostrophe off where apostrophes are followed by
-//     one of these. Numbers are never touched. Options turns the rule off for all
-//     columns or for single ones.
+//     with = + - @ or a tab, CR or LF, gets an apostrophe before it. A text that
+//     as a whole is a decimal number, such as -5.25, +4512 or -1,5e-3, is none: it
+//     stays as it is. A text that begins with apostrophes and then reads like a
+//     formula gets one more, which makes the rule reversible: take one apostrophe
+//     off where what follows the apostrophes reads like a formula. Columns of
+//     numbers are never touched. Options turns the rule off for all columns or
+//     for single ones.
 //
 // It knows nothing of files: it writes to an io.Writer.
 package csv
