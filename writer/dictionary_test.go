@@ -39,7 +39,7 @@ func TestDictionaryMarkdown(t *testing.T) {
 			}
 		}
 	}
-	if !strings.Contains(text, "\n\nIn CSV files a text that a spreadsheet would take for a formula, ") {
+	if !strings.Contains(text, "\n\nIn CSV files a text that a spreadsheet would take for a formula, ") || !strings.Contains(text, "written as `\\xHH`") {
 		t.Error("what CSV files do to texts is missing")
 	}
 	for _, c := range allCodes() {

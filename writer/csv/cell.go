@@ -1,9 +1,11 @@
 package csv
 
 import (
+	"fmt"
 	"math"
 	"strconv"
 	"strings"
+	"unicode/utf8"
 
 	"nightbook/schema"
 )
@@ -64,6 +66,9 @@ func appendDate(b []byte, d schema.Date) []byte {
 // appendText appends s, with an apostrophe before it where guard is set and a
 // spreadsheet would take it for a formula, in quotes where it needs them.
 func appendText(b []byte, s string, guard bool) []byte {
+	if !isClean(s) {
+		s = string(appendClean(nil, s))
+	}
 	guard = guard && looksLikeFormula(s)
 	if !needsQuotes(s) {
 		if guard {
@@ -86,6 +91,23 @@ func appendText(b []byte, s string, guard bool) []byte {
 	}
 	b = append(b, s...)
 	return append(b, '"')
+}
+
+// isClean reports whether s is UTF-8 without NUL.
+func isClean(s string) bool { return utf8.ValidString(s) && strings.IndexByte(s, 0) < 0 }
+
+// appendClean appends s with each NUL, and each byte that is not UTF-8, as \xHH.
+func appendClean(b []byte, s string) []byte {
+	for s != "" {
+		r, n := utf8.DecodeRuneInString(s)
+		if r == 0 || r == utf8.RuneError && n == 1 {
+			b = fmt.Appendf(b, `\x%02X`, s[0])
+		} else {
+			b = append(b, s[:n]...)
+		}
+		s = s[n:]
+	}
+	return b
 }
 
 func needsQuotes(s string) bool {

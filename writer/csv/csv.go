@@ -12,8 +12,8 @@ import (
 // Options are settings of the format; the zero value serves.
 type Options struct {
 	Workers  int      // goroutines that format; 0 is one
-	BareText bool     // write every text as it is, formulas or not
-	AsCame   []string // columns whose texts are written as they are
+	BareText bool     // put no apostrophe before any text, formula or not
+	AsCame   []string // columns whose texts get no apostrophe
 }
 
 // partRows is how many rows a goroutine formats at least: below that, starting

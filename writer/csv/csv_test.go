@@ -8,6 +8,7 @@ import (
 	"strconv"
 	"strings"
 	"testing"
+	"unicode/utf8"
 
 	stdcsv "encoding/csv"
 
@@ -172,6 +173,48 @@ func TestText(t *testing.T) {
 		}
 		if got := string(appendText(nil, c.in, false)); got != c.bare {
 			t.Errorf("%q bare is %q, want %q", c.in, got, c.bare)
+		}
+	}
+}
+
+// Whatever bytes come in, in whatever column, UTF-8 without NUL goes out.
+func TestAlwaysUTF8(t *testing.T) {
+	for _, c := range []struct{ in, want string }{
+		{"caf\xe9", `caf\xE9`},
+		{"a\x00b", `a\x00b`},
+		{"\xff\xfe,", `"\xFF\xFE,"`},
+		{"=\x00", `'=\x00`},
+		{"\x00=1", `\x00=1`},
+		{"漢\xe6\xbc字", `漢\xE6\xBC字`},     // a character cut short
+		{"\xed\xa0\x80", `\xED\xA0\x80`}, // half of a surrogate pair
+		{"\ufffd 漢字", "\ufffd 漢字"},       // a replacement character that came as one
+	} {
+		if got := string(appendText(nil, c.in, true)); got != c.want {
+			t.Errorf("%q is written %q, want %q", c.in, got, c.want)
+		}
+	}
+
+	var noise [256]byte
+	for i := range noise {
+		noise[i] = byte(i)
+	}
+	table := schema.Table{Name: "t", Columns: []schema.Column{{Name: string(noise[:]), Type: schema.Text}, {Name: "row", Type: schema.Text}}}
+	f := &schema.Frame{N: len(noise), Cols: make([]schema.Vector, 2)}
+	for i := range noise {
+		f.Cols[0].Strings.AppendString(string(noise[i:]))
+		f.Cols[1].Strings.AppendString(string(noise[i : i+1]))
+	}
+	for _, opt := range []Options{{}, {BareText: true}, {AsCame: []string{"row"}}} {
+		var buf bytes.Buffer
+		w, err := New(&buf, table, opt)
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := w.Write(f); err != nil {
+			t.Fatal(err)
+		}
+		if !utf8.Valid(buf.Bytes()) || bytes.IndexByte(buf.Bytes(), 0) >= 0 {
+			t.Errorf("%+v: not UTF-8 without NUL", opt)
 		}
 	}
 }
