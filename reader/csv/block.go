@@ -23,14 +23,12 @@ const (
 	NoFault Fault = iota
 	StrayQuote
 	TextAfterQuote
-	OpenQuote
 	FieldTooLong
 )
 
 var faultReasons = [...]string{
 	StrayQuote:     `a quotation mark stands inside a field that does not begin with one: put the field in quotation marks and double those inside it`,
 	TextAfterQuote: `text follows a closing quotation mark: double the quotation marks inside the field`,
-	OpenQuote:      `a quotation mark is opened and not closed before the file ends`,
 	FieldTooLong:   `a field is longer than 64 KiB`,
 }
 

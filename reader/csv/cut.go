@@ -10,6 +10,8 @@ type section struct {
 	lines  int // line ends passed over
 	quoted bool
 	fault  Fault
+	open   bool // a quotation mark is not closed before the data ends
+	opens  int  // line ends before that mark
 }
 
 // cut finds the record at the start of data. ok is false if data ends before
@@ -51,13 +53,10 @@ func cutQuoted(data []byte, delimiter byte, last bool) (s section, ok bool) {
 	at := 0
 	for {
 		if at < len(data) && data[at] == '"' {
-			closed := false
+			mark, closed := at, false
 			if at, closed = closing(data, at+1); !closed {
-				if !last {
-					return s, false
-				}
-				s.fault = OpenQuote
-				return s.to(data, len(data)), true
+				s.open, s.opens = true, bytes.Count(data[:mark], []byte{'\n'})
+				return s.to(data, len(data)), last
 			}
 			if at == len(data) && !last || at == len(data)-1 && data[at] == '\r' && !last {
 				return s, false

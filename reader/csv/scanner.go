@@ -95,7 +95,7 @@ func (s *Scanner) Rows() int64 { return s.rows }
 
 // Next cuts the next block into b. It returns io.EOF when there is none, the
 // reader's error as it came, and a *schema.CellError without the file's name
-// for a record that is too long to be one.
+// for a quotation mark that is not closed or a record that is too long to be one.
 func (s *Scanner) Next(b *Block) error { return s.next(b, s.o.BlockRows) }
 
 func (s *Scanner) next(b *Block, rows int) error {
@@ -105,10 +105,13 @@ func (s *Scanner) next(b *Block, rows int) error {
 	for {
 		for len(b.Records) < rows && at < len(b.Data) {
 			c, ok := cut(b.Data[at:], s.o.Delimiter, s.ended)
-			if !ok {
+			if !ok && len(b.Data)-at <= MaxRecord {
 				break
 			}
-			if c.end > MaxRecord {
+			if c.open {
+				return openQuote(s.line, s.line+int64(c.opens))
+			}
+			if !ok || c.end > MaxRecord {
 				return tooLong(s.line)
 			}
 			if c.end > 0 { // a blank line is no record
@@ -119,9 +122,6 @@ func (s *Scanner) next(b *Block, rows int) error {
 		}
 		if len(b.Records) >= rows || s.ended || len(b.Records) > 0 && at >= blockBytes {
 			break
-		}
-		if len(b.Data)-at > MaxRecord {
-			return tooLong(s.line)
 		}
 		if err := s.read(b); err != nil {
 			return err
@@ -153,6 +153,12 @@ func (s *Scanner) read(b *Block) error {
 
 func tooLong(line int64) error {
 	return fault(line, "the record that starts here is longer than 1 MiB: is there a quotation mark that is not closed?")
+}
+
+// openQuote is the error on a record that would take all that follows for one
+// of its fields.
+func openQuote(line, opens int64) error {
+	return fault(line, fmt.Sprintf("the record that starts here does not end: close the quotation mark that opens on line %d", opens))
 }
 
 func fault(line int64, reason string) error {
