@@ -128,7 +128,9 @@ type manifestFile struct {
 
 // Manifest returns manifest.json: what was read, what was written, and the
 // figures to hold a later reading of the files against. The kernel is the name
-// of the pricing kernel that ran. A total that is not finite is refused.
+// of the pricing kernel that ran: the one field that tells of the machine, and
+// may differ between machines for the same inputs. A total that is not finite is
+// refused.
 func Manifest(s *schema.Summary, kernel string, outputs []schema.OutputFile) ([]byte, error) {
 	if err := finiteTotals(s); err != nil {
 		return nil, err
