@@ -417,6 +417,25 @@ func TestCombineCRC(t *testing.T) {
 	}
 }
 
+// Every word of a closed list fits into its column.
+func TestWidthsOfClosedLists(t *testing.T) {
+	lists := 0
+	for _, c := range schema.LinesTable(nil).Columns {
+		choices := schema.ChoicesOf(c.Name)
+		if choices != nil {
+			lists++
+		}
+		for _, word := range choices {
+			if width := WidthOf(&c); width <= float64(len(word)) {
+				t.Errorf("column %s is %v wide, too narrow for %s", c.Name, width, word)
+			}
+		}
+	}
+	if lists == 0 {
+		t.Error("the lines have no closed list")
+	}
+}
+
 func TestColumnNames(t *testing.T) {
 	for n, want := range map[int]string{1: "A", 26: "Z", 27: "AA", 52: "AZ", 702: "ZZ", 703: "AAA", 16384: "XFD"} {
 		if got := columnName(n); got != want {

@@ -62,7 +62,7 @@ func FormatOf(c *schema.Column) (whole, other string) {
 }
 
 // WidthOf returns a width, in characters, that shows the header and ordinary
-// values of a column.
+// values of a column, and every word of a closed list.
 func WidthOf(c *schema.Column) float64 {
 	width := 9
 	switch {
@@ -74,6 +74,9 @@ func WidthOf(c *schema.Column) float64 {
 		width = 16
 	case c.Type == schema.Float:
 		width = 12
+	}
+	for _, word := range schema.ChoicesOf(c.Name) {
+		width = max(width, len(word)+2) // room for an indent
 	}
 	// Room for the mark of the filter.
 	return float64(max(width, len([]rune(c.Name))+4))
