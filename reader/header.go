@@ -21,7 +21,7 @@ type binding struct {
 func bind(in *input, header []string, mapping map[string]string) (*binding, error) {
 	t := in.table
 	b := &binding{at: make([]int, len(t.Columns)), names: make([]string, len(t.Columns))}
-	taken := make([]bool, len(header))
+	taken := make([]string, len(header)) // by place in the file: our column
 	for _, h := range header {
 		if !utf8.ValidString(h) {
 			return nil, fmt.Errorf("%s: the header %q is not valid UTF-8: declare the file's encoding in [csv] encoding of %s", in.path, h, configName)
@@ -43,8 +43,12 @@ func bind(in *input, header []string, mapping map[string]string) (*binding, erro
 				return nil, fmt.Errorf("%s: two columns stand for %s: %q and %q; rename one, or map another header in [columns.%s] of %s",
 					in.path, ours, header[b.at[k]], h, t.Name, configName)
 			}
+			if taken[at] != "" {
+				return nil, fmt.Errorf("%s: the column %q stands for both %s and %s: map one of them to another header in [columns.%s] of %s",
+					in.path, h, taken[at], ours, t.Name, configName)
+			}
 			b.at[k], b.names[k] = at, h
-			taken[at] = true
+			taken[at] = ours
 		}
 		if mapped && (b.at[k] < 0 || !strings.EqualFold(b.names[k], theirs)) {
 			return nil, fmt.Errorf("%s: [columns.%s] of %s maps %s to %q, which is not in the header; the columns found are %s",
@@ -56,7 +60,7 @@ func bind(in *input, header []string, mapping map[string]string) (*binding, erro
 		}
 	}
 	for at := range header {
-		if !taken[at] {
+		if taken[at] == "" {
 			b.extra = append(b.extra, at)
 		}
 	}

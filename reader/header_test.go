@@ -35,6 +35,8 @@ func TestHeaders(t *testing.T) {
 		{"mapped", mapped, "line_id,PORTFOLIO ,underlying,instrument,quantity", "", ""},
 		{"mapped, not there", mapped, "line_id,book,underlying,instrument,quantity", "", `maps book to "Portfolio", which is not in the header; the columns found are "line_id" "book"`},
 		{"mapped, and ours too", mapped, "line_id,portfolio,book,underlying,instrument,quantity", "", `two columns stand for book: "portfolio" and "book"`},
+		{"two mapped to one", toml + "[columns.positions]\nstrike = \"K\"\nvol = \"k\"\n", "line_id,book,underlying,instrument,quantity,K", "", `the column "K" stands for both strike and vol: map one of them to another header in [columns.positions] of run.toml`},
+		{"mapped to another of ours", toml + "[columns.positions]\nstrike = \"vol\"\n", "line_id,book,underlying,instrument,quantity,vol", "", `the column "vol" stands for both strike and vol`},
 		{"missing", toml, "line_id,bk,underlying,instrument,quantity", "", `there is no column book; the columns found are "line_id" "bk" "underlying" "instrument" "quantity"; if the file names it otherwise, add book = "Its Header" under [columns.positions] in run.toml`},
 		{"twice", toml, "line_id,book,underlying,instrument,quantity,Book", "", `two columns stand for book: "book" and "Book"`},
 		{"another delimiter", toml, "line_id;book;underlying;instrument;quantity", "", `set [csv] delimiter = ";"`},
