@@ -34,6 +34,15 @@ var (
 	volLinePercent = bounds{from: 0, to: math.Inf(1), scale: 100, why: &finding{schema.OutOfRange, "expected a volatility of 0 or above, in percent: 20 is 20 %"}}
 )
 
+// strikeBounds are the bounds of a strike on an underlying of that kind; 0 is an
+// underlying that is not known.
+func strikeBounds(kind schema.Choice) bounds {
+	if kind == 0 || kind == schema.Spread {
+		return anyNumber
+	}
+	return positive
+}
+
 // volBounds are the bounds of a volatility of that kind in the unit of the files.
 func volBounds(cfg *schema.Config, kind schema.Choice) bounds {
 	switch {

@@ -131,6 +131,16 @@ func (r *marketRow) filled(name string) bool {
 	return at >= 0 && len(r.cells.text(at, r.i)) > 0
 }
 
+// kindsOf returns the kinds of the underlyings, which are read before all that
+// names them.
+func kindsOf(m *schema.Market) map[string]schema.Choice {
+	kinds := map[string]schema.Choice{}
+	for _, u := range m.Underlyings {
+		kinds[u.Name] = u.Kind
+	}
+	return kinds
+}
+
 func volRows(m *schema.Market, cfg *schema.Config) func(*marketRow) {
 	type point struct {
 		underlying string
@@ -139,18 +149,12 @@ func volRows(m *schema.Market, cfg *schema.Config) func(*marketRow) {
 		strike     float64
 	}
 	seen := map[point]int64{}
-	spreads := map[string]bool{}
-	for _, u := range m.Underlyings { // read before the vols are
-		spreads[u.Name] = u.Kind == schema.Spread
-	}
+	kinds := kindsOf(m)
 	return func(r *marketRow) {
 		v := schema.VolRow{Line: r.line(), Underlying: r.key("underlying")}
 		v.Day, v.Minute = r.neededDay("expiry")
-		v.Strike = r.needed("strike", anyNumber)
-		kind := schema.Choice(0)
-		if spreads[v.Underlying] {
-			kind = schema.Spread
-		}
+		kind := kinds[v.Underlying]
+		v.Strike = r.needed("strike", strikeBounds(kind))
 		v.Vol = r.needed("vol", volBounds(cfg, kind))
 		if v.Underlying != "" && v.Day != schema.NoDate && !math.IsNaN(v.Strike) {
 			key := point{v.Underlying, v.Day, v.Minute, v.Strike}

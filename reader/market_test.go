@@ -97,6 +97,8 @@ func TestMarketFaults(t *testing.T) {
 		{"vols", "underlying,expiry,strike,vol", "ALBA,2026-06-19,100,0.2", ",2026-06-19,100,0.2", "", "underlying", schema.MissingValue, "", "needs it"},
 		{"vols", "underlying,expiry,strike,vol", "ALBA,2026-06-19,100,0.2", "ALBA,,100,0.2", "ALBA", "expiry", schema.MissingValue, "", "needs it"},
 		{"vols", "underlying,expiry,strike,vol", "ALBA,2026-06-19,100,0.2", "ALBA,2026-06-19,,0.2", "ALBA", "strike", schema.MissingValue, "", "needs it"},
+		{"vols", "underlying,expiry,strike,vol", "ALBA,2026-06-19,100,0.2", "ALBA,2026-06-19,-5,0.2", "ALBA", "strike", schema.OutOfRange, "-5", "above 0"},
+		{"vols", "underlying,expiry,strike,vol", "UNKNOWN,2026-06-19,-5,0.2", "ALBA,2026-06-19,0,0.2", "ALBA", "strike", schema.OutOfRange, "0", "above 0"},
 		{"vols", "underlying,expiry,strike,vol", "ALBA,2026-06-19,100,0.2", "ALBA,2026-06-19,90,20", "ALBA", "vol", schema.OutOfRange, "20", "percent"},
 		{"vols", "underlying,expiry,strike,vol", "ALBA,2026-06-19,100,0.2", "ALBA,2026-06-19,1e2,0.3", "ALBA", "strike", schema.DuplicateKey, "1e2", "line 2"},
 		{"fx", "currency,rate", "EUR,1.1", "eur,1.2", "EUR", "currency", schema.DuplicateKey, "eur", "line 2"},
@@ -140,5 +142,18 @@ func TestDuplicateOfRefusedRow(t *testing.T) {
 	s := mustRead(t, map[string]string{"fx.csv": "currency,rate\nEUR,-1\nEUR,1.1\n"})
 	if f := s.market.Faults; len(f) != 2 || f[0].Code != schema.OutOfRange || f[1].Code != schema.DuplicateKey || len(s.market.FX) != 0 {
 		t.Errorf("%+v", f)
+	}
+}
+
+// A quote's strike is above 0 unless its underlying is a spread.
+func TestQuoteStrikes(t *testing.T) {
+	s := mustRead(t, map[string]string{
+		"run.toml":        smallest["run.toml"] + "[vols]\nfrom = \"quotes\"\n",
+		"underlyings.csv": "underlying,kind,currency,price\nALBA,equity,USD,100\nGAS/OIL,spread,USD,-3\n",
+		"quotes.csv":      "underlying,expiry,strike,option_type,price\nALBA,2026-06-19,-5,call,1\nGAS/OIL,2026-06-19,-5,call,1\n",
+	})
+	q := s.market.Quotes
+	if len(q) != 2 || q[0].Reject == nil || q[0].Reject.Code != schema.OutOfRange || q[0].Reject.Column != "strike" || q[1].Reject != nil {
+		t.Errorf("%+v", q)
 	}
 }

@@ -15,10 +15,11 @@ var (
 // quoteRows returns what reads one quote into the market. A refused quote stands
 // among the quotes, so that each can be answered, and is no fault of the market.
 func quoteRows(m *schema.Market, _ *schema.Config) func(*marketRow) {
+	kinds := kindsOf(m)
 	return func(r *marketRow) {
 		q := schema.QuoteRow{Line: r.line(), Underlying: r.key("underlying"), Exercise: schema.European}
 		q.Day, q.Minute = r.neededDay("expiry")
-		q.Strike = r.needed("strike", anyNumber)
+		q.Strike = r.needed("strike", strikeBounds(kinds[q.Underlying]))
 		q.OptionType = r.chosen("option_type", schema.OptionTypes, quoteTypes, missing)
 		if e := r.chosen("exercise", schema.Exercises, quoteStyles, nil); e != 0 {
 			q.Exercise = e
