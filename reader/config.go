@@ -97,6 +97,9 @@ func (f *Folder) readConfig() (string, error) {
 	if err != nil {
 		return "", err
 	}
+	if !info.Mode().IsRegular() {
+		return "", fmt.Errorf("%s: %w", path, errNotRegular)
+	}
 	if info.Size() > maxRunFile {
 		return "", fmt.Errorf("%s: larger than 1 MiB", path)
 	}

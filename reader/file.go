@@ -34,16 +34,15 @@ type file struct {
 }
 
 func (in *input) open() (*file, error) {
-	f, err := os.Open(in.path)
-	if err != nil {
-		return nil, err
-	}
-	info, err := f.Stat()
-	if err == nil && !info.Mode().IsRegular() {
+	info, err := os.Stat(in.path)
+	if err == nil && !info.Mode().IsRegular() { // to open a pipe would wait for its writer
 		err = fmt.Errorf("%s: %w", in.path, errNotRegular)
 	}
 	if err != nil {
-		f.Close()
+		return nil, err
+	}
+	f, err := os.Open(in.path)
+	if err != nil {
 		return nil, err
 	}
 	return &file{File: f, in: in, size: info.Size(), sum: sha256.New(), close: func() {}}, nil
