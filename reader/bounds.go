@@ -14,13 +14,13 @@ type bounds struct {
 	why      *finding
 }
 
-// Bounds of the columns. A rate beyond 1000 % is most often a percentage where a
+// Bounds of the columns. A rate beyond 100 % is most often a percentage where a
 // decimal is expected.
 var (
 	anyNumber = bounds{from: math.Inf(-1), to: math.Inf(1)}
 	positive  = bounds{from: 0, to: math.Inf(1), open: true, why: &finding{schema.OutOfRange, "expected a number above 0"}}
 	notBelow0 = bounds{from: 0, to: math.Inf(1), why: &finding{schema.OutOfRange, "expected 0 or a number above it"}}
-	rateRange = bounds{from: -10, to: 10, why: &finding{schema.OutOfRange, "expected a rate as a decimal, from -10 to 10 (1000 %): 0.035 is 3.5 %"}}
+	rateRange = bounds{from: -1, to: 1, why: &finding{schema.OutOfRange, "expected a rate as a decimal, from -1 to 1 (100 %): 0.035 is 3.5 %"}}
 
 	volDecimal = bounds{from: 0, to: 10, why: &finding{schema.OutOfRange,
 		`expected a volatility as a decimal, from 0 to 10 (1000 %): 0.20 is 20 %; if the files give percent, set [vols] unit = "percent"`}}
