@@ -1,6 +1,7 @@
 package reader
 
 import (
+	"bufio"
 	"crypto/sha256"
 	"encoding/hex"
 	"errors"
@@ -94,6 +95,7 @@ const (
 var (
 	errTooLarge = errors.New("unpacks to more than 64 GiB")
 	errBomb     = errors.New("unpacks to more than a thousand times its size")
+	errTrailing = errors.New("something that is not gzip stands behind the end of the packed text: the file is damaged, or was written over a longer one")
 )
 
 // unpacked returns the file's text without its compression. A packed file that
@@ -101,14 +103,16 @@ var (
 func (f *file) unpacked() (io.Reader, error) {
 	switch f.in.format.packed {
 	case "gzip":
-		z, err := gzip.NewReader(f)
+		packed := bufio.NewReaderSize(f, 64<<10)
+		z, err := gzip.NewReader(packed)
 		if err == io.EOF {
 			return nil, fmt.Errorf("not a gzip file: %w", io.ErrUnexpectedEOF)
 		}
 		if err != nil {
 			return nil, err
 		}
-		return &bounded{r: z, f: f}, nil
+		z.Multistream(false)
+		return &bounded{r: &members{z, packed}, f: f}, nil
 	case "zstd":
 		if f.size == 0 { // the decoder takes nothing at all for an empty text
 			return nil, fmt.Errorf("not a zstd file: %w", io.ErrUnexpectedEOF)
@@ -121,6 +125,32 @@ func (f *file) unpacked() (io.Reader, error) {
 		return &bounded{r: z, f: f}, nil
 	}
 	return struct{ io.Reader }{f}, nil
+}
+
+// members unpacks the members of a gzip file one after the other, and tells
+// what is none from a member that is cut short.
+type members struct {
+	*gzip.Reader
+	packed *bufio.Reader
+}
+
+func (m *members) Read(p []byte) (int, error) {
+	n, err := m.Reader.Read(p)
+	if err != io.EOF {
+		return n, err
+	}
+	head, err := m.packed.Peek(2)
+	switch {
+	case len(head) == 0:
+		return n, err // io.EOF, unless the disk failed
+	case string(head) != "\x1f\x8b":
+		return n, errTrailing
+	}
+	if err := m.Reset(m.packed); err != nil {
+		return n, err
+	}
+	m.Multistream(false)
+	return n, nil
 }
 
 // bounded holds unpacking to the limits.

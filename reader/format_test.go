@@ -352,3 +352,24 @@ func TestBomb(t *testing.T) {
 		t.Error(err)
 	}
 }
+
+// A gzip file may be of several members; what stands behind them and is none is
+// not taken for a cut.
+func TestGzipMembers(t *testing.T) {
+	text := desk(300, 5)
+	half := len(text) / 2
+	whole := gzipped(t, text[:half]) + gzipped(t, text[half:])
+	if got, want := content(mustRead(t, map[string]string{"positions.csv": "", "positions.csv.gz": whole})), content(mustRead(t, map[string]string{"positions.csv": text})); got != want {
+		t.Error("two members read otherwise than the text")
+	}
+	for _, behind := range []string{"x", "junk", strings.Repeat("longer than a header", 9)} {
+		_, err := readAll(folderOf(t, map[string]string{"positions.csv": "", "positions.csv.gz": whole + behind}))
+		if !errors.Is(err, errTrailing) || strings.Contains(err.Error(), "cut short") {
+			t.Errorf("%q behind the end: %v", behind, err)
+		}
+	}
+	_, err := readAll(folderOf(t, map[string]string{"positions.csv": "", "positions.csv.gz": whole[:len(whole)-9]}))
+	if !errors.Is(err, io.ErrUnexpectedEOF) {
+		t.Errorf("the second member cut: %v", err)
+	}
+}
