@@ -143,7 +143,7 @@ func (n *Binder) numbers(column int, within *bounds, to []float64, absent float6
 			if math.IsNaN(x) {
 				x, why = absent, empty(i)
 			} else {
-				x, why = within.check(x)
+				x, why = within.check(x, n.cells.Cell(at, i))
 			}
 		}
 		if to[i] = x; why != nil {

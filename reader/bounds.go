@@ -3,6 +3,7 @@ package reader
 import (
 	"math"
 
+	"nightbook/reader/table"
 	"nightbook/schema"
 )
 
@@ -62,10 +63,10 @@ func lineVolBounds(cfg *schema.Config) bounds {
 	return volLine
 }
 
-// check scales a finite number to our unit and holds it to the bounds. Of a
-// number that is out it returns NaN.
-func (b *bounds) check(x float64) (float64, *finding) {
-	if b.scale != 0 {
+// check scales a finite number to our unit and holds it to the bounds. A
+// percentage is in our unit already. Of a number that is out it returns NaN.
+func (b *bounds) check(x float64, kind table.Cell) (float64, *finding) {
+	if b.scale != 0 && kind != table.Percent {
 		x /= b.scale
 	}
 	if x < b.from || x > b.to || b.open && x == b.from {

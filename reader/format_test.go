@@ -373,3 +373,35 @@ func TestGzipMembers(t *testing.T) {
 		t.Errorf("the second member cut: %v", err)
 	}
 }
+
+// A volatility that a workbook shows as a percentage is a decimal already,
+// whatever the unit of the files.
+func TestPercentCells(t *testing.T) {
+	f := excelize.NewFile()
+	defer f.Close()
+	f.SetSheetRow("Sheet1", "A1", &[]any{"underlying", "expiry", "strike", "vol"})
+	f.SetSheetRow("Sheet1", "A2", &[]any{"ALBA", "2026-06-19", 90, 0.07})
+	f.SetSheetRow("Sheet1", "A3", &[]any{"ALBA", "2026-06-19", 100, 0.07})
+	f.SetSheetRow("Sheet1", "A4", &[]any{"ALBA", "2026-06-19", 110, 7})
+	one := "0.0 %"
+	for cell, style := range map[string]*excelize.Style{"D2": {NumFmt: 10}, "D3": {CustomNumFmt: &one}} {
+		id, err := f.NewStyle(style)
+		if err != nil {
+			t.Fatal(err)
+		}
+		f.SetCellStyle("Sheet1", cell, cell, id)
+	}
+	var b bytes.Buffer
+	if err := f.Write(&b); err != nil {
+		t.Fatal(err)
+	}
+	s := mustRead(t, map[string]string{"run.toml": smallest["run.toml"] + "[vols]\nunit = \"percent\"\n", "vols.xlsx": b.String()})
+	if len(s.market.Vols) != 3 {
+		t.Fatalf("%+v, faults %+v", s.market.Vols, s.market.Faults)
+	}
+	for _, v := range s.market.Vols {
+		if v.Vol != 0.07 {
+			t.Errorf("strike %v: %v, want 0.07", v.Strike, v.Vol)
+		}
+	}
+}

@@ -196,7 +196,7 @@ func (r *marketRow) given(name string, within bounds) (x float64, ok bool) {
 		return x, false
 	}
 	if why == nil {
-		x, why = within.check(x)
+		x, why = within.check(x, r.Cell(r.o.at[k], r.i))
 	}
 	if why != nil {
 		r.refuse(k, why)

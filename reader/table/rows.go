@@ -14,6 +14,8 @@ const (
 	Text Cell = iota
 	// Number came as a number: digits, a point, an exponent.
 	Number
+	// Percent is a Number that is shown as a percentage: 0.2 as 20 %.
+	Percent
 	// Date came as a date: YYYY-MM-DD, with THH:MM behind it where there was a time of day.
 	Date
 	// Fault is the error value of a workbook's cell, such as #N/A, or a NaN that the file holds.

@@ -57,12 +57,17 @@ func (w *Workbook) read(c *rawCell) (string, table.Cell, error) {
 		if err != nil {
 			return "", 0, damaged("a cell's number is %q", c.value)
 		}
-		if 0 <= c.style && c.style < len(w.dates) && w.dates[c.style] {
-			if d, ok := w.date(x); ok {
-				return d, table.Date, nil
-			}
+		kind := table.Number
+		if 0 <= c.style && c.style < len(w.shown) {
+			kind = w.shown[c.style]
 		}
-		return string(table.AppendFloat(nil, x)), table.Number, nil
+		if kind == table.Date {
+			if d, ok := w.date(x); ok {
+				return d, kind, nil
+			}
+			kind = table.Number
+		}
+		return string(table.AppendFloat(nil, x)), kind, nil
 	}
 	return "", 0, damaged("a cell is of the unknown type %q", c.kind)
 }

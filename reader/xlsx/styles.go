@@ -1,8 +1,12 @@
 package xlsx
 
-import "strings"
+import (
+	"strings"
 
-// readStyles finds out which cell styles show their number as a date.
+	"nightbook/reader/table"
+)
+
+// readStyles finds out what each cell style shows a number as.
 func (w *Workbook) readStyles(name string) error {
 	var s struct {
 		Formats []struct {
@@ -21,31 +25,42 @@ func (w *Workbook) readStyles(name string) error {
 		codes[f.ID] = f.Code
 	}
 	for _, x := range s.Styles {
-		code, own := codes[x.Format]
-		w.dates = append(w.dates, own && isDateCode(code) || !own && isDateID(x.Format))
+		kind := kindOfID(x.Format)
+		if code, own := codes[x.Format]; own {
+			kind = kindOfCode(code)
+		}
+		w.shown = append(w.shown, kind)
 	}
 	return nil
 }
 
-// isDateID reports whether a built-in number format shows dates or times.
+// kindOfID returns what a built-in number format shows: Date, for dates and
+// times, Percent or Number.
 // Source: ECMA-376 part 1, section 18.8.30, with the formats 27–36 and 50–58
 // that East Asian languages show dates in.
-func isDateID(id int) bool {
-	return 14 <= id && id <= 22 || 27 <= id && id <= 36 || 45 <= id && id <= 47 || 50 <= id && id <= 58
+func kindOfID(id int) table.Cell {
+	switch {
+	case id == 9 || id == 10:
+		return table.Percent
+	case 14 <= id && id <= 22, 27 <= id && id <= 36, 45 <= id && id <= 47, 50 <= id && id <= 58:
+		return table.Date
+	}
+	return table.Number
 }
 
-// isDateCode reports whether a number format has a part of a date or a time in
-// its first section, outside quoted and escaped text, colours and conditions.
-func isDateCode(code string) bool {
+// kindOfCode returns what a number format shows: Date or Percent, if it has a
+// part of a date or a time, or a percent sign, in its first section, outside
+// quoted and escaped text, colours and conditions; else Number.
+func kindOfCode(code string) table.Cell {
 	lower := strings.ToLower(code)
 	for i := 0; i < len(lower); i++ {
 		switch lower[i] {
 		case ';':
-			return false
+			return table.Number
 		case '"':
 			end := strings.IndexByte(lower[i+1:], '"')
 			if end < 0 {
-				return false
+				return table.Number
 			}
 			i += end + 1
 		case '\\', '_', '*':
@@ -53,20 +68,22 @@ func isDateCode(code string) bool {
 		case '[':
 			end := strings.IndexByte(lower[i:], ']')
 			if end < 0 {
-				return false
+				return table.Number
 			}
 			switch lower[i+1 : i+end] { // elapsed time is a time, a colour is none
 			case "h", "hh", "m", "mm", "s", "ss":
-				return true
+				return table.Date
 			}
 			i += end
+		case '%':
+			return table.Percent
 		case 'y', 'm', 'd', 'h', 's':
-			return true
+			return table.Date
 		case 'g': // General, and not the year of an emperor
 			if strings.HasPrefix(lower[i:], "general") {
-				return false
+				return table.Number
 			}
 		}
 	}
-	return false
+	return table.Number
 }

@@ -18,7 +18,7 @@ type Workbook struct {
 	name     string // of the sheet
 	date1904 bool
 	strings  []string
-	dates    []bool // by cell style: whether its number format shows a date
+	shown    []table.Cell // by cell style: what its number format shows a number as
 
 	sheet  *sheet
 	header []string

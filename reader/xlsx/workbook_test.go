@@ -28,7 +28,7 @@ func book(t testing.TB, fill func(*excelize.File)) []byte {
 	return b.Bytes()
 }
 
-var marks = map[table.Cell]string{table.Text: "t", table.Number: "n", table.Date: "d", table.Fault: "!"}
+var marks = map[table.Cell]string{table.Text: "t", table.Number: "n", table.Percent: "p", table.Date: "d", table.Fault: "!"}
 
 // rendered reads a workbook whole: a line a row, with its number and the kind
 // of each cell before its text.
@@ -105,7 +105,7 @@ func TestCells(t *testing.T) {
 		"6|t:tiny & <big>|n:1e-09|n:12345678901.5|t:false",
 		"7||n:0.333333333333333||d:2026-03-20T15:30",
 		"8||||d:2026-03-20",
-		"9||n:0.2||",
+		"9||p:0.2||",
 		"10||||d:2026-03-20T18:00",
 		"11|t:beyond||| BAD there is a cell in column F, which has no header: name the column or empty the cell",
 		"12|t:two runs|||",
@@ -248,13 +248,14 @@ func TestChecksum(t *testing.T) {
 	}
 }
 
-func TestIsDateCode(t *testing.T) {
-	for code, want := range map[string]bool{
-		"yyyy-mm-dd": true, "d/m/yy": true, "[$-409]h:mm AM/PM": true, "[hh]:mm": true, `"day" 0`: false, "0.00": false, "General": false,
-		`0.00_d`: false, `\d0`: false, "[Red]0": false, "0;yyyy": false, "#,##0 [$USD]": false, `"open`: false, "[open": false, "": false, "GENERAL": false,
+func TestKindOfCode(t *testing.T) {
+	for code, want := range map[string]table.Cell{
+		"yyyy-mm-dd": table.Date, "d/m/yy": table.Date, "[$-409]h:mm AM/PM": table.Date, "[hh]:mm": table.Date, `"day" 0`: table.Number, "0.00": table.Number, "General": table.Number,
+		`0.00_d`: table.Number, `\d0`: table.Number, "[Red]0": table.Number, "0;yyyy": table.Number, "#,##0 [$USD]": table.Number, `"open`: table.Number, "[open": table.Number, "": table.Number, "GENERAL": table.Number,
+		"0%": table.Percent, "[Red]#,##0.00 %;-0": table.Percent, `0"%"`: table.Number, `0\%`: table.Number, "0;0%": table.Number,
 	} {
-		if got := isDateCode(code); got != want {
-			t.Errorf("isDateCode(%q) = %v", code, got)
+		if got := kindOfCode(code); got != want {
+			t.Errorf("kindOfCode(%q) = %v, want %v", code, got, want)
 		}
 	}
 }
@@ -274,7 +275,7 @@ func TestOfficeWorkbook(t *testing.T) {
 		t.Fatal(err)
 	}
 	check(t, b, "line_id|strike|expiry|vol|note",
-		"2|t:L1|n:12.5|d:2026-06-19|n:0.2|t:so, \"it\" goes",
+		"2|t:L1|n:12.5|d:2026-06-19|p:0.2|t:so, \"it\" goes",
 		"3|t:L2|n:25|d:2026-06-20|n:0.25|",
 		"4|t:L3|!:#DIV/0!||n:0.3|t:ä€",
 	)
