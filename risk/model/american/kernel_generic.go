@@ -53,7 +53,7 @@ func (s *block) distancesGeneric() {
 		}
 		diff := s.h[i] - hu
 		d := math.FMA(ab, z, 0-diff) * float64(invV*s.eq.invRoot[r])
-		vz := v * s.eq.root[r]
+		vz := float64(v * s.eq.root[r])
 		dm := math.FMA(vz, -0.5, d)
 		s.hu[r] = hu
 		s.dm[r] = dm

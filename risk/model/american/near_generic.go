@@ -46,12 +46,12 @@ func (s *block) refineGeneric() {
 	for r := range e {
 		kappa := invV * s.price.invRoot[r]
 		d := math.FMA(drift, s.price.wait[r], delta)
-		cash := q.nearDensity[r] * q.nearCash[r]
+		cash := float64(q.nearDensity[r] * q.nearCash[r])
 		if !(d > 0) {
 			cash = c.decayA[r] - cash
 		}
 		f = math.FMA(s.price.weight[r], cash, f)
-		g := float64(s.price.density[r]*q.nearDensity[r]) * invV
+		g := float64(float64(s.price.density[r]*q.nearDensity[r]) * invV)
 		square := float64(kappa * kappa)
 		dk := d * square
 		g0 += g
@@ -59,15 +59,15 @@ func (s *block) refineGeneric() {
 		g2 = math.FMA(g, math.FMA(dk, dk, 0-square), g2)
 	}
 	density, square := q.nearDensity[e], invV*invV
-	cash := density * q.nearCash[e]
+	cash := float64(density * q.nearCash[e])
 	if !(delta+drift > 0) {
 		cash = c.decayA[e] - cash
 	}
-	forth := density * q.edge[0]
+	forth := float64(density * q.edge[0])
 	if speed > delta {
 		forth = q.nearDensity[e+1] - forth
 	}
-	back := density * q.edge[1]
+	back := float64(density * q.edge[1])
 	turn := drift * square
 	exactG := (forth - back) / speed
 	both := forth + back

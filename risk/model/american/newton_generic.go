@@ -28,18 +28,18 @@ func (s *block) lineariseGeneric() {
 		low := 1 / s.ratio[o] // B
 		t, w, dm := s.eq.wait[o], s.eq.root[o], s.dm[o]
 		omega := float64(float64(s.density[o]*invSqrt2Pi) * float64(invV*s.eq.invRoot[o]))
-		be := low * s.tail[o]
+		be := float64(low * s.tail[o])
 		var asset, assetSlope, assetA, assetB, assetV float64
 		var cash, cashSlope, cashA, cashB, cashV float64
 		for j := first; j < first+s.inner; j++ {
 			z, dm := s.eq.wait[j], s.dm[j]
-			vz := v * s.eq.root[j]
+			vz := float64(v * s.eq.root[j])
 			g := float64(s.eq.density[j]*s.density[j]) * invV
 			bu := low * s.ratio[j]
 			e := float64(s.eq.weight[j]*low) * s.tail[j]
-			beta := float64(b*bu) * g
+			beta := float64(float64(b*bu) * g)
 			c := math.FMA(a, g, 0-beta)
-			k := float64(c*dm) * float64(invV*s.eq.invRoot[j])
+			k := float64(float64(c*dm) * float64(invV*s.eq.invRoot[j]))
 			s.beta[j], s.pull[j] = beta, k
 			asset = math.FMA(b, e, asset)
 			assetSlope += beta
@@ -177,7 +177,7 @@ func (s *block) bendGeneric() {
 			q = math.FMA(0-float64(beta*vz), math.FMA(hi+math.FMA(dm, dmDot, hu), dpDot, sum), q)
 			q = math.FMA(beta, math.FMA(float64(-2*hu), gamma, square), q)
 			q = math.FMA(0-c, math.FMA(gamma, gamma, gammaDot), q)
-			k := float64(c*dm) * float64(invV*s.eq.invRoot[j])
+			k := float64(float64(c*dm) * float64(invV*s.eq.invRoot[j]))
 			q = math.FMA(0-float64(2*half), float64(k*square), q)
 		}
 		s.bent[i] = math.FMA(s.scale[i], q, float64(2*float64(hi*hi)))

@@ -53,7 +53,7 @@ func (s *block) priceDistancesGeneric() {
 	ab := a - s.b[0]
 	for r, z := range s.price.wait {
 		d := math.FMA(ab, z, x+s.curve.hu[r]) * float64(invV*s.price.invRoot[r])
-		vz := v * s.price.root[r]
+		vz := float64(v * s.price.root[r])
 		dm := math.FMA(vz, -0.5, d)
 		q.dm[r] = dm
 		q.density[r] = larger(0-math.FMA(a, z, float64(dm*0.5)*dm), lowestExp)
@@ -67,7 +67,7 @@ func (s *block) priceTailsGeneric() {
 	q, c := &s.quote, &s.curve
 	for r, dm := range q.dm {
 		x := q.density[r]
-		cash := x * q.cash[r]
+		cash := float64(x * q.cash[r])
 		if !(dm > 0) {
 			cash = c.decayA[r] - cash
 		}

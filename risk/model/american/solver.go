@@ -117,7 +117,7 @@ func (s *Solver) Solve(r *Results, l *Lines) {
 		case rate < 0:
 			r.fill(i, math.NaN(), OutOfReach)
 		default:
-			z.a[i], z.b[i], z.v[i] = rate*t+0, yield*t+0, v // +0 makes −0 equal to 0
+			z.a[i], z.b[i], z.v[i] = float64(rate*t)+0, float64(yield*t)+0, v // +0 makes −0 equal to 0
 			z.x[i], z.ratio[i], z.unit[i] = spot, spot/strike, strike
 			s.todo = append(s.todo, int32(i))
 		}

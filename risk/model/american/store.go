@@ -81,7 +81,7 @@ func (r *Results) expire(i int, l *Lines) {
 func (r *Results) certain(i int, l *Lines) {
 	spot, strike, t, rate, yield, sign := l.Spot[i], l.Strike[i], l.Time[i], l.Rate[i], l.Yield[i], l.Sign[i]
 	worth := func(t float64) (asset, cash, v float64) {
-		asset, cash = spot*vec.Exp1(float64(-yield*t)), strike*vec.Exp1(float64(-rate*t))
+		asset, cash = float64(spot*vec.Exp1(float64(-yield*t))), float64(strike*vec.Exp1(float64(-rate*t)))
 		return asset, cash, float64(sign * (asset - cash))
 	}
 	r.fill(i, 0, Held)

@@ -14,7 +14,7 @@ func (s *block) valuesGeneric() {
 	e := s.price.n
 	dm, dp := q.dm[e], q.dm[e]+v
 	phi := q.density[e] * invSqrt2Pi
-	g := phi * invV
+	g := float64(phi * invV)
 	p, px := q.cash[e]-q.asset[e], 0-q.asset[e]
 	pxx := px + g
 	pxxx := math.FMA(0-g, float64(dm*invV), pxx)
@@ -26,9 +26,9 @@ func (s *block) valuesGeneric() {
 		cash, asset := weight*q.cash[r], weight*q.asset[r]
 		kappa := invV * s.price.invRoot[r]
 		g := float64(s.price.density[r]*q.density[r]) * invV
-		beta := float64(b*c.boundary[r]) * g
+		beta := float64(float64(b*c.boundary[r]) * g)
 		cg := math.FMA(a, g, 0-beta)
-		yield := b * asset
+		yield := float64(b * asset)
 		dk := dm * kappa
 		p = math.FMA(a, cash, p) - yield
 		px = px - (yield + cg)
@@ -41,7 +41,7 @@ func (s *block) valuesGeneric() {
 		pa = math.FMA(cg, ta-z, pa)
 		pb = math.FMA(0-asset, math.FMA(0-b, z, 1), pb)
 		pb = math.FMA(cg, tb+z, pb)
-		vz := v * root
+		vz := float64(v * root)
 		dp := dm + vz
 		dd := math.FMA(dm, dp, -1)
 		bz := beta * vz
