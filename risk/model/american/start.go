@@ -21,7 +21,7 @@ const (
 
 	leastRate  = 1e-14 // a = 0 with b < 0 is taken as this
 	thinLayer  = 0.3   // an h(0) this small, in units of v·w₁, is taken as 0
-	justAbove  = 0.3 // an h(0) this small, in units of v, makes b just above a
+	justAbove  = 0.3   // an h(0) this small, in units of v, makes b just above a
 	leastRise  = 0.5   // of h above h(0), in units of v√τ, where b is just above a
 	leastWidth = -2.2  // range of the first variable, ⅓·ln(v√τ)
 	mostWidth  = 0.6

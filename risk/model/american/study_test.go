@@ -60,7 +60,7 @@ func TestErrorStudy(t *testing.T) {
 	for _, c := range []struct {
 		name    string
 		setting Setting
-		rms     float64     // of the price, K = 100
+		rms     float64 // of the price, K = 100
 		most    [12]float64
 	}{
 		{"fast", Fast, 1e-5, [12]float64{1e-4, 1e-5, 1e-3, 1e-3, 5e-5, 3e-3, 3e-3, 1e-2, 5e-2, 3e-2, 1e-3, 1e-3}},
