@@ -31,8 +31,10 @@ type block struct {
 	matrix      []float64    // of Newton's method, in each row factors and four right-hand sides
 	step        []float64    // what was added to H last
 	scale       []float64    // of each equation
+	rho, sigma  []float64    // the weights of its sides
+	sums        []float64    // scratch
 	pull        []float64    // the weight of H at each node in its equation; later ∂H/∂v there
-	beta        []float64    // b·B(u)·g at each node
+	beta, cash  []float64    // b·B(u)·g and c at each node
 	bent        []float64    // right-hand side for ∂²H/∂v²
 	tangent     [3][]float64 // ∂H/∂a, ∂H/∂b, ∂H/∂v, from expiry on
 	second      []float64    // ∂²H/∂v², from expiry on
@@ -47,18 +49,18 @@ const sides = 4
 
 func newBlock(r *rule, width int) *block {
 	n, points := len(r.eq.wait), r.points
-	columns := func(n int) []float64 { return aligned(n * width) }
+	columns := func(n int) []float64 { return column(n * width) }
 	s := &block{rule: r, width: width}
 	for _, c := range []*[]float64{&s.a, &s.b, &s.v, &s.invV, &s.floor, &s.floorA, &s.floorB} {
 		*c = columns(1)
 	}
-	for _, c := range []*[]float64{&s.h, &s.step, &s.scale, &s.top, &s.bottom, &s.bent} {
+	for _, c := range []*[]float64{&s.h, &s.step, &s.scale, &s.top, &s.bottom, &s.bent, &s.rho, &s.sigma} {
 		*c = columns(points)
 	}
-	for _, c := range []*[]float64{&s.square, &s.tangent[0], &s.tangent[1], &s.tangent[2], &s.second} {
+	for _, c := range []*[]float64{&s.square, &s.tangent[0], &s.tangent[1], &s.tangent[2], &s.second, &s.sums} {
 		*c = columns(points + 1)
 	}
-	for _, c := range []*[]float64{&s.decay, &s.hu, &s.dm, &s.density, &s.ratio, &s.tail, &s.pull, &s.beta} {
+	for _, c := range []*[]float64{&s.decay, &s.hu, &s.dm, &s.density, &s.ratio, &s.tail, &s.pull, &s.beta, &s.cash} {
 		*c = columns(n)
 	}
 	s.matrix = columns(points * (points + sides))
@@ -72,18 +74,15 @@ func newBlock(r *rule, width int) *block {
 // derivative in v, their curvature.
 func (s *block) solve() {
 	s.start()
-	for i, z := range s.eq.wait {
-		for j := range s.width {
-			s.decay[i*s.width+j] = float64(-z * s.b[j])
-		}
-	}
+	s.decays()
 	vec.Exp(s.decay, s.decay)
 	for k := range s.sweeps {
 		s.visit()
-		s.linearise()
+		last := k == s.sweeps-1
+		s.linearise(last)
 		vec.LogRatio(s.top, s.top, s.bottom)
-		s.eliminate()
-		if k == s.sweeps-1 {
+		s.eliminate(last)
+		if last {
 			spread(s.pull, s.eq.spread, s.tangent[2], s.eq.n, s.width)
 			s.bend()
 			s.resolve()

@@ -40,6 +40,8 @@ type quote struct {
 	dm, density []float64 // d₋, e^(−a·wait − d₋²/2)
 	cash, asset []float64 // |d₋| and |d₊|, their Mills ratios, then e^(−a·wait)·Φ(−d₋) and (S/K)·e^(−b·wait)·Φ(−d₊)
 
+	carry, beta []float64 // c and b·B(u)·g
+
 	// the same for the touching boundary, without the asset; behind the nodes
 	// nearDensity has e^(−(μ+m)δ/v²)
 	nearDensity, nearCash []float64
@@ -53,7 +55,7 @@ type values struct{ p, x, xx, xxx, a, b, v, xv, vv []float64 }
 
 func (q *quote) grow(r *rule, columns func(n int) []float64) {
 	n := len(r.price.wait)
-	for _, p := range []*[]float64{&q.dm, &q.density, &q.cash, &q.asset, &q.nearCash} {
+	for _, p := range []*[]float64{&q.dm, &q.density, &q.cash, &q.asset, &q.carry, &q.beta, &q.nearCash} {
 		*p = columns(n)
 	}
 	q.nearDensity = columns(n + 1)

@@ -43,6 +43,35 @@ func ordinaryLines(n int, seed uint64) []line {
 	return all
 }
 
+// wild draws any option that makes sense, and more of what is awkward.
+func wild(rng *rand.Rand) line {
+	o := line{k: 100, t: between(rng, 1./365/24, 30), v: between(rng, 0.005, 3), w: float64(1 - 2*rng.IntN(2))}
+	o.s = between(rng, 1, 10000)
+	if rng.IntN(2) == 0 {
+		o.s = 100 * math.Exp(o.v*math.Sqrt(o.t)*3*(2*rng.Float64()-1))
+	}
+	o.r, o.q = between(rng, 1e-6, 0.3), between(rng, 1e-6, 0.3)
+	if rng.IntN(4) == 0 {
+		o.q = -o.q
+	}
+	switch rng.IntN(10) {
+	case 0, 1:
+		o.r = -o.r
+	case 2:
+		o.r = 0
+	case 3:
+		o.q = 0
+	case 4:
+		o.q = o.r
+	case 5:
+		o.q = o.r * (1 + 1e-3*rng.NormFloat64())
+	}
+	if o.w > 0 {
+		o.r, o.q = o.q, o.r
+	}
+	return o
+}
+
 // near fails the test unless |got − want| ≤ tolerance.
 func near(t *testing.T, name string, got, want, tolerance float64) {
 	t.Helper()

@@ -36,6 +36,13 @@ func spreadGeneric(dst, weights, f []float64, n int) {
 	}
 }
 
+// decaysGeneric sets the exponents of decay.
+func (s *block) decaysGeneric() {
+	for r, z := range s.eq.wait {
+		s.decay[r] = 0 - float64(s.b[0]*z)
+	}
+}
+
 // distancesGeneric turns hu from H into h and sets dm, |d₊| and the exponents of
 // density and ratio, with
 //

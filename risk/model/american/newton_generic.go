@@ -18,9 +18,10 @@ import "math"
 //
 // and by their derivatives in a, b and v.
 
-// lineariseGeneric sets the rows of the matrix and the four right-hand sides, the
-// first without its factor ln ρ, for which top and bottom are P and Q.
-func (s *block) lineariseGeneric() {
+// lineariseGeneric sets the rows of the matrix and the right-hand sides: one for
+// the step, without its factor ln ρ, for which top and bottom are P and Q, and on
+// the last sweep three for the tangents.
+func (s *block) lineariseGeneric(last bool) {
 	a, b, v, invV := s.a[0], s.b[0], s.v[0], s.invV[0]
 	n, row := s.points, s.points+sides
 	for i := range n {
@@ -34,13 +35,13 @@ func (s *block) lineariseGeneric() {
 		for j := first; j < first+s.inner; j++ {
 			z, dm := s.eq.wait[j], s.dm[j]
 			vz := float64(v * s.eq.root[j])
-			g := float64(s.eq.density[j]*s.density[j]) * invV
+			g := float64(float64(s.eq.density[j]*s.density[j]) * invV)
 			bu := low * s.ratio[j]
 			e := float64(s.eq.weight[j]*low) * s.tail[j]
 			beta := float64(float64(b*bu) * g)
 			c := math.FMA(a, g, 0-beta)
 			k := float64(float64(c*dm) * float64(invV*s.eq.invRoot[j]))
-			s.beta[j], s.pull[j] = beta, k
+			s.beta[j], s.cash[j], s.pull[j] = beta, c, k
 			asset = math.FMA(b, e, asset)
 			assetSlope += beta
 			assetA = math.FMA(beta, z, assetA)
@@ -86,42 +87,57 @@ func (s *block) lineariseGeneric() {
 			}
 			m[k-1] = x
 		}
-		m[n], m[n+1], m[n+2], m[n+3] = scale*gain, scale*ra, scale*rb, scale*rv
+		m[n] = scale * gain
+		if last {
+			m[n+1], m[n+2], m[n+3] = scale*ra, scale*rb, scale*rv
+		}
 	}
 }
 
-// eliminateGeneric solves for the step and the tangents. The matrix is close to
-// the identity: no pivots are sought. Its factors stay, for resolve.
-func (s *block) eliminateGeneric() {
+// eliminateGeneric solves for the step and, on the last sweep, for the tangents.
+// The matrix is close to the identity: no pivots are sought. Its factors stay, for
+// resolve.
+func (s *block) eliminateGeneric(last bool) {
 	n, row := s.points, s.points+sides
+	used := n + 1
+	if last {
+		used = row
+	}
 	for i, x := range s.top {
 		s.matrix[i*row+n] *= x
 	}
 	for p := range n {
-		pivot := s.matrix[p*row : (p+1)*row]
+		pivot := s.matrix[p*row : p*row+used]
 		inv := 1 / pivot[p]
 		pivot[p] = inv
 		for r := p + 1; r < n; r++ {
-			m := s.matrix[r*row : (r+1)*row]
+			m := s.matrix[r*row : r*row+used]
 			f := 0 - float64(m[p]*inv)
 			m[p] = f
-			for k := p + 1; k < row; k++ {
+			for k := p + 1; k < used; k++ {
 				m[k] = math.FMA(f, pivot[k], m[k])
 			}
 		}
 	}
-	s.tangent[0][0], s.tangent[1][0], s.tangent[2][0] = s.floorA[0], s.floorB[0], 0
+	s.substituteGeneric(s.step, n)
+	if last {
+		s.tangent[0][0], s.tangent[1][0], s.tangent[2][0] = s.floorA[0], s.floorB[0], 0
+		for k := range s.tangent {
+			s.substituteGeneric(s.tangent[k][1:], n+1+k)
+		}
+	}
+}
+
+// substituteGeneric solves the triangle that elimination leaves for a right-hand side.
+func (s *block) substituteGeneric(x []float64, side int) {
+	n, row := s.points, s.points+sides
 	for i := n - 1; i >= 0; i-- {
 		m := s.matrix[i*row : (i+1)*row]
-		x0, x1, x2, x3 := m[n], m[n+1], m[n+2], m[n+3]
+		sum := m[side]
 		for k := i + 1; k < n; k++ {
-			c := 0 - m[k]
-			x0 = math.FMA(c, s.step[k], x0)
-			x1 = math.FMA(c, s.tangent[0][k+1], x1)
-			x2 = math.FMA(c, s.tangent[1][k+1], x2)
-			x3 = math.FMA(c, s.tangent[2][k+1], x3)
+			sum = math.FMA(0-m[k], x[k], sum)
 		}
-		s.step[i], s.tangent[0][i+1], s.tangent[1][i+1], s.tangent[2][i+1] = x0*m[i], x1*m[i], x2*m[i], x3*m[i]
+		x[i] = sum * m[i]
 	}
 }
 
@@ -146,7 +162,7 @@ func (s *block) advanceGeneric() {
 //	b∫(ḣ²·B·e^(−bz)·Φ(d₊)) du − ∫β·v√z((ḣ + ḣ(u) + d₋ḋ₋)ḋ₊ + (ḋ₋+ḋ₊)/v) du,
 //	∫(β(ḣ(u)² − 2ḣ(u)γ) − c(γ² + γ̇) − k·ḣ(u)²/h(u)) du.
 func (s *block) bendGeneric() {
-	a, b, v, invV := s.a[0], s.b[0], s.v[0], s.invV[0]
+	b, v, invV := s.b[0], s.v[0], s.invV[0]
 	for i := range s.points {
 		o := s.eq.n + i
 		low := 1 / s.ratio[o]
@@ -160,13 +176,11 @@ func (s *block) bendGeneric() {
 		q := math.FMA(float64(hi*hi), float64(low*s.tail[o]), 0-float64(float64(omega*float64(v*w))*bend))
 		for j := i * s.inner; j < (i+1)*s.inner; j++ {
 			dm, root := s.dm[j], s.eq.root[j]
-			vz := v * root
-			g := float64(s.eq.density[j]*s.density[j]) * invV
+			vz := float64(v * root)
 			e := float64(s.eq.weight[j]*low) * s.tail[j]
-			beta := float64(b*float64(low*s.ratio[j])) * g
-			c := math.FMA(a, g, 0-beta)
+			beta, c := s.beta[j], s.cash[j]
 			half := 0.5 / s.hu[j]
-			hu := s.pull[j] * half
+			hu := float64(s.pull[j] * half)
 			dmDot := float64(math.FMA(hu-hi, s.eq.invRoot[j], 0-(dm+vz)) * invV)
 			dpDot := dmDot + root
 			sum := float64((dmDot + dpDot) * invV)
@@ -193,15 +207,8 @@ func (s *block) resolveGeneric() {
 		for p := range i {
 			x = math.FMA(m[p], s.bent[p], x)
 		}
-		s.bent[i] = x
+		s.bent[i], m[n] = x, x
 	}
 	s.second[0] = 0
-	for i := n - 1; i >= 0; i-- {
-		m := s.matrix[i*row : (i+1)*row]
-		x := s.bent[i]
-		for k := i + 1; k < n; k++ {
-			x = math.FMA(0-m[k], s.second[k+1], x)
-		}
-		s.second[i+1] = x * m[i]
-	}
+	s.substituteGeneric(s.second[1:], n)
 }

@@ -32,7 +32,7 @@ func (s *block) curveTangentsGeneric() {
 	h, a, v := s.h[n-1], s.a[0], s.v[0]
 	inv := 1 / h
 	half := -0.5 * inv
-	ta, tb, tv := s.tangent[0][n]*half, s.tangent[1][n]*half, s.tangent[2][n]*half
+	ta, tb, tv := float64(s.tangent[0][n]*half), float64(s.tangent[1][n]*half), float64(s.tangent[2][n]*half)
 	t.h[0], t.boundary[0] = h, 0-h
 	t.tangent[0][0], t.tangent[1][0], t.tangent[2][0] = ta, tb, tv
 	t.second[0] = math.FMA(float64(tv*tv), inv, float64(s.second[n]*half))
@@ -71,7 +71,7 @@ func (s *block) priceTailsGeneric() {
 		if !(dm > 0) {
 			cash = c.decayA[r] - cash
 		}
-		asset := float64(x*c.boundary[r]) * q.asset[r]
+		asset := float64(float64(x*c.boundary[r]) * q.asset[r])
 		if !(math.FMA(s.v[0], s.price.root[r], dm) > 0) {
 			asset = math.FMA(q.ratio[0], c.decayB[r], 0-asset)
 		}

@@ -75,8 +75,8 @@ func NewSolver(setting Setting) *Solver {
 //   - T = 0: Expired; the derivatives are those of the payoff, their means at S = K.
 //   - σ√T below 1e-6: the forward is certain, and the option is worth the best
 //     of max(0, K·e^(−rt) − S·e^(−qt)) over t, off by less than σ√T·S.
-//   - Boundaries so sharp, with |r−q|√T/σ or r√T/σ far above 10, that no size
-//     converges: OutOfReach.
+//   - Boundaries that converge at no size: OutOfReach. They have been seen with
+//     r√T/σ or q√T/σ above 40, and with q just above r, both below 1e-4.
 //
 // NaN in all results: an input NaN or infinite, S or K not within 10^±100, T not
 // within 0 … 1000, σ not within 0 … 100, |r| or |q|, or |r|T or |q|T, above 100, or

@@ -44,11 +44,11 @@ func (s *block) valuesGeneric() {
 		vz := float64(v * root)
 		dp := dm + vz
 		dd := math.FMA(dm, dp, -1)
-		bz := beta * vz
+		bz := float64(beta * vz)
 		both := math.FMA(cg, dp, bz)
 		pv = math.FMA(root, both, pv)
 		pv = math.FMA(cg, tv, pv)
-		pull := cg * dk
+		pull := float64(cg * dk)
 		pxv -= math.FMA(math.FMA(cg, dd, float64(bz*dm)), invV, float64(pull*tv))
 		pvv = math.FMA(math.FMA(dd, both, math.FMA(0-cg, dm, bz)), float64(root*invV), pvv)
 		pvv = math.FMA(float64(float64(2*cg)*float64(dd*invV)), tv, pvv)
