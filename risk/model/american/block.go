@@ -49,7 +49,7 @@ const sides = 4
 
 func newBlock(r *rule, width int) *block {
 	n, points := len(r.eq.wait), r.points
-	columns := func(n int) []float64 { return column(n * width) }
+	columns := func(n int) []float64 { return column(packedRows(n) * width)[:n*width] }
 	s := &block{rule: r, width: width}
 	for _, c := range []*[]float64{&s.a, &s.b, &s.v, &s.invV, &s.floor, &s.floorA, &s.floorB} {
 		*c = columns(1)
@@ -83,7 +83,7 @@ func (s *block) solve() {
 		vec.LogRatio(s.top, s.top, s.bottom)
 		s.eliminate(last)
 		if last {
-			spread(s.pull, s.eq.spread, s.tangent[2], s.eq.n, s.width)
+			s.eq.interpolate(s.pull, s.tangent[2], s.width)
 			s.bend()
 			s.resolve()
 		}
@@ -93,7 +93,7 @@ func (s *block) solve() {
 
 // visit evaluates the functions the equations are made of at all nodes.
 func (s *block) visit() {
-	spread(s.hu, s.eq.spread, s.square, s.eq.n, s.width)
+	s.eq.interpolate(s.hu, s.square, s.width)
 	s.distances()
 	vec.Exp(s.density, s.density)
 	vec.Exp(s.ratio, s.ratio)

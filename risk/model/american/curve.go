@@ -68,16 +68,16 @@ func (q *quote) grow(r *rule, columns func(n int) []float64) {
 
 // share evaluates what the options on a boundary have in common.
 func (s *block) share() {
-	c, n := &s.curve, s.price.n
-	spread(c.hu, s.price.spread, s.square, n, s.width)
+	c := &s.curve
+	s.price.interpolate(c.hu, s.square, s.width)
 	s.curveExponents()
 	vec.Exp(c.boundary, c.boundary)
 	vec.Exp(c.decayA, c.decayA)
 	vec.Exp(c.decayB, c.decayB)
 	for k := range c.tangent {
-		spread(c.tangent[k], s.price.spread, s.tangent[k], n, s.width)
+		s.price.interpolate(c.tangent[k], s.tangent[k], s.width)
 	}
-	spread(c.second, s.price.spread, s.second, n, s.width)
+	s.price.interpolate(c.second, s.second, s.width)
 	s.curveTangents()
 	vec.Exp(c.now.boundary, c.now.boundary)
 }

@@ -8,7 +8,7 @@ func lanes() int { return 1 }
 
 func column(n int) []float64 { return make([]float64, n) }
 
-func spread(dst, weights, f []float64, n, _ int) { spreadGeneric(dst, weights, f, n) }
+func (n *nodes) interpolate(dst, f []float64, _ int) { n.interpolateGeneric(dst, f) }
 
 func (s *block) guess()              { s.guessGeneric() }
 func (s *block) approach()           { s.approachGeneric() }

@@ -27,17 +27,17 @@ func column(n int) []float64 {
 	const line = 64 / 8
 	room := make([]float64, n+line)
 	skip := -uintptr(unsafe.Pointer(unsafe.SliceData(room))) & 63 / 8
-	return room[skip:][:n:n]
+	return room[skip:][:n]
 }
 
-func spread(dst, weights, f []float64, n, width int) {
+func (n *nodes) interpolate(dst, f []float64, width int) {
 	switch width {
 	case width8:
-		spread8(dst, weights, f, n)
+		n.interpolate8(dst, f)
 	case width4:
-		spread4(dst, weights, f, n)
+		n.interpolate4(dst, f)
 	default:
-		spreadGeneric(dst, weights, f, n)
+		n.interpolateGeneric(dst, f)
 	}
 }
 

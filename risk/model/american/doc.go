@@ -17,6 +17,7 @@
 //	kernel_generic.go, newton_generic.go   Newton's method, first and second tangents
 //	curve.go, price_generic.go, values_generic.go   price and derivatives
 //	near_generic.go   what the nodes do not see close to the boundary
+//	*8_simd_amd64.go, *4_simd_amd64.go   the same loops for eight and four lanes
 //	store.go       from units of the strike to money; options without a boundary
 //	european.go    options for which exercise is never optimal
 //
@@ -39,6 +40,10 @@
 //	volga          1e-3  / 2e-2     4e-4  / 1e-2       5e-9  / 1e-7
 //	charm          4e-4  / 1e-2     8e-5  / 2e-3       2e-8  / 7e-7
 //	boundary       1e-5  / 2e-4     4e-7  / 9e-6       4e-12 / 1e-10
+//
+// Lines a second on one core with AVX-512, price and all sensitivities, fast and
+// default: 780,000 and 340,000 if no two share a boundary, 4,700,000 and 3,400,000
+// where twenty strikes do; an eighth to a quarter of that without vector code.
 //
 // The largest errors of vanna, volga and charm are those of options within a
 // thousandth of the boundary, those of rho of options with nearly equal r and q,

@@ -6,42 +6,28 @@ import "simd/archsimd"
 
 // The loops of kernel_generic.go and start.go for eight lanes.
 
-// spread8 takes eight nodes at a time: their sums do not wait for one another.
-func spread8(dst, weights, f []float64, n int) {
-	to, from := vectors8(dst)[:n], vectors8(f)
-	points := len(from)
-	for len(to) >= 8 {
-		var x0, x1, x2, x3, x4, x5, x6, x7 float8
-		w0, w1, w2, w3 := weights[:points], weights[points:][:points], weights[2*points:][:points], weights[3*points:][:points]
-		w4, w5, w6, w7 := weights[4*points:][:points], weights[5*points:][:points], weights[6*points:][:points], weights[7*points:][:points]
+// interpolate8 takes four nodes at a time: their sums do not wait for one another,
+// and there are registers for them. It writes as many rows as are packed, the room
+// for which is there.
+func (n *nodes) interpolate8(dst, f []float64) {
+	from, packed := vectors8(f), n.packed
+	to := vectors8(dst[:packedRows(n.n)*width8])
+	for len(to) >= 4 {
+		var x0, x1, x2, x3 float8
 		for k := range from {
 			v := load8(&from[k])
-			x0 = broadcast8(w0[k]).MulAdd(v, x0)
-			x1 = broadcast8(w1[k]).MulAdd(v, x1)
-			x2 = broadcast8(w2[k]).MulAdd(v, x2)
-			x3 = broadcast8(w3[k]).MulAdd(v, x3)
-			x4 = broadcast8(w4[k]).MulAdd(v, x4)
-			x5 = broadcast8(w5[k]).MulAdd(v, x5)
-			x6 = broadcast8(w6[k]).MulAdd(v, x6)
-			x7 = broadcast8(w7[k]).MulAdd(v, x7)
+			w := (*[4]float64)(packed)
+			packed = packed[4:]
+			x0 = broadcast8(w[0]).MulAdd(v, x0)
+			x1 = broadcast8(w[1]).MulAdd(v, x1)
+			x2 = broadcast8(w[2]).MulAdd(v, x2)
+			x3 = broadcast8(w[3]).MulAdd(v, x3)
 		}
 		x0.Store(&to[0])
 		x1.Store(&to[1])
 		x2.Store(&to[2])
 		x3.Store(&to[3])
-		x4.Store(&to[4])
-		x5.Store(&to[5])
-		x6.Store(&to[6])
-		x7.Store(&to[7])
-		to, weights = to[8:], weights[8*points:]
-	}
-	for r := range to {
-		var x float8
-		for k, w := range weights[:points] {
-			x = broadcast8(w).MulAdd(load8(&from[k]), x)
-		}
-		x.Store(&to[r])
-		weights = weights[points:]
+		to = to[4:]
 	}
 	archsimd.ClearAVXUpperBits()
 }

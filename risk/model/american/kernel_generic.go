@@ -25,11 +25,12 @@ func smaller(x, y float64) float64 {
 	return y
 }
 
-// spreadGeneric sets dst to the values at n nodes of what has the values f at the points.
-func spreadGeneric(dst, weights, f []float64, n int) {
-	for r := range n {
+// interpolateGeneric sets dst to the values at the nodes of what has the values f
+// at the points.
+func (n *nodes) interpolateGeneric(dst, f []float64) {
+	for r := range n.n {
 		x := 0.0
-		for k, w := range weights[r*len(f) : (r+1)*len(f)] {
+		for k, w := range n.spread[r*len(f) : (r+1)*len(f)] {
 			x = math.FMA(w, f[k], x)
 		}
 		dst[r] = x

@@ -23,7 +23,7 @@ func (s *block) linearise4(last bool) {
 // sides4 sets beta, cash and k, as pull, at the nodes of point i, and what follows
 // from their sums.
 func (s *block) sides4(i int) {
-	a, b, invV := load4(&vectors4(s.a)[0]), load4(&vectors4(s.b)[0]), load4(&vectors4(s.invV)[0])
+	as, bs, ivs := vectors4(s.a), vectors4(s.b), vectors4(s.invV)
 	first, n, o := i*s.inner, s.inner, s.eq.n+i
 	dms, densities, ratio, tails := vectors4(s.dm)[first:][:n], vectors4(s.density)[first:][:n], vectors4(s.ratio)[first:][:n], vectors4(s.tail)[first:][:n]
 	betas, cashes, pull := vectors4(s.beta)[first:][:n], vectors4(s.cash)[first:][:n], vectors4(s.pull)[first:][:n]
@@ -31,11 +31,11 @@ func (s *block) sides4(i int) {
 	low := broadcast4(1).Div(load4(&vectors4(s.ratio)[o]))
 	var zero, asset, assetSlope, cash, cashSlope float4
 	for j := range weight {
-		dm := load4(&dms[j])
+		dm, b, invV := load4(&dms[j]), load4(&bs[0]), load4(&ivs[0])
 		g := broadcast4(density[j]).Mul(load4(&densities[j])).Mul(invV)
 		e := broadcast4(weight[j]).Mul(low).Mul(load4(&tails[j]))
 		beta := b.Mul(low.Mul(load4(&ratio[j]))).Mul(g)
-		c := a.MulAdd(g, zero.Sub(beta))
+		c := load4(&as[0]).MulAdd(g, zero.Sub(beta))
 		k := c.Mul(dm).Mul(invV.Mul(broadcast4(invRoot[j])))
 		beta.Store(&betas[j])
 		c.Store(&cashes[j])
@@ -45,12 +45,12 @@ func (s *block) sides4(i int) {
 		cash = cash.Add(c)
 		cashSlope = cashSlope.Add(k)
 	}
-	omega := load4(&vectors4(s.density)[o]).Mul(broadcast4(invSqrt2Pi)).Mul(invV.Mul(broadcast4(s.eq.invRoot[o])))
+	omega := load4(&vectors4(s.density)[o]).Mul(broadcast4(invSqrt2Pi)).Mul(load4(&ivs[0]).Mul(broadcast4(s.eq.invRoot[o])))
 	be := low.Mul(load4(&vectors4(s.tail)[o]))
 	gain := be.Add(asset.Max(zero))
 	loss := cash.Sub(asset.Min(zero))
 	rho := gain.Div(loss)
-	sigma := rho.Merge(broadcast4(1), b.Less(zero))
+	sigma := rho.Merge(broadcast4(1), load4(&bs[0]).Less(zero))
 	gain.Store(&vectors4(s.top)[i])
 	loss.Store(&vectors4(s.bottom)[i])
 	rho.Store(&vectors4(s.rho)[i])
@@ -85,43 +85,21 @@ func (s *block) row4(i int) {
 func gather4(sums, pull []lanes4, weights []float64) {
 	n := len(sums)
 	k := 0
-	for ; k+8 <= n; k += 8 {
-		var x0, x1, x2, x3, x4, x5, x6, x7 float4
-		w := weights[k:]
+	for ; k+4 <= n; k += 4 {
+		var x0, x1, x2, x3 float4
 		for j := range pull {
 			v := load4(&pull[j])
-			p := w[:8]
-			x0 = v.MulAdd(broadcast4(p[0]), x0)
-			x1 = v.MulAdd(broadcast4(p[1]), x1)
-			x2 = v.MulAdd(broadcast4(p[2]), x2)
-			x3 = v.MulAdd(broadcast4(p[3]), x3)
-			x4 = v.MulAdd(broadcast4(p[4]), x4)
-			x5 = v.MulAdd(broadcast4(p[5]), x5)
-			x6 = v.MulAdd(broadcast4(p[6]), x6)
-			x7 = v.MulAdd(broadcast4(p[7]), x7)
-			if j+1 < len(pull) {
-				w = w[n:]
-			}
+			w := (*[4]float64)(weights[j*n+k:])
+			x0 = v.MulAdd(broadcast4(w[0]), x0)
+			x1 = v.MulAdd(broadcast4(w[1]), x1)
+			x2 = v.MulAdd(broadcast4(w[2]), x2)
+			x3 = v.MulAdd(broadcast4(w[3]), x3)
 		}
-		to := sums[k:][:8]
+		to := sums[k:][:4]
 		x0.Store(&to[0])
 		x1.Store(&to[1])
 		x2.Store(&to[2])
 		x3.Store(&to[3])
-		x4.Store(&to[4])
-		x5.Store(&to[5])
-		x6.Store(&to[6])
-		x7.Store(&to[7])
-	}
-	for ; k+2 <= n; k += 2 {
-		var x0, x1 float4
-		for j := range pull {
-			v := load4(&pull[j])
-			x0 = v.MulAdd(broadcast4(weights[j*n+k]), x0)
-			x1 = v.MulAdd(broadcast4(weights[j*n+k+1]), x1)
-		}
-		x0.Store(&sums[k])
-		x1.Store(&sums[k+1])
 	}
 	for ; k < n; k++ {
 		var x float4

@@ -21,7 +21,7 @@ func (s *block) linearise8(last bool) {
 // sides8 sets beta, cash and k, as pull, at the nodes of point i, and what follows
 // from their sums.
 func (s *block) sides8(i int) {
-	a, b, invV := load8(&vectors8(s.a)[0]), load8(&vectors8(s.b)[0]), load8(&vectors8(s.invV)[0])
+	as, bs, ivs := vectors8(s.a), vectors8(s.b), vectors8(s.invV)
 	first, n, o := i*s.inner, s.inner, s.eq.n+i
 	dms, densities, ratio, tails := vectors8(s.dm)[first:][:n], vectors8(s.density)[first:][:n], vectors8(s.ratio)[first:][:n], vectors8(s.tail)[first:][:n]
 	betas, cashes, pull := vectors8(s.beta)[first:][:n], vectors8(s.cash)[first:][:n], vectors8(s.pull)[first:][:n]
@@ -29,11 +29,11 @@ func (s *block) sides8(i int) {
 	low := broadcast8(1).Div(load8(&vectors8(s.ratio)[o]))
 	var zero, asset, assetSlope, cash, cashSlope float8
 	for j := range weight {
-		dm := load8(&dms[j])
+		dm, b, invV := load8(&dms[j]), load8(&bs[0]), load8(&ivs[0])
 		g := broadcast8(density[j]).Mul(load8(&densities[j])).Mul(invV)
 		e := broadcast8(weight[j]).Mul(low).Mul(load8(&tails[j]))
 		beta := b.Mul(low.Mul(load8(&ratio[j]))).Mul(g)
-		c := a.MulAdd(g, zero.Sub(beta))
+		c := load8(&as[0]).MulAdd(g, zero.Sub(beta))
 		k := c.Mul(dm).Mul(invV.Mul(broadcast8(invRoot[j])))
 		beta.Store(&betas[j])
 		c.Store(&cashes[j])
@@ -43,12 +43,12 @@ func (s *block) sides8(i int) {
 		cash = cash.Add(c)
 		cashSlope = cashSlope.Add(k)
 	}
-	omega := load8(&vectors8(s.density)[o]).Mul(broadcast8(invSqrt2Pi)).Mul(invV.Mul(broadcast8(s.eq.invRoot[o])))
+	omega := load8(&vectors8(s.density)[o]).Mul(broadcast8(invSqrt2Pi)).Mul(load8(&ivs[0]).Mul(broadcast8(s.eq.invRoot[o])))
 	be := low.Mul(load8(&vectors8(s.tail)[o]))
 	gain := be.Add(asset.Max(zero))
 	loss := cash.Sub(asset.Min(zero))
 	rho := gain.Div(loss)
-	sigma := rho.Merge(broadcast8(1), b.Less(zero))
+	sigma := rho.Merge(broadcast8(1), load8(&bs[0]).Less(zero))
 	gain.Store(&vectors8(s.top)[i])
 	loss.Store(&vectors8(s.bottom)[i])
 	rho.Store(&vectors8(s.rho)[i])
@@ -83,43 +83,21 @@ func (s *block) row8(i int) {
 func gather8(sums, pull []lanes8, weights []float64) {
 	n := len(sums)
 	k := 0
-	for ; k+8 <= n; k += 8 {
-		var x0, x1, x2, x3, x4, x5, x6, x7 float8
-		w := weights[k:]
+	for ; k+4 <= n; k += 4 {
+		var x0, x1, x2, x3 float8
 		for j := range pull {
 			v := load8(&pull[j])
-			p := w[:8]
-			x0 = v.MulAdd(broadcast8(p[0]), x0)
-			x1 = v.MulAdd(broadcast8(p[1]), x1)
-			x2 = v.MulAdd(broadcast8(p[2]), x2)
-			x3 = v.MulAdd(broadcast8(p[3]), x3)
-			x4 = v.MulAdd(broadcast8(p[4]), x4)
-			x5 = v.MulAdd(broadcast8(p[5]), x5)
-			x6 = v.MulAdd(broadcast8(p[6]), x6)
-			x7 = v.MulAdd(broadcast8(p[7]), x7)
-			if j+1 < len(pull) {
-				w = w[n:]
-			}
+			w := (*[4]float64)(weights[j*n+k:])
+			x0 = v.MulAdd(broadcast8(w[0]), x0)
+			x1 = v.MulAdd(broadcast8(w[1]), x1)
+			x2 = v.MulAdd(broadcast8(w[2]), x2)
+			x3 = v.MulAdd(broadcast8(w[3]), x3)
 		}
-		to := sums[k:][:8]
+		to := sums[k:][:4]
 		x0.Store(&to[0])
 		x1.Store(&to[1])
 		x2.Store(&to[2])
 		x3.Store(&to[3])
-		x4.Store(&to[4])
-		x5.Store(&to[5])
-		x6.Store(&to[6])
-		x7.Store(&to[7])
-	}
-	for ; k+2 <= n; k += 2 {
-		var x0, x1 float8
-		for j := range pull {
-			v := load8(&pull[j])
-			x0 = v.MulAdd(broadcast8(weights[j*n+k]), x0)
-			x1 = v.MulAdd(broadcast8(weights[j*n+k+1]), x1)
-		}
-		x0.Store(&sums[k])
-		x1.Store(&sums[k+1])
 	}
 	for ; k < n; k++ {
 		var x float8

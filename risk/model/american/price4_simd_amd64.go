@@ -133,6 +133,7 @@ func (s *block) values4() {
 	s.valuesSpot4()
 	s.valuesRates4()
 	s.valuesVol4()
+	s.valuesVolVol4()
 	archsimd.ClearAVXUpperBits()
 }
 
@@ -194,8 +195,32 @@ func (s *block) valuesRates4() {
 	pb.Store(&vectors4(q.value.b)[0])
 }
 
-// valuesVol4 sums the derivatives in v.
+// valuesVol4 sums the derivatives in v and in x and v.
 func (s *block) valuesVol4() {
+	q, c, e := &s.quote, &s.curve, s.price.n
+	dms, carry, betas, tangent := vectors4(q.dm)[:e+1], vectors4(q.carry)[:e], vectors4(q.beta)[:e], vectors4(c.tangent[2])[:e]
+	roots, invRoot := s.price.root[:e], s.price.invRoot[:e]
+	v, iv := vectors4(s.v), vectors4(s.invV)
+	var zero float4
+	minusOne := broadcast4(-1)
+	pv := load4(&vectors4(q.density)[e]).Mul(broadcast4(invSqrt2Pi))
+	pxv := zero.Sub(pv.Mul(load4(&iv[0])).Mul(load4(&dms[e])))
+	for r := range roots {
+		dm, cg, root, tv := load4(&dms[r]), load4(&carry[r]), broadcast4(roots[r]), load4(&tangent[r])
+		vz := load4(&v[0]).Mul(root)
+		dp := dm.Add(vz)
+		bz := load4(&betas[r]).Mul(vz)
+		pv = cg.MulAdd(tv, root.MulAdd(cg.MulAdd(dp, bz), pv))
+		invV := load4(&iv[0])
+		pull := cg.Mul(dm.Mul(invV.Mul(broadcast4(invRoot[r]))))
+		pxv = pxv.Sub(cg.MulAdd(dm.MulAdd(dp, minusOne), bz.Mul(dm)).MulAdd(invV, pull.Mul(tv)))
+	}
+	pv.Store(&vectors4(q.value.v)[0])
+	pxv.Store(&vectors4(q.value.xv)[0])
+}
+
+// valuesVolVol4 sums the second derivative in v.
+func (s *block) valuesVolVol4() {
 	q, c, e := &s.quote, &s.curve, s.price.n
 	dms, carry, betas := vectors4(q.dm)[:e+1], vectors4(q.carry)[:e], vectors4(q.beta)[:e]
 	tangent, second := vectors4(c.tangent[2])[:e], vectors4(c.second)[:e]
@@ -204,29 +229,21 @@ func (s *block) valuesVol4() {
 	var zero float4
 	minusOne := broadcast4(-1)
 	dm := load4(&dms[e])
-	pv := load4(&vectors4(q.density)[e]).Mul(broadcast4(invSqrt2Pi))
-	gd := pv.Mul(load4(&iv[0])).Mul(dm)
-	pxv := zero.Sub(gd)
-	pvv := gd.Mul(dm.Add(load4(&v[0])))
+	phi := load4(&vectors4(q.density)[e]).Mul(broadcast4(invSqrt2Pi))
+	pvv := phi.Mul(load4(&iv[0])).Mul(dm).Mul(dm.Add(load4(&v[0])))
 	for r := range roots {
-		dm, cg, root := load4(&dms[r]), load4(&carry[r]), broadcast4(roots[r])
+		dm, cg, root, tv := load4(&dms[r]), load4(&carry[r]), broadcast4(roots[r]), load4(&tangent[r])
 		vz := load4(&v[0]).Mul(root)
 		dp := dm.Add(vz)
 		dd := dm.MulAdd(dp, minusOne)
 		bz := load4(&betas[r]).Mul(vz)
-		both := cg.MulAdd(dp, bz)
-		tv := load4(&tangent[r])
-		pv = cg.MulAdd(tv, root.MulAdd(both, pv))
 		invV := load4(&iv[0])
-		pull := cg.Mul(dm.Mul(invV.Mul(broadcast4(invRoot[r]))))
-		pxv = pxv.Sub(cg.MulAdd(dd, bz.Mul(dm)).MulAdd(invV, pull.Mul(tv)))
-		pvv = dd.MulAdd(both, zero.Sub(cg).MulAdd(dm, bz)).MulAdd(root.Mul(invV), pvv)
+		pvv = dd.MulAdd(cg.MulAdd(dp, bz), zero.Sub(cg).MulAdd(dm, bz)).MulAdd(root.Mul(invV), pvv)
 		pvv = cg.Add(cg).Mul(dd.Mul(invV)).MulAdd(tv, pvv)
+		pull := cg.Mul(dm.Mul(invV.Mul(broadcast4(invRoot[r]))))
 		pvv = pull.Sub(load4(&betas[r])).MulAdd(tv.Mul(tv), pvv)
 		pvv = cg.MulAdd(load4(&second[r]), pvv)
 	}
-	pv.Store(&vectors4(q.value.v)[0])
-	pxv.Store(&vectors4(q.value.xv)[0])
 	pvv.Store(&vectors4(q.value.vv)[0])
 }
 

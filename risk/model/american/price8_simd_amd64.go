@@ -131,6 +131,7 @@ func (s *block) values8() {
 	s.valuesSpot8()
 	s.valuesRates8()
 	s.valuesVol8()
+	s.valuesVolVol8()
 	archsimd.ClearAVXUpperBits()
 }
 
@@ -192,8 +193,32 @@ func (s *block) valuesRates8() {
 	pb.Store(&vectors8(q.value.b)[0])
 }
 
-// valuesVol8 sums the derivatives in v.
+// valuesVol8 sums the derivatives in v and in x and v.
 func (s *block) valuesVol8() {
+	q, c, e := &s.quote, &s.curve, s.price.n
+	dms, carry, betas, tangent := vectors8(q.dm)[:e+1], vectors8(q.carry)[:e], vectors8(q.beta)[:e], vectors8(c.tangent[2])[:e]
+	roots, invRoot := s.price.root[:e], s.price.invRoot[:e]
+	v, iv := vectors8(s.v), vectors8(s.invV)
+	var zero float8
+	minusOne := broadcast8(-1)
+	pv := load8(&vectors8(q.density)[e]).Mul(broadcast8(invSqrt2Pi))
+	pxv := zero.Sub(pv.Mul(load8(&iv[0])).Mul(load8(&dms[e])))
+	for r := range roots {
+		dm, cg, root, tv := load8(&dms[r]), load8(&carry[r]), broadcast8(roots[r]), load8(&tangent[r])
+		vz := load8(&v[0]).Mul(root)
+		dp := dm.Add(vz)
+		bz := load8(&betas[r]).Mul(vz)
+		pv = cg.MulAdd(tv, root.MulAdd(cg.MulAdd(dp, bz), pv))
+		invV := load8(&iv[0])
+		pull := cg.Mul(dm.Mul(invV.Mul(broadcast8(invRoot[r]))))
+		pxv = pxv.Sub(cg.MulAdd(dm.MulAdd(dp, minusOne), bz.Mul(dm)).MulAdd(invV, pull.Mul(tv)))
+	}
+	pv.Store(&vectors8(q.value.v)[0])
+	pxv.Store(&vectors8(q.value.xv)[0])
+}
+
+// valuesVolVol8 sums the second derivative in v.
+func (s *block) valuesVolVol8() {
 	q, c, e := &s.quote, &s.curve, s.price.n
 	dms, carry, betas := vectors8(q.dm)[:e+1], vectors8(q.carry)[:e], vectors8(q.beta)[:e]
 	tangent, second := vectors8(c.tangent[2])[:e], vectors8(c.second)[:e]
@@ -202,29 +227,21 @@ func (s *block) valuesVol8() {
 	var zero float8
 	minusOne := broadcast8(-1)
 	dm := load8(&dms[e])
-	pv := load8(&vectors8(q.density)[e]).Mul(broadcast8(invSqrt2Pi))
-	gd := pv.Mul(load8(&iv[0])).Mul(dm)
-	pxv := zero.Sub(gd)
-	pvv := gd.Mul(dm.Add(load8(&v[0])))
+	phi := load8(&vectors8(q.density)[e]).Mul(broadcast8(invSqrt2Pi))
+	pvv := phi.Mul(load8(&iv[0])).Mul(dm).Mul(dm.Add(load8(&v[0])))
 	for r := range roots {
-		dm, cg, root := load8(&dms[r]), load8(&carry[r]), broadcast8(roots[r])
+		dm, cg, root, tv := load8(&dms[r]), load8(&carry[r]), broadcast8(roots[r]), load8(&tangent[r])
 		vz := load8(&v[0]).Mul(root)
 		dp := dm.Add(vz)
 		dd := dm.MulAdd(dp, minusOne)
 		bz := load8(&betas[r]).Mul(vz)
-		both := cg.MulAdd(dp, bz)
-		tv := load8(&tangent[r])
-		pv = cg.MulAdd(tv, root.MulAdd(both, pv))
 		invV := load8(&iv[0])
-		pull := cg.Mul(dm.Mul(invV.Mul(broadcast8(invRoot[r]))))
-		pxv = pxv.Sub(cg.MulAdd(dd, bz.Mul(dm)).MulAdd(invV, pull.Mul(tv)))
-		pvv = dd.MulAdd(both, zero.Sub(cg).MulAdd(dm, bz)).MulAdd(root.Mul(invV), pvv)
+		pvv = dd.MulAdd(cg.MulAdd(dp, bz), zero.Sub(cg).MulAdd(dm, bz)).MulAdd(root.Mul(invV), pvv)
 		pvv = cg.Add(cg).Mul(dd.Mul(invV)).MulAdd(tv, pvv)
+		pull := cg.Mul(dm.Mul(invV.Mul(broadcast8(invRoot[r]))))
 		pvv = pull.Sub(load8(&betas[r])).MulAdd(tv.Mul(tv), pvv)
 		pvv = cg.MulAdd(load8(&second[r]), pvv)
 	}
-	pv.Store(&vectors8(q.value.v)[0])
-	pxv.Store(&vectors8(q.value.xv)[0])
 	pvv.Store(&vectors8(q.value.vv)[0])
 }
 

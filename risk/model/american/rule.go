@@ -39,6 +39,7 @@ type nodes struct {
 	invRoot []float64
 	weight  []float64 // Σ weight·f(u) ≈ ∫ f du
 	density []float64 // weight/√(2π·wait)
+	packed  []float64 // spread, four rows at a time: element k of row r at (r/4·(points+1) + k)·4 + r%4
 	early   []float64 // leastSlope·u/τ: no less is H(u)/H(τ)
 	spread  []float64 // row r: Σ_k spread[r·(points+1)+k]·F(w_k) ≈ F(√u_r)
 }
@@ -50,6 +51,19 @@ const leastSlope = 0.25
 func (n *nodes) add(wait, root float64) {
 	n.wait, n.root, n.invRoot = append(n.wait, wait), append(n.root, root), append(n.invRoot, 1/root)
 }
+
+// pack sets packed; the last rows are filled up with zeros.
+func (n *nodes) pack(points int) {
+	n.packed = make([]float64, packedRows(n.n)*points)
+	for r := range n.n {
+		for k := range points {
+			n.packed[(r/4*points+k)*4+r%4] = n.spread[r*points+k]
+		}
+	}
+}
+
+// packedRows is the number of rows that n take in packed.
+func packedRows(n int) int { return (n + 3) / 4 * 4 }
 
 func newRule(s size) *rule {
 	r := &rule{size: s}
@@ -69,6 +83,7 @@ func newRule(s size) *rule {
 		}
 	}
 	r.eq.n = len(r.eq.wait)
+	r.eq.pack(s.points + 1)
 	for _, w := range r.root {
 		r.eq.add(w*w, w)
 	}
@@ -83,6 +98,7 @@ func newRule(s size) *rule {
 		r.price.spread = append(r.price.spread, ch.weights(sin)...)
 	}
 	r.price.n = s.outer
+	r.price.pack(s.points + 1)
 	r.price.add(1, 1)
 	return r
 }
