@@ -61,7 +61,7 @@ func (g *groups) find(a, b, v float64) uint64 {
 
 // sort orders the groups by falling number of lines.
 func (g *groups) sort() {
-	var from [mostLines + 2]int32 // from[c]: where groups of fewer than c lines… of c lines begin
+	var from [mostLines + 2]int32 // from[mostLines−c] becomes where the groups of c lines begin
 	for _, c := range g.count {
 		from[mostLines-c+1]++
 	}
