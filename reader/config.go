@@ -22,7 +22,7 @@ import (
 //	as_of = 2026-03-20              # date, date and time, or a text of either form; the command line's
 //	                                # --as-of wins; with neither, the folder's name, YYYY-MM-DD, gives it
 //	reporting_currency = "USD"      # needed: three letters of ISO 4217
-//	calendar = "NYC"                # calendar of holidays that moves business days; default: Monday to Friday
+//	calendar = "HOME"               # calendar of holidays that moves business days; default: Monday to Friday
 //
 //	[csv]                           # how text is written: in .csv files, and in text cells of the others
 //	delimiter = ","                 # one of  ,  ;  |  or a tab, "\t"; default ","

@@ -39,9 +39,8 @@ type Worker struct {
 	term  term
 	notes map[noteKey]*schema.Note
 
-	route []uint8 // by row: 2·product, plus 1 for its expired form
-	rows  [][]int32
-	run   instrument.Run
+	rows [][]int32 // by route: 2·product, plus 1 for its expired form
+	run  instrument.Run
 }
 
 // NewWorker returns scratch memory for one goroutine.
@@ -57,18 +56,16 @@ func (e *Engine) Price(b *schema.Batch, w *Worker) {
 	for _, s := range b.Results.Floats() {
 		clear(*s)
 	}
-	w.route = w.route[:0]
 	for i := range w.rows {
 		w.rows[i] = w.rows[i][:0]
 	}
 	for i := range b.N {
-		route := uint8(noRoute)
-		if b.Status[i] != schema.Rejected {
-			if route = e.resolve(b, i, w); route != noRoute {
-				w.rows[route] = append(w.rows[route], int32(i))
-			}
+		if b.Status[i] == schema.Rejected {
+			continue
 		}
-		w.route = append(w.route, route)
+		if route := e.resolve(b, i, w); route != noRoute {
+			w.rows[route] = append(w.rows[route], int32(i))
+		}
 	}
 	for route, rows := range w.rows {
 		if len(rows) > 0 {

@@ -15,7 +15,6 @@ type Market struct {
 	// Faults are the refused market rows. What they belong to (a curve, a
 	// surface, a currency, an underlying) must not be used as if they had not been there.
 	Faults []Fault
-	Notes  []Note
 }
 
 // Fault is a refused market row and the name of what it belongs to.

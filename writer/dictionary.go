@@ -47,6 +47,7 @@ var codeLists = []struct {
 }{
 	{"reject_codes", "reasons for refusing a row", schema.RejectCodes},
 	{"warning_codes", "warnings", schema.NoteCodes},
+	{"quote_statuses", "what can become of a quote", schema.QuoteStatusDocs},
 }
 
 // words gives the values of a closed list, to stand behind the meaning of a
@@ -178,10 +179,11 @@ func dictionaryJSON(b *bytes.Buffer) error {
 	e.SetEscapeHTML(false)
 	e.SetIndent("", "  ")
 	return e.Encode(struct {
-		Revision     int               `json:"schema_revision"`
-		Inputs       []dictionaryTable `json:"inputs"`
-		Outputs      []dictionaryTable `json:"outputs"`
-		RejectCodes  []dictionaryCode  `json:"reject_codes"`
-		WarningCodes []dictionaryCode  `json:"warning_codes"`
-	}{schema.Revision, tables(schema.Inputs, false), tables(schema.Outputs, true), codes(schema.RejectCodes), codes(schema.NoteCodes)})
+		Revision      int               `json:"schema_revision"`
+		Inputs        []dictionaryTable `json:"inputs"`
+		Outputs       []dictionaryTable `json:"outputs"`
+		RejectCodes   []dictionaryCode  `json:"reject_codes"`
+		WarningCodes  []dictionaryCode  `json:"warning_codes"`
+		QuoteStatuses []dictionaryCode  `json:"quote_statuses"`
+	}{schema.Revision, tables(schema.Inputs, false), tables(schema.Outputs, true), codes(schema.RejectCodes), codes(schema.NoteCodes), codes(schema.QuoteStatusDocs)})
 }

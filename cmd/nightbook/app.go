@@ -20,7 +20,6 @@ const (
 	exitFailed   = 1
 	exitUsage    = 2
 	exitRejected = 3
-	exitBreached = 4
 )
 
 // statusError is an error, or a fact worth a status of its own (err nil).
@@ -78,8 +77,8 @@ workbooks), prices every line with its sensitivities, and writes a workbook
 and columnar files. A refused row is kept with its address and a reason;
 nothing is ever silently left out.
 
-Exit status: 0 done · 1 failed · 2 wrong usage · 3 done, with rejected rows
-· 4 done, a limit is breached.
+Exit status: 0 done · 1 failed · 2 wrong usage · 3 done, with rejected rows.
+4 is kept for breached limits, which this version does not check.
 
 The values are estimates from models, not advice; they are to be checked by
 qualified staff, and local regulation prevails.`,

@@ -9,7 +9,6 @@ import (
 )
 
 func columnsCommand() *cli.Command {
-	formats := []string{"md", "csv", "json", "sql"}
 	return &cli.Command{
 		Name:  "columns",
 		Usage: "print the data dictionary, or the DDL of the result tables",
@@ -24,7 +23,7 @@ prints CREATE TABLE statements for the result tables instead.`,
 			if c.NArg() > 0 {
 				return usagef("columns takes no argument, but was given %q", c.Args().First())
 			}
-			if f := c.String("format"); !slices.Contains(formats, f) {
+			if f := c.String("format"); !slices.Contains(writer.DictionaryFormats, f) {
 				return usagef("--format takes md, csv, json or sql, not %q", f)
 			}
 			return writer.Dictionary(c.App.Writer, c.String("format"))

@@ -10,6 +10,7 @@ import (
 	"nightbook/risk"
 	"nightbook/risk/aggregate"
 	"nightbook/risk/market"
+	"nightbook/risk/vec"
 	"nightbook/schema"
 )
 
@@ -96,7 +97,7 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 
 	s := &schema.Summary{Config: cfg, Version: version, RowsIn: gate.rowsIn, Faults: int64(len(raw.Faults)), Inputs: folder.Inputs()}
 	totals.Summary(s)
-	s.Notes = slices.Concat(s.Notes, gate.notes(), folder.Notes(), raw.Notes, marketNotes)
+	s.Notes = slices.Concat(s.Notes, gate.notes(), folder.Notes(), marketNotes)
 	if s.RowsIn == 0 {
 		s.Notes = append(s.Notes, schema.Note{Code: schema.NoPositions, Subject: positions.Name(), File: positions.Name(), Count: 1,
 			Message: "the position file has no rows: every total is 0"})
@@ -131,6 +132,9 @@ func buildMarket(folder *reader.Folder, cfg *schema.Config, raw *schema.Market, 
 
 // timed runs the pipeline and tells how it went.
 func timed(ctx context.Context, verb string, o *options, con *console) error {
+	if note := vec.TierNote(); note != "" {
+		con.say(note)
+	}
 	start := time.Now()
 	s, err := pipeline(ctx, o, con)
 	if err != nil {
