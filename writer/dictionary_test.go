@@ -25,7 +25,9 @@ func dictionary(t *testing.T, format string) string {
 // allTables are the tables the dictionary must hold.
 func allTables() []schema.Table { return slices.Concat(schema.Inputs, schema.Outputs) }
 
-func allCodes() []schema.CodeDoc { return slices.Concat(schema.RejectCodes, schema.NoteCodes, schema.QuoteStatusDocs) }
+func allCodes() []schema.CodeDoc {
+	return slices.Concat(schema.RejectCodes, schema.NoteCodes, schema.QuoteStatusDocs)
+}
 
 func TestDictionaryMarkdown(t *testing.T) {
 	text := dictionary(t, "md")
