@@ -167,6 +167,9 @@ type unpacker struct {
 
 // page unpacks a page into size bytes, in the memory of buf if it has room.
 func (u *unpacker) page(codec parquet.CompressionCodec, packed []byte, size int, buf []byte) (data []byte, err error) {
+	if len(packed) == 0 && size == 0 { // a page of nulls in the second layout
+		return buf[:0], nil
+	}
 	switch codec {
 	case parquet.CompressionCodec_UNCOMPRESSED:
 		data = append(buf[:0], packed...)
@@ -177,16 +180,21 @@ func (u *unpacker) page(codec parquet.CompressionCodec, packed []byte, size int,
 		data, err = snappy.Decode(buf[:cap(buf)], packed)
 	case parquet.CompressionCodec_GZIP:
 		data, err = u.ungzip(packed, size, buf)
+	case parquet.CompressionCodec_LZ4_RAW:
+		data, err = unlz4(packed, size, buf)
 	case parquet.CompressionCodec_ZSTD:
 		if u.zstd == nil {
-			u.zstd, err = zstd.NewReader(nil, zstd.WithDecoderConcurrency(1), zstd.WithDecoderMaxMemory(maxPage))
+			u.zstd, err = zstd.NewReader(nil, zstd.WithDecoderConcurrency(1), zstd.WithDecoderMaxMemory(maxPage), zstd.WithDecodeAllCapLimit(true))
 			if err != nil {
 				return nil, err
 			}
 		}
-		data, err = u.zstd.DecodeAll(packed, buf[:0])
+		if cap(buf) < size {
+			buf = make([]byte, 0, size)
+		}
+		data, err = u.zstd.DecodeAll(packed, buf[:0:size]) // no further than the size claimed
 	default:
-		return nil, fmt.Errorf("pages packed with %s are not read: write the file with zstd, snappy or gzip", codec)
+		return nil, fmt.Errorf("pages packed with %s are not read: write the file with zstd, snappy, gzip or LZ4_RAW", codec)
 	}
 	if err != nil {
 		return nil, damaged("a page cannot be unpacked: %v", err)
