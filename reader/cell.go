@@ -22,6 +22,7 @@ var (
 	notComma    = &finding{schema.BadNumber, "expected a number with a decimal comma such as 1.234,5, as [csv] decimal_comma = true says"}
 	notFinite   = &finding{schema.BadNumber, "expected a finite number"}
 	faultCell   = &finding{schema.BadNumber, "the cell holds an error value, or a formula that was never calculated: correct it in the workbook and save that"}
+	notExact    = &finding{schema.BadNumber, "a number is held to 53 bits, and this integer has more: write it as a decimal or a double if it may be rounded"}
 	storedNaN   = &finding{schema.BadNumber, "the cell holds NaN, which is no number: write null for an empty cell"}
 	notUTF8     = &finding{schema.BadText, "the text is not valid UTF-8: save the file as UTF-8, or declare its encoding in [csv] encoding"}
 	hasControl  = &finding{schema.BadText, "the text holds a control character"}
@@ -37,6 +38,7 @@ const maxText = 256
 type style struct {
 	decimalComma bool
 	dates        dateFormat
+	utcAsIs      bool // times of UTC in Parquet files are the desk's own
 }
 
 // cells reads cells of a run of rows. Its results are valid until the next call.
@@ -97,6 +99,8 @@ func (c *cells) fault(col, i int) *finding {
 		return nil
 	case c.Cols[col].Kind == schema.KindFloats:
 		return storedNaN
+	case c.Cols[col].Kind == schema.KindInts:
+		return notExact
 	}
 	return faultCell
 }
@@ -112,9 +116,13 @@ func (c *cells) number(col, i int) (float64, *finding) {
 		return x, c.fault(col, i)
 	case schema.KindInts:
 		if v.Ints[i] == schema.NoInt {
-			return math.NaN(), nil
+			return math.NaN(), c.fault(col, i)
 		}
-		return float64(v.Ints[i]), nil
+		x := float64(v.Ints[i])
+		if x >= 1<<63 || int64(x) != v.Ints[i] {
+			return math.NaN(), notExact
+		}
+		return x, nil
 	case schema.KindDates:
 		if v.Dates[i] == schema.NoDate {
 			return math.NaN(), nil
@@ -157,6 +165,11 @@ func (c *cells) date(col, i int) (schema.Date, int16, *finding) {
 		switch c.Cell(col, i) {
 		case table.Date:
 			return isoDate.parse(b)
+		case table.UTC:
+			if !c.style.utcAsIs {
+				return schema.NoDate, schema.NoMinute, notDesksClock
+			}
+			return isoDate.parse(bytes.TrimSuffix(b, []byte("Z")))
 		case table.Fault:
 			return schema.NoDate, schema.NoMinute, faultCell
 		}

@@ -42,6 +42,8 @@ import (
 //
 //	[parquet]
 //	compression = "zstd"            # of the files written: zstd, snappy, gzip or none; default "zstd"
+//	utc = "refuse"                  # of the files read, dates stored as moments of UTC: refuse them, or take them
+//	                                # as_is for times of the desk's own clock; default "refuse"
 //
 //	[columns.positions]             # one such section a table: our column = the house's header
 //	strike = "Strike Px"
@@ -64,6 +66,7 @@ type runFile struct {
 	} `toml:"workbook"`
 	Parquet struct {
 		Compression string `toml:"compression"`
+		UTC         string `toml:"utc"`
 	} `toml:"parquet"`
 	Columns any `toml:"columns"`
 }
@@ -168,6 +171,13 @@ func parseConfig(text, asOf, folder string) (*schema.Config, error) {
 	case "zstd", "snappy", "gzip", "none":
 	default:
 		return nil, fmt.Errorf("parquet.compression is %q: expected zstd, snappy, gzip or none", r.Parquet.Compression)
+	}
+	switch r.Parquet.UTC {
+	case "", "refuse":
+	case "as_is":
+		cfg.Parquet.UTCAsIs = true
+	default:
+		return nil, fmt.Errorf("parquet.utc is %q: expected refuse or as_is", r.Parquet.UTC)
 	}
 	cfg.Columns, err = checkColumns(r.Columns)
 	return cfg, err

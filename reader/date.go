@@ -1,6 +1,7 @@
 package reader
 
 import (
+	"bytes"
 	"errors"
 	"fmt"
 	"strings"
@@ -42,7 +43,9 @@ var (
 	notDay      = &finding{schema.BadDate, "there is no such day in the calendar"}
 	notClock    = &finding{schema.BadDate, "expected a time of day as HH:MM or HH:MM:SS behind the date"}
 	offCalendar = &finding{schema.BadDate, "the date is outside the years 1 to 9999"}
-	zoned       = &finding{schema.BadDate, "times are the desk's own clock: write the time without Z or offset"}
+	// A moment of UTC is a time of the desk's clock only for one who knows the desk's zone.
+	notDesksClock = &finding{schema.BadDate, "the time is of UTC, and dates are those of the desk's own clock: write the column as a date, or as a timestamp without a zone (isAdjustedToUTC false); if the times are the desk's all the same, set utc = \"as_is\" under [parquet] in run.toml"}
+	zoned         = &finding{schema.BadDate, "times are the desk's own clock: write the time without Z or offset"}
 )
 
 // The first and the last date that are written with four digits of the year.
@@ -52,7 +55,8 @@ const (
 )
 
 // parse reads a date, and the time of day behind it if there is one: after a T
-// or a space, as HH:MM or HH:MM:SS. Seconds are rounded down to the minute.
+// or a space, as HH:MM or HH:MM:SS. Seconds and their
+// fraction are rounded down to the minute.
 func (f *dateFormat) parse(text []byte) (day schema.Date, minute int16, why *finding) {
 	if f.pattern == "" {
 		f = &isoDate
@@ -118,6 +122,9 @@ func parseClock(text []byte) (minute int16, why *finding) {
 			return 0, notClock
 		}
 		rest = rest[3:]
+		if len(rest) > 1 && rest[0] == '.' { // the fraction of a second
+			rest = bytes.TrimLeft(rest[1:], "0123456789")
+		}
 	}
 	if len(rest) > 0 {
 		if c := rest[0]; c == 'Z' || c == 'z' || c == '+' || c == '-' {

@@ -101,7 +101,7 @@ type parquetLine struct {
 	Exercise   *string  `parquet:"name=exercise, type=BYTE_ARRAY, convertedtype=UTF8"`
 	Payoff     *string  `parquet:"name=payoff, type=BYTE_ARRAY, convertedtype=UTF8"`
 	Strike     *float64 `parquet:"name=strike, type=DOUBLE"`
-	Expiry     *int64   `parquet:"name=expiry, type=INT64, convertedtype=TIMESTAMP_MILLIS"`
+	Expiry     *int64   `parquet:"name=expiry, type=INT64, logicaltype=TIMESTAMP, logicaltype.isadjustedtoutc=false, logicaltype.unit=MILLIS"`
 	Vol        *float64 `parquet:"name=vol, type=DOUBLE"`
 	Mark       *int32   `parquet:"name=mark, type=INT32, convertedtype=DECIMAL, scale=4, precision=9"`
 	EntryPrice *float64 `parquet:"name=entry_price, type=DOUBLE"`

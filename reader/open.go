@@ -52,6 +52,7 @@ func (o *opened) start(cfg *schema.Config) (err error) {
 		return err
 	}
 	o.style.decimalComma = cfg.CSV.DecimalComma
+	o.style.utcAsIs = cfg.Parquet.UTCAsIs
 	if cfg.CSV.DateFormat != "" {
 		o.style.dates, err = parseDateFormat(cfg.CSV.DateFormat)
 	}

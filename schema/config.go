@@ -34,9 +34,10 @@ type WorkbookConfig struct {
 	MaxLines int // rows of the Lines sheet; the rest is in the lines table
 }
 
-// ParquetConfig says how Parquet is written.
+// ParquetConfig says how Parquet is written, and what its times mean.
 type ParquetConfig struct {
-	Compression string // zstd, snappy, gzip or none
+	Compression string // of the files written: zstd, snappy, gzip or none
+	UTCAsIs     bool   // moments of UTC in the files read are times of the desk's own clock
 }
 
 // DefaultMaxLines is the default of WorkbookConfig.MaxLines.

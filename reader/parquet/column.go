@@ -22,6 +22,7 @@ const (
 	decimals
 	days
 	timestamps
+	clocks
 	uuids
 )
 
@@ -32,14 +33,15 @@ type column struct {
 	length   int // of fixed-length values, in bytes
 	meaning  meaning
 	scale    int   // of decimals: digits behind the point
-	unit     int64 // of timestamps: units a second; INT96 has its own
+	unit     int64 // of timestamps and clocks: units a second; INT96 has its own
+	utc      bool  // of timestamps: the clock is that of UTC
 	optional bool
 
 	pages   pages
 	present []bool
 	values  values
 	clock   []byte // scratch
-	minute  int64  // the time written out last, and its text: rows have few expiries
+	stamp   int64  // the time written out last, and its text: rows have few expiries
 	dated   []byte
 }
 
@@ -81,6 +83,8 @@ func (c *column) classify(e *parquet.SchemaElement) bool {
 	logical := e.LogicalType
 	if logical == nil {
 		logical = &parquet.LogicalType{}
+	} else if *logical == (parquet.LogicalType{}) {
+		return false // one that came after this reader: its bytes mean what they do not say
 	}
 	if logical.DECIMAL != nil || converted == parquet.ConvertedType_DECIMAL {
 		c.meaning = decimals
@@ -101,7 +105,8 @@ func (c *column) classify(e *parquet.SchemaElement) bool {
 		c.meaning = floats
 		return true
 	case parquet.Type_INT96:
-		c.meaning = timestamps
+		// It does not tell its zone; the engines that write it turn times into UTC.
+		c.meaning, c.utc = timestamps, true
 		return true
 	case parquet.Type_BYTE_ARRAY:
 		c.meaning = texts
@@ -126,33 +131,40 @@ func (c *column) classifyInt(converted parquet.ConvertedType, logical *parquet.L
 		c.meaning = days
 		return c.physical == parquet.Type_INT32
 	case logical.TIMESTAMP != nil:
-		c.meaning = timestamps
-		switch u := logical.TIMESTAMP.Unit; {
-		case u == nil:
-			return false
-		case u.MILLIS != nil:
-			c.unit = 1e3
-		case u.MICROS != nil:
-			c.unit = 1e6
-		case u.NANOS != nil:
-			c.unit = 1e9
-		default:
-			return false
-		}
-		return c.physical == parquet.Type_INT64
+		c.meaning, c.utc = timestamps, logical.TIMESTAMP.IsAdjustedToUTC
+		return c.physical == parquet.Type_INT64 && c.setUnit(logical.TIMESTAMP.Unit)
 	case converted == parquet.ConvertedType_TIMESTAMP_MILLIS:
-		c.meaning, c.unit = timestamps, 1e3
+		c.meaning, c.unit, c.utc = timestamps, 1e3, true // by the format's rules for its older annotations
 		return c.physical == parquet.Type_INT64
 	case converted == parquet.ConvertedType_TIMESTAMP_MICROS:
-		c.meaning, c.unit = timestamps, 1e6
+		c.meaning, c.unit, c.utc = timestamps, 1e6, true
 		return c.physical == parquet.Type_INT64
-	case logical.TIME != nil || converted == parquet.ConvertedType_TIME_MILLIS || converted == parquet.ConvertedType_TIME_MICROS:
-		return false
+	case logical.TIME != nil:
+		c.meaning = clocks
+		return c.setUnit(logical.TIME.Unit)
+	case converted == parquet.ConvertedType_TIME_MILLIS:
+		c.meaning, c.unit = clocks, 1e3
+	case converted == parquet.ConvertedType_TIME_MICROS:
+		c.meaning, c.unit = clocks, 1e6
 	case logical.INTEGER != nil && !logical.INTEGER.IsSigned,
 		parquet.ConvertedType_UINT_8 <= converted && converted <= parquet.ConvertedType_UINT_64:
 		c.meaning = unsigned
 	}
 	return true
+}
+
+func (c *column) setUnit(u *parquet.TimeUnit) bool {
+	switch {
+	case u == nil:
+		return false
+	case u.MILLIS != nil:
+		c.unit = 1e3
+	case u.MICROS != nil:
+		c.unit = 1e6
+	case u.NANOS != nil:
+		c.unit = 1e9
+	}
+	return c.unit != 0
 }
 
 // describe names the type of a schema element.
@@ -164,8 +176,8 @@ func describe(e *parquet.SchemaElement) string {
 	switch {
 	case e.ConvertedType != nil:
 		name += "/" + e.ConvertedType.String()
-	case e.LogicalType != nil && e.LogicalType.TIME != nil:
-		name += "/TIME"
+	case e.LogicalType != nil && *e.LogicalType == (parquet.LogicalType{}):
+		name += " with an annotation unknown to this reader"
 	}
 	return name
 }

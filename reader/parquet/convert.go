@@ -33,19 +33,26 @@ func (c *column) prepare(into *table.Rows, at int) {
 	case unsigned, decimals:
 		into.Cells[at] = alike(table.Number)
 	case timestamps:
-		into.Cells[at] = alike(table.Date)
+		if c.utc {
+			into.Cells[at] = alike(table.UTC)
+		} else {
+			into.Cells[at] = alike(table.Date)
+		}
 	}
 }
 
 // alike returns the marks of a run of rows whose cells are all of one kind.
 func alike(kind table.Cell) []table.Cell {
-	if kind == table.Number {
+	switch kind {
+	case table.Number:
 		return numbers[:]
+	case table.UTC:
+		return utcs[:]
 	}
 	return dates[:]
 }
 
-var numbers, dates = marks(table.Number), marks(table.Date)
+var numbers, dates, utcs = marks(table.Number), marks(table.Date), marks(table.UTC)
 
 func marks(kind table.Cell) (m [schema.BatchRows]table.Cell) {
 	for i := range m {
@@ -82,6 +89,9 @@ func (c *column) convert(into *table.Rows, at int) {
 			if present {
 				x = from.ints[k]
 				k++
+				if x == schema.NoInt {
+					fault(into, at, len(v.Ints))
+				}
 			}
 			v.Ints = append(v.Ints, x)
 		}
@@ -115,7 +125,7 @@ func (c *column) convert(into *table.Rows, at int) {
 	}
 }
 
-// fault marks a cell of a vector of floats as a stored NaN, which is no null.
+// fault marks a cell as a stored NaN or NoInt, which is no null.
 func fault(into *table.Rows, at, row int) {
 	if into.Cells[at] == nil {
 		into.Cells[at] = make([]table.Cell, schema.BatchRows)
@@ -148,10 +158,14 @@ func (c *column) text(b []byte, k int) []byte {
 		if c.physical == parquet.Type_INT96 {
 			return appendINT96(b, from.bytes[k])
 		}
-		if minute := floorDiv(from.ints[k], 60*c.unit); minute != c.minute || len(c.dated) == 0 {
-			c.minute, c.dated = minute, appendMinute(c.dated[:0], minute)
+		if t := from.ints[k]; t != c.stamp || len(c.dated) == 0 {
+			second := floorDiv(t, c.unit)
+			c.stamp, c.dated = t, appendTime(c.dated[:0], second, t-second*c.unit, c.unit, c.utc)
 		}
 		return append(b, c.dated...)
+	case clocks:
+		second := floorDiv(from.ints[k], c.unit)
+		return appendClock(b, second, from.ints[k]-second*c.unit, c.unit)
 	case decimals:
 		if c.physical == parquet.Type_BYTE_ARRAY || c.physical == fixed {
 			return appendDecimal(b, bigEndian(from.bytes[k]), c.scale)
@@ -169,13 +183,43 @@ func (c *column) text(b []byte, k int) []byte {
 	return b
 }
 
-// appendMinute appends the minute since 1970 as a date, and a time of day
-// unless it is midnight.
-func appendMinute(b []byte, minute int64) []byte {
-	d := floorDiv(minute, 24*60)
+// appendTime appends a second since 1970, and a part of it in units of which
+// unit make one, as a date, with a time of day behind it unless it is midnight.
+// A time of UTC ends with a Z, and has a time of day always.
+func appendTime(b []byte, second, part, unit int64, utc bool) []byte {
+	d := floorDiv(second, 24*60*60)
 	b = day(d).AppendDate(b)
-	if m := minute - d*24*60; m != 0 {
-		b = append(b, 'T', byte('0'+m/600), byte('0'+m/60%10), ':', byte('0'+m%60/10), byte('0'+m%10))
+	if second -= d * 24 * 60 * 60; second != 0 || part != 0 || utc {
+		b = appendClock(append(b, 'T'), second, part, unit)
+	}
+	if utc {
+		b = append(b, 'Z')
+	}
+	return b
+}
+
+// appendClock appends a second of the day and a part of it as HH:MM, with :SS
+// and a fraction where they are not 0.
+func appendClock(b []byte, second, part, unit int64) []byte {
+	if second < 0 || second >= 24*60*60 {
+		return append(b, "beyond a day"...)
+	}
+	two := func(n int64) { b = append(b, byte('0'+n/10), byte('0'+n%10)) }
+	two(second / 3600)
+	b = append(b, ':')
+	two(second / 60 % 60)
+	if second%60 == 0 && part == 0 {
+		return b
+	}
+	b = append(b, ':')
+	two(second % 60)
+	if part == 0 {
+		return b
+	}
+	b = append(b, '.')
+	for ; part != 0; part %= unit {
+		unit /= 10
+		b = append(b, byte('0'+part/unit))
 	}
 	return b
 }
@@ -186,7 +230,8 @@ func appendINT96(b, v []byte) []byte {
 	const epoch = 2440588 // Julian day number of 1970-01-01
 	nanos := int64(binary.LittleEndian.Uint64(v))
 	days := int64(binary.LittleEndian.Uint32(v[8:])) - epoch
-	return appendMinute(b, days*24*60+floorDiv(nanos, 60e9))
+	second := floorDiv(nanos, 1e9)
+	return appendTime(b, days*24*60*60+second, nanos-second*1e9, 1e9, true)
 }
 
 func floorDiv(a, b int64) int64 {

@@ -71,22 +71,19 @@ func wanted(i int) []string {
 		ten := int64(math.Pow10(scale))
 		return fmt.Sprintf("%s%d.%0*d", sign, x/ten, scale, x%ten)
 	}
-	clock := func() string {
+	clock := func(utc string) string {
 		minute := (n-100)*100_003 + 24*60
 		if i%4 == 0 {
 			minute = (n - 100) * 24 * 60
 		}
 		day := schema.Date(math.Floor(float64(minute) / 1440))
-		if m := minute - int64(day)*1440; m != 0 {
-			return day.String() + "T" + schema.Clock(int16(m))
-		}
-		return day.String()
+		return day.String() + "T" + schema.Clock(int16(minute-int64(day)*1440)) + ":59" + utc
 	}
 	row := []string{
 		fmt.Sprintf("L%05d", i), []string{"north", "south", "ä€𝄞", `a "q", b`, "x\ny"}[i%5], float(float64(i)/8 - 3), float(float64(i)/8 - 3),
 		float(float64(float32(i) / 10)), fmt.Sprint(i%200 - 100), fmt.Sprint(int32(i*i*7919) - 1<<30), fmt.Sprint((n - 150) * 1_000_000_007_000),
 		fmt.Sprint(4_000_000_000 + n), fmt.Sprint(uint64(18_000_000_000_000_000_000) + uint64(n)), fmt.Sprint(i%3 == 0), schema.Date(20000 + 3*i - 450).String(),
-		clock(), clock(), clock(), decimal(2), decimal(4), decimal(10), fmt.Sprintf("%04d", i), "∅",
+		clock("Z"), clock(""), clock("Z"), decimal(2), decimal(4), decimal(10), fmt.Sprintf("%04d", i), "∅",
 	}
 	for k := range row {
 		if k != 0 && k != 2 && (i+k)%7 == 0 {
@@ -141,7 +138,7 @@ func TestKinds(t *testing.T) {
 	}{
 		"id": {schema.KindStrings, table.Text}, "f64": {schema.KindFloats, 0}, "f32": {schema.KindFloats, 0}, "i64": {schema.KindInts, 0},
 		"u32": {schema.KindStrings, table.Number}, "flag": {schema.KindStrings, table.Text}, "day": {schema.KindDates, 0},
-		"ns": {schema.KindStrings, table.Date}, "dec9": {schema.KindStrings, table.Number},
+		"ns": {schema.KindStrings, table.UTC}, "us": {schema.KindStrings, table.Date}, "dec9": {schema.KindStrings, table.Number},
 	} {
 		for c, h := range f.Header() {
 			if h != name {
@@ -170,7 +167,6 @@ func TestRefused(t *testing.T) {
 	for name, want := range map[string]string{
 		"list":   "column odd is nested (group/LIST)",
 		"struct": "column odd is nested",
-		"time":   "column odd is of type INT32/TIME, which is not read",
 		"brotli": "packed with BROTLI",
 	} {
 		b := readFile(t, name+".parquet")

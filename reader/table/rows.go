@@ -16,9 +16,12 @@ const (
 	Number
 	// Percent is a Number that is shown as a percentage: 0.2 as 20 %.
 	Percent
-	// Date came as a date: YYYY-MM-DD, with THH:MM behind it where there was a time of day.
+	// Date came as a date: YYYY-MM-DD, with THH:MM behind it where there was a time
+	// of day, and :SS and a fraction where it was to the second or finer.
 	Date
-	// Fault is the error value of a workbook's cell, such as #N/A, or a NaN that the file holds.
+	// UTC is a Date whose time of day is that of UTC, with a Z behind it.
+	UTC
+	// Fault is the error value of a workbook's cell, such as #N/A, or a NaN or NoInt that the file holds.
 	Fault
 )
 
@@ -29,8 +32,8 @@ type Rows struct {
 	schema.Frame
 
 	// Cells says, of a text vector, how each cell is meant; nil is Text for all.
-	// Of a vector of floats, Fault parts the NaN that the file holds from the empty
-	// cell. It has an entry for every column.
+	// Of a vector of floats or integers, Fault parts the NaN or NoInt that the file
+	// holds from the empty cell. It has an entry for every column.
 	Cells [][]Cell
 
 	Line []int64        // where each row stands: line of the file, row of the sheet
@@ -86,7 +89,7 @@ func (r *Rows) AppendText(b []byte, col, i int) []byte {
 		}
 		return AppendFloat(b, v.Floats[i])
 	case schema.KindInts:
-		if v.Ints[i] == schema.NoInt {
+		if v.Ints[i] == schema.NoInt && r.Cell(col, i) != Fault {
 			return b
 		}
 		return strconv.AppendInt(b, v.Ints[i], 10)

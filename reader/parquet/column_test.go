@@ -1,0 +1,50 @@
+package parquet
+
+import (
+	"bytes"
+	"strings"
+	"testing"
+
+	"github.com/xitongsys/parquet-go/parquet"
+)
+
+// The text of a time has as many digits as the time has, and no more.
+func TestTimes(t *testing.T) {
+	for _, c := range []struct {
+		want               string
+		second, part, unit int64
+		utc                bool
+	}{
+		{"1970-01-01", 0, 0, 1e3, false},
+		{"1970-01-01T00:00Z", 0, 0, 1e3, true},
+		{"1969-12-31T23:59:59.999", -1, 999, 1e3, false},
+		{"1970-01-02T00:00:00.000001", 86400, 1, 1e6, false},
+		{"1970-01-01T01:01", 3660, 0, 1e9, false},
+		{"1970-01-01T01:01:01.00000005Z", 3661, 50, 1e9, true},
+	} {
+		if got := string(appendTime(nil, c.second, c.part, c.unit, c.utc)); got != c.want {
+			t.Errorf("%s, want %s", got, c.want)
+		}
+	}
+	b := readFile(t, "time.parquet")
+	_, rows, err := rendered(bytes.NewReader(b), int64(len(b)))
+	if err != nil || len(rows) == 0 {
+		t.Errorf("times of day: %v %v", rows, err)
+	}
+	for _, r := range rows {
+		if got := r[len(r)-1]; got != "∅" && (len(got) < 5 || got[2] != ':') {
+			t.Errorf("a time of day is %q", got)
+		}
+	}
+}
+
+// An annotation that came after this reader is refused: the bytes below it do
+// not say what they mean.
+func TestUnknownAnnotation(t *testing.T) {
+	kind, optional := parquet.Type_FIXED_LEN_BYTE_ARRAY, parquet.FieldRepetitionType_OPTIONAL
+	length := int32(2)
+	_, err := columnsOf([]*parquet.SchemaElement{{Name: "root"}, {Name: "half", Type: &kind, TypeLength: &length, RepetitionType: &optional, LogicalType: &parquet.LogicalType{}}})
+	if err == nil || !strings.Contains(err.Error(), "column half is of type FIXED_LEN_BYTE_ARRAY with an annotation unknown to this reader") {
+		t.Error(err)
+	}
+}
