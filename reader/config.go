@@ -37,6 +37,13 @@ import (
 //	from = "vols"                   # vols: the surface is the vols table; quotes: it is implied by the quotes
 //	                                # table; default "vols"
 //
+//	[models]                        # of options without a closed form
+//	american = "standard"           # accuracy of the boundary integral: fast, standard or exact; default "standard"
+//	dividends = "piecewise"         # piecewise: the price is lognormal between ex-dates and drops by the amount;
+//	                                # escrowed: less the value of the dividends, it is; default "piecewise"
+//	tolerance = 2e-5                # error that finite differences may make in a price, as a share of the price of
+//	                                # the underlying, 1e-7 to 1e-2; default 2e-5
+//
 //	[workbook]
 //	max_lines = 50000               # rows of the workbook's Lines sheet, 0 to 1000000; default 50000
 //
@@ -44,6 +51,9 @@ import (
 //	compression = "zstd"            # of the files written: zstd, snappy, gzip or none; default "zstd"
 //	utc = "refuse"                  # of the files read, dates stored as moments of UTC: refuse them, or take them
 //	                                # as_is for times of the desk's own clock; default "refuse"
+//
+//	[limits]                        # on what is read; schema.LimitDocs lists them
+//	row_bytes = 1048576
 //
 //	[columns.positions]             # one such section a table: our column = the house's header
 //	strike = "Strike Px"
@@ -61,6 +71,11 @@ type runFile struct {
 		Unit string `toml:"unit"`
 		From string `toml:"from"`
 	} `toml:"vols"`
+	Models struct {
+		American  string   `toml:"american"`
+		Dividends string   `toml:"dividends"`
+		Tolerance *float64 `toml:"tolerance"`
+	} `toml:"models"`
 	Workbook struct {
 		MaxLines *int `toml:"max_lines"`
 	} `toml:"workbook"`
@@ -68,6 +83,7 @@ type runFile struct {
 		Compression string `toml:"compression"`
 		UTC         string `toml:"utc"`
 	} `toml:"parquet"`
+	Limits  any `toml:"limits"`
 	Columns any `toml:"columns"`
 }
 
@@ -127,7 +143,7 @@ func parseConfig(text, asOf, folder string) (*schema.Config, error) {
 		return nil, err
 	}
 	for _, key := range meta.Undecoded() {
-		if key[0] != "columns" { // checkColumns looks at those
+		if key[0] != "columns" && key[0] != "limits" { // looked at below
 			return nil, fmt.Errorf("unknown key %s", key)
 		}
 	}
@@ -158,6 +174,9 @@ func parseConfig(text, asOf, folder string) (*schema.Config, error) {
 	default:
 		return nil, fmt.Errorf("vols.from is %q: expected vols or quotes", r.Vols.From)
 	}
+	if cfg.Models, err = r.models(); err != nil {
+		return nil, err
+	}
 	cfg.Workbook.MaxLines = schema.DefaultMaxLines
 	if n := r.Workbook.MaxLines; n != nil {
 		if *n < 0 || *n > 1_000_000 {
@@ -178,6 +197,9 @@ func parseConfig(text, asOf, folder string) (*schema.Config, error) {
 		cfg.Parquet.UTCAsIs = true
 	default:
 		return nil, fmt.Errorf("parquet.utc is %q: expected refuse or as_is", r.Parquet.UTC)
+	}
+	if cfg.Limits, err = checkLimits(r.Limits); err != nil {
+		return nil, err
 	}
 	cfg.Columns, err = checkColumns(r.Columns)
 	return cfg, err
@@ -203,6 +225,34 @@ func (r *runFile) csv() (c schema.CSVConfig, err error) {
 	}
 	c.Encoding = r.CSV.Encoding
 	return c, nil
+}
+
+func (r *runFile) models() (schema.ModelsConfig, error) {
+	m := schema.DefaultModels
+	for _, c := range []struct {
+		key, value string
+		list       schema.Choices
+		to         *schema.Choice
+	}{
+		{"american", r.Models.American, schema.Settings, &m.American},
+		{"dividends", r.Models.Dividends, schema.DividendModels, &m.Dividends},
+	} {
+		if c.value == "" {
+			continue
+		}
+		i := slices.Index(c.list, c.value)
+		if i < 0 {
+			return m, fmt.Errorf("models.%s is %q: expected one of %s", c.key, c.value, strings.Join(c.list[1:], ", "))
+		}
+		*c.to = schema.Choice(i)
+	}
+	if x := r.Models.Tolerance; x != nil {
+		if !(*x >= 1e-7 && *x <= 1e-2) {
+			return m, fmt.Errorf("models.tolerance is %v: expected 1e-7 to 1e-2, a share of the price of the underlying", *x)
+		}
+		m.Tolerance = *x
+	}
+	return m, nil
 }
 
 // checkColumns refuses a mapping of a table or a column that does not exist.

@@ -24,7 +24,7 @@ func TestConfigDefaults(t *testing.T) {
 		t.Fatal(err)
 	}
 	want := &schema.Config{AsOf: moment(t, "2026-03-20"), ReportingCurrency: "EUR",
-		Workbook: schema.WorkbookConfig{MaxLines: schema.DefaultMaxLines}, Parquet: schema.ParquetConfig{Compression: "zstd"}}
+		Models: schema.DefaultModels, Workbook: schema.WorkbookConfig{MaxLines: schema.DefaultMaxLines}, Parquet: schema.ParquetConfig{Compression: "zstd"}}
 	if !reflect.DeepEqual(got, want) {
 		t.Errorf("%+v, want %+v", got, want)
 	}
@@ -44,6 +44,11 @@ encoding = "windows-1252"
 unit = "percent"
 [workbook]
 max_lines = 0
+
+[models]
+american = "exact"
+dividends = "escrowed"
+tolerance = 1e-6
 [parquet]
 compression = "none"
 [columns.positions]
@@ -55,8 +60,9 @@ vol = "IV"
 		t.Fatal(err)
 	}
 	want := &schema.Config{AsOf: moment(t, "2026-03-20T17:30"), ReportingCurrency: "USD", Calendar: "Northport",
-		CSV:  schema.CSVConfig{Delimiter: ';', DecimalComma: true, DateFormat: "DD.MM.YYYY", Encoding: "windows-1252"},
-		Vols: schema.VolsConfig{Percent: true}, Parquet: schema.ParquetConfig{Compression: "none"},
+		CSV:    schema.CSVConfig{Delimiter: ';', DecimalComma: true, DateFormat: "DD.MM.YYYY", Encoding: "windows-1252"},
+		Models: schema.ModelsConfig{American: schema.Exact, Dividends: schema.Escrowed, Tolerance: 1e-6},
+		Vols:   schema.VolsConfig{Percent: true}, Parquet: schema.ParquetConfig{Compression: "none"},
 		Columns: map[string]map[string]string{"positions": {"strike": "Strike Px"}, "vols": {"vol": "IV"}}}
 	if !reflect.DeepEqual(got, want) {
 		t.Errorf("%+v, want %+v", got, want)
@@ -112,6 +118,10 @@ func TestConfigErrors(t *testing.T) {
 		"[csv]\ndate_format = 'D.M.Y'":        `csv.date_format is "D.M.Y"`,
 		"[csv]\nencoding = 'latin'":           `csv.encoding is "latin": expected one of utf-8, windows-1252, utf-16`,
 		"[vols]\nunit = 'bp'":                 `vols.unit is "bp"`,
+		"[models]\namerican = 'rough'":        `models.american is "rough": expected one of fast, standard, exact`,
+		"[models]\ndividends = 'none'":        `models.dividends is "none": expected one of piecewise, escrowed`,
+		"[models]\ntolerance = 0.5":           "models.tolerance is 0.5: expected 1e-7 to 1e-2",
+		"[models]\ntolerance = nan":           "models.tolerance is NaN",
 		"[workbook]\nmax_lines = -1":          "workbook.max_lines is -1",
 		"[workbook]\nmax_lines = 1000001":     "workbook.max_lines is 1000001",
 		"[parquet]\ncompression = 'lz4'":      `parquet.compression is "lz4"`,

@@ -39,13 +39,16 @@ type Worker struct {
 	term  term
 	notes map[noteKey]*schema.Note
 
-	rows [][]int32 // by route: 2·product, plus 1 for its expired form
-	run  instrument.Run
+	rows      [][]int32              // by route: 2·product, plus 1 for its expired form
+	schedules []*instrument.Schedule // by row of the batch
+	run       instrument.Run
 }
 
 // NewWorker returns scratch memory for one goroutine.
-func NewWorker() *Worker {
-	return &Worker{terms: map[termKey]term{}, notes: map[noteKey]*schema.Note{}, rows: make([][]int32, 2*len(products))}
+func (e *Engine) NewWorker() *Worker {
+	w := &Worker{terms: map[termKey]term{}, notes: map[noteKey]*schema.Note{}, rows: make([][]int32, 2*len(products))}
+	w.run.Methods = methods(e.market)
+	return w
 }
 
 const noRoute = 255
@@ -59,6 +62,7 @@ func (e *Engine) Price(b *schema.Batch, w *Worker) {
 	for i := range w.rows {
 		w.rows[i] = w.rows[i][:0]
 	}
+	w.schedules = append(w.schedules[:0], make([]*instrument.Schedule, b.N)...)
 	for i := range b.N {
 		if b.Status[i] == schema.Rejected {
 			continue
@@ -101,6 +105,11 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 	if p.payoff > schema.Vanilla {
 		e.gatherTerms(b, r, rows)
 	}
+	if p.dividends == withDividends {
+		for j, i := range rows {
+			r.Dividends[j] = w.schedules[i]
+		}
+	}
 	price(r)
 	for k, s := range r.Greeks.Slices() {
 		scatter(*greekColumns(&b.Results)[k], *s, rows)
@@ -115,6 +124,28 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 		}
 		if p.instrument != schema.Option {
 			b.Residual[i] = nan
+		}
+	}
+	if p.knowsExercise() && route%2 == 0 {
+		e.exercise(b, w, rows)
+	}
+}
+
+// exercise scatters what is known of the rows of a run besides their values.
+func (e *Engine) exercise(b *schema.Batch, w *Worker, rows []int32) {
+	x := &w.run.Exercise
+	scatter(b.Boundary, x.Boundary, rows)
+	scatter(b.PriceError, x.PriceError, rows)
+	for j, i := range rows {
+		b.ExerciseNow[i] = x.Flags[j]&instrument.ExerciseNow != 0
+		switch {
+		case x.Flags[j]&instrument.OnGrid != 0:
+			b.Model[i] = schema.ModelFiniteDifferences
+		default:
+			b.Setting[i] = e.market.Models.American
+		}
+		if x.Flags[j]&instrument.Uncertain != 0 {
+			w.note(b, int(i), schema.PriceUncertain, b.Underlying[i])
 		}
 	}
 }

@@ -55,7 +55,8 @@ func (d *desk) price(lines ...line) *schema.Batch {
 		d.t.Fatal(err)
 	}
 	b := d.batch(lines)
-	NewEngine(m, d.dicts).Price(b, NewWorker())
+	e := NewEngine(m, d.dicts)
+	e.Price(b, e.NewWorker())
 	return b
 }
 
@@ -131,7 +132,8 @@ func TestEachKindGetsItsModel(t *testing.T) {
 		}
 		b := d.batch([]line{c.l})
 		b.Expiry[0], b.ExpiryMinute[0] = d.cfg.AsOf.Day+schema.Date(minutes/1440), int16(minutes%1440)
-		NewEngine(m, d.dicts).Price(b, NewWorker())
+		e := NewEngine(m, d.dicts)
+		e.Price(b, e.NewWorker())
 		if b.Status[0] != schema.Priced || b.Model[0] != c.model {
 			t.Errorf("%s: status %s, model %s, %v", c.name, schema.Statuses[b.Status[0]], schema.Models[b.Model[0]], b.Rejects)
 			continue
@@ -277,7 +279,8 @@ func TestPricingAllocatesNothingPerLine(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	e, w, b := NewEngine(m, d.dicts), NewWorker(), d.batch(lines)
+	e, b := NewEngine(m, d.dicts), d.batch(lines)
+	w := e.NewWorker()
 	allocs := testing.AllocsPerRun(5, func() {
 		clear(b.Status)
 		b.Notes = b.Notes[:0]
@@ -308,7 +311,8 @@ func BenchmarkPrice(bench *testing.B) {
 	if err != nil {
 		bench.Fatal(err)
 	}
-	e, w, b := NewEngine(m, d.dicts), NewWorker(), d.batch(lines)
+	e, b := NewEngine(m, d.dicts), d.batch(lines)
+	w := e.NewWorker()
 	for bench.Loop() {
 		clear(b.Status)
 		b.Notes = b.Notes[:0]

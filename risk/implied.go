@@ -6,40 +6,57 @@ import (
 	"math"
 	"slices"
 
+	"nightbook/risk/instrument"
 	"nightbook/risk/market"
+	"nightbook/risk/model/pde"
 	"nightbook/risk/vec"
 	"nightbook/schema"
 )
 
 // Imply finds the volatility of each quote against a market: one row a quote,
-// in their order. The market's surfaces are not looked at.
+// in their order. European quotes without cash dividends are inverted in closed
+// form, the others with the models that price lines. The market's surfaces are
+// not looked at.
 func Imply(m *market.Market, d *schema.Dicts, quotes []schema.QuoteRow) []schema.ImpliedRow {
 	out := make([]schema.ImpliedRow, len(quotes))
 	n := len(quotes)
 	col := func() []float64 { return make([]float64, n) }
 	forward, strike, time, price, sign, vol := col(), col(), col(), col(), col(), col()
+	byModel := make([]*instrument.Quote, n) // nil where there is a closed form
+	var open []*instrument.Quote
 	for i := range quotes {
 		out[i] = schema.ImpliedRow{QuoteRow: &quotes[i], Used: nan, Forward: nan, Time: nan, Vol: nan}
-		discount := prepare(m, d, &out[i])
-		forward[i], strike[i], time[i] = out[i].Forward, quotes[i].Strike, out[i].Time
-		price[i], sign[i] = out[i].Used/discount, orientation(quotes[i].OptionType)
+		q := prepare(m, d, &out[i])
+		if q == nil {
+			continue
+		}
+		forward[i], strike[i], time[i], sign[i] = out[i].Forward, q.Strike, q.Time, q.Sign
+		price[i] = q.Price * vec.Exp1(float64(q.Rate*q.Time))
+		if q.American || q.Dividends != nil {
+			byModel[i] = q
+			open = append(open, q)
+		}
 	}
 	outcome := make([]vec.Implied, n)
 	vec.ImpliedVol(vol, outcome, forward, strike, time, price, sign)
+	methods(m).ImpliedVols(open)
 	for i := range out {
-		if out[i].Status == 0 {
+		switch q := byModel[i]; {
+		case q != nil:
+			concludeByModel(&out[i], q)
+		case out[i].Status == 0:
 			conclude(&out[i], vol[i], outcome[i])
 		}
 	}
 	return out
 }
 
-// prepare sets what a quote is inverted with, and returns the discount factor;
-// a quote that cannot be inverted gets its status.
-func prepare(m *market.Market, d *schema.Dicts, q *schema.ImpliedRow) float64 {
-	no := func(status schema.Choice, reason string) float64 {
+// prepare returns the option that a quote is of; a quote that cannot be inverted
+// gets its status, and nil.
+func prepare(m *market.Market, d *schema.Dicts, q *schema.ImpliedRow) *instrument.Quote {
+	no := func(status schema.Choice, reason string) *instrument.Quote {
 		q.Status, q.Reason = status, reason
-		return nan
+		return nil
 	}
 	if r := q.Reject; r != nil {
 		where := ""
@@ -62,8 +79,6 @@ func prepare(m *market.Market, d *schema.Dicts, q *schema.ImpliedRow) float64 {
 		return no(schema.QuoteNoMarket, u.Fault)
 	case u.Kind == schema.Spread:
 		return no(schema.QuoteUnsupported, "options on an underlying of kind spread are not inverted by this version")
-	case q.Exercise == schema.American:
-		return no(schema.QuoteUnsupported, "American exercise is not inverted by this version, and is never inverted as European")
 	case !(u.Price > 0):
 		return no(schema.QuoteNoMarket, "the price of "+u.Name+" is not positive")
 	case !(q.Strike > 0):
@@ -75,14 +90,22 @@ func prepare(m *market.Market, d *schema.Dicts, q *schema.ImpliedRow) float64 {
 	if u.Curve == nil {
 		return no(schema.QuoteNoMarket, u.CurveFault.Reason)
 	}
-	for _, ex := range u.Dividends {
-		if ex <= q.Day && u.Kind != schema.FuturePrice {
-			return no(schema.QuoteUnsupported, u.Name+" pays a cash dividend on "+ex.String()+", before expiry: cash dividends are not priced by this version")
-		}
-	}
 	rate, _ := u.Curve.Rate(q.Time)
-	q.Forward = u.Forward(rate, q.Time)
-	return vec.Exp1(0 - float64(rate*q.Time))
+	paid := u.DividendsUntil(q.Day)
+	if q.Forward = u.Forward(rate, q.Time, q.Day); !(q.Forward > 0) {
+		return no(schema.QuoteNoMarket, "the forward price to expiry is "+number(q.Forward)+" once the cash dividends of "+u.Name+" are paid: check dividends")
+	}
+	o := &instrument.Quote{
+		Price: q.Used, Spot: u.Price, Strike: q.Strike, Time: q.Time, Rate: rate, Yield: u.Yield, Sign: orientation(q.OptionType),
+		American: q.Exercise == schema.American,
+	}
+	if u.Kind == schema.FuturePrice {
+		o.Yield = rate
+	}
+	for _, p := range paid {
+		o.Dividends = append(o.Dividends, pde.Dividend{Time: min(p.Time, q.Time), Amount: p.Amount})
+	}
+	return o
 }
 
 func lookup(m *market.Market, d *schema.Dicts, name string) (*market.Underlying, bool) {
@@ -105,6 +128,20 @@ func conclude(q *schema.ImpliedRow, vol float64, outcome vec.Implied) {
 		q.Status, q.Reason = schema.QuoteAboveBound, "the price is at or above the discounted "+map[schema.Choice]string{schema.Call: "forward", schema.Put: "strike"}[q.OptionType]+", the most the option can be worth"
 	default:
 		q.Status, q.Reason = schema.QuoteNoMarket, "forward "+number(q.Forward)+" or time "+number(q.Time)+" cannot be used"
+	}
+}
+
+// concludeByModel says what came out of an inversion with a model.
+func concludeByModel(q *schema.ImpliedRow, o *instrument.Quote) {
+	switch o.Outcome {
+	case vec.ImpliedOK:
+		q.Vol, q.Status = o.Vol, schema.QuoteOK
+	case vec.ImpliedBelow:
+		q.Status, q.Reason = schema.QuoteBelowBound, "the price is at or below the option's value without volatility: of an American option that is what exercise brings, now or at the best time"
+	case vec.ImpliedAbove:
+		q.Status, q.Reason = schema.QuoteAboveBound, "the price is at or above the option's value at the highest volatility that is sought, "+number(o.High())
+	default:
+		q.Status, q.Reason = schema.QuoteUnsupported, "the option's model has no value for these terms, or none that meets the price"
 	}
 }
 

@@ -37,6 +37,9 @@ func (e *Engine) flushNotes(b *schema.Batch, w *Worker) {
 		case schema.VolFallback:
 			n.Subject = e.dicts.Underlyings.Name(key.subject)
 			n.Message = n.Subject + " has no surface: its flat volatility was used"
+		case schema.PriceUncertain:
+			n.Subject = e.dicts.Underlyings.Name(key.subject)
+			n.Message = "finite differences did not meet the tolerance for options on " + n.Subject + ": price_error says how far off their prices may be"
 		}
 		b.Notes = append(b.Notes, *n)
 	}

@@ -25,7 +25,9 @@ func TestRefusals(t *testing.T) {
 	d.underlying("doubtful", schema.Equity, "EUR", 100, 0, 0.2)
 	d.underlying("curve", schema.Equity, "EUR", 100, 0, 0.2)
 	d.raw.Underlyings[len(d.raw.Underlyings)-1].Curve = "BAD"
-	d.raw.Dividends = []schema.DividendRow{{Underlying: "pays", ExDate: d.cfg.AsOf.Day + 10, Amount: 1}}
+	d.underlying("broke", schema.Equity, "EUR", 100, 0, 0.2)
+	d.raw.Dividends = []schema.DividendRow{{Underlying: "pays", ExDate: d.cfg.AsOf.Day + 10, Amount: 1}, {Underlying: "broke", ExDate: d.cfg.AsOf.Day + 10, Amount: 200}}
+	d.raw.Vols = []schema.VolRow{{Underlying: "broke", Day: d.cfg.AsOf.Day + 5, Minute: schema.NoMinute, Strike: 100, Vol: 0.2}}
 	d.raw.Faults = []schema.Fault{
 		{Table: "rates", Name: "BAD", Reject: schema.Reject{File: "rates.csv", Line: 7, Code: schema.BadNumber}},
 		{Table: "vols", Name: "doubtful", Reject: schema.Reject{File: "vols.csv", Line: 8, Code: schema.BadNumber}},
@@ -33,8 +35,9 @@ func TestRefusals(t *testing.T) {
 		{Table: "fx", Name: "CHF", Reject: schema.Reject{File: "fx.csv", Line: 3, Code: schema.BadNumber}},
 	}
 	call := func(u string) line { return option(u, schema.Call, 100, 50, 0) }
-	american, digital, other, zero, huge := call("U"), call("U"), call("U"), call("U"), call("U")
+	american, paying, digital, other, zero, huge := call("U"), call("pays"), call("U"), call("U"), call("U"), call("U")
 	american.style, digital.payoff, other.currency, zero.strike, huge.quantity = schema.American, schema.CashDigital, "USD", -1, 1e307
+	american.payoff, american.payout, paying.payoff, paying.payout = schema.CashDigital, 5, schema.CashDigital, 5
 	huge.multiplier = 1e300
 	onSpread := digital
 	onSpread.underlying, onSpread.payout = "gap", 5
@@ -87,7 +90,8 @@ func TestRefusals(t *testing.T) {
 		{"negative futures price", call("fut"), schema.OutOfRange, "underlying", "not positive"},
 		{"negative share price", line{underlying: "neg", instrument: schema.Stock}, schema.OutOfRange, "underlying", "negative"},
 		{"strike", zero, schema.OutOfRange, "strike", "positive"},
-		{"dividend", call("pays"), schema.Unsupported, "expiry", "cash dividend on 2026-04-10"},
+		{"digital before a dividend", paying, schema.Unsupported, "payoff", "cash dividend on 2026-04-10"},
+		{"dividends above the forward", call("broke"), schema.BadMarketData, "underlying", "forward price to expiry is -"},
 		{"stock on a future", line{underlying: "fut", instrument: schema.Stock}, schema.KindMismatch, "instrument", "instrument future"},
 		{"future on a share", line{underlying: "U", instrument: schema.Future}, schema.KindMismatch, "instrument", "kind future or spread"},
 		{"forward on a spread", line{underlying: "gap", instrument: schema.Forward, strike: 1, days: 9}, schema.KindMismatch, "instrument", "not spread"},
@@ -140,13 +144,20 @@ func TestTableIsWhole(t *testing.T) {
 	for inst := schema.Option; inst < schema.Cash; inst++ {
 		for kind := schema.Equity; kind <= schema.Spread; kind++ {
 			for payoff := schema.Choice(0); payoff <= schema.AsianArithmetic; payoff++ {
-				for style := schema.Choice(0); style <= schema.American; style++ {
+				for cell := range 2 * (schema.American + 1) {
+					style, paid := cell/2, int(cell%2)
 					if isOption := inst == schema.Option; isOption != (payoff != 0) || isOption != (style != 0) {
 						continue
 					}
 					d := newDesk(t)
 					d.rate("EUR", 0.03)
 					d.underlying("U", kind, "EUR", 100, 0, 0.2)
+					if paid == withDividends {
+						d.raw.Dividends = []schema.DividendRow{{Underlying: "U", ExDate: d.cfg.AsOf.Day + 20, Amount: 1}}
+						if kind != schema.Equity && kind != schema.Index || inst == schema.Stock {
+							paid = withoutDividends // they move nothing
+						}
+					}
 					l := line{underlying: "U", instrument: inst, payoff: payoff, style: style, days: 50}
 					if inst == schema.Option || inst == schema.Forward {
 						l.strike = 100
@@ -163,7 +174,7 @@ func TestTableIsWhole(t *testing.T) {
 						l.start = 10
 					}
 					b := d.price(l)
-					at := productAt[inst][kind][payoff][style]
+					at := productAt[inst][kind][payoff][style][paid]
 					tried[at] = true
 					if want := at != 0; want != (b.Status[0] == schema.Priced) {
 						t.Errorf("%s on %s, payoff %s, %s: %s", schema.Instruments[inst], schema.Kinds[kind], schema.Payoffs[payoff], schema.Exercises[style], schema.Statuses[b.Status[0]])
@@ -185,10 +196,14 @@ func TestResultsDoNotDependOnTheCompany(t *testing.T) {
 	d.rate("EUR", 0.03)
 	d.underlying("U", schema.Equity, "EUR", 100, 0.01, 0.2)
 	d.underlying("F", schema.FuturePrice, "EUR", 100, 0, 0.2)
+	d.underlying("D", schema.Equity, "EUR", 100, 0.01, 0.2)
+	d.raw.Dividends = []schema.DividendRow{{Underlying: "D", ExDate: d.cfg.AsOf.Day + 20, Amount: 1}, {Underlying: "D", ExDate: d.cfg.AsOf.Day + 100, Amount: 1}}
 	var lines []line
-	for i := range 200 {
+	for i := range 300 {
 		kind := schema.Call + schema.Choice(i%2)
-		lines = append(lines, option([]string{"U", "F"}[i/2%2], kind, 50+float64(i), 1+i*7, 0.1+float64(i)/400))
+		l := option([]string{"U", "F", "D"}[i/2%3], kind, 50+float64(i), 1+i*7, 0.1+float64(i)/400)
+		l.style = schema.European + schema.Choice(i/6%2)
+		lines = append(lines, l)
 	}
 	all := d.price(lines...)
 	for i := range lines {

@@ -4,6 +4,7 @@ import (
 	"math"
 	"strings"
 
+	"nightbook/risk/instrument"
 	"nightbook/risk/market"
 	"nightbook/schema"
 )
@@ -21,7 +22,8 @@ type termKey struct {
 type term struct {
 	time, rate, forward float64
 	curveInside         bool
-	dividend            schema.Date // first ex-date up to expiry; NoDate where there is none
+	dividends           *instrument.Schedule // up to expiry; nil where there are none
+	dividendsPV         float64
 }
 
 // maxTerms bounds a worker's memory of terms, for files in which every line has
@@ -35,8 +37,9 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 	if inst != schema.Option && !plainTerms(b, i) {
 		return noRoute
 	}
-	b.Model[i], b.VolSource[i], b.Curve[i] = 0, 0, 0
-	b.Forward[i], b.VolUsed[i], b.Rate[i], b.Carry[i], b.Time[i] = nan, nan, nan, nan, nan
+	b.Model[i], b.Setting[i], b.DividendModel[i], b.VolSource[i], b.Curve[i] = 0, 0, 0, 0, 0
+	b.Forward[i], b.VolUsed[i], b.Rate[i], b.Carry[i], b.Time[i], b.DividendsPV[i] = nan, nan, nan, nan, nan, nan
+	b.PriceError[i], b.Boundary[i], b.ExerciseNow[i] = nan, nan, false
 	if inst == schema.Cash {
 		return e.resolveCash(b, i)
 	}
@@ -60,7 +63,7 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 	if inst == schema.Option {
 		payoff, exercise = b.Payoff[i], b.Exercise[i]
 	}
-	at := productAt[inst][u.Kind][payoff][exercise]
+	at := productAt[inst][u.Kind][payoff][exercise][withoutDividends]
 	if at == 0 {
 		code, column, reason := unsupported(inst, u.Kind, payoff, exercise)
 		return refuse(b, i, code, column, choiceText(b, i, column), reason)
@@ -98,12 +101,22 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 		b.Time[i], b.Forward[i] = 0, u.Price
 		return route + 1
 	}
-	if t.dividend != schema.NoDate && (u.Kind == schema.Equity || u.Kind == schema.Index) {
-		return refuse(b, i, schema.Unsupported, "expiry", b.Expiry[i].String(),
-			u.Name+" pays a cash dividend on "+t.dividend.String()+", before expiry: cash dividends are not priced by this version, and are never left out")
-	}
 	if u.Curve == nil {
 		return refuse(b, i, u.CurveFault.Code, "underlying", u.Name, u.CurveFault.Reason)
+	}
+	if inst == schema.Option && (u.Kind == schema.Equity || u.Kind == schema.Index) {
+		b.DividendModel[i] = e.market.Models.Dividends
+	}
+	if t.dividends != nil {
+		if at = productAt[inst][u.Kind][payoff][exercise][withDividends]; at == 0 {
+			return refuse(b, i, schema.Unsupported, "payoff", choiceText(b, i, "payoff"), u.Name+" pays a cash dividend on "+u.Dividends[0].ExDate.String()+
+				", before expiry, with which payoff "+schema.Payoffs[payoff]+" is not priced by this version, and it is never left out: take the line out or price it elsewhere")
+		}
+		route, w.schedules[i] = 2*(at-1), t.dividends
+		if b.DividendsPV[i] = t.dividendsPV; inst == schema.Option && e.market.Models.Dividends == schema.Escrowed && !(t.forward > 0) {
+			return refuse(b, i, schema.BadMarketData, "underlying", u.Name, "the forward price to expiry is "+number(t.forward)+
+				" once its cash dividends are paid, and the escrowed model has nothing left to price: check dividends, or set dividends = \"piecewise\" under [models]")
+		}
 	}
 	b.Time[i], b.Rate[i], b.Forward[i] = t.time, t.rate, t.forward
 	b.Curve[i] = u.CurveID
@@ -133,7 +146,7 @@ func (e *Engine) resolveCash(b *schema.Batch, i int) uint8 {
 	}
 	e.exchange(b, i)
 	b.Spot[i] = 1
-	return 2 * (productAt[schema.Cash][0][0][0] - 1)
+	return 2 * (productAt[schema.Cash][0][0][0][withoutDividends] - 1)
 }
 
 // exchange sets the row's rate into the reporting currency, or refuses it.
@@ -161,6 +174,10 @@ func (e *Engine) volatility(b *schema.Batch, i int, u *market.Underlying, t term
 	case u.VolFault != "":
 		refuse(b, i, schema.BadMarketData, "underlying", u.Name, u.VolFault)
 		return false
+	case u.Surface != nil && !(t.forward > 0) && u.Kind != schema.Spread:
+		refuse(b, i, schema.BadMarketData, "underlying", u.Name, "the forward price to expiry is "+number(t.forward)+
+			" once its cash dividends are paid, and the surface is laid out along it: check dividends, or give the line a vol")
+		return false
 	case u.Surface != nil:
 		vol, inside := u.Surface.Vol(b.Strike[i], t.forward, t.time)
 		b.VolUsed[i], b.VolSource[i] = vol, schema.VolFromSurface
@@ -186,15 +203,12 @@ func (e *Engine) term(u *market.Underlying, b *schema.Batch, i int, w *Worker) t
 	}
 	t, ok := w.terms[key]
 	if !ok {
-		t = term{time: e.market.AsOf.Years(key.day, key.minute), rate: nan, forward: nan, dividend: schema.NoDate}
+		t = term{time: e.market.AsOf.Years(key.day, key.minute), rate: nan, forward: nan}
 		if u.Curve != nil && t.time > 0 {
 			t.rate, t.curveInside = u.Curve.Rate(t.time)
-			t.forward = u.Forward(t.rate, t.time)
-		}
-		for _, ex := range u.Dividends {
-			if ex <= key.day && (t.dividend == schema.NoDate || ex < t.dividend) {
-				t.dividend = ex
-			}
+			t.forward = u.Forward(t.rate, t.time, key.day)
+			paid := u.DividendsUntil(key.day)
+			t.dividends, t.dividendsPV = e.schedule(paid, key, t.time), market.PresentValue(paid, t.rate, t.time)
 		}
 		if len(w.terms) == maxTerms {
 			clear(w.terms)

@@ -52,16 +52,22 @@ type Positions struct {
 // Results are what the risk core adds to each line. The units are those of the
 // data dictionary (see Lines).
 type Results struct {
-	Status    []Choice
-	Model     []Choice
-	VolSource []Choice
-	Curve     []Code // the discount curve used
+	Status        []Choice
+	Model         []Choice
+	Setting       []Choice // accuracy of an American option's model, where it has settings
+	DividendModel []Choice
+	VolSource     []Choice
+	Curve         []Code // the discount curve used
 
 	// the inputs used
-	Spot, Forward, VolUsed, Rate, Carry, Time, FX []float64
+	Spot, Forward, VolUsed, Rate, Carry, Time, DividendsPV, FX []float64
 
 	// one unit of the contract
 	Price, Delta, Gamma, Vega, Theta, Rho, CarryRho, Vanna, Volga, Charm, Residual []float64
+
+	PriceError  []float64 // estimated error of Price, where the method gives one
+	Boundary    []float64 // the price of the underlying past which exercise is optimal now
+	ExerciseNow []bool    // it is past that price
 
 	// the position, in its currency, and in the reporting currency
 	DeltaUnits     []float64
@@ -95,9 +101,9 @@ var MeasureNames = [NumMeasures]string{
 // and moving rows.
 func (r *Results) Floats() []*[]float64 {
 	s := []*[]float64{
-		&r.Spot, &r.Forward, &r.VolUsed, &r.Rate, &r.Carry, &r.Time, &r.FX,
+		&r.Spot, &r.Forward, &r.VolUsed, &r.Rate, &r.Carry, &r.Time, &r.DividendsPV, &r.FX,
 		&r.Price, &r.Delta, &r.Gamma, &r.Vega, &r.Theta, &r.Rho, &r.CarryRho, &r.Vanna, &r.Volga, &r.Charm, &r.Residual,
-		&r.DeltaUnits,
+		&r.PriceError, &r.Boundary, &r.DeltaUnits,
 	}
 	for m := range r.Measures {
 		s = append(s, &r.Measures[m], &r.MeasuresInBase[m])
@@ -127,6 +133,7 @@ func (b *Batch) Resize(n int) {
 	b.Line = resized(b.Line, n)
 	b.Expiry, b.AverageStart = resized(b.Expiry, n), resized(b.AverageStart, n)
 	b.ExpiryMinute = resized(b.ExpiryMinute, n)
+	b.ExerciseNow = resized(b.ExerciseNow, n)
 	for _, s := range b.texts() {
 		s.Reset()
 	}
@@ -157,6 +164,7 @@ func (b *Batch) Compact() {
 	b.Line = picked(b.Line, keep)
 	b.Expiry, b.AverageStart = picked(b.Expiry, keep), picked(b.AverageStart, keep)
 	b.ExpiryMinute = picked(b.ExpiryMinute, keep)
+	b.ExerciseNow = picked(b.ExerciseNow, keep)
 	for _, s := range b.texts() {
 		s.Start, s.End = picked(s.Start, keep), picked(s.End, keep)
 	}
@@ -167,7 +175,7 @@ func (b *Batch) codes() []*[]Code {
 }
 
 func (b *Batch) choices() []*[]Choice {
-	return []*[]Choice{&b.Instrument, &b.OptionType, &b.Exercise, &b.Payoff, &b.BarrierType, &b.Monitoring, &b.Status, &b.Model, &b.VolSource}
+	return []*[]Choice{&b.Instrument, &b.OptionType, &b.Exercise, &b.Payoff, &b.BarrierType, &b.Monitoring, &b.Status, &b.Model, &b.Setting, &b.DividendModel, &b.VolSource}
 }
 
 func (b *Batch) texts() []*Strings {

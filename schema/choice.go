@@ -113,6 +113,21 @@ const (
 	ModelReinerRubinstein
 	ModelKemnaVorst
 	ModelTurnbullWakeman
+	ModelBoundaryIntegral  // American options with a continuous yield only
+	ModelFiniteDifferences // options with cash dividends, and the American ones that the integral does not reach
+)
+
+// Settings of the boundary integral.
+const (
+	Fast Choice = 1 + iota
+	Standard
+	Exact
+)
+
+// What a cash dividend does to the price of its underlying.
+const (
+	Piecewise Choice = 1 + iota // it is lognormal between ex-dates and drops by the amount on each
+	Escrowed                    // less the present value of the dividends, it is lognormal
 )
 
 // How often a barrier is watched.
@@ -134,11 +149,14 @@ var (
 	Statuses     = Choices{"", "priced", "expired", "rejected"}
 	VolSources   = Choices{"", "line", "surface", "underlying"}
 	Models       = Choices{"", "black_scholes_merton", "black_76", "garman_kohlhagen", "discounted_forward", "mark", "face", "payoff",
-		"bachelier", "cash_or_nothing", "asset_or_nothing", "reiner_rubinstein", "kemna_vorst", "turnbull_wakeman"}
-	Monitorings   = Choices{"", "continuous", "daily", "weekly", "monthly"}
-	choiceColumns = map[string]Choices{
+		"bachelier", "cash_or_nothing", "asset_or_nothing", "reiner_rubinstein", "kemna_vorst", "turnbull_wakeman",
+		"boundary_integral", "finite_differences"}
+	Settings       = Choices{"", "fast", "standard", "exact"}
+	DividendModels = Choices{"", "piecewise", "escrowed"}
+	Monitorings    = Choices{"", "continuous", "daily", "weekly", "monthly"}
+	choiceColumns  = map[string]Choices{
 		"instrument": Instruments, "kind": Kinds, "option_type": OptionTypes, "exercise": Exercises,
-		"payoff": Payoffs, "barrier_type": BarrierTypes, "status": Statuses, "vol_source": VolSources, "model": Models, "monitoring": Monitorings,
+		"payoff": Payoffs, "barrier_type": BarrierTypes, "status": Statuses, "vol_source": VolSources, "model": Models, "monitoring": Monitorings, "setting": Settings, "dividend_model": DividendModels,
 	}
 )
 

@@ -74,6 +74,7 @@ const (
 	NoPositions     NoteCode = "no_positions"
 	QuoteNotUsed    NoteCode = "quote_not_used"
 	MarketRowUnused NoteCode = "market_row_unused"
+	PriceUncertain  NoteCode = "price_uncertain"
 )
 
 // NoteCodes is the closed list of warnings.
@@ -89,7 +90,8 @@ var NoteCodes = []CodeDoc{
 	{string(SliceExpired), "a surface has slices that are not after as_of: they are not used"},
 	{string(NoHolidays), "no holidays are given for the calendar: business days are Monday to Friday"},
 	{string(FormatDetected), "the encoding of a file was detected, not declared"},
-	{string(MarketRowUnused), "vols or dividends have rows of an underlying that is not in underlyings"},
+	{string(MarketRowUnused), "vols or dividends have rows that no line can use: their underlying is not in underlyings, or its kind pays no dividends"},
+	{string(PriceUncertain), "finite differences did not meet the tolerance on their finest mesh: price_error of the lines says how far"},
 	{string(QuoteNotUsed), "quotes gave no volatility and are not in the surface"},
 	{string(NoPositions), "the position file has a header and no rows"},
 }

@@ -1,5 +1,7 @@
 package schema
 
+import "cmp"
+
 // Config is run.toml, checked, with the command line laid over it.
 type Config struct {
 	AsOf              Moment
@@ -7,9 +9,11 @@ type Config struct {
 	Calendar          string // "" is Monday to Friday
 
 	CSV      CSVConfig
+	Models   ModelsConfig
 	Vols     VolsConfig
 	Workbook WorkbookConfig
 	Parquet  ParquetConfig
+	Limits   Limits
 
 	// Columns maps, table by table, our column names to the house's own headers.
 	Columns map[string]map[string]string
@@ -27,6 +31,22 @@ type CSVConfig struct {
 type VolsConfig struct {
 	Percent    bool // 20 stands for 0.20
 	FromQuotes bool // the surface is that of quotes, not of vols
+}
+
+// ModelsConfig says how options without a closed form are priced. A field that
+// is 0 stands for its default.
+type ModelsConfig struct {
+	American  Choice  // setting of the boundary integral
+	Dividends Choice  // dividend model
+	Tolerance float64 // of finite differences: the error allowed in a price, as a share of the spot
+}
+
+// DefaultModels are the models of a run.toml that says nothing of them.
+var DefaultModels = ModelsConfig{American: Standard, Dividends: Piecewise, Tolerance: 2e-5}
+
+// OrDefault returns m with its fields filled in.
+func (m ModelsConfig) OrDefault() ModelsConfig {
+	return ModelsConfig{cmp.Or(m.American, DefaultModels.American), cmp.Or(m.Dividends, DefaultModels.Dividends), cmp.Or(m.Tolerance, DefaultModels.Tolerance)}
 }
 
 // WorkbookConfig bounds the workbook.

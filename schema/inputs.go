@@ -75,9 +75,9 @@ var BooksTable = Table{"books", "one row a book: the book tree", []Column{
 }}
 
 // DividendsTable describes dividends.
-var DividendsTable = Table{"dividends", "one row a cash dividend; this version refuses the options it would move", []Column{
+var DividendsTable = Table{"dividends", "one row a cash dividend of an equity or an index; those of one ex-date add up", []Column{
 	{"underlying", Text, "", true, "", "the underlying's name"},
-	{"ex_date", Day, "", true, "", "first day without the dividend"},
+	{"ex_date", Day, "", true, "", "first day without the dividend; on or before as_of it has no effect"},
 	{"amount", Float, "price currency", true, "", "cash amount for one unit"},
 }}
 

@@ -27,7 +27,7 @@ var layers = []struct {
 	{"risk", []string{"schema"}},
 	{"risk/vec", nil},
 	{"risk/model", []string{"risk/vec"}},
-	{"risk/instrument", []string{"risk/model"}},
+	{"risk/instrument", []string{"risk/model", "risk/vec"}},
 	{"risk/market", []string{"schema", "risk/vec"}},
 	{"risk/aggregate", []string{"schema"}},
 	{"risk/internal", nil},

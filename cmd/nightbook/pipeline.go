@@ -64,7 +64,7 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 	binders := make([]*reader.Binder, o.workers)
 	scratch := make([]*risk.Worker, o.workers)
 	for i := range o.workers {
-		binders[i], scratch[i] = positions.NewBinder(), risk.NewWorker()
+		binders[i], scratch[i] = positions.NewBinder(), engine.NewWorker()
 	}
 	gate := newGate(positions, raw.Faults, o.strict)
 	if err := gate.market(out); err != nil {

@@ -1,12 +1,32 @@
 package instrument
 
-import "nightbook/risk/model"
+import (
+	"nightbook/risk/model"
+	"nightbook/risk/vec"
+)
 
 // ForwardOnSpot values forwards on a spot price.
 func ForwardOnSpot(r *Run) {
 	model.Forward(&r.Greeks, r.Spot, r.Strike, r.Time, r.Rate, r.Yield)
 	for i := range r.After {
 		model.ForwardPrice(r.After[i], r.Spot, r.Strike, r.TimeAfter[i], r.Rate, r.Yield)
+	}
+}
+
+// ForwardWithDividends values forwards on a share that pays cash dividends before
+// they expire.
+func ForwardWithDividends(r *Run) {
+	model.Forward(&r.Greeks, r.Spot, r.Strike, r.Time, r.Rate, r.Yield)
+	for i, d := range r.Dividends {
+		model.LessDividends(&r.Greeks, i, r.Time[i], r.Rate[i], r.Yield[i], d.Now)
+	}
+	for step := range r.After {
+		left := r.TimeAfter[step]
+		model.ForwardPrice(r.After[step], r.Spot, r.Strike, left, r.Rate, r.Yield)
+		for i, d := range r.Dividends {
+			gone := d.Drop[step] * vec.Exp1(0-float64(r.Yield[i]*left[i])) // of the spot
+			r.After[step][i] -= gone + model.DividendsWorth(left[i], r.Rate[i], r.Yield[i], d.After[step])
+		}
 	}
 }
 

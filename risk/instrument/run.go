@@ -19,20 +19,30 @@ type Run struct {
 	Entry                                []float64 // last margined price of a future
 	TimeAfter                            [Steps][]float64
 	Terms
+	Dividends []*Schedule // of the products that know them
+
+	Methods *Methods
 
 	model.Greeks
-	After [Steps][]float64 // price with TimeAfter to expiry, all else held
+	Exercise                  // of the products that know it
+	After    [Steps][]float64 // price with TimeAfter to expiry, all else held
 }
 
 // Resize makes every slice n rows long, keeping memory.
 func (r *Run) Resize(n int) {
 	r.N = n
 	for _, s := range r.slices() {
-		if cap(*s) < n {
-			*s = make([]float64, n, n+n/4)
-		}
-		*s = (*s)[:n]
+		*s = resized(*s, n)
 	}
+	r.Dividends = resized(r.Dividends, n)
+	r.Exercise.resize(n)
+}
+
+func resized[T any](s []T, n int) []T {
+	if cap(s) < n {
+		return make([]T, n, n+n/4)
+	}
+	return s[:n]
 }
 
 func (r *Run) slices() []*[]float64 {

@@ -9,7 +9,6 @@ import (
 	"sort"
 	"strings"
 
-	"nightbook/risk/vec"
 	"nightbook/schema"
 )
 
@@ -19,6 +18,7 @@ type Market struct {
 	AsOf      schema.Moment
 	Calendar  *Calendar
 	Reporting string
+	Models    schema.ModelsConfig
 	percent   bool // volatilities came in percent
 
 	underlyings []*Underlying // by schema.Code of the underlying
@@ -39,8 +39,8 @@ type Underlying struct {
 
 	Fault      string // not "": no line on it may be priced
 	CurveFault Problem
-	VolFault   string // not "": neither surface nor flat volatility may be used
-	Dividends  []schema.Date
+	VolFault   string     // not "": neither surface nor flat volatility may be used
+	Dividends  []Dividend // after as_of, by ex-date; of kind equity and index only
 }
 
 // LineVol returns a line's own volatility in the unit of its kind, or what is
@@ -94,7 +94,7 @@ func (m *Market) FX(c schema.Code) Currency {
 // New builds a market. The notes are warnings about the snapshot. The error is
 // a fault that leaves no line to price.
 func New(cfg *schema.Config, raw *schema.Market, d *schema.Dicts) (*Market, []schema.Note, error) {
-	b := builder{cfg: cfg, raw: raw, dicts: d, m: &Market{AsOf: cfg.AsOf, Reporting: cfg.ReportingCurrency, percent: cfg.Vols.Percent}, faults: faultsByName(raw.Faults)}
+	b := builder{cfg: cfg, raw: raw, dicts: d, m: &Market{AsOf: cfg.AsOf, Reporting: cfg.ReportingCurrency, Models: cfg.Models.OrDefault(), percent: cfg.Vols.Percent}, faults: faultsByName(raw.Faults)}
 	for _, t := range []struct{ table, what string }{{"books", "every sum along the book tree"}, {"holidays", "every line's theta_cash_1bd"}} {
 		if f := b.faults[t.table]; len(f) > 0 {
 			return nil, nil, errors.New(t.table + " has refused rows, and " + t.what + " depends on it: mend " + f.any())
@@ -216,11 +216,9 @@ func (b *builder) underlyings() {
 	for _, v := range b.raw.Vols {
 		vols[v.Underlying] = append(vols[v.Underlying], v)
 	}
-	dividends := map[string][]schema.Date{}
+	paid := map[string][]schema.DividendRow{}
 	for _, d := range b.raw.Dividends {
-		if d.ExDate > b.cfg.AsOf.Day {
-			dividends[d.Underlying] = append(dividends[d.Underlying], d.ExDate)
-		}
+		paid[d.Underlying] = append(paid[d.Underlying], d)
 	}
 	set := func(name string, u *Underlying) {
 		code := b.dicts.Underlyings.Code(name)
@@ -230,10 +228,10 @@ func (b *builder) underlyings() {
 		b.m.underlyings[code] = u
 	}
 	for _, r := range b.raw.Underlyings {
-		set(r.Name, b.underlying(r, vols[r.Name], dividends[r.Name]))
+		set(r.Name, b.underlying(r, vols[r.Name], paid[r.Name]))
 	}
 	unused(b, "vols", vols)
-	unused(b, "dividends", dividends)
+	unused(b, "dividends", paid)
 	for name, at := range b.faults["underlyings"] {
 		set(name, &Underlying{Name: name, Fault: "the underlying has a refused row: mend " + at})
 	}
@@ -254,7 +252,7 @@ func unused[V any](b *builder, table string, rows map[string][]V) {
 	}
 }
 
-func (b *builder) underlying(r schema.UnderlyingRow, vols []schema.VolRow, dividends []schema.Date) *Underlying {
+func (b *builder) underlying(r schema.UnderlyingRow, vols []schema.VolRow, paid []schema.DividendRow) *Underlying {
 	curve := r.Curve
 	if curve == "" {
 		curve = r.Currency
@@ -262,7 +260,14 @@ func (b *builder) underlying(r schema.UnderlyingRow, vols []schema.VolRow, divid
 	u := &Underlying{
 		Name: r.Name, Kind: r.Kind, Currency: b.dicts.Currencies.Code(r.Currency),
 		Price: r.Price, Yield: r.CarryYield, FlatVol: r.Vol,
-		CurveID: b.dicts.Curves.Code(curve), Curve: b.curve[curve], Dividends: dividends,
+		CurveID: b.dicts.Curves.Code(curve), Curve: b.curve[curve],
+	}
+	switch pays := r.Kind == schema.Equity || r.Kind == schema.Index; {
+	case pays:
+		u.Dividends = dividends(paid, b.cfg.AsOf)
+	case len(paid) > 0:
+		b.notes = append(b.notes, schema.Note{Code: schema.MarketRowUnused, Subject: r.Name, Count: int64(len(paid)),
+			Message: "dividends has rows of " + r.Name + ", which is of kind " + schema.Kinds[r.Kind] + ": they are not used; only kinds equity and index pay cash dividends"})
 	}
 	if at, bad := b.faults["dividends"][r.Name]; bad {
 		u.Fault = "its cash dividends have a refused row: mend " + at
@@ -288,9 +293,9 @@ func (b *builder) underlying(r schema.UnderlyingRow, vols []schema.VolRow, divid
 		u.VolFault = "its volatility surface needs a forward price, and there is none: see its curve and price"
 		return u
 	}
-	s, past, err := newSurface(vols, b.cfg.AsOf, r.Kind == schema.Spread, func(T float64) float64 {
+	s, past, err := newSurface(vols, b.cfg.AsOf, r.Kind == schema.Spread, func(T float64, day schema.Date) float64 {
 		rate, _ := u.Curve.Rate(T)
-		return u.Forward(rate, T)
+		return u.Forward(rate, T, day)
 	})
 	if len(past) > 0 {
 		b.note(schema.SliceExpired, r.Name, "the surface of %s has slices that are not after as_of and are not used: %s", r.Name, joinDates(past))
@@ -314,12 +319,4 @@ func joinDates(days []schema.Date) string {
 		texts[i] = d.String()
 	}
 	return strings.Join(texts, ", ")
-}
-
-// Forward returns the forward price to T years at a zero rate.
-func (u *Underlying) Forward(rate, T float64) float64 {
-	if u.Kind == schema.FuturePrice || u.Kind == schema.Spread || T <= 0 {
-		return u.Price
-	}
-	return u.Price * vec.Exp1(float64((rate-u.Yield)*T))
 }

@@ -165,8 +165,9 @@ func (s *Surface) calendarFall() int {
 // newSurface builds a surface from the rows of one underlying. forward gives
 // the forward price to a time. It returns the days of the slices that are not
 // after as_of, which are left out; without any other slice the surface is nil.
-func newSurface(rows []schema.VolRow, asOf schema.Moment, absolute bool, forward func(T float64) float64) (*Surface, []schema.Date, error) {
+func newSurface(rows []schema.VolRow, asOf schema.Moment, absolute bool, forward func(T float64, day schema.Date) float64) (*Surface, []schema.Date, error) {
 	byTime := map[float64][]point{}
+	day := map[float64]schema.Date{}
 	var past []schema.Date
 	for _, r := range rows {
 		T := asOf.Years(r.Day, r.Minute)
@@ -175,12 +176,13 @@ func newSurface(rows []schema.VolRow, asOf schema.Moment, absolute bool, forward
 			continue
 		}
 		byTime[T] = append(byTime[T], point{r.Strike, r.Vol})
+		day[T] = r.Day
 	}
 	slices.Sort(past)
 	past = slices.Compact(past)
 	s := &Surface{absolute: absolute}
 	for _, T := range slices.Sorted(maps.Keys(byTime)) {
-		sl, err := newSlice(T, forward(T), byTime[T], absolute)
+		sl, err := newSlice(T, forward(T, day[T]), byTime[T], absolute)
 		if err != nil {
 			return nil, past, err
 		}

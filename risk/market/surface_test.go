@@ -75,7 +75,7 @@ func TestSurfaceInTime(t *testing.T) {
 		return schema.VolRow{Underlying: "U", Day: as.Day + schema.Date(days), Minute: schema.NoMinute, Strike: strike, Vol: vol}
 	}
 	// forward 100·e^(0.1·T): the same k is another strike at each expiry
-	forward := func(T float64) float64 { return 100 * math.Exp(0.1*T) }
+	forward := func(T float64, _ schema.Date) float64 { return 100 * math.Exp(0.1*T) }
 	s, past, err := newSurface([]schema.VolRow{
 		at(365, 90, 0.25), at(365, 110, 0.21), at(730, 90, 0.24), at(730, 150, 0.20), at(-3, 100, 0.5),
 	}, as, false, forward)

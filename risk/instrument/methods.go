@@ -1,0 +1,59 @@
+package instrument
+
+import (
+	"nightbook/risk/model/american"
+	"nightbook/risk/model/pde"
+)
+
+// Methods are the numerical methods behind products without a closed form, with
+// their settings and working memory. They serve one goroutine.
+type Methods struct {
+	integral   *american.Solver
+	grid       pde.Solver
+	convention pde.Convention
+
+	status []american.Status // of the lines at hand
+	after  american.Results  // of their revaluations
+	chain  pde.Chain
+	cell   pde.Results
+}
+
+// NewMethods returns the methods with a setting of the boundary integral, a
+// dividend model, and the error that finite differences may make, as a share of
+// the spot.
+func NewMethods(setting american.Setting, convention pde.Convention, tolerance float64) *Methods {
+	return &Methods{integral: american.NewSolver(setting), convention: convention, grid: pde.Solver{Tolerance: tolerance}}
+}
+
+// Schedule is the cash dividends that move a line, as seen now and as seen after
+// each step of theta. What goes ex within a step is taken off the price of the
+// underlying, as the model has it.
+type Schedule struct {
+	Now   []pde.Dividend
+	After [Steps][]pde.Dividend
+	Drop  [Steps]float64
+}
+
+// Exercise is what is known of a line besides its value.
+type Exercise struct {
+	Boundary   []float64 // price of the underlying past which exercise is optimal now; NaN where there is none
+	PriceError []float64 // estimated error of the price; NaN where the method gives none
+	Flags      []Flag
+}
+
+// Flag is a set of facts about a line.
+type Flag uint8
+
+// The facts.
+const (
+	ExerciseNow Flag = 1 << iota // exercise is optimal now
+	OnGrid                       // priced by finite differences
+	Uncertain                    // PriceError is above the tolerance
+)
+
+func (e *Exercise) resize(n int) {
+	for _, s := range []*[]float64{&e.Boundary, &e.PriceError} {
+		*s = resized(*s, n)
+	}
+	e.Flags = resized(e.Flags, n)
+}
