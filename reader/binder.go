@@ -48,7 +48,7 @@ func (p *Positions) NewBinder() *Binder {
 	n.options = func(i int) *finding { return optionNeeds(n.instruments[i]) }
 	n.dated = func(i int) *finding { return datedNeeds(n.instruments[i]) }
 	if t, ok := p.o.source.(*textFile); ok {
-		n.decoder = csv.NewDecoder(len(t.Header()), t.Delimiter())
+		n.decoder = t.NewDecoder()
 	}
 	return n
 }

@@ -51,6 +51,8 @@ dividends = "escrowed"
 tolerance = 1e-6
 [parquet]
 compression = "none"
+[limits]
+rows = 7
 [columns.positions]
 strike = "Strike Px"
 [columns.vols]
@@ -62,7 +64,7 @@ vol = "IV"
 	want := &schema.Config{AsOf: moment(t, "2026-03-20T17:30"), ReportingCurrency: "USD", Calendar: "Northport",
 		CSV:    schema.CSVConfig{Delimiter: ';', DecimalComma: true, DateFormat: "DD.MM.YYYY", Encoding: "windows-1252"},
 		Models: schema.ModelsConfig{American: schema.Exact, Dividends: schema.Escrowed, Tolerance: 1e-6},
-		Vols:   schema.VolsConfig{Percent: true}, Parquet: schema.ParquetConfig{Compression: "none"},
+		Vols:   schema.VolsConfig{Percent: true}, Parquet: schema.ParquetConfig{Compression: "none"}, Limits: schema.Limits{schema.Rows: 7},
 		Columns: map[string]map[string]string{"positions": {"strike": "Strike Px"}, "vols": {"vol": "IV"}}}
 	if !reflect.DeepEqual(got, want) {
 		t.Errorf("%+v, want %+v", got, want)
@@ -125,6 +127,10 @@ func TestConfigErrors(t *testing.T) {
 		"[workbook]\nmax_lines = -1":          "workbook.max_lines is -1",
 		"[workbook]\nmax_lines = 1000001":     "workbook.max_lines is 1000001",
 		"[parquet]\ncompression = 'lz4'":      `parquet.compression is "lz4"`,
+		"[limits]\nrow_bytes = 1":             "limits.row_bytes is 1: expected a whole number from 1024 to 67108864",
+		"[limits]\nrow_bytes = '2 MiB'":       "limits.row_bytes is 2 MiB: expected a whole number",
+		"[limits]\nratio = 5":                 "limits.ratio: there is no such limit; the limits are field_bytes, row_bytes",
+		"limits = 1":                          "limits: expected a section [limits]",
 		"[columns.limits]\nlower = 'Lo'":      "columns.limits: there is no such table; the tables are positions, underlyings",
 		"[columns.positions]\nprice = 'Px'":   "columns.positions.price: there is no such column",
 		"[columns.positions]\nstrike = ' '":   "columns.positions.strike: expected a header",

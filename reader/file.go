@@ -82,25 +82,11 @@ func inputOfBytes(name, table string, text []byte) schema.InputFile {
 	return schema.InputFile{Name: name, Table: table, SHA256: hex.EncodeToString(sum[:]), Bytes: int64(len(text))}
 }
 
-// Limits on unpacking, against files made to fill the machine: no file of more
-// than 64 GiB unpacked, and beyond 100 MiB none that grows more than a
-// thousandfold. Text of positions packs about tenfold.
-const (
-	maxUnpacked   = 64 << 30
-	maxRatio      = 1000
-	ratioFromSize = 100 << 20
-	maxWindow     = 256 << 20 // memory one zstd frame may ask for
-)
-
-var (
-	errTooLarge = errors.New("unpacks to more than 64 GiB")
-	errBomb     = errors.New("unpacks to more than a thousand times its size")
-	errTrailing = errors.New("something that is not gzip stands behind the end of the packed text: the file is damaged, or was written over a longer one")
-)
+var errTrailing = errors.New("something that is not gzip stands behind the end of the packed text: the file is damaged, or was written over a longer one")
 
 // unpacked returns the file's text without its compression. A packed file that
 // ends too early gives io.ErrUnexpectedEOF.
-func (f *file) unpacked() (io.Reader, error) {
+func (f *file) unpacked(limits *schema.Limits) (io.Reader, error) {
 	switch f.in.format.packed {
 	case "gzip":
 		packed := bufio.NewReaderSize(f, 64<<10)
@@ -112,17 +98,17 @@ func (f *file) unpacked() (io.Reader, error) {
 			return nil, err
 		}
 		z.Multistream(false)
-		return &bounded{r: &members{z, packed}, f: f}, nil
+		return &bounded{r: &members{z, packed}, f: f, limits: limits}, nil
 	case "zstd":
 		if f.size == 0 { // the decoder takes nothing at all for an empty text
 			return nil, fmt.Errorf("not a zstd file: %w", io.ErrUnexpectedEOF)
 		}
-		z, err := zstd.NewReader(f, zstd.WithDecoderMaxWindow(maxWindow))
+		z, err := zstd.NewReader(f, zstd.WithDecoderMaxWindow(uint64(limits.Of(schema.WindowBytes))))
 		if err != nil {
 			return nil, err
 		}
 		f.close = z.Close
-		return &bounded{r: z, f: f}, nil
+		return &bounded{r: z, f: f, limits: limits}, nil
 	}
 	return struct{ io.Reader }{f}, nil
 }
@@ -155,19 +141,20 @@ func (m *members) Read(p []byte) (int, error) {
 
 // bounded holds unpacking to the limits.
 type bounded struct {
-	r io.Reader
-	f *file
-	n int64
+	r      io.Reader
+	f      *file
+	limits *schema.Limits
+	n      int64
 }
 
 func (b *bounded) Read(p []byte) (int, error) {
 	n, err := b.r.Read(p)
-	b.n += int64(n)
-	if b.n > maxUnpacked {
-		return 0, errTooLarge
+	if errors.Is(err, zstd.ErrWindowSizeExceeded) {
+		return n, b.limits.Exceeded(schema.WindowBytes)
 	}
-	if b.n > ratioFromSize && b.n/maxRatio > b.f.taken.Load() {
-		return 0, errBomb
+	b.n += int64(n)
+	if err := b.limits.Unpacked(b.n, b.f.taken.Load()); err != nil {
+		return 0, err
 	}
 	return n, err
 }

@@ -64,18 +64,18 @@ func (t *textFile) Next(into *table.Rows) error {
 		return err
 	}
 	if t.decoder == nil {
-		t.decoder = csv.NewDecoder(len(t.Header()), t.Delimiter())
+		t.decoder = t.NewDecoder()
 	}
 	t.decoder.Decode(&t.block, into)
 	return nil
 }
 
 func openCSV(f *file, cfg *schema.Config) (source, error) {
-	text, err := f.unpacked()
+	text, err := f.unpacked(&cfg.Limits)
 	if err != nil {
 		return nil, err
 	}
-	o := csv.Options{Delimiter: cfg.CSV.Delimiter}
+	o := csv.Options{Delimiter: cfg.CSV.Delimiter, Limits: cfg.Limits}
 	for i, name := range csv.EncodingNames {
 		if name == cfg.CSV.Encoding {
 			o.Encoding = csv.Encoding(i)
@@ -88,16 +88,16 @@ func openCSV(f *file, cfg *schema.Config) (source, error) {
 	return &textFile{Scanner: s}, nil
 }
 
-func openParquet(f *file, _ *schema.Config) (source, error) {
+func openParquet(f *file, cfg *schema.Config) (source, error) {
 	if err := f.hashAll(); err != nil {
 		return nil, err
 	}
-	return parquet.Open(f.File, f.size)
+	return parquet.Open(f.File, f.size, cfg.Limits)
 }
 
-func openXLSX(f *file, _ *schema.Config) (source, error) {
+func openXLSX(f *file, cfg *schema.Config) (source, error) {
 	if err := f.hashAll(); err != nil {
 		return nil, err
 	}
-	return xlsx.Open(f.File, f.size)
+	return xlsx.Open(f.File, f.size, cfg.Limits)
 }

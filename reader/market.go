@@ -70,7 +70,9 @@ func (f *Folder) readMarket(name string, cfg *schema.Config, m *schema.Market, r
 			}
 			r.end()
 		}
-		o.rows += int64(rows.N)
+		if o.rows += int64(rows.N); o.rows > cfg.Limits.Of(schema.MarketRows) {
+			return o.in.fail(o.sheet, cfg.Limits.Exceeded(schema.MarketRows))
+		}
 	}
 	return f.done(o)
 }

@@ -89,7 +89,9 @@ func (p *Positions) Next(pc *Piece) error {
 	if err != nil {
 		return p.o.in.fail(p.o.sheet, err)
 	}
-	p.o.rows += int64(pc.Rows)
+	if p.o.rows += int64(pc.Rows); p.o.rows > p.cfg.Limits.Of(schema.Rows) {
+		return p.o.in.fail(p.o.sheet, p.cfg.Limits.Exceeded(schema.Rows))
+	}
 	pc.Bytes = p.o.taken.Load()
 	if q, ok := p.o.source.(interface{ Read() float64 }); ok {
 		pc.Bytes = int64(q.Read() * float64(p.o.size))

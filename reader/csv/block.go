@@ -13,6 +13,7 @@ type Record struct {
 	Line       int64 // of the file, on which the record starts; the first is 1
 	Quoted     bool  // holds a quotation mark
 	Fault      Fault
+	Lines      uint32 // that it takes up
 }
 
 // Fault says how a record breaks the rules of quoting.
@@ -23,21 +24,11 @@ const (
 	NoFault Fault = iota
 	StrayQuote
 	TextAfterQuote
-	FieldTooLong
 )
 
 var faultReasons = [...]string{
 	StrayQuote:     `a quotation mark stands inside a field that does not begin with one: put the field in quotation marks and double those inside it`,
 	TextAfterQuote: `text follows a closing quotation mark: double the quotation marks inside the field`,
-	FieldTooLong:   `a field is longer than 64 KiB`,
 }
 
 func (f Fault) String() string { return faultReasons[f] }
-
-// Limits on what is held in memory, in bytes. A record beyond the first is most
-// often a quotation mark that is never closed, and ends the reading; a field
-// beyond the second makes its row a bad one.
-const (
-	MaxRecord = 1 << 20
-	MaxField  = 64 << 10
-)

@@ -30,7 +30,7 @@ func readAll(text string, o Options) (header []string, rows []row, err error) {
 	if err != nil {
 		return nil, nil, err
 	}
-	d := NewDecoder(len(s.Header()), s.Delimiter())
+	d := s.NewDecoder()
 	var b Block
 	var run table.Rows
 	for {
@@ -60,6 +60,8 @@ func readAll(text string, o Options) (header []string, rows []row, err error) {
 // Where every record of a text starts, what it holds, and why it is refused.
 func TestRecords(t *testing.T) {
 	count := FieldCount
+	var limits schema.Limits
+	const maxField = 64 << 10
 	for _, c := range []struct {
 		name, text string
 		o          Options
@@ -83,10 +85,13 @@ func TestRecords(t *testing.T) {
 		{"too many, quoted", "a,b\n1,\"2\",3\n", Options{}, []row{{2, []string{"", ""}, count(3, 2), `1,"2",3`}}},
 		{"stray quote", "a,b\n1,5\" pipe\n3,4\n", Options{}, []row{{2, []string{"", ""}, StrayQuote.String(), `1,5" pipe`}, {3, []string{"3", "4"}, "", "3,4"}}},
 		{"text after quote", "a,b\n\"1\"x,2\n3,4\n", Options{}, []row{{2, []string{"", ""}, TextAfterQuote.String(), `"1"x,2`}, {3, []string{"3", "4"}, "", "3,4"}}},
+		{"a mark that swallows lines", "a,b\n1,\"2\n3,4\n5,6\" pipe\n7,8\n", Options{}, []row{
+			{2, []string{"", ""}, TextAfterQuote.String() + spanning(Record{Line: 2, Lines: 3}), "1,\"2\n3,4\n5,6\" pipe"}, {5, []string{"7", "8"}, "", "7,8"}}},
+		{"and too many fields", "a,b\n1,\"2\n3\",4\n", Options{}, []row{{2, []string{"", ""}, count(3, 2) + spanning(Record{Line: 2, Lines: 2}), "1,\"2\n3\",4"}}},
 		{"space after quote", "a,b\n\"1\" ,2\n3,4\n", Options{}, []row{{2, []string{"", ""}, TextAfterQuote.String(), `"1" ,2`}, {3, []string{"3", "4"}, "", "3,4"}}},
-		{"long field", "a,b\n1," + strings.Repeat("x", MaxField+1) + "\n3,4\n", Options{}, []row{
-			{2, []string{"", ""}, FieldTooLong.String(), "1," + strings.Repeat("x", MaxField+1)}, {3, []string{"3", "4"}, "", "3,4"}}},
-		{"longest field", "a,b\n1," + strings.Repeat("x", MaxField) + "\n", Options{}, []row{{2, []string{"1", strings.Repeat("x", MaxField)}, "", "1," + strings.Repeat("x", MaxField)}}},
+		{"long field", "a,b\n1," + strings.Repeat("x", maxField+1) + "\n3,4\n", Options{}, []row{
+			{2, []string{"", ""}, limits.Exceeded(schema.FieldBytes).Error(), "1," + strings.Repeat("x", maxField+1)}, {3, []string{"3", "4"}, "", "3,4"}}},
+		{"longest field", "a,b\n1," + strings.Repeat("x", maxField) + "\n", Options{}, []row{{2, []string{"1", strings.Repeat("x", maxField)}, "", "1," + strings.Repeat("x", maxField)}}},
 	} {
 		for _, size := range []struct{ rows, bytes int }{{0, 0}, {1, 1}, {2, 3}, {1, 1000}} {
 			c.o.BlockRows, c.o.ReadSize = size.rows, size.bytes
@@ -105,7 +110,7 @@ func TestRecords(t *testing.T) {
 }
 
 func TestScannerErrors(t *testing.T) {
-	long := strings.Repeat("x", MaxRecord)
+	long := strings.Repeat("x", 1<<20)
 	for _, c := range []struct {
 		name, text, want string
 		line             int64
@@ -115,12 +120,13 @@ func TestScannerErrors(t *testing.T) {
 		{"bad header", "a,b\"c\n", "the header cannot be read", 1},
 		{"carriage returns alone", "a,b\r1,2\r", "carriage return alone", 1},
 		{"record without end", "a,b\n1,2\n\n\"" + long + long, "close the quotation mark that opens on line 4", 4},
-		{"record without end, and more behind it", "a,b\n1,\"" + long + "xx\n3,\"4\"\n", "longer than 1 MiB", 2},
+		{"record without end, and more behind it", "a,b\n1,\"" + long + "xx\n3,\"4\"\n", "more bytes than row_bytes = 1048576 allows", 2},
 		{"open quote", "a,b\n1,2\n3,\"4\n5,6\n", "close the quotation mark that opens on line 3", 3},
 		{"open quote at the end", "a,b\n3,\"", "close the quotation mark that opens on line 2", 2},
 		{"open quote behind a closed one", "a,b\n1,2\n\"3\n\n\",\"4\n5,6\n", "close the quotation mark that opens on line 5", 3},
+		{"open quote on a line of its own", "a,b\n1,\"2\n" + strings.Repeat("3,4\n", 300_000), "or close the quotation mark that opens on line 2", 2},
 		{"open quote in the header", "a,\"b\n1,2\n", "close the quotation mark that opens on line 1", 1},
-		{"long record", "a,b\n1,2\n" + long + "yy\n3,4\n", "longer than 1 MiB", 3},
+		{"long record", "a,b\n1,2\n" + long + "yy\n3,4\n", "more bytes than row_bytes = 1048576 allows", 3},
 	} {
 		_, _, err := readAll(c.text, Options{})
 		var cell *schema.CellError

@@ -2,6 +2,7 @@ package csv
 
 import (
 	"encoding/binary"
+	"fmt"
 	"math/bits"
 
 	"nightbook/reader/table"
@@ -11,6 +12,8 @@ import (
 // Decoder splits the records of blocks into columns. Each goroutine needs its own.
 type Decoder struct {
 	delimiter byte
+	limits    schema.Limits
+	maxField  uint32 // bytes
 	columns   []column
 	fields    []span
 	memory    []uint32 // of all columns' spans
@@ -20,11 +23,6 @@ type Decoder struct {
 type column struct{ start, end []uint32 }
 
 type span struct{ start, end uint32 }
-
-// NewDecoder returns a decoder for files with that many columns.
-func NewDecoder(columns int, delimiter byte) *Decoder {
-	return &Decoder{delimiter: delimiter, columns: make([]column, columns)}
-}
 
 // cacheLine is one line of the cache, in spans. The columns of a block stand
 // that much further apart than they are long: blocks of 4096 rows would else
@@ -56,7 +54,7 @@ func (d *Decoder) Decode(b *Block, into *table.Rows) {
 			for c := range d.columns {
 				d.columns[c].start[i], d.columns[c].end[i] = 0, 0
 			}
-			into.Bad = append(into.Bad, table.Bad{Row: i, Reason: reason})
+			into.Bad = append(into.Bad, table.Bad{Row: i, Reason: reason + spanning(rec)})
 		}
 	}
 	into.Raw.Data = b.Data // only now: it may have grown
@@ -65,17 +63,27 @@ func (d *Decoder) Decode(b *Block, into *table.Rows) {
 	}
 }
 
+// spanning says of a bad record how many lines are in it: most often, one
+// quotation mark too many has swallowed them.
+func spanning(rec Record) string {
+	if rec.Lines < 2 {
+		return ""
+	}
+	return fmt.Sprintf("; a quotation mark opens in it that is closed only on line %d, so that %d lines are refused as one: if it stands there by mistake, take it out",
+		rec.Line+int64(rec.Lines)-1, rec.Lines)
+}
+
 // row splits one record and returns what is wrong with it, or "".
 func (d *Decoder) row(b *Block, rec Record, i int) string {
 	if rec.Fault != NoFault {
 		return rec.Fault.String()
 	}
 	fields := 0
-	if rec.Quoted || rec.End-rec.Start > MaxField {
+	if rec.Quoted || rec.End-rec.Start > d.maxField {
 		d.fields = splitQuoted(d.fields[:0], b, rec, d.delimiter)
 		for c, f := range d.fields {
-			if f.end-f.start > MaxField {
-				return FieldTooLong.String()
+			if f.end-f.start > d.maxField {
+				return d.limits.Exceeded(schema.FieldBytes).Error()
 			}
 			if c < len(d.columns) {
 				d.columns[c].start[i], d.columns[c].end[i] = f.start, f.end

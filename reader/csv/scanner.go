@@ -15,6 +15,7 @@ import (
 type Options struct {
 	Delimiter byte     // 0: comma
 	Encoding  Encoding // of files that do not begin with a byte order mark
+	Limits    schema.Limits
 
 	BlockRows int // records in a block; 0: schema.BatchRows
 	ReadSize  int // bytes read at a time; 0: 128 KiB
@@ -27,6 +28,7 @@ const blockBytes = 4 << 20
 type Scanner struct {
 	r        io.Reader
 	o        Options
+	maxRow   int    // bytes of a record; a longer one is most often a quotation mark that is never closed
 	rest     []byte // read and not yet handed out
 	line     int64  // of rest[0]
 	rows     int64
@@ -48,7 +50,7 @@ func NewScanner(r io.Reader, o Options) (*Scanner, error) {
 	if o.ReadSize == 0 {
 		o.ReadSize = 128 << 10
 	}
-	s := &Scanner{o: o, line: 1}
+	s := &Scanner{o: o, line: 1, maxRow: int(o.Limits.Of(schema.RowBytes))}
 	var err error
 	if s.r, s.detected, err = decoded(r, o.Encoding); err != nil {
 		return nil, err
@@ -77,7 +79,15 @@ func (s *Scanner) readHeader() error {
 		s.header = append(s.header, strings.Trim(string(b.Data[f.start:f.end]), " \t"))
 	}
 	s.rows = 0
+	if int64(len(s.header)) > s.o.Limits.Of(schema.Columns) {
+		return s.o.Limits.Exceeded(schema.Columns)
+	}
 	return nil
+}
+
+// NewDecoder returns a decoder for the blocks of the file.
+func (s *Scanner) NewDecoder() *Decoder {
+	return &Decoder{delimiter: s.o.Delimiter, columns: make([]column, len(s.header)), limits: s.o.Limits, maxField: uint32(s.o.Limits.Of(schema.FieldBytes))}
 }
 
 // Header returns the names of the columns, in the order of the file.
@@ -105,17 +115,17 @@ func (s *Scanner) next(b *Block, rows int) error {
 	for {
 		for len(b.Records) < rows && at < len(b.Data) {
 			c, ok := cut(b.Data[at:], s.o.Delimiter, s.ended)
-			if !ok && len(b.Data)-at <= MaxRecord {
+			if !ok && len(b.Data)-at <= s.maxRow {
 				break
 			}
-			if c.open {
+			if c.open && s.ended {
 				return openQuote(s.line, s.line+int64(c.opens))
 			}
-			if !ok || c.end > MaxRecord {
-				return tooLong(s.line)
+			if !ok || c.end > s.maxRow {
+				return s.tooLong(&c)
 			}
 			if c.end > 0 { // a blank line is no record
-				b.Records = append(b.Records, Record{uint32(at), uint32(at + c.end), s.line, c.quoted, c.fault})
+				b.Records = append(b.Records, Record{uint32(at), uint32(at + c.end), s.line, c.quoted, c.fault, uint32(c.lines)})
 			}
 			s.line += int64(c.lines)
 			at += c.next
@@ -151,8 +161,13 @@ func (s *Scanner) read(b *Block) error {
 	return err
 }
 
-func tooLong(line int64) error {
-	return fault(line, "the record that starts here is longer than 1 MiB: is there a quotation mark that is not closed?")
+// tooLong is the error on a record that is too long to be one.
+func (s *Scanner) tooLong(c *section) error {
+	hint := ""
+	if c.open {
+		hint = fmt.Sprintf("; or close the quotation mark that opens on line %d", s.line+int64(c.opens))
+	}
+	return &schema.CellError{Line: s.line, Code: schema.BadRow, Err: fmt.Errorf("%w%s", s.o.Limits.Exceeded(schema.RowBytes), hint)}
 }
 
 // openQuote is the error on a record that would take all that follows for one

@@ -37,6 +37,7 @@ type column struct {
 	utc      bool  // of timestamps: the clock is that of UTC
 	optional bool
 
+	file    *File // that it is part of
 	pages   pages
 	present []bool
 	values  values
@@ -212,7 +213,12 @@ func (c *column) read(into *table.Rows, at, n int) error {
 			return err
 		}
 		c.convert(into, at)
-		c.pages.left -= k
+		if c.file.texts > c.file.limits.Of(schema.BatchBytes) {
+			return c.file.limits.Exceeded(schema.BatchBytes)
+		}
+		if c.pages.left -= k; c.pages.left == 0 && c.values.encoding == parquet.Encoding_BYTE_STREAM_SPLIT && c.values.done != c.values.count {
+			return damaged("a page has %d values, its header says %d", c.values.count, c.values.done)
+		}
 		n -= k
 	}
 	return nil

@@ -105,11 +105,16 @@ func (c *column) convert(into *table.Rows, at int) {
 			v.Dates = append(v.Dates, x)
 		}
 	case texts:
+		longest := int(c.file.limits.Of(schema.FieldBytes))
 		for _, present := range c.present {
 			var x []byte
 			if present {
 				x = from.bytes[k]
 				k++
+				if len(x) > longest {
+					c.file.long, x = append(c.file.long, v.Strings.Len()), nil
+				}
+				c.file.texts += int64(len(x))
 			}
 			v.Strings.Append(x)
 		}

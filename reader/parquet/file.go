@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"slices"
 
 	"github.com/xitongsys/parquet-go/parquet"
 	"github.com/xitongsys/parquet-go/reader"
@@ -17,6 +18,7 @@ import (
 type File struct {
 	r       io.ReaderAt
 	size    int64
+	limits  *schema.Limits
 	meta    *parquet.FileMetaData
 	columns []*column
 	header  []string
@@ -25,12 +27,13 @@ type File struct {
 	left  int64 // of its rows
 	row   int64 // rows read so far
 	total int64
+
+	unpacked int64 // bytes of pages
+	texts    int64 // bytes of text in the run being read
+	long     []int // its rows with a field that is too long
 }
 
 const magic = "PAR1"
-
-// maxFooter bounds the footer, in bytes.
-const maxFooter = 256 << 20
 
 var errDamaged = errors.New("the Parquet file is damaged")
 
@@ -41,17 +44,21 @@ func damaged(format string, a ...any) error {
 
 // Open reads the footer of a file of that size in bytes. It refuses files that
 // nest or repeat columns, are encrypted, or hold a type that is not read.
-func Open(r io.ReaderAt, size int64) (f *File, err error) {
+func Open(r io.ReaderAt, size int64, limits schema.Limits) (f *File, err error) {
 	defer recovered(&err)
-	meta, err := readFooter(r, size)
+	meta, err := readFooter(r, size, &limits)
 	if err != nil {
 		return nil, err
 	}
-	f = &File{r: r, size: size, meta: meta}
+	f = &File{r: r, size: size, limits: &limits, meta: meta}
+	if int64(len(meta.Schema)-1) > limits.Of(schema.Columns) {
+		return nil, limits.Exceeded(schema.Columns)
+	}
 	if f.columns, err = columnsOf(meta.Schema); err != nil {
 		return nil, err
 	}
 	for _, c := range f.columns {
+		c.file = f
 		f.header = append(f.header, c.name)
 	}
 	for i, g := range meta.RowGroups {
@@ -74,7 +81,7 @@ func recovered(err *error) {
 	}
 }
 
-func readFooter(r io.ReaderAt, size int64) (*parquet.FileMetaData, error) {
+func readFooter(r io.ReaderAt, size int64, limits *schema.Limits) (*parquet.FileMetaData, error) {
 	var tail [8]byte
 	if size < int64(len(magic)+len(tail)) {
 		return nil, fmt.Errorf("not a Parquet file: %w", io.ErrUnexpectedEOF)
@@ -95,8 +102,11 @@ func readFooter(r io.ReaderAt, size int64) (*parquet.FileMetaData, error) {
 		return nil, fmt.Errorf("a Parquet file without its end: %w", io.ErrUnexpectedEOF)
 	}
 	n := int64(binary.LittleEndian.Uint32(tail[:]))
-	if n > size-12 || n > maxFooter {
+	if n > size-12 {
 		return nil, damaged("its footer of %d bytes does not fit into it", n)
+	}
+	if n > limits.Of(schema.MetadataBytes) {
+		return nil, limits.Exceeded(schema.MetadataBytes)
 	}
 	footer := make([]byte, n)
 	if _, err := r.ReadAt(footer, size-8-n); err != nil {
@@ -141,17 +151,34 @@ func (f *File) Next(into *table.Rows) (err error) {
 	n := int(min(f.left, schema.BatchRows))
 	into.Reset(len(f.columns))
 	into.N = n
+	f.long, f.texts = f.long[:0], 0
 	for i, c := range f.columns {
 		if err := c.read(into, i, n); err != nil {
 			return fmt.Errorf("column %s, row group %d: %w", c.name, f.group+1, err)
 		}
 	}
+	f.refuse(into)
 	for range n {
 		f.row++
 		into.Line = append(into.Line, f.row)
 	}
-	f.left -= int64(n)
+	if f.left -= int64(n); f.left > 0 {
+		return nil
+	}
+	for _, c := range f.columns {
+		if c.pages.left > 0 {
+			return damaged("column %s has more rows in its pages than row group %d", c.name, f.group+1)
+		}
+	}
 	return nil
+}
+
+// refuse makes bad rows of those with a field that is too long.
+func (f *File) refuse(into *table.Rows) {
+	slices.Sort(f.long)
+	for _, row := range slices.Compact(f.long) {
+		into.Bad = append(into.Bad, table.Bad{Row: row, Reason: f.limits.Exceeded(schema.FieldBytes).Error()})
+	}
 }
 
 func (f *File) startGroup(g *parquet.RowGroup) error {

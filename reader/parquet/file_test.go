@@ -17,7 +17,7 @@ import (
 
 // rendered reads a file whole and returns it as texts, "∅" for an empty cell.
 func rendered(r io.ReaderAt, size int64) (header []string, rows [][]string, err error) {
-	f, err := Open(r, size)
+	f, err := Open(r, size, schema.Limits{})
 	if err != nil {
 		return nil, nil, err
 	}
@@ -124,7 +124,7 @@ func TestFiles(t *testing.T) {
 
 func TestKinds(t *testing.T) {
 	b := readFile(t, "plain.parquet")
-	f, err := Open(bytes.NewReader(b), int64(len(b)))
+	f, err := Open(bytes.NewReader(b), int64(len(b)), schema.Limits{})
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -12,6 +12,8 @@ import (
 	"github.com/xitongsys/parquet-go/layout"
 	"github.com/xitongsys/parquet-go/parquet"
 	"github.com/xitongsys/parquet-go/source"
+
+	"nightbook/schema"
 )
 
 // pages reads the pages of one column of one row group, in order.
@@ -29,8 +31,8 @@ type pages struct {
 // headerBytes is how much is read at a time where page headers stand.
 const headerBytes = 4 << 10
 
-// maxPage bounds a page, in bytes, packed and unpacked. Writers aim at 1 MiB.
-const maxPage = 256 << 20
+// maxPage is more than any page may have, in bytes, whatever the limits.
+const maxPage = 1 << 30
 
 // start begins with the pages of a chunk. The size that the chunk claims is
 // known to be wrong in files of some writers: the rows say when it ends.
@@ -55,8 +57,16 @@ func (c *column) nextPage() error {
 	if err != nil {
 		return damaged("a page header cannot be read: %v", err)
 	}
-	if h.CompressedPageSize < 0 || h.UncompressedPageSize < 0 || h.CompressedPageSize > maxPage || h.UncompressedPageSize > maxPage {
+	if h.CompressedPageSize < 0 || h.UncompressedPageSize < 0 {
 		return damaged("a page of %d bytes, %d unpacked", h.CompressedPageSize, h.UncompressedPageSize)
+	}
+	limits := c.file.limits
+	if int64(max(h.CompressedPageSize, h.UncompressedPageSize)) > limits.Of(schema.PageBytes) {
+		return limits.Exceeded(schema.PageBytes)
+	}
+	c.file.unpacked += int64(h.UncompressedPageSize)
+	if err := limits.Unpacked(c.file.unpacked, c.file.size); err != nil {
+		return err
 	}
 	if p.packed, err = readBytes(p.body, p.packed, int(h.CompressedPageSize)); err != nil {
 		return fmt.Errorf("a page is cut short: %w", io.ErrUnexpectedEOF)

@@ -6,6 +6,8 @@ import (
 	"math"
 
 	"github.com/xitongsys/parquet-go/parquet"
+
+	"nightbook/schema"
 )
 
 // values decodes the stored values of a column, page by page. What has been
@@ -17,8 +19,8 @@ type values struct {
 	bit      int    // of data[0], of plain booleans
 	indices  hybrid
 	delta    delta
-	lengths  []int64 // of delta-coded texts not yet read
-	prefixes []int64
+	lengths  delta // of the texts not yet read
+	prefixes delta
 	last     []byte // the text before, of which prefixes are taken
 	arena    []byte // memory of texts that are put together
 	count    int    // values of a byte-stream-split page, and how many are read
@@ -44,6 +46,9 @@ func (v *values) setDictionary(c *column, data []byte, n int, e parquet.Encoding
 	}
 	if n < 0 || n > len(data) || c.physical == parquet.Type_BOOLEAN {
 		return damaged("a dictionary of %d values in %d bytes", n, len(data))
+	}
+	if int64(n) > c.file.limits.Of(schema.DictionaryValues) {
+		return c.file.limits.Exceeded(schema.DictionaryValues)
 	}
 	v.dictionary = plain{}
 	_, err := v.dictionary.read(c, data, n)
@@ -80,7 +85,7 @@ func (v *values) start(c *column, e parquet.Encoding, data []byte) error {
 		}
 	case parquet.Encoding_DELTA_BINARY_PACKED:
 		if c.physical == parquet.Type_INT32 || c.physical == parquet.Type_INT64 {
-			return v.startDelta(data)
+			return v.delta.start(data)
 		}
 	case parquet.Encoding_DELTA_LENGTH_BYTE_ARRAY:
 		if c.physical == parquet.Type_BYTE_ARRAY {
@@ -138,7 +143,7 @@ func (v *values) read(c *column, n int) (err error) {
 		}
 		return err
 	case parquet.Encoding_DELTA_LENGTH_BYTE_ARRAY:
-		return v.readLengths(c, n)
+		return v.readLengths(n)
 	}
 	return v.readPrefixes(c, n)
 }

@@ -20,7 +20,8 @@ type sheet struct {
 
 	row   int64 // the number of the row read last
 	cells []cell
-	past  bool // the rows: what follows speaks of drawings, some of it also in rows
+	texts int64 // bytes of text in the run being read
+	past  bool  // the rows: what follows speaks of drawings, some of it also in rows
 	ended bool
 }
 
@@ -34,11 +35,10 @@ type cell struct {
 const (
 	maxColumns = 16384 // of a sheet
 	maxRows    = 1048576
-	maxText    = 64 << 10 // of a cell, in bytes
 )
 
 func (w *Workbook) openSheet(name string) (*sheet, error) {
-	p, err := w.open(name, maxPart)
+	p, err := w.open(name, false)
 	if err != nil {
 		return nil, err
 	}
@@ -78,7 +78,7 @@ func (s *sheet) next(into *table.Rows, columns int) error {
 		into.Cols[col].Kind = schema.KindStrings
 		into.Cells[col] = make([]table.Cell, 0, schema.BatchRows)
 	}
-	for into.N < schema.BatchRows {
+	for s.texts = 0; into.N < schema.BatchRows && s.texts < s.w.limits.Of(schema.BatchBytes); {
 		err := s.readRow()
 		if err == io.EOF && into.N > 0 {
 			return nil
@@ -100,9 +100,10 @@ func (s *sheet) add(into *table.Rows, columns int) {
 			c = s.cells[k]
 			k++
 		}
-		if len(c.text) > maxText {
-			reason, c = "a cell is longer than 64 KiB", cell{}
+		if int64(len(c.text)) > s.w.limits.Of(schema.FieldBytes) {
+			reason, c = s.w.limits.Exceeded(schema.FieldBytes).Error(), cell{}
 		}
+		s.texts += int64(len(c.text))
 		into.Cols[col].Strings.AppendString(c.text)
 		into.Cells[col] = append(into.Cells[col], c.kind)
 	}
@@ -119,6 +120,7 @@ func (s *sheet) add(into *table.Rows, columns int) {
 // readRow reads the next row that is not empty; io.EOF is the end of the sheet.
 func (s *sheet) readRow() error {
 	for !s.ended {
+		s.part.row = 0
 		t, err := s.xml.Token()
 		if err == io.EOF {
 			s.ended = true // the part ends well: the decoder has seen every element closed

@@ -9,7 +9,7 @@ import (
 
 // readStrings reads the texts that cells refer to by number.
 func (w *Workbook) readStrings(name string) error {
-	p, err := w.open(name, maxHeld)
+	p, err := w.open(name, true)
 	if err != nil {
 		return err
 	}

@@ -2,6 +2,7 @@ package xlsx
 
 import (
 	"archive/zip"
+	"context"
 	"encoding/xml"
 	"errors"
 	"fmt"
@@ -10,11 +11,13 @@ import (
 	"strings"
 
 	"nightbook/reader/table"
+	"nightbook/schema"
 )
 
 // Workbook is a workbook whose first sheet is being read.
 type Workbook struct {
 	zip      *zip.Reader
+	limits   schema.Limits
 	name     string // of the sheet
 	date1904 bool
 	strings  []string
@@ -24,25 +27,26 @@ type Workbook struct {
 	header []string
 }
 
-// Limits on what is unpacked, in bytes, against workbooks made to fill the
-// machine: of a part that is read as a stream, of one that is held in memory,
-// and how often its packed size a part larger than ratioFrom may be.
-const (
-	maxPart   = 16 << 30
-	maxHeld   = 1 << 30
-	maxRatio  = 1000
-	ratioFrom = 100 << 20
-)
-
 var errDamaged = errors.New("the workbook is damaged")
 
+// damaged is errDamaged with what is wrong. What stopped the reading, a limit or
+// the user, is no damage.
 func damaged(format string, a ...any) error {
+	for _, x := range a {
+		err, ok := x.(error)
+		if !ok {
+			continue
+		}
+		if _, limited := errors.AsType[*schema.LimitError](err); limited || errors.Is(err, context.Canceled) {
+			return err
+		}
+	}
 	return fmt.Errorf("%w: %s", errDamaged, fmt.Sprintf(format, a...))
 }
 
 // Open opens a workbook of that size in bytes and reads the header of its
 // first sheet: the first row that is not empty.
-func Open(r io.ReaderAt, size int64) (*Workbook, error) {
+func Open(r io.ReaderAt, size int64, limits schema.Limits) (*Workbook, error) {
 	var head [8]byte
 	if _, err := r.ReadAt(head[:], 0); err != nil {
 		return nil, fmt.Errorf("not a workbook: %w", io.ErrUnexpectedEOF)
@@ -54,7 +58,7 @@ func Open(r io.ReaderAt, size int64) (*Workbook, error) {
 	if err != nil {
 		return nil, damaged("%v", err)
 	}
-	w := &Workbook{zip: z}
+	w := &Workbook{zip: z, limits: limits}
 	sheetPart, err := w.readWorkbook()
 	if err != nil {
 		return nil, err
@@ -62,8 +66,13 @@ func Open(r io.ReaderAt, size int64) (*Workbook, error) {
 	if w.sheet, err = w.openSheet(sheetPart); err != nil {
 		return nil, err
 	}
-	w.header, err = w.sheet.header()
-	return w, err
+	if w.header, err = w.sheet.header(); err != nil {
+		return nil, err
+	}
+	if int64(len(w.header)) > limits.Of(schema.Columns) {
+		return nil, limits.Exceeded(schema.Columns)
+	}
+	return w, nil
 }
 
 // Header returns the names of the columns, in the order of the sheet.
@@ -111,6 +120,9 @@ func (w *Workbook) readWorkbook() (string, error) {
 	}
 	if len(b.Sheets) == 0 {
 		return "", damaged("it has no sheet")
+	}
+	if int64(len(b.Sheets)) > w.limits.Of(schema.Sheets) {
+		return "", w.limits.Exceeded(schema.Sheets)
 	}
 	w.name = b.Sheets[0].Name
 	w.date1904 = b.Properties.Date1904 == "1" || b.Properties.Date1904 == "true"
@@ -169,7 +181,7 @@ func resolve(from, target string) string {
 
 // decode reads a small part into x.
 func (w *Workbook) decode(name string, x any) error {
-	p, err := w.open(name, maxHeld)
+	p, err := w.open(name, true)
 	if err != nil {
 		return err
 	}
@@ -180,15 +192,20 @@ func (w *Workbook) decode(name string, x any) error {
 	return nil
 }
 
+// rowMarkup is how much longer a row may be in the markup of a sheet than as text.
+const rowMarkup = 16
+
 // part is a part of the package being unpacked, held to the limits.
 type part struct {
 	io.ReadCloser
-	name         string
+	limits       *schema.Limits
+	held         bool // in memory
 	read, packed int64
-	size, limit  int64
+	size         int64
+	row          int64 // read since the last row began
 }
 
-func (w *Workbook) open(name string, limit int64) (*part, error) {
+func (w *Workbook) open(name string, held bool) (*part, error) {
 	for _, f := range w.zip.File {
 		if !strings.EqualFold(f.Name, name) {
 			continue
@@ -197,7 +214,7 @@ func (w *Workbook) open(name string, limit int64) (*part, error) {
 		if err != nil {
 			return nil, damaged("%s: %v", name, err)
 		}
-		return &part{r, name, 0, int64(f.CompressedSize64), int64(f.UncompressedSize64), limit}, nil
+		return &part{ReadCloser: r, limits: &w.limits, held: held, packed: int64(f.CompressedSize64), size: int64(f.UncompressedSize64)}, nil
 	}
 	return nil, damaged("it has no part %s", name)
 }
@@ -205,8 +222,14 @@ func (w *Workbook) open(name string, limit int64) (*part, error) {
 func (p *part) Read(b []byte) (int, error) {
 	n, err := p.ReadCloser.Read(b)
 	p.read += int64(n)
-	if p.read > p.limit || p.read > ratioFrom && p.read/maxRatio > p.packed {
-		return 0, fmt.Errorf("%s unpacks to too much", p.name)
+	if p.held && p.read > p.limits.Of(schema.HeldBytes) {
+		return 0, p.limits.Exceeded(schema.HeldBytes)
+	}
+	if p.row += int64(n); !p.held && p.row > rowMarkup*p.limits.Of(schema.RowBytes) {
+		return 0, p.limits.Exceeded(schema.RowBytes)
+	}
+	if err := p.limits.Unpacked(p.read, p.packed); err != nil {
+		return 0, err
 	}
 	return n, err
 }

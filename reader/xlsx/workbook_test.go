@@ -13,6 +13,7 @@ import (
 	"github.com/xuri/excelize/v2"
 
 	"nightbook/reader/table"
+	"nightbook/schema"
 )
 
 // book writes a workbook with a general workbook library.
@@ -33,7 +34,7 @@ var marks = map[table.Cell]string{table.Text: "t", table.Number: "n", table.Perc
 // rendered reads a workbook whole: a line a row, with its number and the kind
 // of each cell before its text.
 func rendered(b []byte) (header []string, lines []string, err error) {
-	w, err := Open(bytes.NewReader(b), int64(len(b)))
+	w, err := Open(bytes.NewReader(b), int64(len(b)), schema.Limits{})
 	if err != nil {
 		return nil, nil, err
 	}
