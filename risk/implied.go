@@ -31,7 +31,7 @@ func Imply(m *market.Market, d *schema.Dicts, quotes []schema.QuoteRow) []schema
 			continue
 		}
 		forward[i], strike[i], time[i], sign[i] = out[i].Forward, q.Strike, q.Time, q.Sign
-		price[i] = q.Price * vec.Exp1(float64(q.Rate*q.Time))
+		price[i] = q.Price / vec.Exp1(0-float64(q.Rate*q.Time))
 		if q.American || q.Dividends != nil {
 			byModel[i] = q
 			open = append(open, q)

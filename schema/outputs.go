@@ -1,7 +1,7 @@
 package schema
 
 // Outputs is the dictionary of the result tables.
-var Outputs = []Table{Lines, BooksOut, UnderlyingsOut, CurrenciesOut, RejectsOut, WarningsOut, ImpliedOut}
+var Outputs = []Table{Lines, BooksOut, UnderlyingsOut, CurrenciesOut, ExerciseOut, RejectsOut, WarningsOut, ImpliedOut}
 
 func totalsColumns() []Column {
 	cols := []Column{

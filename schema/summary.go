@@ -14,9 +14,15 @@ type Summary struct {
 	Faults      int64             // refused market rows; they are in rejects.csv, not in RowsIn
 	RejectCount []CodeCount       // by code, in the order of RejectCodes
 	Notes       []Note            // counted together, by code and subject
-	MaxResidual float64           // largest pde_residual of a priced option; NaN without one
-	Inputs      []InputFile
-	LinesFiles  []string // the files that hold every line
+	MaxResidual float64           // largest pde_residual of an option with a closed form; NaN without one
+
+	// MaxIntegralResidual is the largest pde_residual of an option priced by the
+	// boundary integral, MaxPriceError the largest price_error of one priced by
+	// finite differences, as a share of its spot. NaN without one.
+	MaxIntegralResidual, MaxPriceError float64
+
+	Inputs     []InputFile
+	LinesFiles []string // the files that hold every line
 }
 
 // Totals are sums over lines. The measures are in the reporting currency.

@@ -24,6 +24,7 @@ type manifest struct {
 	ReportingCurrency string          `json:"reporting_currency"`
 	Calendar          string          `json:"calendar"`
 	Conventions       conventions     `json:"conventions"`
+	Models            manifestModels  `json:"models"`
 	Counts            manifestCounts  `json:"counts"`
 	Totals            manifestTotals  `json:"control_totals"`
 	Inputs            []manifestInput `json:"inputs"`
@@ -51,10 +52,21 @@ var theConventions = conventions{
 	VolExpiries:      "linear in total variance at fixed forward moneyness; flat beyond the ends",
 	Sensitivities:    "mathematical partial derivatives for one unit of the contract; vega and rho per 1.00, theta per year",
 	PositionMeasures: "unit measure x quantity x multiplier, in the line's currency and, with _base, in the reporting currency",
-	Theta:            "theta_cash_1d and theta_cash_1bd by full revaluation to the next calendar day and the next business day, all else held",
-	Dividends:        "continuous yield; lines that a cash dividend would move are refused",
+	Theta:            "theta_cash_1d and theta_cash_1bd by full revaluation to the next calendar day and the next business day, all else held but for cash dividends, which come off the price on their ex-date",
+	Dividends:        "continuous yield, and cash amounts off the price on ex-dates after as_of and up to expiry",
 	Expired:          "at as_of or before: the payoff at the current price",
 	Sums:             "exact before one rounding: independent of the order of the rows",
+}
+
+// manifestModels is what run.toml says of models, or their defaults.
+type manifestModels struct {
+	American  string  `json:"american_setting"`
+	Dividends string  `json:"dividend_model"`
+	Tolerance float64 `json:"finite_difference_tolerance"`
+}
+
+func modelsOf(m schema.ModelsConfig) manifestModels {
+	return manifestModels{schema.Settings[m.American], schema.DividendModels[m.Dividends], m.Tolerance}
 }
 
 type manifestCounts struct {
@@ -75,10 +87,16 @@ type codeCount struct {
 
 // manifestTotals are the figures to add up again from the tables.
 type manifestTotals struct {
-	quantity    float64
-	measures    [schema.NumMeasures]float64 // in the reporting currency
-	maxResidual float64                     // NaN where no option was priced
-	books       []manifestBook
+	quantity float64
+	measures [schema.NumMeasures]float64 // in the reporting currency
+	largest  [3]float64                  // see schema.Summary.MaxResidual and the two behind it; NaN where there is none
+	books    []manifestBook
+}
+
+var largestNames = [...]string{"max_pde_residual", "max_pde_residual_boundary_integral", "max_price_error_share_of_spot"}
+
+func largest(s *schema.Summary) [3]float64 {
+	return [...]float64{s.MaxResidual, s.MaxIntegralResidual, s.MaxPriceError}
 }
 
 // MarshalJSON writes the measures under their column names, in their order.
@@ -94,10 +112,12 @@ func (t manifestTotals) MarshalJSON() ([]byte, error) {
 	for m, x := range t.measures {
 		field(schema.MeasureNames[m]+"_base", x)
 	}
-	if math.IsNaN(t.maxResidual) {
-		field("max_pde_residual", nil)
-	} else {
-		field("max_pde_residual", t.maxResidual)
+	for i, name := range largestNames {
+		if math.IsNaN(t.largest[i]) {
+			field(name, nil)
+		} else {
+			field(name, t.largest[i])
+		}
 	}
 	field("books_own", t.books)
 	b[len(b)-1] = '}'
@@ -144,6 +164,7 @@ func Manifest(s *schema.Summary, kernel string, outputs []schema.OutputFile) ([]
 		ReportingCurrency: s.Config.ReportingCurrency,
 		Calendar:          s.Config.Calendar,
 		Conventions:       theConventions,
+		Models:            modelsOf(s.Config.Models.OrDefault()),
 		Counts: manifestCounts{
 			RowsIn: s.RowsIn, Priced: s.Total.Priced, Expired: s.Total.Expired, Rejected: s.Rejects,
 			MarketRejected: s.Faults,
@@ -152,10 +173,10 @@ func Manifest(s *schema.Summary, kernel string, outputs []schema.OutputFile) ([]
 			WarningsByCode: noteCounts(s.Notes),
 		},
 		Totals: manifestTotals{
-			quantity:    s.Total.Quantity,
-			measures:    s.Total.Measures,
-			maxResidual: s.MaxResidual,
-			books:       []manifestBook{},
+			quantity: s.Total.Quantity,
+			measures: s.Total.Measures,
+			largest:  largest(s),
+			books:    []manifestBook{},
 		},
 		Inputs:  []manifestInput{},
 		Outputs: []manifestFile{},
@@ -221,8 +242,10 @@ func finiteTotals(s *schema.Summary) error {
 			return err
 		}
 	}
-	if math.IsInf(s.MaxResidual, 0) {
-		return fmt.Errorf("manifest: max_pde_residual is not finite")
+	for i, x := range largest(s) {
+		if math.IsInf(x, 0) {
+			return fmt.Errorf("manifest: %s is not finite", largestNames[i])
+		}
 	}
 	return nil
 }

@@ -100,7 +100,7 @@ func TestManifest(t *testing.T) {
 		t.Errorf("outputs: %+v", m.Outputs)
 	}
 	last := -1
-	for _, key := range []string{"program", "version", "schema_revision", "kernel", "as_of", "reporting_currency", "conventions",
+	for _, key := range []string{"program", "version", "schema_revision", "kernel", "as_of", "reporting_currency", "conventions", "models", "american_setting",
 		"counts", "control_totals", "quantity", "value_base", "inputs", "outputs", "caution"} {
 		at := bytes.Index(data, []byte(`"`+key+`":`))
 		if at <= last {
@@ -116,6 +116,7 @@ func TestManifestRefusesWhatIsNotFinite(t *testing.T) {
 		"delta_cash_base of all":   func(s *schema.Summary) { s.Total.Measures[schema.DeltaCash] = math.Inf(1) },
 		"value_base of book House": func(s *schema.Summary) { s.Books[0].Own.Measures[schema.Value] = math.Inf(-1) },
 		"max_pde_residual":         func(s *schema.Summary) { s.MaxResidual = math.Inf(1) },
+		"max_price_error":          func(s *schema.Summary) { s.MaxPriceError = math.Inf(1) },
 	} {
 		s := summary(10)
 		spoil(s)
@@ -197,7 +198,7 @@ func ExampleManifest() {
 	// {
 	//   "program": "nightbook",
 	//   "version": "1.0",
-	//   "schema_revision": 1,
+	//   "schema_revision": 2,
 	//   "kernel": "generic",
 	//   "as_of": "1970-01-01",
 	//   "reporting_currency": "EUR",

@@ -24,6 +24,7 @@ type outputs struct {
 	frame  schema.Frame
 
 	lines      []*tableFile // one a format
+	exercise   []*tableFile
 	rejected   *tableFile
 	report     *report.Report
 	reportFile *writer.File
@@ -81,6 +82,10 @@ func (out *outputs) open(lines schema.Table) error {
 			return err
 		}
 		out.lines = append(out.lines, t)
+		if t, err = out.table(schema.ExerciseOut, format); err != nil {
+			return err
+		}
+		out.exercise = append(out.exercise, t)
 	}
 	var err error
 	if out.rejected, err = out.table(schema.RejectsOut, "csv"); err != nil {
@@ -117,8 +122,8 @@ func (out *outputs) table(t schema.Table, format string) (*tableFile, error) {
 	return &tableFile{Table: w, file: f}, err
 }
 
-// batch writes a compacted batch and its refused rows.
-func (out *outputs) batch(b *schema.Batch) error {
+// batch writes a compacted batch, its refused rows, and its options to exercise.
+func (out *outputs) batch(b *schema.Batch, early []schema.ExerciseRow) error {
 	if err := out.rejects(b.Rejects); err != nil || out.folder == nil {
 		return err
 	}
@@ -129,7 +134,21 @@ func (out *outputs) batch(b *schema.Batch) error {
 		}
 	}
 	if out.report != nil {
-		return out.report.Lines(&out.frame)
+		if err := out.report.Lines(&out.frame); err != nil {
+			return err
+		}
+	}
+	if len(early) == 0 {
+		return nil
+	}
+	f := schema.ExerciseFrame(b, out.dicts, early)
+	for _, t := range out.exercise {
+		if err := t.write(f); err != nil {
+			return err
+		}
+	}
+	if out.report != nil {
+		return out.report.Exercise(f)
 	}
 	return nil
 }
@@ -151,7 +170,7 @@ func (out *outputs) rejects(rejects []schema.Reject) error {
 
 // finish writes what is known only at the end, and makes the folder appear.
 func (out *outputs) finish(s *schema.Summary) error {
-	for _, t := range append(out.lines, out.rejected) {
+	for _, t := range slices.Concat(out.lines, out.exercise, []*tableFile{out.rejected}) {
 		if err := t.close(); err != nil {
 			return err
 		}

@@ -70,6 +70,7 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 	if err := gate.market(out); err != nil {
 		return nil, err
 	}
+	var early []schema.ExerciseRow
 	bar := con.progress(positions.Size())
 	err = ordered(ctx, jobs, o.workers,
 		func(j *job) error { return positions.Next(&j.piece) },
@@ -88,7 +89,8 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 			j.batch.Compact()
 			totals.AddLines(&j.batch, engine.Kind)
 			bar.reach(j.piece.Bytes)
-			return out.batch(&j.batch)
+			early = engine.EarlyExercise(&j.batch, early[:0])
+			return out.batch(&j.batch, early)
 		})
 	bar.finish()
 	if err != nil {

@@ -62,7 +62,7 @@ type Totals struct {
 	rowLocals []*local // likewise
 	noBook    sums     // rejected rows whose book could not be read
 	codes     map[schema.RejectCode]int64
-	residual  float64
+	worst     [3]float64 // see Summary.MaxResidual, MaxIntegralResidual, MaxPriceError
 }
 
 // NewTotals returns empty totals over the book tree of the snapshot.
@@ -73,7 +73,7 @@ func NewTotals(books []schema.BookRow, d *schema.Dicts) (*Totals, error) {
 	}
 	return &Totals{
 		dicts: d, tree: t, notes: notes,
-		locals: map[[2]schema.Code]*local{}, codes: map[schema.RejectCode]int64{}, residual: math.NaN(),
+		locals: map[[2]schema.Code]*local{}, codes: map[schema.RejectCode]int64{}, worst: [3]float64{math.NaN(), math.NaN(), math.NaN()},
 	}, nil
 }
 
@@ -113,9 +113,16 @@ func (t *Totals) AddLines(b *schema.Batch, kind func(schema.Code) schema.Choice)
 			l.measures[m].Add(own[i])
 		}
 	}
-	for _, r := range b.Residual[:b.N] {
-		if r > t.residual || r == r && t.residual != t.residual {
-			t.residual = r
+	for i, r := range b.Residual[:b.N] {
+		worst := &t.worst[0]
+		switch b.Model[i] {
+		case schema.ModelBoundaryIntegral:
+			worst = &t.worst[1]
+		case schema.ModelFiniteDifferences:
+			worst, r = &t.worst[2], b.PriceError[i]/b.Spot[i]
+		}
+		if r > *worst || r == r && *worst != *worst {
+			*worst = r
 		}
 	}
 }
@@ -182,7 +189,7 @@ func (t *Totals) Summary(s *schema.Summary) {
 		}
 	}
 	s.Notes = append(s.Notes, t.notes...)
-	s.MaxResidual = t.residual
+	s.MaxResidual, s.MaxIntegralResidual, s.MaxPriceError = t.worst[0], t.worst[1], t.worst[2]
 }
 
 func (t *Totals) sumBooks(s *schema.Summary) {

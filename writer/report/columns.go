@@ -27,7 +27,7 @@ func (r *Report) fillColumns(*schema.Summary) error {
 	for _, list := range []struct {
 		name  string
 		codes []schema.CodeDoc
-	}{{"reject code", schema.RejectCodes}, {"warning code", schema.NoteCodes}} {
+	}{{"reject code", schema.RejectCodes}, {"warning code", schema.NoteCodes}, {"exercise reason", schema.ExerciseReasonDocs}} {
 		for _, code := range list.codes {
 			if err := r.words(c, list.name, code.Code, "", "", "", code.Doc); err != nil {
 				return err

@@ -15,6 +15,10 @@ const (
 	// residualTolerance bounds pde_residual: a formula leaves rounding noise of
 	// some 1e-12, a mistake in a sensitivity leaves whole per cents.
 	residualTolerance = 1e-6
+
+	// integralTolerance bounds that of the boundary integral, whose derivatives
+	// come from different sums: some 1e-5 at its coarsest setting.
+	integralTolerance = 1e-3
 )
 
 // control is a check of the run against itself.
@@ -60,10 +64,13 @@ func controls(s *schema.Summary) []control {
 	for m, name := range schema.MeasureNames {
 		amounts(name+"_base", func(t *schema.Totals) float64 { return t.Measures[m] })
 	}
-	return append(list, control{
-		name: "largest pde_residual", found: s.MaxResidual, tolerance: residualTolerance,
-		absent: math.IsNaN(s.MaxResidual),
-	})
+	largest := func(name string, found, tolerance float64) {
+		list = append(list, control{name: name, found: found, tolerance: tolerance, absent: math.IsNaN(found)})
+	}
+	largest("largest pde_residual", s.MaxResidual, residualTolerance)
+	largest("largest pde_residual of boundary_integral", s.MaxIntegralResidual, integralTolerance)
+	largest("largest price_error, share of spot", s.MaxPriceError, s.Config.Models.OrDefault().Tolerance)
+	return list
 }
 
 // slicing is one way of cutting all lines into parts.

@@ -14,11 +14,11 @@ type Report struct {
 	cfg  *schema.Config
 	look styles
 
-	lines, rejects         *xlsx.Table
-	lineColumns            int // of the lines table, on the sheet or not
-	linesSeen, rejectsSeen int64
-	maxLines               int
-	shut                   bool
+	lines, exercise, rejects             *xlsx.Table
+	lineColumns                          int // of the lines table, on the sheet or not
+	linesSeen, exerciseSeen, rejectsSeen int64
+	maxLines                             int
+	shut                                 bool
 }
 
 // New starts the workbook of a run whose lines have the columns of a table.
@@ -45,6 +45,9 @@ func (r *Report) start(lines schema.Table) error {
 		return err
 	}
 	if r.lines, err = r.book.NewTable(r.book.Sheet("Lines"), lines, tableHead); err != nil {
+		return err
+	}
+	if r.exercise, err = r.book.NewTable(r.book.Sheet("Exercise"), schema.ExerciseOut, tableHead); err != nil {
 		return err
 	}
 	r.rejects, err = r.book.NewTable(r.book.Sheet("Rejects"), schema.RejectsOut, tableHead)

@@ -21,6 +21,7 @@ import (
 
 // run is an invented run: its lines, in one batch, and what they add up to.
 type run struct {
+	early   []schema.ExerciseRow
 	dicts   *schema.Dicts
 	batch   *schema.Batch
 	summary *schema.Summary
@@ -48,6 +49,9 @@ func (r *run) workbook(t testing.TB, size int) []byte {
 		if err := report.Lines(&f); err != nil {
 			t.Fatal(err)
 		}
+	}
+	if err := report.Exercise(schema.ExerciseFrame(r.batch, r.dicts, r.early)); err != nil {
+		t.Fatal(err)
 	}
 	if err := report.Rejects(schema.RejectsFrame(invent.Rejects(4))); err != nil {
 		t.Fatal(err)
@@ -99,7 +103,7 @@ func wantNumber(t testing.TB, what, cell string, want float64) {
 
 func TestSheets(t *testing.T) {
 	f := reopen(t, newRun(200).workbook(t, 64))
-	want := []string{"Summary", "Books", "Underlyings", "Lines", "Rejects", "Warnings", "Controls", "Columns"}
+	want := []string{"Summary", "Books", "Underlyings", "Lines", "Exercise", "Rejects", "Warnings", "Controls", "Columns"}
 	if got := f.GetSheetList(); !slices.Equal(got, want) {
 		t.Errorf("sheets %q, want %q", got, want)
 	}
@@ -192,7 +196,7 @@ func TestSummarySheet(t *testing.T) {
 	if row := rows[find(t, rows, 0, "Rows in = priced + expired + rejected")]; row[1] != "pass" {
 		t.Errorf("row control: %q", row)
 	}
-	if row := rows[find(t, rows, 0, "Controls")]; row[1] != "all 38 controls pass" {
+	if row := rows[find(t, rows, 0, "Controls")]; row[1] != "all 40 controls pass" {
 		t.Errorf("controls: %q", row)
 	}
 	books := find(t, rows, 0, "Book")
@@ -285,7 +289,7 @@ func TestOtherSheets(t *testing.T) {
 	wantNumber(t, "Σ value", controls[find(t, controls, totals, "value_base")][2], r.summary.Total.Measures[schema.Value])
 	wantNumber(t, "refused rows", controls[find(t, controls, totals, "bad_number")][2], 2)
 	columns := sheet(t, f, "Columns")
-	n := len(schema.RejectCodes) + len(schema.NoteCodes)
+	n := len(schema.RejectCodes) + len(schema.NoteCodes) + len(schema.ExerciseReasonDocs)
 	for _, table := range schema.Outputs {
 		n += len(table.Columns)
 	}
@@ -310,7 +314,9 @@ func TestControlsFail(t *testing.T) {
 		"delta_cash_base of all books' own lines": func(s *schema.Summary) {
 			s.Books = s.Books[:len(s.Books)-1]
 		},
-		"largest pde_residual": func(s *schema.Summary) { s.MaxResidual = 1e-3 },
+		"largest pde_residual":                      func(s *schema.Summary) { s.MaxResidual = 1e-3 },
+		"largest pde_residual of boundary_integral": func(s *schema.Summary) { s.MaxIntegralResidual = 1e-2 },
+		"largest price_error, share of spot":        func(s *schema.Summary) { s.MaxPriceError = 1e-4 },
 	} {
 		r := newRun(100)
 		spoil(r.summary)
@@ -344,6 +350,28 @@ func TestNothingPriced(t *testing.T) {
 	rows := sheet(t, reopen(t, r.workbook(t, 1)), "Controls")
 	if row := rows[find(t, rows, 0, "largest pde_residual")]; row[1] != "nothing to check" {
 		t.Errorf("residual without options: %q", row)
+	}
+}
+
+func TestExerciseSheet(t *testing.T) {
+	r := newRun(100)
+	note := func() string { return sheet(t, reopen(t, r.workbook(t, 100)), "Exercise")[1][0] }
+	if want := "no American option is past its exercise boundary, and no call has less time value than its next dividend"; note() != want {
+		t.Errorf("note %q", note())
+	}
+	b := r.batch
+	b.OptionType[3], b.Strike[3], b.Spot[3], b.Price[3], b.Boundary[3], b.Expiry[3] = schema.Put, 100, 80, 20.5, 75, 20000
+	r.early = []schema.ExerciseRow{{Index: 3, Reason: schema.BeforeDividend, ExDate: 19990, Dividend: 0.75}}
+	rows := sheet(t, reopen(t, r.workbook(t, 100)), "Exercise")
+	row := rows[tableHead]
+	if len(rows) != tableHead+1 || row[0] != b.LineID.At(3) || row[4] != "put" || row[8] != "before_dividend" || row[14] == "" {
+		t.Errorf("row %q", row)
+	}
+	for column, want := range map[int]float64{5: 100, 9: 80, 10: 20.5, 11: 20, 12: 0.5, 13: 75, 15: 0.75} {
+		wantNumber(t, schema.ExerciseOut.Columns[column].Name, row[column], want)
+	}
+	if want := "1 American option to exercise or to look at before an ex-date; of those sold, the holder decides"; rows[1][0] != want {
+		t.Errorf("note %q", rows[1][0])
 	}
 }
 

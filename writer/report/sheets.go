@@ -12,6 +12,7 @@ var sheets = []struct {
 	{"Books", (*Report).fillBooks},
 	{"Underlyings", (*Report).fillUnderlyings},
 	{"Lines", (*Report).fillLines},
+	{"Exercise", (*Report).fillExercise},
 	{"Rejects", (*Report).fillRejects},
 	{"Warnings", (*Report).fillWarnings},
 	{"Controls", (*Report).fillControls},

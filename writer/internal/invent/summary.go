@@ -20,7 +20,7 @@ func Summary(b *schema.Batch, dicts *schema.Dicts) *schema.Summary {
 			{Code: schema.VolFallback, Subject: "NAME001", Message: "its flat volatility was used", File: "positions.csv", Line: 7, Count: 4},
 			{Code: schema.NoHolidays, Subject: "=cmd|x", Message: "business days are Monday to Friday", Count: 1},
 		},
-		MaxResidual: 2.5e-14,
+		MaxResidual: 2.5e-14, MaxIntegralResidual: 1e-6, MaxPriceError: 1e-5,
 		Inputs: []schema.InputFile{
 			{Name: "positions.csv", Table: "positions", SHA256: strings.Repeat("0a", 32), Bytes: 12345, Rows: int64(b.N) + 3},
 			{Name: "run.toml", Table: "run", SHA256: strings.Repeat("b1", 32), Bytes: 99},

@@ -1,0 +1,29 @@
+package report
+
+import (
+	"fmt"
+
+	"nightbook/schema"
+)
+
+// Exercise adds rows of the exercise table.
+func (r *Report) Exercise(f *schema.Frame) error {
+	r.exerciseSeen += int64(f.N)
+	return r.exercise.Write(f, min(f.N, r.exercise.Room()))
+}
+
+// fillExercise completes the sheet of options to be exercised, whose rows are
+// already there.
+func (r *Report) fillExercise(*schema.Summary) error {
+	sheet := r.book.Sheet("Exercise")
+	r.exercise.Finish()
+	sheet.Print(tableHead-1, tableHead, true)
+	note := "no American option is past its exercise boundary, and no call has less time value than its next dividend"
+	if r.exerciseSeen > 0 {
+		note = fmt.Sprintf("%s to exercise or to look at before an ex-date; of those sold, the holder decides", count(r.exerciseSeen, "American option"))
+	}
+	if shown := int64(r.exercise.Written()); shown < r.exerciseSeen {
+		note += fmt.Sprintf("; first %s here", thousands(shown))
+	}
+	return r.top(sheet, "Early exercise", note+cutNote(sheet))
+}
