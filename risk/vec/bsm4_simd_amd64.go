@@ -15,7 +15,7 @@ import (
 
 // scratch4 is what a block leaves between stages; an and bn take the place of
 // a = S·e^(−qT) and b = K·e^(−rT). See bsmTerms for the names.
-type scratch4 struct{ an, bn, d1, d2, rv, sq, x [blockLines / width4]lanes4 }
+type scratch4 struct{ an, bn, d1, d2, rv, sq, hi, lo, x [blockLines / width4]lanes4 }
 
 // columns4 views n vectors of a slice from line i on.
 func columns4(s []float64, i, n int) []lanes4 {
@@ -52,7 +52,7 @@ func (b *BSM) block4(sc *scratch4, want outputs, i, n int) bool {
 	outside := outside4(s, k, t, v, r, q, w, c)
 	discounted4(sc.an[:n], s, q, t, c)
 	discounted4(sc.bn[:n], k, r, t, c)
-	drifted4(sc.d1[:n], s, k, t, r, q, c)
+	drifted4(sc.d1[:n], sc.d2[:n], s, k, t, r, q, c)
 	distances4(sc, t, v, c)
 	density4(sc, n, c)
 	tail4(sc.an[:n], sc.d1[:n], sc.x[:n], w, c)
@@ -97,47 +97,61 @@ func outside4(s, k, t, v, r, q, w []lanes4, c *table4) bool {
 	return any4(out)
 }
 
-// drifted4 sets dst to ln(s/k) + (r−q)·t.
-func drifted4(dst, s, k, t, r, q []lanes4, c *table4) {
-	n := len(dst)
-	s, k, t, r, q = s[:n], k[:n], t[:n], r[:n], q[:n]
-	for j := range dst {
+// drifted4 sets m to ln(s/k) + (r−q)·t, and lost to what rounding has taken from it.
+func drifted4(m, lost, s, k, t, r, q []lanes4, c *table4) {
+	n := len(m)
+	lost, s, k, t, r, q = lost[:n], s[:n], k[:n], t[:n], r[:n], q[:n]
+	for j := range m {
 		sv := load4(&s[j])
 		k2, e := alignBinades4(sv, load4(&k[j]), c)
 		rest := atanhSum4(sv, k2, e, c)
 		rest = load4(&r[j]).Sub(load4(&q[j])).MulAdd(load4(&t[j]), rest)
-		e.MulAdd(load4(&c.ln2Hi), rest).Store(&dst[j])
+		sum := e.MulAdd(load4(&c.ln2Hi), rest)
+		sum.Store(&m[j])
+		rest.Sub(e.MulAdd(load4(&c.negLn2Hi), sum)).Store(&lost[j])
 	}
 }
 
-// distances4 sets sq, rv and d2, and turns d1 from ln(S/K) + (r−q)T into d₁.
+// distances4 sets sq and rv, turns d1 and d2 from what drifted4 has left there into
+// d₁ and d₂, and sets hi and lo to −y²/2 for the nearer of the two, x to the price
+// that goes with it.
 func distances4(sc *scratch4, t, v []lanes4, c *table4) {
 	n := len(t)
 	v = v[:n]
-	d1, d2, rv, sq := sc.d1[:n], sc.d2[:n], sc.rv[:n], sc.sq[:n]
+	a, b, d1, d2, rv, sq, hi, lo, x := sc.an[:n], sc.bn[:n], sc.d1[:n], sc.d2[:n], sc.rv[:n], sc.sq[:n], sc.hi[:n], sc.lo[:n], sc.x[:n]
 	for j := range t {
-		root := load4(&t[j]).Sqrt()
+		tv, vv, zero := load4(&t[j]), load4(&v[j]), load4(&c.zero)
+		root := tv.Sqrt()
 		root.Store(&sq[j])
-		vs := load4(&v[j]).Mul(root)
+		vs := vv.Mul(root)
 		inv := load4(&c.one).Div(vs)
 		inv.Store(&rv[j])
+		halfVar, negVS := vv.Mul(vv.Mul(load4(&c.half))), zero.Sub(vs)
+		vsLost := zero.Sub(root).MulAdd(root, tv).MulAdd(halfVar.Mul(inv), vv.MulAdd(root, negVS))
 		m := load4(&d1[j])
 		d := m.Mul(inv)
-		d = d.MulAdd(load4(&c.zero).Sub(vs), m).MulAdd(inv, d)
-		vs.MulAdd(load4(&c.half), d).Store(&d1[j])
-		vs.MulAdd(load4(&c.negHalf), d).Store(&d2[j])
+		lost := d.MulAdd(negVS, m).Add(load4(&d2[j]))
+		e1, e2 := vs.MulAdd(load4(&c.half), d), vs.MulAdd(load4(&c.negHalf), d)
+		e1.Store(&d1[j])
+		e2.Store(&d2[j])
+		first := d.LessEqual(zero)
+		load4(&a[j]).Merge(load4(&b[j]), first).Store(&x[j])
+		y, side := e1.Merge(e2, first), load4(&c.half).Merge(load4(&c.negHalf), first)
+		lost = vsLost.MulAdd(d.MulAdd(load4(&c.negTwo), y), lost).MulAdd(inv, vs.MulAdd(side, d.Sub(y)))
+		y = y.Min(load4(&c.gaussEnd)).Max(load4(&c.negGaussEnd))
+		half := y.Mul(load4(&c.negHalf))
+		e := half.Mul(y)
+		e.Store(&hi[j])
+		zero.Sub(y).MulAdd(lost, half.MulAdd(y, zero.Sub(e))).Store(&lo[j])
 	}
 }
 
-// density4 sets x to √(2π)·S·e^(−qT)·φ(d₁), from the smaller distance.
+// density4 turns x into √(2π)·S·e^(−qT)·φ(d₁).
 func density4(sc *scratch4, n int, c *table4) {
-	a, b, d1, d2, x := sc.an[:n], sc.bn[:n], sc.d1[:n], sc.d2[:n], sc.x[:n]
-	for j := range n {
-		y1, y2 := abs4(load4(&d1[j]), c), abs4(load4(&d2[j]), c)
-		hi, lo := halfSquare4(y1.Min(y2).Min(load4(&c.gaussEnd)), c)
-		r, t := expReduce4(hi, lo, c)
-		first := y1.LessEqual(y2)
-		scale4(expSum4(r, c), t, c).Mul(load4(&a[j]).Merge(load4(&b[j]), first)).Store(&x[j])
+	hi, lo, x := sc.hi[:n], sc.lo[:n], sc.x[:n]
+	for j := range x {
+		r, t := expReduce4(load4(&hi[j]), load4(&lo[j]), c)
+		scale4(expSum4(r, c), t, c).Mul(load4(&x[j])).Store(&x[j])
 	}
 }
 

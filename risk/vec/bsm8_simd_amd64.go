@@ -13,7 +13,7 @@ import (
 
 // scratch8 is what a block leaves between stages; an and bn take the place of
 // a = S·e^(−qT) and b = K·e^(−rT). See bsmTerms for the names.
-type scratch8 struct{ an, bn, d1, d2, rv, sq, x [blockLines / width8]lanes8 }
+type scratch8 struct{ an, bn, d1, d2, rv, sq, hi, lo, x [blockLines / width8]lanes8 }
 
 // columns8 views n vectors of a slice from line i on.
 func columns8(s []float64, i, n int) []lanes8 {
@@ -50,7 +50,7 @@ func (b *BSM) block8(sc *scratch8, want outputs, i, n int) bool {
 	outside := outside8(s, k, t, v, r, q, w, c)
 	discounted8(sc.an[:n], s, q, t, c)
 	discounted8(sc.bn[:n], k, r, t, c)
-	drifted8(sc.d1[:n], s, k, t, r, q, c)
+	drifted8(sc.d1[:n], sc.d2[:n], s, k, t, r, q, c)
 	distances8(sc, t, v, c)
 	density8(sc, n, c)
 	tail8(sc.an[:n], sc.d1[:n], sc.x[:n], w, c)
@@ -95,47 +95,61 @@ func outside8(s, k, t, v, r, q, w []lanes8, c *table8) bool {
 	return any8(out)
 }
 
-// drifted8 sets dst to ln(s/k) + (r−q)·t.
-func drifted8(dst, s, k, t, r, q []lanes8, c *table8) {
-	n := len(dst)
-	s, k, t, r, q = s[:n], k[:n], t[:n], r[:n], q[:n]
-	for j := range dst {
+// drifted8 sets m to ln(s/k) + (r−q)·t, and lost to what rounding has taken from it.
+func drifted8(m, lost, s, k, t, r, q []lanes8, c *table8) {
+	n := len(m)
+	lost, s, k, t, r, q = lost[:n], s[:n], k[:n], t[:n], r[:n], q[:n]
+	for j := range m {
 		sv := load8(&s[j])
 		k2, e := alignBinades8(sv, load8(&k[j]), c)
 		rest := atanhSum8(sv, k2, e, c)
 		rest = load8(&r[j]).Sub(load8(&q[j])).MulAdd(load8(&t[j]), rest)
-		e.MulAdd(load8(&c.ln2Hi), rest).Store(&dst[j])
+		sum := e.MulAdd(load8(&c.ln2Hi), rest)
+		sum.Store(&m[j])
+		rest.Sub(e.MulAdd(load8(&c.negLn2Hi), sum)).Store(&lost[j])
 	}
 }
 
-// distances8 sets sq, rv and d2, and turns d1 from ln(S/K) + (r−q)T into d₁.
+// distances8 sets sq and rv, turns d1 and d2 from what drifted8 has left there into
+// d₁ and d₂, and sets hi and lo to −y²/2 for the nearer of the two, x to the price
+// that goes with it.
 func distances8(sc *scratch8, t, v []lanes8, c *table8) {
 	n := len(t)
 	v = v[:n]
-	d1, d2, rv, sq := sc.d1[:n], sc.d2[:n], sc.rv[:n], sc.sq[:n]
+	a, b, d1, d2, rv, sq, hi, lo, x := sc.an[:n], sc.bn[:n], sc.d1[:n], sc.d2[:n], sc.rv[:n], sc.sq[:n], sc.hi[:n], sc.lo[:n], sc.x[:n]
 	for j := range t {
-		root := load8(&t[j]).Sqrt()
+		tv, vv, zero := load8(&t[j]), load8(&v[j]), load8(&c.zero)
+		root := tv.Sqrt()
 		root.Store(&sq[j])
-		vs := load8(&v[j]).Mul(root)
+		vs := vv.Mul(root)
 		inv := load8(&c.one).Div(vs)
 		inv.Store(&rv[j])
+		halfVar, negVS := vv.Mul(vv.Mul(load8(&c.half))), zero.Sub(vs)
+		vsLost := zero.Sub(root).MulAdd(root, tv).MulAdd(halfVar.Mul(inv), vv.MulAdd(root, negVS))
 		m := load8(&d1[j])
 		d := m.Mul(inv)
-		d = d.MulAdd(load8(&c.zero).Sub(vs), m).MulAdd(inv, d)
-		vs.MulAdd(load8(&c.half), d).Store(&d1[j])
-		vs.MulAdd(load8(&c.negHalf), d).Store(&d2[j])
+		lost := d.MulAdd(negVS, m).Add(load8(&d2[j]))
+		e1, e2 := vs.MulAdd(load8(&c.half), d), vs.MulAdd(load8(&c.negHalf), d)
+		e1.Store(&d1[j])
+		e2.Store(&d2[j])
+		first := d.LessEqual(zero)
+		load8(&a[j]).Merge(load8(&b[j]), first).Store(&x[j])
+		y, side := e1.Merge(e2, first), load8(&c.half).Merge(load8(&c.negHalf), first)
+		lost = vsLost.MulAdd(d.MulAdd(load8(&c.negTwo), y), lost).MulAdd(inv, vs.MulAdd(side, d.Sub(y)))
+		y = y.Min(load8(&c.gaussEnd)).Max(load8(&c.negGaussEnd))
+		half := y.Mul(load8(&c.negHalf))
+		e := half.Mul(y)
+		e.Store(&hi[j])
+		zero.Sub(y).MulAdd(lost, half.MulAdd(y, zero.Sub(e))).Store(&lo[j])
 	}
 }
 
-// density8 sets x to √(2π)·S·e^(−qT)·φ(d₁), from the smaller distance.
+// density8 turns x into √(2π)·S·e^(−qT)·φ(d₁).
 func density8(sc *scratch8, n int, c *table8) {
-	a, b, d1, d2, x := sc.an[:n], sc.bn[:n], sc.d1[:n], sc.d2[:n], sc.x[:n]
-	for j := range n {
-		y1, y2 := abs8(load8(&d1[j]), c), abs8(load8(&d2[j]), c)
-		hi, lo := halfSquare8(y1.Min(y2).Min(load8(&c.gaussEnd)), c)
-		r, t := expReduce8(hi, lo, c)
-		first := y1.LessEqual(y2)
-		scale8(expSum8(r, c), t, c).Mul(load8(&a[j]).Merge(load8(&b[j]), first)).Store(&x[j])
+	hi, lo, x := sc.hi[:n], sc.lo[:n], sc.x[:n]
+	for j := range x {
+		r, t := expReduce8(load8(&hi[j]), load8(&lo[j]), c)
+		scale8(expSum8(r, c), t, c).Mul(load8(&x[j])).Store(&x[j])
 	}
 }
 

@@ -6,7 +6,7 @@ import "math"
 //
 // With a = S·e^(−qT) and b = K·e^(−rT), a·φ(d₁) = b·φ(d₂). So one exponential
 // serves both tails, a·Φ(−|d₁|) and b·Φ(−|d₂|), through the Mills ratio; it is
-// taken at the smaller of |d₁| and |d₂|, where it loses least.
+// taken at y, the nearer to 0 of d₁ and d₂, where it loses least.
 //
 // Where a factor may be 0 a product is written as FMA(x, y, 0), which is never −0:
 // a put out of reach has a delta of 0.
@@ -29,11 +29,10 @@ func (b *BSM) allGeneric(lo, hi int) {
 			b.edge(allOutputs, i)
 			continue
 		}
-		an, bn, x, rv, sq, d1, d2 := bsmTerms(s, k, t, v, r, q, w)
+		an, bn, x, rv, sq, d1, d2, halfVar := bsmTerms(s, k, t, v, r, q, w)
 		rs := 1 / s
 		g := x * rv
 		gs := g * rs
-		halfVar := float64(v * float64(v*0.5))
 		price := an - bn
 		delta := an * rs
 		gamma := gs * rs
@@ -62,10 +61,9 @@ func (b *BSM) coreGeneric(lo, hi int) {
 			b.edge(coreOutputs, i)
 			continue
 		}
-		an, bn, x, rv, sq, _, _ := bsmTerms(s, k, t, v, r, q, w)
+		an, bn, x, rv, sq, _, _, halfVar := bsmTerms(s, k, t, v, r, q, w)
 		rs := 1 / s
 		g := x * rv
-		halfVar := float64(v * float64(v*0.5))
 		b.Price[i] = an - bn
 		b.Delta[i] = an * rs
 		b.Gamma[i] = float64(g*rs) * rs
@@ -82,7 +80,7 @@ func (b *BSM) pricesGeneric(lo, hi int) {
 			b.edge(priceOnly, i)
 			continue
 		}
-		an, bn, _, _, _, _, _ := bsmTerms(s, k, t, v, r, q, w)
+		an, bn, _, _, _, _, _, _ := bsmTerms(s, k, t, v, r, q, w)
 		b.Price[i] = an - bn
 	}
 }
@@ -113,25 +111,45 @@ func inBox(s, k, t, v, r, q, w float64) bool {
 // bsmTerms returns, for an option in the box,
 //
 //	an = w·S·e^(−qT)·Φ(w·d₁)    bn = w·K·e^(−rT)·Φ(w·d₂)
-//	x  = S·e^(−qT)·φ(d₁)        rv = 1/(σ√T)    sq = √T
-func bsmTerms(s, k, t, v, r, q, w float64) (an, bn, x, rv, sq, d1, d2 float64) {
+//	x  = S·e^(−qT)·φ(d₁)        rv = 1/(σ√T)    sq = √T    halfVar = ½σ²
+//
+// The density multiplies an error of d by d, hence no rounding on the way to the
+// exponential is left in: not of ln(S/K) + (r−q)T, nor of σ√T, their quotient or the
+// sum that makes y of it. What each has lost is had by FMA, and goes into lo.
+func bsmTerms(s, k, t, v, r, q, w float64) (an, bn, x, rv, sq, d1, d2, halfVar float64) {
 	a := float64(s * discount(q, t))
 	b := float64(k * discount(r, t))
 	sq = math.Sqrt(t)
 	vs := float64(v * sq)
 	rv = 1 / vs
+	halfVar = float64(v * float64(v*0.5))
 	n, rest := logRatio(s, k)
-	m := math.FMA(n, ln2Hi, math.FMA(r-q, t, rest)) // ln(S/K) + (r−q)T
+	rest = math.FMA(r-q, t, rest)
+	m := math.FMA(n, ln2Hi, rest) // ln(S/K) + (r−q)T
+	mLost := rest - math.FMA(n, -ln2Hi, m)
 	d := float64(m * rv)
-	d = math.FMA(math.FMA(d, 0-vs, m), rv, d) // m/vs as if divided
 	d1 = math.FMA(vs, 0.5, d)
 	d2 = math.FMA(vs, -0.5, d)
-	y1, y2 := math.Abs(d1), math.Abs(d2)
-	first := y1 <= y2
-	x = gauss(min(y1, y2, gaussEnd)) * selectFloat(first, a, b)
-	an = float64(x * mills(y1))
-	bn = float64(x * mills(y2))
+	first := d <= 0
+	y := selectFloat(first, d1, d2) // the nearer to 0
+	side := selectFloat(first, 0.5, -0.5)
+	vsLost := math.FMA(math.FMA(0-sq, sq, t), float64(halfVar*rv), math.FMA(v, sq, 0-vs))
+	other := math.FMA(d, -2, y)          // the farther, with its sign turned
+	lost := math.FMA(d, 0-vs, m) + mLost // of the quotient, times σ√T; then of y
+	lost = math.FMA(math.FMA(vsLost, other, lost), rv, math.FMA(vs, side, d-y))
+	if y > gaussEnd {
+		y = gaussEnd
+	}
+	if y < -gaussEnd {
+		y = -gaussEnd
+	}
+	half := float64(y * -0.5)
+	e := float64(half * y)
+	lo := math.FMA(0-y, lost, math.FMA(half, y, 0-e))
+	x = scaleTwice(expReduced(e, lo)) * selectFloat(first, a, b)
+	an = float64(x * mills(math.Abs(d1)))
+	bn = float64(x * mills(math.Abs(d2)))
 	an = selectFloat(float64(w*d1) > 0, a-an, an)
 	bn = selectFloat(float64(w*d2) > 0, b-bn, bn)
-	return math.FMA(w, an, 0), math.FMA(w, bn, 0), float64(x * invSqrt2Pi), rv, sq, d1, d2
+	return math.FMA(w, an, 0), math.FMA(w, bn, 0), float64(x * invSqrt2Pi), rv, sq, d1, d2, halfVar
 }

@@ -22,8 +22,11 @@ const (
 	negHalf  = -0.5
 	one      = 1.0
 	two      = 2.0
+	negTwo   = -2.0
 	negLn2Hi = -ln2Hi
 	negLn2Lo = -ln2Lo
+
+	negGaussEnd = -gaussEnd
 )
 
 // Adding these to the bits of |x| sets the sign bit from a power of two upwards,
@@ -34,5 +37,5 @@ const (
 )
 
 // blockLines is how many options pass through the stages together; its scratch
-// and columns then take some 25 kB.
+// and columns then take some 27 kB.
 const blockLines = 128

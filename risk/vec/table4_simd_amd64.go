@@ -57,9 +57,11 @@ type table4 struct {
 	negHalf       lanes4
 	one           lanes4
 	two           lanes4
+	negTwo        lanes4
 	negLn2Hi      lanes4
 	negLn2Lo      lanes4
 	gaussEnd      lanes4
+	negGaussEnd   lanes4
 	residualFloor lanes4
 	absBits       bitLanes4
 	oneBits       bitLanes4
@@ -131,9 +133,11 @@ func (t *table4) fill() {
 	spread(t.negHalf[:], negHalf)
 	spread(t.one[:], one)
 	spread(t.two[:], two)
+	spread(t.negTwo[:], negTwo)
 	spread(t.negLn2Hi[:], negLn2Hi)
 	spread(t.negLn2Lo[:], negLn2Lo)
 	spread(t.gaussEnd[:], gaussEnd)
+	spread(t.negGaussEnd[:], negGaussEnd)
 	spread(t.residualFloor[:], residualFloor)
 	spread(t.absBits[:], absBits)
 	spread(t.oneBits[:], oneBits)

@@ -57,9 +57,11 @@ type table8 struct {
 	negHalf       lanes8
 	one           lanes8
 	two           lanes8
+	negTwo        lanes8
 	negLn2Hi      lanes8
 	negLn2Lo      lanes8
 	gaussEnd      lanes8
+	negGaussEnd   lanes8
 	residualFloor lanes8
 	absBits       bitLanes8
 	oneBits       bitLanes8
@@ -131,9 +133,11 @@ func (t *table8) fill() {
 	spread(t.negHalf[:], negHalf)
 	spread(t.one[:], one)
 	spread(t.two[:], two)
+	spread(t.negTwo[:], negTwo)
 	spread(t.negLn2Hi[:], negLn2Hi)
 	spread(t.negLn2Lo[:], negLn2Lo)
 	spread(t.gaussEnd[:], gaussEnd)
+	spread(t.negGaussEnd[:], negGaussEnd)
 	spread(t.residualFloor[:], residualFloor)
 	spread(t.absBits[:], absBits)
 	spread(t.oneBits[:], oneBits)

@@ -121,7 +121,7 @@ GROUPS = [
 ]
 
 # The table of the vector forms holds these and the constants below once per lane, by the name they have in the scalar code.
-EXTRA = ["zero", "half", "negHalf", "one", "two", "negLn2Hi", "negLn2Lo", "gaussEnd", "residualFloor"]
+EXTRA = ["zero", "half", "negHalf", "one", "two", "negTwo", "negLn2Hi", "negLn2Lo", "gaussEnd", "negGaussEnd", "residualFloor"]
 BITS = ["absBits", "oneBits", "exponentBits", "halfBinade", "biasBits", "roundBits", "priceFrom", "priceMask", "timeFrom",
         "timeMask", "rateMask", "logFrom", "logMask", "hugeFrom", "tailFrom", "signBit"]
 
