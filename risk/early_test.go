@@ -1,6 +1,8 @@
 package risk
 
 import (
+	"context"
+	"errors"
 	"math"
 	"testing"
 
@@ -275,7 +277,7 @@ func TestImplyByModel(t *testing.T) {
 		if err != nil {
 			t.Fatal(err)
 		}
-		for i, q := range Imply(m, d.dicts, quotes) {
+		for i, q := range imply(t, m, d.dicts, quotes) {
 			switch {
 			case priced.ExerciseNow[i]:
 				if q.Status != schema.QuoteBelowBound {
@@ -305,7 +307,7 @@ func TestImplyByModelBounds(t *testing.T) {
 	quote := func(kind, style schema.Choice, strike, price float64) schema.QuoteRow {
 		return schema.QuoteRow{Underlying: "U", Day: m.AsOf.Day + 200, Minute: schema.NoMinute, Strike: strike, OptionType: kind, Exercise: style, Price: price, Bid: nan, Ask: nan}
 	}
-	for i, q := range Imply(m, d.dicts, []schema.QuoteRow{
+	for i, q := range imply(t, m, d.dicts, []schema.QuoteRow{
 		quote(schema.Put, schema.American, 130, 30), quote(schema.Put, schema.American, 130, 29), quote(schema.Call, schema.American, 100, 101),
 		quote(schema.Call, schema.European, 100, -1), quote(schema.Call, schema.European, 60, 30),
 	}) {
@@ -313,6 +315,31 @@ func TestImplyByModelBounds(t *testing.T) {
 		if q.Status != want || q.Reason == "" || !math.IsNaN(q.Vol) {
 			t.Errorf("quote %d: %s, vol %v, %q", i, schema.QuoteStatuses[q.Status], q.Vol, q.Reason)
 		}
+	}
+}
+
+func TestPricingIsInterrupted(t *testing.T) {
+	d := payingDesk(t)
+	m, _, err := market.New(&d.cfg, &d.raw, d.dicts)
+	if err != nil {
+		t.Fatal(err)
+	}
+	lines := make([]line, 2000)
+	for i := range lines {
+		lines[i] = option("U", schema.Put, 60+float64(i)/20, 200, 0.25).american()
+	}
+	e, b := NewEngine(m, d.dicts), d.batch(lines)
+	ctx, cancel := context.WithCancel(context.Background())
+	cancel()
+	if err := e.Price(ctx, b, e.NewWorker()); !errors.Is(err, context.Canceled) {
+		t.Errorf("error %v", err)
+	}
+	if !math.IsNaN(b.PriceError[1999]) && b.PriceError[1999] != 0 {
+		t.Error("the last line was priced all the same")
+	}
+	quote := schema.QuoteRow{Underlying: "U", Day: m.AsOf.Day + 200, Minute: schema.NoMinute, Strike: 100, OptionType: schema.Put, Exercise: schema.American, Price: 7, Bid: nan, Ask: nan}
+	if _, err := Imply(ctx, m, d.dicts, []schema.QuoteRow{quote}); !errors.Is(err, context.Canceled) {
+		t.Errorf("quotes: error %v", err)
 	}
 }
 

@@ -1,6 +1,7 @@
 package risk
 
 import (
+	"context"
 	"slices"
 
 	"nightbook/risk/instrument"
@@ -54,8 +55,10 @@ func (e *Engine) NewWorker() *Worker {
 const noRoute = 255
 
 // Price fills the results of a batch. Rows it refuses get Status Rejected and a
-// Reject; rows refused before are left alone.
-func (e *Engine) Price(b *schema.Batch, w *Worker) {
+// Reject; rows refused before are left alone. The error is that of a context that
+// ended before the batch was done, which then must not be used.
+func (e *Engine) Price(ctx context.Context, b *schema.Batch, w *Worker) error {
+	w.run.Methods.Interrupted = func() bool { return ctx.Err() != nil }
 	for _, s := range b.Results.Floats() {
 		clear(*s)
 	}
@@ -76,9 +79,13 @@ func (e *Engine) Price(b *schema.Batch, w *Worker) {
 			e.priceRun(b, w, route, rows)
 		}
 	}
+	if err := ctx.Err(); err != nil {
+		return err
+	}
 	measure(b)
 	slices.SortStableFunc(b.Rejects, func(x, y schema.Reject) int { return x.Index - y.Index })
 	e.flushNotes(b, w)
+	return nil
 }
 
 // priceRun gathers the rows of one route, prices them and scatters the results.

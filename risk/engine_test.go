@@ -1,6 +1,7 @@
 package risk
 
 import (
+	"context"
 	"fmt"
 	"math"
 	"testing"
@@ -56,7 +57,7 @@ func (d *desk) price(lines ...line) *schema.Batch {
 	}
 	b := d.batch(lines)
 	e := NewEngine(m, d.dicts)
-	e.Price(b, e.NewWorker())
+	e.Price(context.Background(), b, e.NewWorker())
 	return b
 }
 
@@ -133,7 +134,7 @@ func TestEachKindGetsItsModel(t *testing.T) {
 		b := d.batch([]line{c.l})
 		b.Expiry[0], b.ExpiryMinute[0] = d.cfg.AsOf.Day+schema.Date(minutes/1440), int16(minutes%1440)
 		e := NewEngine(m, d.dicts)
-		e.Price(b, e.NewWorker())
+		e.Price(context.Background(), b, e.NewWorker())
 		if b.Status[0] != schema.Priced || b.Model[0] != c.model {
 			t.Errorf("%s: status %s, model %s, %v", c.name, schema.Statuses[b.Status[0]], schema.Models[b.Model[0]], b.Rejects)
 			continue
@@ -284,7 +285,7 @@ func TestPricingAllocatesNothingPerLine(t *testing.T) {
 	allocs := testing.AllocsPerRun(5, func() {
 		clear(b.Status)
 		b.Notes = b.Notes[:0]
-		e.Price(b, w)
+		e.Price(context.Background(), b, w)
 	})
 	if len(b.Rejects) > 0 {
 		t.Fatal(b.Rejects[0])
@@ -316,7 +317,7 @@ func BenchmarkPrice(bench *testing.B) {
 	for bench.Loop() {
 		clear(b.Status)
 		b.Notes = b.Notes[:0]
-		e.Price(b, w)
+		e.Price(context.Background(), b, w)
 	}
 	bench.ReportMetric(float64(bench.Elapsed().Nanoseconds())/float64(bench.N)/schema.BatchRows, "ns/line")
 }

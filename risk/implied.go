@@ -2,6 +2,7 @@ package risk
 
 import (
 	"cmp"
+	"context"
 	"fmt"
 	"math"
 	"slices"
@@ -16,8 +17,8 @@ import (
 // Imply finds the volatility of each quote against a market: one row a quote,
 // in their order. European quotes without cash dividends are inverted in closed
 // form, the others with the models that price lines. The market's surfaces are
-// not looked at.
-func Imply(m *market.Market, d *schema.Dicts, quotes []schema.QuoteRow) []schema.ImpliedRow {
+// not looked at. The error is that of a context that ended before.
+func Imply(ctx context.Context, m *market.Market, d *schema.Dicts, quotes []schema.QuoteRow) ([]schema.ImpliedRow, error) {
 	out := make([]schema.ImpliedRow, len(quotes))
 	n := len(quotes)
 	col := func() []float64 { return make([]float64, n) }
@@ -39,7 +40,9 @@ func Imply(m *market.Market, d *schema.Dicts, quotes []schema.QuoteRow) []schema
 	}
 	outcome := make([]vec.Implied, n)
 	vec.ImpliedVol(vol, outcome, forward, strike, time, price, sign)
-	methods(m).ImpliedVols(open)
+	methods := methods(m)
+	methods.Interrupted = func() bool { return ctx.Err() != nil }
+	methods.ImpliedVols(open)
 	for i := range out {
 		switch q := byModel[i]; {
 		case q != nil:
@@ -48,7 +51,7 @@ func Imply(m *market.Market, d *schema.Dicts, quotes []schema.QuoteRow) []schema
 			conclude(&out[i], vol[i], outcome[i])
 		}
 	}
-	return out
+	return out, ctx.Err()
 }
 
 // prepare returns the option that a quote is of; a quote that cannot be inverted

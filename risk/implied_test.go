@@ -1,6 +1,7 @@
 package risk
 
 import (
+	"context"
 	"math"
 	"testing"
 
@@ -38,7 +39,7 @@ func TestImplyGivesBackWhatPricesWereMadeOf(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	implied := Imply(m, d.dicts, quotes)
+	implied := imply(t, m, d.dicts, quotes)
 	for i, q := range implied {
 		// the in-the-money side has lost the digits of its intrinsic value
 		tolerance := 1e-13 * (1 + priced.Price[i]/(lines[i].vol*priced.Vega[i]))
@@ -60,6 +61,15 @@ func TestImplyGivesBackWhatPricesWereMadeOf(t *testing.T) {
 			t.Errorf("line %d: %v from the surface of quotes, %v before", i, again.Price[i], priced.Price[i])
 		}
 	}
+}
+
+func imply(t *testing.T, m *market.Market, d *schema.Dicts, quotes []schema.QuoteRow) []schema.ImpliedRow {
+	t.Helper()
+	rows, err := Imply(context.Background(), m, d, quotes)
+	if err != nil {
+		t.Fatal(err)
+	}
+	return rows
 }
 
 func (d *desk) spot(name string) float64 {

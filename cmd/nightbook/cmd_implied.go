@@ -73,7 +73,7 @@ surface of these volatilities.`,
 
 // imply reads a snapshot and inverts its quotes.
 func imply(ctx context.Context, snapshot, asOf string) ([]schema.ImpliedRow, error) {
-	folder, err := reader.OpenFolder(snapshot, "underlyings", "rates", "quotes")
+	folder, err := reader.OpenFolder(ctx, snapshot, "underlyings", "rates", "quotes")
 	if err != nil {
 		return nil, err
 	}
@@ -92,7 +92,7 @@ func imply(ctx context.Context, snapshot, asOf string) ([]schema.ImpliedRow, err
 	if err != nil {
 		return nil, err
 	}
-	return risk.Imply(m, dicts, raw.Quotes), ctx.Err()
+	return risk.Imply(ctx, m, dicts, raw.Quotes)
 }
 
 func writeImplied(w io.Writer, format string, rows []schema.ImpliedRow) error {

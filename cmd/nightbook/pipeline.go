@@ -24,7 +24,7 @@ type job struct {
 //
 // With o.out == "" everything is read and priced, and nothing written.
 func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, error) {
-	folder, err := reader.OpenFolder(o.snapshot)
+	folder, err := reader.OpenFolder(ctx, o.snapshot)
 	if err != nil {
 		return nil, err
 	}
@@ -37,7 +37,7 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 		return nil, err
 	}
 	dicts := schema.NewDicts()
-	mkt, marketNotes, err := buildMarket(folder, cfg, raw, dicts)
+	mkt, marketNotes, err := buildMarket(ctx, folder, cfg, raw, dicts)
 	if err != nil {
 		return nil, err
 	}
@@ -78,8 +78,7 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 			if err := binders[worker].Bind(&j.piece, &j.batch); err != nil {
 				return err
 			}
-			engine.Price(&j.batch, scratch[worker])
-			return nil
+			return engine.Price(ctx, &j.batch, scratch[worker])
 		},
 		func(j *job) error {
 			if err := gate.rows(&j.batch); err != nil {
@@ -117,7 +116,7 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 
 // buildMarket builds the market; where run.toml says so, its surfaces are those
 // that the quotes imply.
-func buildMarket(folder *reader.Folder, cfg *schema.Config, raw *schema.Market, dicts *schema.Dicts) (*market.Market, []schema.Note, error) {
+func buildMarket(ctx context.Context, folder *reader.Folder, cfg *schema.Config, raw *schema.Market, dicts *schema.Dicts) (*market.Market, []schema.Note, error) {
 	if !cfg.Vols.FromQuotes {
 		return market.New(cfg, raw, dicts)
 	}
@@ -126,7 +125,11 @@ func buildMarket(folder *reader.Folder, cfg *schema.Config, raw *schema.Market, 
 	if err != nil {
 		return nil, nil, err
 	}
-	vols, lost := risk.SurfaceOf(risk.Imply(bare, dicts, raw.Quotes), folder.FileOf("quotes"))
+	implied, err := risk.Imply(ctx, bare, dicts, raw.Quotes)
+	if err != nil {
+		return nil, nil, err
+	}
+	vols, lost := risk.SurfaceOf(implied, folder.FileOf("quotes"))
 	raw.Vols = vols
 	m, notes, err := market.New(cfg, raw, dicts)
 	return m, append(lost, notes...), err

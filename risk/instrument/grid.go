@@ -15,6 +15,9 @@ func EuropeanWithDividends(r *Run) { r.withDividends(false) }
 
 func (r *Run) withDividends(early bool) {
 	for i := range r.N {
+		if r.Methods.interrupted() {
+			return
+		}
 		r.onGrid(i, r.Yield[i], early, r.Dividends[i])
 	}
 }

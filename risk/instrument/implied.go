@@ -54,7 +54,7 @@ func (m *Methods) ImpliedVols(quotes []*Quote) {
 				n++
 			}
 		}
-		if active = active[:n]; n == 0 {
+		if active = active[:n]; n == 0 || m.interrupted() {
 			break
 		}
 		m.evaluate(active)
@@ -160,6 +160,9 @@ func (m *Methods) evaluate(quotes []*Quote) {
 	var l american.Lines
 	var integral []*Quote
 	for _, q := range quotes {
+		if m.interrupted() {
+			return
+		}
 		if !q.American || len(q.Dividends) > 0 {
 			m.onGrid(q)
 			continue

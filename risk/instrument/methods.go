@@ -8,6 +8,10 @@ import (
 // Methods are the numerical methods behind products without a closed form, with
 // their settings and working memory. They serve one goroutine.
 type Methods struct {
+	// Interrupted, where it is set, is asked between lines that take long: once it
+	// says yes, the lines left have no results.
+	Interrupted func() bool
+
 	integral   *american.Solver
 	grid       pde.Solver
 	convention pde.Convention
@@ -24,6 +28,8 @@ type Methods struct {
 func NewMethods(setting american.Setting, convention pde.Convention, tolerance float64) *Methods {
 	return &Methods{integral: american.NewSolver(setting), convention: convention, grid: pde.Solver{Tolerance: tolerance}}
 }
+
+func (m *Methods) interrupted() bool { return m.Interrupted != nil && m.Interrupted() }
 
 // Schedule is the cash dividends that move a line, as seen now and as seen after
 // each step of theta. What goes ex within a step is taken off the price of the
