@@ -69,6 +69,7 @@ func (n *Binder) Bind(pc *Piece, b *schema.Batch) error {
 	}
 	b.Resize(rows.N)
 	n.cells.Rows = rows
+	b.File = cmp.Or(rows.File, n.p.o.in.name)
 	n.problems = n.problems[:0]
 	n.bad = append(n.bad[:0], make([]bool, rows.N)...)
 	for _, x := range rows.Bad {
@@ -164,7 +165,7 @@ func (n *Binder) refuse(b *schema.Batch) {
 
 func (n *Binder) reject(b *schema.Batch, x problem, others []string) schema.Reject {
 	r := schema.Reject{
-		File: n.p.o.in.name, Sheet: n.p.o.sheet, Line: b.Line[x.row], Code: x.why.code, Reason: x.why.reason,
+		File: b.File, Sheet: n.p.o.sheet, Line: b.Line[x.row], Code: x.why.code, Reason: x.why.reason,
 		Row: strings.Clone(b.Raw.At(x.row)), Index: x.row,
 	}
 	if len(others) > 0 {

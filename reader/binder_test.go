@@ -1,6 +1,7 @@
 package reader
 
 import (
+	"context"
 	"fmt"
 	"io"
 	"math"
@@ -145,7 +146,7 @@ func BenchmarkXLSXBind(b *testing.B) {
 // benchmarkBind reads and binds a position file on one goroutine.
 func benchmarkBind(b *testing.B, name, file string, rows int) {
 	dir := folderOf(b, map[string]string{"positions.csv": "", name: file})
-	f, err := OpenFolder(dir)
+	f, err := OpenFolder(context.Background(), dir)
 	if err != nil {
 		b.Fatal(err)
 	}

@@ -1,6 +1,7 @@
 package reader
 
 import (
+	"context"
 	"fmt"
 	"io"
 	"strings"
@@ -40,7 +41,7 @@ func TestBindersAtOnce(t *testing.T) {
 
 // atOnce reads a folder with three binders, four pieces and four batches.
 func atOnce(t *testing.T, dir string) string {
-	f, err := OpenFolder(dir)
+	f, err := OpenFolder(context.Background(), dir)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -119,7 +120,7 @@ func atOnce(t *testing.T, dir string) string {
 
 // Next goes on saying that the file has ended.
 func TestEndStays(t *testing.T) {
-	f, err := OpenFolder(folderOf(t, nil))
+	f, err := OpenFolder(context.Background(), folderOf(t, nil))
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -145,7 +146,7 @@ func TestEndStays(t *testing.T) {
 
 // In the steady state no memory is asked for, however many rows a piece has.
 func TestBindAllocations(t *testing.T) {
-	f, err := OpenFolder(folderOf(t, map[string]string{"positions.csv": desk(40*schema.BatchRows, 9)}))
+	f, err := OpenFolder(context.Background(), folderOf(t, map[string]string{"positions.csv": desk(40*schema.BatchRows, 9)}))
 	if err != nil {
 		t.Fatal(err)
 	}

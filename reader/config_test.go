@@ -1,6 +1,7 @@
 package reader
 
 import (
+	"context"
 	"reflect"
 	"strings"
 	"testing"
@@ -160,7 +161,7 @@ func TestConfigErrors(t *testing.T) {
 // The error of a folder's configuration begins with the file's path.
 func TestConfigPath(t *testing.T) {
 	dir := folderOf(t, map[string]string{"run.toml": "colour = 1\nreporting_currency = 'USD'"})
-	f, err := OpenFolder(dir)
+	f, err := OpenFolder(context.Background(), dir)
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -2,6 +2,7 @@ package reader
 
 import (
 	"bufio"
+	"context"
 	"crypto/sha256"
 	"encoding/hex"
 	"errors"
@@ -17,24 +18,28 @@ import (
 	"nightbook/schema"
 )
 
-// input is a file of the snapshot folder and the table it holds.
+// input is a file of the snapshot folder and the table it holds, or a folder of
+// the parts of one.
 type input struct {
 	path, name string
 	table      *schema.Table
 	format     format
+	parted     bool // path is a folder of files of that format
 }
 
 // file is an input being read. What is read of it in order is hashed on the way.
+// Reading ends with the context.
 type file struct {
 	*os.File
 	in    *input
-	size  int64
+	ctx   context.Context
+	info  os.FileInfo // as it was opened
 	sum   hash.Hash
 	taken atomic.Int64 // bytes read and hashed; a decompressor may read ahead on its own goroutine
 	close func()
 }
 
-func (in *input) open() (*file, error) {
+func (in *input) open(ctx context.Context) (*file, error) {
 	info, err := os.Stat(in.path)
 	if err == nil && !info.Mode().IsRegular() { // to open a pipe would wait for its writer
 		err = fmt.Errorf("%s: %w", in.path, errNotRegular)
@@ -46,15 +51,31 @@ func (in *input) open() (*file, error) {
 	if err != nil {
 		return nil, err
 	}
-	return &file{File: f, in: in, size: info.Size(), sum: sha256.New(), close: func() {}}, nil
+	if info, err = f.Stat(); err != nil {
+		return nil, errors.Join(err, f.Close())
+	}
+	return &file{File: f, in: in, ctx: ctx, info: info, sum: sha256.New(), close: func() {}}, nil
 }
+
+func (f *file) size() int64 { return f.info.Size() }
 
 // Read reads the file as it lies on disk.
 func (f *file) Read(p []byte) (int, error) {
+	if err := f.ctx.Err(); err != nil {
+		return 0, err
+	}
 	n, err := f.File.Read(p)
 	f.sum.Write(p[:n])
 	f.taken.Add(int64(n))
 	return n, err
+}
+
+// ReadAt reads out of order what has been hashed before.
+func (f *file) ReadAt(p []byte, at int64) (int, error) {
+	if err := f.ctx.Err(); err != nil {
+		return 0, err
+	}
+	return f.File.ReadAt(p, at)
 }
 
 // Close closes the file and what unpacks it.
@@ -69,12 +90,37 @@ func (f *file) hashAll() error {
 	return err
 }
 
-// finish reads what is left of the file and returns its entry in the inputs.
+// finish reads what is left of the file and returns its entry in the inputs. The
+// hash is that of what was read; a file that changed meanwhile is refused.
 func (f *file) finish(rows int64) (schema.InputFile, error) {
 	if err := f.hashAll(); err != nil {
 		return schema.InputFile{}, err
 	}
+	if err := f.changed(); err != nil {
+		return schema.InputFile{}, err
+	}
 	return schema.InputFile{Name: f.in.name, Table: f.in.table.Name, SHA256: hex.EncodeToString(f.sum.Sum(nil)), Bytes: f.taken.Load(), Rows: rows}, nil
+}
+
+var errChanged = errors.New("the file changed while it was being read, and nothing of it is used: run again once it has been written")
+
+// changed returns errChanged unless the file is as it was when it was opened: the
+// same file under its name, of the same size and time of modification.
+func (f *file) changed() error {
+	now, err := os.Stat(f.in.path)
+	if err != nil || !os.SameFile(now, f.info) || now.Size() != f.info.Size() || !now.ModTime().Equal(f.info.ModTime()) {
+		return errChanged
+	}
+	return nil
+}
+
+// fail puts the file's name on an error from below. One that a change of the
+// file explains is told as that.
+func (f *file) fail(sheet string, err error) error {
+	if f.ctx.Err() == nil && f.changed() != nil {
+		err = errChanged
+	}
+	return f.in.fail(sheet, err)
 }
 
 func inputOfBytes(name, table string, text []byte) schema.InputFile {
@@ -100,7 +146,7 @@ func (f *file) unpacked(limits *schema.Limits) (io.Reader, error) {
 		z.Multistream(false)
 		return &bounded{r: &members{z, packed}, f: f, limits: limits}, nil
 	case "zstd":
-		if f.size == 0 { // the decoder takes nothing at all for an empty text
+		if f.size() == 0 { // the decoder takes nothing at all for an empty text
 			return nil, fmt.Errorf("not a zstd file: %w", io.ErrUnexpectedEOF)
 		}
 		z, err := zstd.NewReader(f, zstd.WithDecoderMaxWindow(uint64(limits.Of(schema.WindowBytes))))

@@ -1,6 +1,7 @@
 package reader
 
 import (
+	"context"
 	"errors"
 	"fmt"
 	"os"
@@ -15,6 +16,7 @@ import (
 // Folder is a snapshot folder: its files by the table they hold, and what has
 // been read of them.
 type Folder struct {
+	ctx    context.Context
 	dir    string
 	tables map[string]*input
 
@@ -29,8 +31,9 @@ var neededTables = []string{"positions", "underlyings", "rates"}
 // OpenFolder finds the tables of the snapshot folder dir by the stems of their
 // files, compared without regard to case. It is an error if one of the needed
 // tables is missing (by default those of a run), if two files hold the same table, or if the file of a
-// table is in a form that is not read. Other data files are noted as not used.
-func OpenFolder(dir string, needed ...string) (*Folder, error) {
+// table is in a form that is not read. Other data files are noted as not used. Reading from the
+// folder ends with ctx.
+func OpenFolder(ctx context.Context, dir string, needed ...string) (*Folder, error) {
 	if len(needed) == 0 {
 		needed = neededTables
 	}
@@ -38,15 +41,20 @@ func OpenFolder(dir string, needed ...string) (*Folder, error) {
 	if err != nil {
 		return nil, fmt.Errorf("snapshot folder: %w", err)
 	}
-	f := &Folder{dir: dir, tables: map[string]*input{}}
+	f := &Folder{ctx: ctx, dir: dir, tables: map[string]*input{}}
 	var files, foreign []string
 	for _, e := range entries {
 		// Hidden files, and those an open workbook leaves beside itself, are nobody's data.
-		if e.IsDir() || strings.HasPrefix(e.Name(), ".") || strings.HasPrefix(e.Name(), "~$") {
+		if strings.HasPrefix(e.Name(), ".") || strings.HasPrefix(e.Name(), "~$") {
 			continue
 		}
+		info, err := os.Stat(filepath.Join(dir, e.Name()))
+		parted := err == nil && info.IsDir()
+		if parted && !strings.EqualFold(filepath.Ext(e.Name()), ".parquet") {
+			continue // a folder of the house's own
+		}
 		files = append(files, e.Name())
-		read, err := f.add(e.Name())
+		read, err := f.add(e.Name(), parted)
 		if err != nil {
 			return nil, err
 		}
@@ -74,7 +82,7 @@ func OpenFolder(dir string, needed ...string) (*Folder, error) {
 
 // add gives the file its place in the folder. read is false for a file that is
 // named like a table and is in a form that is not read.
-func (f *Folder) add(name string) (read bool, err error) {
+func (f *Folder) add(name string, parted bool) (read bool, err error) {
 	if strings.EqualFold(name, configName) {
 		if name != configName {
 			return true, fmt.Errorf("%s: the configuration must be named %s", filepath.Join(f.dir, name), configName)
@@ -92,8 +100,10 @@ func (f *Folder) add(name string) (read bool, err error) {
 		return false, nil
 	case f.tables[stem] != nil:
 		return true, fmt.Errorf("%s: both %s and %s hold %s: leave one", f.dir, f.tables[stem].name, name, stem)
+	case parted && stem != "positions":
+		return true, fmt.Errorf("%s: only the positions may be a folder of Parquet files: write %s as one file", filepath.Join(f.dir, name), stem)
 	default:
-		f.tables[stem] = &input{path: filepath.Join(f.dir, name), name: name, table: table, format: form}
+		f.tables[stem] = &input{path: filepath.Join(f.dir, name), name: name, table: table, format: form, parted: parted}
 	}
 	return true, nil
 }

@@ -1,6 +1,7 @@
 package reader
 
 import (
+	"context"
 	"errors"
 	"io"
 	"os"
@@ -63,7 +64,7 @@ func (s *snapshot) rejects() (all []schema.Reject) {
 func readAll(dir string) (*snapshot, error) {
 	s := &snapshot{dicts: schema.NewDicts()}
 	var err error
-	if s.Folder, err = OpenFolder(dir); err != nil {
+	if s.Folder, err = OpenFolder(context.Background(), dir); err != nil {
 		return nil, err
 	}
 	if s.cfg, err = s.Config(""); err != nil {
@@ -149,7 +150,7 @@ func TestOpenFolderErrors(t *testing.T) {
 		{"run.toml by case", map[string]string{"Run.toml": "x"}, []string{"must be named run.toml"}},
 	} {
 		t.Run(c.name, func(t *testing.T) {
-			_, err := OpenFolder(folderOf(t, c.over))
+			_, err := OpenFolder(context.Background(), folderOf(t, c.over))
 			if err == nil {
 				t.Fatal("no error")
 			}
@@ -160,7 +161,7 @@ func TestOpenFolderErrors(t *testing.T) {
 			}
 		})
 	}
-	if _, err := OpenFolder(filepath.Join(t.TempDir(), "none")); !errors.Is(err, os.ErrNotExist) {
+	if _, err := OpenFolder(context.Background(), filepath.Join(t.TempDir(), "none")); !errors.Is(err, os.ErrNotExist) {
 		t.Errorf("a folder that is not there: %v", err)
 	}
 }

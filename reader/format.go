@@ -92,12 +92,12 @@ func openParquet(f *file, cfg *schema.Config) (source, error) {
 	if err := f.hashAll(); err != nil {
 		return nil, err
 	}
-	return parquet.Open(f.File, f.size, cfg.Limits)
+	return parquet.Open(f, f.size(), cfg.Limits)
 }
 
 func openXLSX(f *file, cfg *schema.Config) (source, error) {
 	if err := f.hashAll(); err != nil {
 		return nil, err
 	}
-	return xlsx.Open(f.File, f.size, cfg.Limits)
+	return xlsx.Open(f, f.size(), cfg.Limits)
 }

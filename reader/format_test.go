@@ -2,6 +2,7 @@ package reader
 
 import (
 	"bytes"
+	"context"
 	"errors"
 	"fmt"
 	"io"
@@ -296,7 +297,7 @@ func TestTruncated(t *testing.T) {
 	}
 	// One that is cut is in no list of inputs.
 	dir := folderOf(t, map[string]string{"positions.csv": "", "positions.csv.gz": gzipped(t, text)[:20000]})
-	f, err := OpenFolder(dir)
+	f, err := OpenFolder(context.Background(), dir)
 	if err != nil {
 		t.Fatal(err)
 	}
@@ -332,7 +333,7 @@ func TestBomb(t *testing.T) {
 	}
 	w.Close()
 	dir := folderOf(t, map[string]string{"positions.csv": "", "positions.csv.zst": b.String()})
-	f, err := OpenFolder(dir)
+	f, err := OpenFolder(context.Background(), dir)
 	if err != nil {
 		t.Fatal(err)
 	}

@@ -57,7 +57,7 @@ func (f *Folder) readMarket(name string, cfg *schema.Config, m *schema.Market, r
 			break
 		}
 		if err != nil {
-			return o.in.fail(o.sheet, err)
+			return o.fail(o.sheet, err)
 		}
 		bad := rows.Bad
 		for i := range rows.N {
@@ -74,7 +74,7 @@ func (f *Folder) readMarket(name string, cfg *schema.Config, m *schema.Market, r
 			return o.in.fail(o.sheet, cfg.Limits.Exceeded(schema.MarketRows))
 		}
 	}
-	return f.done(o)
+	return o.done(f, o.rows)
 }
 
 // marketRow reads the cells of one market row by the names of our columns, and

@@ -11,12 +11,22 @@ import (
 
 // opened is a table of the folder, open, with its columns found.
 type opened struct {
-	*file
+	in *input
+	stored
 	source
 	*binding
 	style style
 	sheet string
 	rows  int64
+}
+
+// stored is where the rows of a table lie: one file, or a folder of parts.
+type stored interface {
+	size() int64    // bytes on disk
+	reached() int64 // how much of them has been read
+	fail(sheet string, err error) error
+	done(f *Folder, rows int64) error // puts what was read to its end into the inputs
+	Close() error
 }
 
 // open opens a table of the folder, or returns nil if there is none.
@@ -25,10 +35,22 @@ func (f *Folder) open(name string, cfg *schema.Config) (*opened, error) {
 	if in == nil {
 		return nil, nil
 	}
-	o := &opened{}
-	var err error
-	if o.file, err = in.open(); err != nil {
-		return nil, err
+	o := &opened{in: in}
+	if in.parted {
+		p, err := f.openParts(in, cfg)
+		if err != nil {
+			return nil, err
+		}
+		o.stored, o.source = p, p
+	} else {
+		file, err := in.open(f.ctx)
+		if err != nil {
+			return nil, err
+		}
+		o.stored = file
+		if o.source, err = in.format.open(file, cfg); err != nil {
+			return nil, errors.Join(file.fail("", err), file.Close())
+		}
 	}
 	if err := o.start(cfg); err != nil {
 		o.Close()
@@ -42,9 +64,6 @@ func (f *Folder) open(name string, cfg *schema.Config) (*opened, error) {
 }
 
 func (o *opened) start(cfg *schema.Config) (err error) {
-	if o.source, err = o.in.format.open(o.file, cfg); err != nil {
-		return o.in.fail("", err)
-	}
 	if s, ok := o.source.(interface{ Sheet() string }); ok {
 		o.sheet = s.Sheet()
 	}
@@ -57,6 +76,15 @@ func (o *opened) start(cfg *schema.Config) (err error) {
 		o.style.dates, err = parseDateFormat(cfg.CSV.DateFormat)
 	}
 	return err
+}
+
+// progress returns how many bytes of the file, as it lies on disk, the rows read
+// so far reach to.
+func (o *opened) progress() int64 {
+	if q, ok := o.source.(interface{ Read() float64 }); ok {
+		return int64(q.Read() * float64(o.size()))
+	}
+	return o.reached()
 }
 
 // fail puts the file's name on an error from below.
@@ -73,6 +101,17 @@ func (in *input) fail(sheet string, err error) error {
 	return fmt.Errorf("%s: %w", in.path, err)
 }
 
+func (f *file) reached() int64 { return f.taken.Load() }
+
+func (f *file) done(folder *Folder, rows int64) error {
+	entry, err := f.finish(rows)
+	if err != nil {
+		return f.fail("", err)
+	}
+	folder.record(entry)
+	return nil
+}
+
 // appendRaw appends a row as it came: as text, or as the text of its cells if
 // it never was text.
 func appendRaw(b []byte, r *table.Rows, i int) []byte {
@@ -80,14 +119,4 @@ func appendRaw(b []byte, r *table.Rows, i int) []byte {
 		return r.AppendRow(b, i)
 	}
 	return append(b, r.Raw.Bytes(i)...)
-}
-
-// done records the file in the folder's inputs.
-func (f *Folder) done(o *opened) error {
-	entry, err := o.finish(o.rows)
-	if err != nil {
-		return o.in.fail("", err)
-	}
-	f.record(entry)
-	return nil
 }

@@ -57,7 +57,7 @@ func (p *Positions) Extra() []string { return p.extra }
 func (p *Positions) Name() string { return p.o.in.name }
 
 // Size returns the size of the file on disk, in bytes: what Piece.Bytes runs up to.
-func (p *Positions) Size() int64 { return p.o.size }
+func (p *Positions) Size() int64 { return p.o.size() }
 
 // Rows returns how many data rows the pieces handed out so far hold.
 func (p *Positions) Rows() int64 { return p.o.rows }
@@ -81,21 +81,18 @@ func (p *Positions) Next(pc *Piece) error {
 	}
 	if errors.Is(err, io.EOF) {
 		p.ended = true
-		if err := p.folder.done(p.o); err != nil {
+		if err := p.o.done(p.folder, p.o.rows); err != nil {
 			return err
 		}
 		return io.EOF
 	}
 	if err != nil {
-		return p.o.in.fail(p.o.sheet, err)
+		return p.o.fail(p.o.sheet, err)
 	}
 	if p.o.rows += int64(pc.Rows); p.o.rows > p.cfg.Limits.Of(schema.Rows) {
 		return p.o.in.fail(p.o.sheet, p.cfg.Limits.Exceeded(schema.Rows))
 	}
-	pc.Bytes = p.o.taken.Load()
-	if q, ok := p.o.source.(interface{ Read() float64 }); ok {
-		pc.Bytes = int64(q.Read() * float64(p.o.size))
-	}
+	pc.Bytes = p.o.progress()
 	return nil
 }
 

@@ -8,7 +8,8 @@ const BatchRows = 4096
 // the program: the reader fills Positions, the risk core Results, the writers
 // write both. Batches are recycled.
 type Batch struct {
-	N int
+	N    int
+	File string // of the snapshot folder, which the rows stand in
 	Positions
 	Results
 	Rejects []Reject // of rows with Status Rejected, in row order

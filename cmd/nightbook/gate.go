@@ -63,7 +63,7 @@ func (g *gate) rows(b *schema.Batch) error {
 	for i := range b.Rejects {
 		r := &b.Rejects[i]
 		if r.File == "" { // refused after reading: the columns bear our names still
-			r.File, r.Sheet = g.positions.Name(), g.positions.Sheet()
+			r.File, r.Sheet = b.File, g.positions.Sheet()
 			if cell, ok := g.positions.Cell(r.Row, r.Column); ok {
 				r.Value = cell
 			}
@@ -75,7 +75,7 @@ func (g *gate) rows(b *schema.Batch) error {
 	}
 	for _, n := range b.Notes {
 		if n.File == "" {
-			n.File = g.positions.Name()
+			n.File = b.File
 		}
 		g.warn(n)
 	}

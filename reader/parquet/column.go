@@ -46,6 +46,34 @@ type column struct {
 	dated   []byte
 }
 
+// String returns the column's name and type.
+func (c *column) String() string {
+	s := c.name + " " + c.physical.String()
+	switch c.meaning {
+	case unsigned:
+		s += " unsigned"
+	case texts:
+		s += " text"
+	case decimals:
+		s += fmt.Sprintf(" decimal, %d digits behind the point", c.scale)
+	case days:
+		s += " date"
+	case timestamps:
+		s += fmt.Sprintf(" timestamp, %d a second", c.unit)
+		if c.utc {
+			s += ", of UTC"
+		}
+	case clocks:
+		s += fmt.Sprintf(" time, %d a second", c.unit)
+	case uuids:
+		s += " UUID"
+	}
+	if c.physical == fixed {
+		s += fmt.Sprintf(", %d bytes", c.length)
+	}
+	return s
+}
+
 // columnsOf returns the columns of a flat schema.
 func columnsOf(elements []*parquet.SchemaElement) ([]*column, error) {
 	if len(elements) == 0 || elements[0] == nil {

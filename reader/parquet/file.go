@@ -125,6 +125,15 @@ func readFooter(r io.ReaderAt, size int64, limits *schema.Limits) (*parquet.File
 // Header returns the names of the columns, in the order of the schema.
 func (f *File) Header() []string { return f.header }
 
+// Schema returns the name and type of each column, for comparison with other files.
+func (f *File) Schema() []string {
+	var s []string
+	for _, c := range f.columns {
+		s = append(s, c.String())
+	}
+	return s
+}
+
 // Read returns the share of the rows read so far, from 0 to 1.
 func (f *File) Read() float64 {
 	if f.total == 0 {

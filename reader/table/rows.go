@@ -1,6 +1,7 @@
 package table
 
 import (
+	"slices"
 	"strconv"
 
 	"nightbook/schema"
@@ -36,6 +37,7 @@ type Rows struct {
 	// holds from the empty cell. It has an entry for every column.
 	Cells [][]Cell
 
+	File string         // of a table in several files: the one that all the rows stand in
 	Line []int64        // where each row stands: line of the file, row of the sheet
 	Raw  schema.Strings // each row as it came
 	Bad  []Bad          // the rows that could not be taken apart, ascending; their cells are empty
@@ -49,7 +51,7 @@ type Bad struct {
 
 // Reset makes the run empty, with the given number of columns, and keeps its memory.
 func (r *Rows) Reset(columns int) {
-	r.N = 0
+	r.N, r.File = 0, ""
 	for len(r.Cols) < columns {
 		r.Cols = append(r.Cols, schema.Vector{})
 	}
@@ -65,6 +67,21 @@ func (r *Rows) Reset(columns int) {
 	}
 	r.Line, r.Bad = r.Line[:0], r.Bad[:0]
 	r.Raw.Reset()
+}
+
+// AppendColumn puts a column behind the others that holds the same text in every row.
+func (r *Rows) AppendColumn(text string, kind Cell) {
+	n := len(r.Cols)
+	r.Cols = slices.Grow(r.Cols, 1)[:n+1]
+	r.Cells = append(r.Cells, nil)
+	v := &r.Cols[n]
+	v.Kind = schema.KindStrings
+	v.Strings.Reset()
+	v.Strings.Data = append(v.Strings.Data, text...)
+	for range r.N {
+		v.Strings.AppendSpan(0, uint32(len(text)))
+		r.Cells[n] = append(r.Cells[n], kind)
+	}
 }
 
 // Cell says how the cell in row i of column col is meant. Of vectors that are
