@@ -1,6 +1,7 @@
 package parquet
 
 import (
+	"context"
 	"encoding/binary"
 	"errors"
 	"fmt"
@@ -37,8 +38,13 @@ const magic = "PAR1"
 
 var errDamaged = errors.New("the Parquet file is damaged")
 
-// damaged is errDamaged with what is wrong.
+// damaged is errDamaged with what is wrong. A reader that was stopped is no damage.
 func damaged(format string, a ...any) error {
+	for _, x := range a {
+		if err, ok := x.(error); ok && errors.Is(err, context.Canceled) {
+			return err
+		}
+	}
 	return fmt.Errorf("%w: %s", errDamaged, fmt.Sprintf(format, a...))
 }
 

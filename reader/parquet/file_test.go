@@ -56,6 +56,9 @@ func readFile(t testing.TB, name string) []byte {
 	return b
 }
 
+// packed are the files of testdata with every column, one for each codec at least.
+var packed = []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip", "int96"}
+
 var wantedHeader = strings.Fields("id text f64 f64n f32 i8 i32 i64 u32 u64 flag day ms us ns dec9 dec18 dec38 fixed void")
 
 // wanted is row i of the files of testdata.
@@ -95,7 +98,7 @@ func wanted(i int) []string {
 
 // The same rows come out of every layout, encoding and compression.
 func TestFiles(t *testing.T) {
-	for _, name := range []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip", "int96"} {
+	for _, name := range packed {
 		t.Run(name, func(t *testing.T) {
 			b := readFile(t, name+".parquet")
 			header, rows, err := rendered(bytes.NewReader(b), int64(len(b)))
@@ -177,16 +180,22 @@ func TestRefused(t *testing.T) {
 	}
 }
 
-// A file cut short anywhere, or with bytes changed anywhere, is an error or
-// reads on: it never panics, and a file cut short never reads well.
-func TestDamaged(t *testing.T) {
-	for _, name := range []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip"} {
+// A file cut short at any byte never reads well, whatever it is packed with.
+func TestTruncated(t *testing.T) {
+	for _, name := range packed {
 		whole := readFile(t, name+".parquet")
-		for n := 0; n < len(whole); n += 1 + len(whole)/30 {
+		for n := range whole {
 			if _, _, err := rendered(bytes.NewReader(whole[:n]), int64(n)); err == nil {
 				t.Errorf("%s cut to %d bytes reads well", name, n)
 			}
 		}
+	}
+}
+
+// A file with bytes changed anywhere is an error or reads on: it never panics.
+func TestDamaged(t *testing.T) {
+	for _, name := range packed {
+		whole := readFile(t, name+".parquet")
 		for at := 4; at < len(whole); at += 1 + len(whole)/80 {
 			b := bytes.Clone(whole)
 			b[at] ^= 0x5a

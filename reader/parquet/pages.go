@@ -3,6 +3,7 @@ package parquet
 import (
 	"bytes"
 	"encoding/binary"
+	"errors"
 	"fmt"
 	"io"
 
@@ -69,7 +70,10 @@ func (c *column) nextPage() error {
 		return err
 	}
 	if p.packed, err = readBytes(p.body, p.packed, int(h.CompressedPageSize)); err != nil {
-		return fmt.Errorf("a page is cut short: %w", io.ErrUnexpectedEOF)
+		if errors.Is(err, io.EOF) {
+			err = io.ErrUnexpectedEOF
+		}
+		return fmt.Errorf("a page cannot be read to its end: %w", err)
 	}
 	size := int(h.UncompressedPageSize)
 	switch h.Type {

@@ -282,6 +282,28 @@ func TestOfficeWorkbook(t *testing.T) {
 	)
 }
 
+// A workbook cut short at any byte never reads well.
+func TestTruncated(t *testing.T) {
+	office, err := os.ReadFile("testdata/office.xlsx")
+	if err != nil {
+		t.Fatal(err)
+	}
+	plain := book(t, func(f *excelize.File) {
+		f.SetSheetRow("Sheet1", "A1", &[]any{"id", "n"})
+		f.SetSheetRow("Sheet1", "A2", &[]any{"one", 1})
+	})
+	for _, whole := range [][]byte{office, plain} {
+		if _, _, err := rendered(whole); err != nil {
+			t.Fatal(err)
+		}
+		for n := range whole {
+			if _, _, err := rendered(whole[:n]); err == nil {
+				t.Errorf("cut to %d of %d bytes it reads well", n, len(whole))
+			}
+		}
+	}
+}
+
 func FuzzXLSX(f *testing.F) {
 	f.Add(handmade(f, `<sheetData><row><c t="inlineStr"><is><t>a</t></is></c></row><row r="5"><c r="A5" s="1"><v>46101.5</v></c></row></sheetData>`, nil))
 	f.Add(book(f, func(x *excelize.File) {
