@@ -57,3 +57,43 @@ func BenchmarkSolve(b *testing.B) {
 		})
 	}
 }
+
+// Lines a second of one core where 20 strikes of one expiry, type and volatility
+// share their sweeps, tolerance 1e-4 of the spot; and as 20 chains of one.
+func BenchmarkStrip20(b *testing.B) {
+	four := []pde.Dividend{{Time: .1, Amount: 1}, {Time: .35, Amount: 1}, {Time: .6, Amount: 1}, {Time: .85, Amount: 1}}
+	for _, c := range []struct {
+		name     string
+		sign     float64
+		american bool
+		dividend []pde.Dividend
+	}{
+		{"european", 1, false, four},
+		{"put", -1, true, four},
+		{"call", 1, true, four},
+		{"no_dividends", -1, true, nil},
+	} {
+		chain := pde.Chain{Spot: 100, Time: 1, Rate: .05, Yield: .01, Sign: c.sign, American: c.american, Dividends: c.dividend}
+		for i := range 20 {
+			chain.Strike, chain.Vol = append(chain.Strike, 80+2*float64(i)), append(chain.Vol, .25)
+		}
+		s := pde.Solver{Tolerance: 1e-4}
+		var r pde.Results
+		b.Run(c.name, func(b *testing.B) {
+			for b.Loop() {
+				s.Solve(&chain, &r)
+			}
+			b.ReportMetric(float64(20*b.N)/b.Elapsed().Seconds(), "lines/s")
+		})
+		b.Run(c.name+"/alone", func(b *testing.B) {
+			one := chain
+			for b.Loop() {
+				for i := range chain.Strike {
+					one.Strike, one.Vol = chain.Strike[i:i+1], chain.Vol[i:i+1]
+					s.Solve(&one, &r)
+				}
+			}
+			b.ReportMetric(float64(20*b.N)/b.Elapsed().Seconds(), "lines/s")
+		})
+	}
+}

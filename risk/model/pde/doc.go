@@ -8,14 +8,17 @@
 //
 // A Solver takes a Chain, the options of one type, style and expiry on one
 // underlying, and gives each line its value, all its sensitivities, an estimate
-// of its error, and what is known of early exercise. The work goes through these
-// files:
+// of its error, and what is known of early exercise. Lines of one volatility are
+// swept together, and have the bits that they have alone. The work goes through
+// these files:
 //
 //	chain.go     what goes in and what comes out
 //	solver.go    lines → sweeps, two meshes each, finer ones where the error asks
+//	outcome.go   a sweep, and what is read of its lines
 //	plan.go      how wide, how dense, how many steps
-//	mesh.go      nodes dense at the strike, differences between them
-//	grid.go      a sweep: eight lanes, one for each set of parameters
+//	mesh.go      nodes dense at the spot, differences between them
+//	operator.go  the equation on a mesh: eight lanes, one for each set of parameters
+//	grid.go      a line on its way back in time, from the kink of its payoff
 //	step.go      one step back in time, TR-BDF2
 //	exercise.go  where exercise begins, found inside its cell
 //	anywhere.go  the same where the exercised prices may be any set

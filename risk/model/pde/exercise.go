@@ -2,34 +2,30 @@ package pde
 
 import "math"
 
-// edgeCell is what is known of node i if all nodes before it are exercised.
+// edgeCell is what is known of a node if all nodes before it are exercised, and it
+// is held.
 type edgeCell struct {
 	excess float64 // over exercise, were the node before it worth just that
 	gain   float64 // ½Γ·h², what a cell h of held values adds to exercise at its start
 	pull   float64 // by how much a ghost at the node before raises the excess
 }
 
-// cell examines node i of lane j, the first that is held.
+// gain is that of node i of lane j, one end of a cell h.
 //
 // At the boundary of optimal exercise the value leaves the payoff smoothly,
-// V − payoff ≈ ½Γ(S−B)², and the equation itself gives ½σ²S²Γ = w(qS − rK), K
-// the strike, which is where pay is 0.
-func (g *grid) cell(i, j int, offset float64) edgeCell {
-	e := g.z[i][j] - (g.pay[i] + offset)
-	if i == 0 {
-		return edgeCell{excess: e}
-	}
-	c := edgeCell{pull: g.g[i][j]}
-	c.excess = math.FMA(c.pull, g.pay[i-1]+offset, e)
-	c.gain = g.gain(i, j, g.s[i]-g.s[i-1])
-	return c
+// V − payoff ≈ ½Γ(S−B)², and the equation itself gives ½σ²S²Γ = w(qS − rK).
+func (g *grid) gain(i, j int, h float64) float64 {
+	x := h / g.s[i]
+	return g.gainOf(i, j, float64(x*x))
 }
 
-func (g *grid) gain(i, j int, h float64) float64 {
-	s := g.s[i]
-	strike := s - float64(g.sign*g.pay[i])
-	x := h / float64(s*g.vol[j])
-	return max(0, float64(g.sign*(float64(g.yield[j]*s)-float64(g.rate[j]*strike)))*float64(x*x))
+// gainOf is gain for (h/S)².
+func (g *grid) gainOf(i, j int, ratio2 float64) float64 {
+	x := float64((float64(g.signYield[j]*g.s[i]) - g.interest[j]) * float64(ratio2*g.perVar[j]))
+	if x > 0 {
+		return x
+	}
+	return 0
 }
 
 // ghost places the boundary within the cell before a held node, at the share θ
@@ -39,7 +35,11 @@ func (c *edgeCell) ghost() float64 {
 		return 0
 	}
 	p := 1 - c.pull
-	x := (1 - math.Sqrt(max(0, 1-float64(p*(1-c.excess/c.gain))))) / p
+	d := 1 - float64(p*(1-c.excess/c.gain))
+	if !(d > 0) {
+		d = 0
+	}
+	x := (1 - math.Sqrt(d)) / p
 	return c.gain * float64(x*x)
 }
 
@@ -54,68 +54,52 @@ func (c *edgeCell) ghost() float64 {
 // Source: M. J. Brennan & E. S. Schwartz, The valuation of American put options,
 // J. Finance 32 (1977), for the substitution.
 func (g *grid) substitute(dst []row, offset *row) {
-	if g.right != oneSided {
-		g.substituteHeld(dst, 0, new(row))
-		return
+	var x row
+	from := 0
+	if g.right == oneSided {
+		low, high := g.search(offset)
+		g.substituteMixed(dst, low, high, offset, &x)
+		from = high + 1
 	}
-	n := len(g.s)
-	low, high := n, 0
+	g.substituteHeld(dst, from, &x)
+}
+
+// search moves the edges to where they are now, and returns the first nodes that
+// are held in some lane and in all.
+//
+// A node is held, all nodes before it being exercised, if it is worth more than
+// exercise, or would be if it saw the continuation; the last one always is.
+func (g *grid) search(offset *row) (low, high int) {
+	last := len(g.s) - 1
+	from := min(g.edge[base]+1, last) // nodes from from to until−1 have been examined
+	until := from
+	held := func(i, j int) bool {
+		if i < from {
+			g.examine(i, from, offset)
+			from = i
+		}
+		if i >= until {
+			g.examine(until, i+1, offset)
+			until = i + 1
+		}
+		return g.held[i]>>j&1 > 0
+	}
+	low = last
 	for j := range lanes {
-		i := g.search(j, offset[j])
+		i := min(g.edge[j]+1, last)
+		if held(i, j) {
+			for i > 0 && held(i-1, j) {
+				i--
+			}
+		} else {
+			for i++; i < last && !held(i, j); i++ {
+			}
+			i = min(i, last)
+		}
+		if i != g.edge[j]+1 {
+			g.moveEdge(j, i-1)
+		}
 		low, high = min(low, i), max(high, i)
 	}
-	var x row
-	for i := range low {
-		for j := range lanes {
-			x[j] = g.pay[i] + offset[j]
-		}
-		dst[i] = x
-	}
-	for i := low; i <= high; i++ {
-		for j := range lanes {
-			switch e := g.edge[j]; {
-			case i <= e:
-				x[j] = g.pay[i] + offset[j]
-			case i == e+1:
-				c := g.cell(i, j, offset[j])
-				g.ghost[j] = c.ghost()
-				x[j] = g.pay[i] + offset[j] + fma(c.pull, g.ghost[j], c.excess)
-			default:
-				x[j] = fma(g.g[i][j], x[j], g.z[i][j])
-			}
-		}
-		dst[i] = x
-	}
-	g.substituteHeld(dst, high+1, &x)
-}
-
-// search moves the edge of lane j to where it is now, and returns the first node
-// that is held, len(s)−1 if none is.
-func (g *grid) search(j int, offset float64) int {
-	n := len(g.s)
-	i := min(g.edge[j]+1, n-1)
-	if g.held(i, j, offset) {
-		for i > 0 && g.held(i-1, j, offset) {
-			i--
-		}
-	} else {
-		for i++; i < n-1 && !g.held(i, j, offset); i++ {
-		}
-		i = min(i, n-1)
-	}
-	g.edge[j] = i - 1
-	return i
-}
-
-// held reports whether the boundary lies before node i, all nodes before it being
-// exercised: whether it is worth more than exercise, or would be if it saw the
-// continuation.
-func (g *grid) held(i, j int, offset float64) bool {
-	e := g.z[i][j] - (g.pay[i] + offset)
-	if i == 0 {
-		return e > 0
-	}
-	pull := g.g[i][j]
-	e = fma(pull, g.pay[i-1]+offset, e)
-	return e > 0 || e > -float64(pull*g.gain(i, j, g.s[i]-g.s[i-1]))
+	return low, high
 }

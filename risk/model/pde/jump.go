@@ -1,5 +1,20 @@
 package pde
 
+import (
+	"math"
+	"math/bits"
+)
+
+// drop is a fall of the price by an amount, as the edges of the cells see it: the
+// integral up to edge i comes from the four edges from cell[i] on with weight[i],
+// for edges from from to until−1; the others come from below the mesh.
+type drop struct {
+	by          float64
+	from, until int
+	cell        []int
+	weight      [][4]float64
+}
+
 // exDate takes the values back over an ex-date: from just after it to just
 // before. drop is what the price falls by, 0 where only what exercise brings
 // changes; offset is that just before.
@@ -14,13 +29,11 @@ func (g *grid) exDate(drop float64, offset *row) {
 		clear(g.any.after)
 	}
 	if g.right != never {
-		for j := range lanes {
-			g.exerciseNow(j)
-		}
+		g.exerciseNow()
 	}
 }
 
-// shift replaces V(S) by V(max(S−drop, 0)).
+// shift replaces V(S) by V(max(S−by, 0)).
 //
 // Computes cell means: the running integral of V over the cells is interpolated
 // at the shifted edges, by a cubic through four of them, and differenced. What
@@ -29,65 +42,63 @@ func (g *grid) exDate(drop float64, offset *row) {
 // is linear, and flat below a price of 0.
 // Source: conservative semi-Lagrangian remapping, as in R. Laprise & A. Plante,
 // Monthly Weather Review 123 (1995).
-func (g *grid) shift(drop float64) {
-	n := len(g.s)
-	e := g.edges[:n+1]
-	sum := g.sum[:n+1]
-	ascending := e[n] > e[0]
-	// from the low prices up, where the small sums are
-	if ascending {
-		sum[0] = row{}
-		for i := range n {
-			h := e[i+1] - e[i]
-			for j := range lanes {
-				sum[i+1][j] = sum[i][j] + float64(h*g.v[i][j])
-			}
-		}
+func (g *grid) shift(by float64) {
+	if by != g.drop.by {
+		g.drop.see(&g.mesh, by)
+	}
+	if g.s[1] > g.s[0] { // from the low prices up, where the small sums are
+		g.integrateUp()
 	} else {
-		sum[n] = row{}
-		for i := n - 1; i >= 0; i-- {
-			h := e[i+1] - e[i]
-			for j := range lanes {
-				sum[i][j] = sum[i+1][j] - float64(h*g.v[i][j])
-			}
-		}
+		g.integrateDown()
 	}
 	tail := g.tail()
-	cell := 0 // the first of four edges around x
-	var before row
+	for i := range g.drop.from {
+		tail.integral(&g.at[i], g.edges[i]-by)
+	}
+	for i := g.drop.until; i < len(g.edges); i++ {
+		tail.integral(&g.at[i], g.edges[i]-by)
+	}
+	g.remap()
+}
+
+// see finds where the edges of the cells fall to.
+func (d *drop) see(m *mesh, by float64) {
+	n := len(m.s)
+	e := m.edges[:n+1]
+	ascending := e[n] > e[0]
+	d.by = by
+	d.cell, d.weight = resize(d.cell, n+1), resize(d.weight, n+1)
+	d.from, d.until = 0, n+1
+	lowest := min(e[0], e[n])
+	cell := 0
 	for i := range n + 1 {
-		x := e[i] - drop
-		var at row
-		if x < tail.edge {
-			tail.integral(&at, x)
-		} else {
-			for cell < n-3 && (e[cell+2] > x) != ascending {
-				cell++
+		x := e[i] - by
+		if x < lowest {
+			if ascending {
+				d.from = i + 1
+			} else {
+				d.until = min(d.until, i)
 			}
-			for cell > 0 && (e[cell+1] > x) == ascending {
-				cell--
-			}
-			w := g.cubic(cell, x)
-			g.blend(&at, sum[cell:cell+4:cell+4], &w)
+			continue
 		}
-		if i > 0 {
-			h := e[i] - e[i-1]
-			for j := range lanes {
-				g.v[i-1][j] = (at[j] - before[j]) / h
-			}
+		for cell < n-3 && (e[cell+2] > x) != ascending {
+			cell++
 		}
-		before = at
+		for cell > 0 && (e[cell+1] > x) == ascending {
+			cell--
+		}
+		d.cell[i], d.weight[i] = cell, m.cubic(cell, x)
 	}
 }
 
 // cubic returns the weights of the integrals at four edges, the first being cell,
 // in the cubic at x.
-func (g *grid) cubic(cell int, x float64) (w [4]float64) {
-	if len(g.over) == 0 { // for this mesh not known yet
-		g.over = resize(g.over, len(g.edges)-3)
-		for i := range g.over {
-			p := g.edges[i : i+4]
-			g.over[i] = [4]float64{
+func (m *mesh) cubic(cell int, x float64) (w [4]float64) {
+	if len(m.over) == 0 { // for this mesh not known yet
+		m.over = resize(m.over, len(m.edges)-3)
+		for i := range m.over {
+			p := m.edges[i : i+4]
+			m.over[i] = [4]float64{
 				1 / float64(float64((p[0]-p[1])*(p[0]-p[2]))*(p[0]-p[3])),
 				1 / float64(float64((p[1]-p[0])*(p[1]-p[2]))*(p[1]-p[3])),
 				1 / float64(float64((p[2]-p[0])*(p[2]-p[1]))*(p[2]-p[3])),
@@ -95,7 +106,7 @@ func (g *grid) cubic(cell int, x float64) (w [4]float64) {
 			}
 		}
 	}
-	p, o := g.edges[cell:cell+4], &g.over[cell]
+	p, o := m.edges[cell:cell+4], &m.over[cell]
 	a, b, c, d := x-p[0], x-p[1], x-p[2], x-p[3]
 	ab, cd := float64(a*b), float64(c*d)
 	return [4]float64{float64(b * cd * o[0]), float64(a * cd * o[1]), float64(ab * d * o[2]), float64(ab * c * o[3])}
@@ -130,44 +141,56 @@ func (t *lowTail) integral(at *row, x float64) {
 	}
 }
 
-// exerciseNow exercises lane j wherever that brings more, in the mean over each
-// cell: the kink that this leaves lies anywhere between nodes.
-func (g *grid) exerciseNow(j int) {
+// exerciseNow exercises wherever that brings more. The kink that this leaves lies
+// anywhere between nodes.
+func (g *grid) exerciseNow() {
 	n := len(g.s)
-	offset := g.offset[j]
-	g.edge[j] = -1
-	before, d := 0.0, g.pay[0]+offset-g.v[0][j]
-	for i := range n {
-		after := 0.0
-		if i < n-1 {
-			after = g.pay[i+1] + offset - g.v[i+1][j]
+	g.exceed()
+	for i := 1; i < n; i++ {
+		for lanes := g.more[i] ^ g.more[i-1]; lanes != 0; lanes &= lanes - 1 {
+			j := bits.TrailingZeros8(lanes)
+			y, slope := g.crossing(i, j)
+			before, after := g.kink(i, y)
+			g.v[i-1][j] += float64(slope * before)
+			g.v[i][j] += float64(slope * after)
 		}
-		a, b := float64(0.5*(before+d)), float64(0.5*(d+after))
-		if i == 0 {
-			a = d
+	}
+	for j := range lanes {
+		i := 0
+		for i < n && g.z[i][j] > 0 {
+			i++
 		}
-		if i == n-1 {
-			b = d
-		}
-		if d > 0 && g.edge[j] == i-1 {
-			g.edge[j] = i
-		}
+		g.moveEdge(j, i-1)
 		if g.right == anywhere {
-			g.any.on[j][i] = d > 0
+			for i := range n {
+				g.any.on[j][i] = g.z[i][j] > 0
+			}
 		}
-		if a > 0 || d > 0 || b > 0 {
-			g.v[i][j] += g.gainMean(i, a, d, b)
-		}
-		before, d = d, after
 	}
 }
 
-// gainMean is the mean of max(x, 0) over cell i, x going linearly from a at the
-// edge before to d at the node and to b at the edge after.
-func (g *grid) gainMean(i int, a, d, b float64) float64 {
-	if a >= 0 && d >= 0 && b >= 0 {
-		return d
+// crossing finds where z of lane j, which changes its sign between nodes i−1 and i,
+// is 0, as a share y of the way, and how steep it is there.
+//
+// Computes one step of Newton from the secant, on the parabola through both nodes
+// whose curvature is the mean of those before and after. The secant alone moves
+// the kink by a share of the cell that depends on where in the cell it lies, and
+// with it the price, by up to 7·10⁻⁷ of the spot rather than 2·10⁻⁸.
+func (g *grid) crossing(i, j int) (y, slope float64) {
+	d, e := g.z[i-1][j], g.z[i][j]
+	y = d / (d - e)
+	h := g.s[i] - g.s[i-1]
+	secant := (e - d) / h
+	if i == 1 || i == len(g.s)-1 {
+		return y, math.Abs(secant)
 	}
-	h, k := g.s[i]-g.edges[i], g.edges[i+1]-g.s[i]
-	return (float64(h*positiveMean(a, d, float64(0.5*(a+d)))) + float64(k*positiveMean(d, b, float64(0.5*(d+b))))) / (h + k)
+	before := (d - g.z[i-2][j]) / (g.s[i-1] - g.s[i-2])
+	after := (g.z[i+1][j] - e) / (g.s[i+1] - g.s[i])
+	bend := 0.5 * float64(h*((secant-before)/(g.s[i]-g.s[i-2])+(after-secant)/(g.s[i+1]-g.s[i-1])))
+	slope = secant + float64(bend*(2*y-1))
+	if x := slope / secant; !(x > 0.5 && x < 2) { // no parabola: another kink is near
+		return y, math.Abs(secant)
+	}
+	y = min(1, max(0, y-float64(bend*float64(y*(y-1)))/slope))
+	return y, math.Abs(secant + float64(bend*(2*y-1)))
 }

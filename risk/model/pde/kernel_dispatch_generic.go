@@ -4,14 +4,28 @@ package pde
 
 func (g *grid) explicitHeld(from, until int, y *row) { g.explicitHeldGeneric(from, until, y) }
 
-func (g *grid) explicitExercised(from, until int, y, held *row) {
-	g.explicitExercisedGeneric(from, until, y, held)
-}
+func (g *grid) explicitExercised(until int, y, held *row) { g.explicitExercisedGeneric(until, y, held) }
+
+func (g *grid) examine(from, until int, offset *row) { g.examineGeneric(from, until, offset) }
 
 func (g *grid) backwardDifference() { g.backwardDifferenceGeneric() }
 
 func (g *grid) substituteHeld(dst []row, from int, x *row) { g.substituteHeldGeneric(dst, from, x) }
 
-func (g *grid) factorLanes(drift, halfVar, growth *row) { g.factorGeneric(drift, halfVar, growth) }
+func (o *operator) factorLanes(drift, halfVar, growth *row) { o.factorGeneric(drift, halfVar, growth) }
 
-func (g *grid) blend(dst *row, v []row, w *[4]float64) { blendGeneric(dst, v, w) }
+func (g *grid) explicitMixed(from, until int, y, held *row) {
+	g.explicitMixedGeneric(from, until, y, held)
+}
+
+func (g *grid) substituteMixed(dst []row, from, last int, offset, x *row) {
+	g.substituteMixedGeneric(dst, from, last, offset, x)
+}
+
+func (g *grid) integrateUp() { g.integrateUpGeneric() }
+
+func (g *grid) integrateDown() { g.integrateDownGeneric() }
+
+func (g *grid) remap() { g.remapGeneric() }
+
+func (g *grid) exceed() { g.exceedGeneric() }

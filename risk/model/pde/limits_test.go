@@ -3,7 +3,6 @@ package pde_test
 import (
 	"math"
 	"math/rand/v2"
-	"sync"
 	"testing"
 
 	"nightbook/risk/model/pde"
@@ -229,41 +228,6 @@ func TestInvalid(t *testing.T) {
 	if g := solve(&s, good); g.status != pde.Held || !(g.price > 0) {
 		t.Errorf("the good one: %+v", g)
 	}
-}
-
-// Lines that share a sweep come out as they do alone, and keep their places; a
-// solver may be used by several goroutines.
-func TestChain(t *testing.T) {
-	var s pde.Solver
-	c := pde.Chain{Spot: 100, Time: .5, Rate: .04, Yield: .02, Sign: -1, American: true}
-	for i := range 21 {
-		c.Strike = append(c.Strike, 70+3*float64(i))
-		c.Vol = append(c.Vol, []float64{.2, .25, .2}[i%3])
-	}
-	c.Vol[7], c.Strike[9] = -1, math.NaN()
-	var together pde.Results
-	s.Solve(&c, &together)
-	var wait sync.WaitGroup
-	for range 4 {
-		wait.Go(func() {
-			for i := range c.Strike {
-				alone := solve(&s, line{s: 100, k: c.Strike[i], t: .5, r: .04, q: .02, v: c.Vol[i], w: -1, american: true})
-				got := row(&together, i)
-				if got.status != alone.status {
-					t.Errorf("line %d: status %v, alone %v", i, got.status, alone.status)
-				}
-				if i == 7 || i == 9 {
-					if got.status != pde.Invalid {
-						t.Errorf("line %d: %v", i, got.status)
-					}
-					continue
-				}
-				near(t, "price", got.price, alone.price, 3e-3)
-				near(t, "delta", got.delta, alone.delta, 1e-3)
-			}
-		})
-	}
-	wait.Wait()
 }
 
 func TestNothingAllocated(t *testing.T) {

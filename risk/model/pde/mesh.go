@@ -22,6 +22,9 @@ type layout struct {
 type mesh struct {
 	s        []float64
 	edges    []float64    // of the cells, halfway between nodes: len(s)+1
+	span     []float64    // from edge to edge
+	perSpan  []float64    // 1/span
+	ratio2   []float64    // (the way from the node before, over S)²
 	lo2, up2 []float64    // weights of the neighbours before and after in S²·∂²/∂S²
 	lo1, up1 []float64    // and in S·∂/∂S
 	over     [][4]float64 // denominators of cubics through four edges; see cubic
@@ -56,6 +59,7 @@ func (m *mesh) weigh() {
 	n := len(m.s)
 	m.lo1, m.up1, m.lo2, m.up2 = resize(m.lo1, n), resize(m.up1, n), resize(m.lo2, n), resize(m.up2, n)
 	m.edges = resize(m.edges, n+1)
+	m.span, m.perSpan, m.ratio2 = resize(m.span, n), resize(m.perSpan, n), resize(m.ratio2, n)
 	for i := 1; i < n-1; i++ {
 		s := m.s[i]
 		h, k := s-m.s[i-1], m.s[i+1]-s
@@ -68,8 +72,15 @@ func (m *mesh) weigh() {
 	m.up1[n-1], m.lo2[n-1], m.up2[n-1] = 0, 0, 0
 	m.lo1[n-1] = m.s[n-1] / (m.s[n-2] - m.s[n-1])
 	m.edges[0], m.edges[n] = m.s[0]-float64(0.5*(m.s[1]-m.s[0])), m.s[n-1]+float64(0.5*(m.s[n-1]-m.s[n-2]))
+	m.ratio2[0] = 0
 	for i := 1; i < n; i++ {
 		m.edges[i] = 0.5 * (m.s[i-1] + m.s[i])
+		x := (m.s[i] - m.s[i-1]) / m.s[i]
+		m.ratio2[i] = x * x
+	}
+	for i := range n {
+		m.span[i] = m.edges[i+1] - m.edges[i]
+		m.perSpan[i] = 1 / m.span[i]
 	}
 }
 

@@ -36,92 +36,134 @@ type outcome struct {
 }
 
 // aim finds where the lines of the group are to be read.
-func (w *work) aim(c *Chain, strike float64) {
+func (w *work) aim(c *Chain) {
 	w.at = resize(w.at, len(w.group))
 	for k, i := range w.group {
 		for j := range lanes {
 			x := c.Spot
 			if c.Convention == Escrowed {
-				escrow, _ := w.divs.worth(w.fine.rate[j], 0)
+				escrow, _ := w.divs.worth(w.op.rate[j], 0)
 				x -= escrow
 			}
-			w.at[k][j] = x / w.plan.unit * (strike / c.Strike[i])
+			unit := w.plan.unit
+			if w.similar {
+				unit = c.Strike[i]
+			}
+			w.at[k][j] = x / unit
 		}
 	}
 }
 
+// open prepares the sweep of a level: a grid for each strike, or one for the
+// strike 1.
+func (w *work) open(level int, c *Chain) []grid {
+	w.op.open(&w.plan.layout, level, c.Sign)
+	n := len(w.group)
+	if w.similar {
+		n = 1
+	}
+	if n > len(w.grids) {
+		w.grids = append(w.grids, make([]grid, n-len(w.grids))...)
+	}
+	right := w.right(c)
+	grids := w.grids[:n]
+	for k := range grids {
+		g := &grids[k]
+		g.operator, g.sign, g.right = &w.op, c.Sign, right
+		if w.similar {
+			g.open(1)
+		} else {
+			g.open(c.Strike[w.group[k]] / w.plan.unit)
+		}
+	}
+	return grids
+}
+
 // run sweeps from expiry to now on one level and reads the lines of the group,
 // then one step further for what needs differences in time.
-func (w *work) run(g *grid, level int, c *Chain, strike float64, out []outcome) {
-	g.open(&w.plan.layout, level, strike/w.plan.unit)
+func (w *work) run(level int, c *Chain, out []outcome) {
+	grids := w.open(level, c)
 	var mid, end row
 	var l leg
 	var dt float64
 	for _, l = range w.plan.legs {
 		dt = l.dt / float64(int(1)<<level)
 		if l.event {
-			w.escrow(&end, g, c, &l, l.from)
+			w.escrow(&end, c, &l, l.from)
 			drop := l.drop / w.plan.unit
 			if c.Convention == Escrowed {
 				drop = 0
 			}
-			g.exDate(drop, &end)
+			for k := range grids {
+				grids[k].exDate(drop, &end)
+			}
 		}
 		for m := range l.steps << level {
-			w.escrow(&mid, g, c, &l, l.from-float64((float64(m)+gamma)*dt))
-			w.escrow(&end, g, c, &l, l.from-float64(float64(m+1)*dt))
-			g.step(dt, &mid, &end)
+			w.escrow(&mid, c, &l, l.from-float64((float64(m)+gamma)*dt))
+			w.escrow(&end, c, &l, l.from-float64(float64(m+1)*dt))
+			for k := range grids {
+				grids[k].step(dt, &mid, &end)
+			}
 		}
 	}
-	var aim reading
-	dv, dr := bumps(c, g.vol[base])
-	u := w.plan.unit
 	for k := range out {
-		o, x := &out[k], &w.at[k]
-		now := g.read(&aim, g.v, base, x[base])
-		vu, vd := g.read(&aim, g.v, volUp, x[volUp]), g.read(&aim, g.v, volDown, x[volDown])
-		ru, rd := g.read(&aim, g.v, rateUp, x[rateUp]), g.read(&aim, g.v, rateDown, x[rateDown])
-		qu, qd := g.read(&aim, g.v, yieldUp, x[yieldUp]), g.read(&aim, g.v, yieldDown, x[yieldDown])
-		*o = outcome{
-			price: now.value, delta: now.slope, gamma: now.curve, exercised: now.exercised,
-			vega:     (vu.value - vd.value) / (2 * dv),
-			vanna:    (vu.slope - vd.slope) / (2 * dv),
-			volga:    ((vu.value - now.value) - (now.value - vd.value)) / float64(dv*dv),
-			rho:      (ru.value - rd.value) / (2 * dr),
-			carryRho: (qu.value - qd.value) / (2 * dr),
-		}
-		o.boundary, o.beyond = g.boundaries(x[base], base)
+		g := &grids[min(k, len(grids)-1)]
+		out[k] = g.outcome(&w.at[k], c)
 		// with a fixed spot the lognormal part moves as the escrow does
-		shift := w.escrowChange(c, &l, dt) / u
-		later := g.read(&aim, g.prev, base, x[base]-shift)
-		o.theta, o.charm = later.value, later.slope
+		shift := w.escrowChange(c, &l, dt) / w.plan.unit
+		var aim reading
+		later := g.read(&aim, g.prev, base, w.at[k][base]-shift)
+		out[k].theta, out[k].charm = later.value, later.slope
 	}
-	w.escrow(&mid, g, c, &l, -float64(gamma*dt))
-	w.escrow(&end, g, c, &l, -dt)
-	g.step(dt, &mid, &end)
+	w.escrow(&mid, c, &l, -float64(gamma*dt))
+	w.escrow(&end, c, &l, -dt)
+	for k := range grids {
+		grids[k].step(dt, &mid, &end)
+	}
 	for k := range out {
-		o := &out[k]
-		shift := w.escrowChange(c, &l, -dt) / u
+		g, o := &grids[min(k, len(grids)-1)], &out[k]
+		shift := w.escrowChange(c, &l, -dt) / w.plan.unit
+		var aim reading
 		earlier := g.read(&aim, g.v, base, w.at[k][base]-shift)
 		o.theta = (o.theta - earlier.value) / (2 * dt)
 		o.charm = (o.charm - earlier.slope) / (2 * dt)
 	}
 }
 
+// outcome reads a line, but for its derivatives by time.
+func (g *grid) outcome(x *row, c *Chain) outcome {
+	var aim reading
+	dv, dr := bumps(c, g.vol[base])
+	now := g.read(&aim, g.v, base, x[base])
+	vu, vd := g.read(&aim, g.v, volUp, x[volUp]), g.read(&aim, g.v, volDown, x[volDown])
+	ru, rd := g.read(&aim, g.v, rateUp, x[rateUp]), g.read(&aim, g.v, rateDown, x[rateDown])
+	qu, qd := g.read(&aim, g.v, yieldUp, x[yieldUp]), g.read(&aim, g.v, yieldDown, x[yieldDown])
+	o := outcome{
+		price: now.value, delta: now.slope, gamma: now.curve, exercised: now.exercised,
+		vega:     (vu.value - vd.value) / (2 * dv),
+		vanna:    (vu.slope - vd.slope) / (2 * dv),
+		volga:    ((vu.value - now.value) - (now.value - vd.value)) / float64(dv*dv),
+		rho:      (ru.value - rd.value) / (2 * dr),
+		carryRho: (qu.value - qd.value) / (2 * dr),
+	}
+	o.boundary, o.beyond = g.boundaries(x[base], base)
+	return o
+}
+
 // escrow sets what exercise brings beyond the lognormal part of the price.
-func (w *work) escrow(offset *row, g *grid, c *Chain, l *leg, time float64) {
+func (w *work) escrow(offset *row, c *Chain, l *leg, time float64) {
 	if c.Convention != Escrowed {
 		return
 	}
-	k := g.sign / w.plan.unit
+	k := c.Sign / w.plan.unit
 	ahead := w.divs[l.ahead:]
-	x, _ := ahead.worth(g.rate[base], time)
+	x, _ := ahead.worth(w.op.rate[base], time)
 	for j := range lanes {
 		offset[j] = float64(k * x)
 	}
-	x, _ = ahead.worth(g.rate[rateUp], time)
+	x, _ = ahead.worth(w.op.rate[rateUp], time)
 	offset[rateUp] = float64(k * x)
-	x, _ = ahead.worth(g.rate[rateDown], time)
+	x, _ = ahead.worth(w.op.rate[rateDown], time)
 	offset[rateDown] = float64(k * x)
 }
 

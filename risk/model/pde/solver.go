@@ -21,11 +21,13 @@ type Solver struct {
 
 // work is the scratch of one call.
 type work struct {
-	coarse, fine grid
+	op           operator
+	grids        []grid // one for each strike of a strip
 	plan         plan
 	divs         schedule
 	done         []bool
 	group        []int     // the lines of one sweep
+	similar      bool      // they are read from one grid, at S/K
 	at           []row     // their lognormal prices, on the mesh, by lane
 	older, newer []outcome // read from the coarser mesh and the finer one
 }
@@ -43,8 +45,11 @@ const finestLevel = 3
 // both ways, extrapolated to none; see the package comment. Sensitivities to the
 // spot and to time are read from the finished values, those to volatility, rate
 // and yield from lanes that sweep along on the same mesh with one of them moved
-// by 1.5 % and 0.001/max(1, T). Lines of one volatility share a sweep where there
-// are no dividends, for then V depends on S/K only.
+// by 1.5 % and 0.001/max(1, T).
+//
+// Lines of one volatility share the mesh, the matrices of all steps and their
+// factors, the remapping of ex-dates, and nearby memory. None of these depends on
+// a strike: a line has the same bits alone and among any others.
 //
 // Shapes: Strike and Vol have one length; r is resized to it, and nothing is
 // allocated once r and the solver have seen a chain of that length.
@@ -114,53 +119,69 @@ func (w *work) solve(c *Chain, r *Results, tolerance float64) {
 	}
 }
 
+// Lines that share a sweep.
+const (
+	// Without cash dividends V depends on S/K only, and a line is read at S/K from
+	// the sweep of the strike 1, if the two are within so many σ√T of each other.
+	similarWithin = 2
+	// The others share the equation and its mesh; so many of them are a strip, for
+	// their values to stay in a near cache.
+	stripWidth = 8
+)
+
+// similar reports whether line i is read at S/K.
+func (w *work) isSimilar(i int, c *Chain, core float64) bool {
+	sd := float64(c.Vol[i] * math.Sqrt(c.Time))
+	return len(w.divs) == 0 && math.Abs(lnRatio(core, c.Strike[i])) <= float64(similarWithin*sd)
+}
+
 // gather collects the lines that share the sweep of line i.
 func (w *work) gather(i int, c *Chain, core float64) {
 	w.group = append(w.group[:0], i)
-	if len(w.divs) > 0 {
-		return
-	}
-	for k := i + 1; k < len(c.Strike); k++ {
-		if c.Vol[k] == c.Vol[i] && !w.done[k] && c.valid(k, core) {
+	w.similar = w.isSimilar(i, c, core)
+	for k := i + 1; k < len(c.Strike) && (w.similar || len(w.group) < stripWidth); k++ {
+		if c.Vol[k] == c.Vol[i] && !w.done[k] && c.valid(k, core) && w.isSimilar(k, c, core) == w.similar {
 			w.group = append(w.group, k)
 			w.done[k] = true
 		}
 	}
 }
 
-// sweep prices the lines of a group: on level 0 and 1, and on further levels
-// until the estimated error of all is within the tolerance.
+// sweep prices the lines of a group: on level 0 and 1, and each on further levels
+// until its estimated error is within the tolerance. What comes out for a line
+// does not depend on the others.
 func (w *work) sweep(c *Chain, r *Results, core, tolerance float64) {
-	lead := w.group[0]
-	strike := c.Strike[lead]
-	lo, hi := core, core // where lines share a sweep, prices over their strikes, times that of the first
-	for _, i := range w.group {
-		x := float64(core * (strike / c.Strike[i]))
-		lo, hi = min(lo, x), max(hi, x)
+	vol := c.Vol[w.group[0]]
+	if w.similar {
+		away := float64(similarWithin * float64(vol*math.Sqrt(c.Time)))
+		w.plan.lay(1, exp(-away), exp(away), vol, c, w.divs, tolerance)
+	} else {
+		w.plan.lay(core, core, core, vol, c, w.divs, tolerance)
 	}
-	w.plan.lay(lo, hi, strike, c.Vol[lead], c, w.divs, tolerance)
-	for _, g := range [...]*grid{&w.coarse, &w.fine} {
-		g.terms = bumped(c, c.Vol[lead])
-		g.sign, g.right = c.Sign, w.right(c)
-	}
-	w.aim(c, strike)
+	w.op.terms = bumped(c, vol)
+	w.aim(c)
 	w.older, w.newer = resize(w.older, len(w.group)), resize(w.newer, len(w.group))
-	w.run(&w.coarse, 0, c, strike, w.older)
-	for level := 1; ; level++ {
-		w.run(&w.fine, level, c, strike, w.newer)
-		worst := 0.0
+	w.run(0, c, w.older)
+	for level := 1; len(w.group) > 0; level++ {
+		w.run(level, c, w.newer[:len(w.group)])
+		left := 0
 		for k, i := range w.group {
-			scale := c.Strike[i] / strike * w.plan.unit
-			w.newer[k].store(&w.older[k], r, i, c, w.divs, &w.plan, level, scale)
-			worst = max(worst, r.Error[i])
-			if r.Error[i] > tolerance*c.Spot {
-				r.Status[i] = Uncertain
+			scale := w.plan.unit
+			if w.similar {
+				scale = c.Strike[i]
 			}
+			w.newer[k].store(&w.older[k], r, i, c, w.divs, &w.plan, level, scale)
+			if r.Error[i] <= tolerance*c.Spot {
+				continue
+			}
+			if level == finestLevel {
+				r.Status[i] = Uncertain
+				continue
+			}
+			w.group[left], w.at[left], w.older[left] = i, w.at[k], w.newer[k]
+			left++
 		}
-		if worst <= tolerance*c.Spot || level == finestLevel {
-			return
-		}
-		w.older, w.newer = w.newer, w.older
+		w.group = w.group[:left]
 	}
 }
 

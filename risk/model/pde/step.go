@@ -26,28 +26,23 @@ func (g *grid) step(dt float64, offsetMid, offset *row) {
 		g.stepAnywhere(offsetMid, offset)
 		return
 	}
-	n := len(g.s)
 	// nodes before low are exercised in all lanes, nodes from high on in none
-	low, high := 1, 1
+	low, high := 0, 0
 	if g.right == oneSided {
+		n := len(g.s)
 		low = n
 		for _, e := range g.edge {
 			low, high = min(low, e+1), max(high, e+2)
 		}
-		low, high = max(low, 1), min(high, n-1)
-		low = min(low, high)
+		high = min(high, n)
 	}
 	var y, held row
 	for j := range lanes {
 		held[j] = float64(0.5 * (offsetMid[j] - g.offset[j]))
 	}
-	g.explicitNode(n-1, &y, offsetMid)
-	g.explicitHeld(high, n-1, &y)
-	for i := high - 1; i >= low; i-- {
-		g.explicitNode(i, &y, offsetMid)
-	}
-	g.explicitExercised(1, low, &y, &held)
-	g.explicitNode(0, &y, offsetMid)
+	g.explicitHeld(high, len(g.s), &y)
+	g.explicitMixed(low, high, &y, &held)
+	g.explicitExercised(low, &y, &held)
 	g.substitute(g.mid, offsetMid)
 	g.backwardDifference()
 	g.v, g.prev = g.prev, g.v
@@ -55,29 +50,16 @@ func (g *grid) step(dt float64, offsetMid, offset *row) {
 	g.offset = *offset
 }
 
-// explicitNode is a row of the first stage in its general form.
-func (g *grid) explicitNode(i int, y, offsetMid *row) {
-	for j := range lanes {
-		y[j] = fma(g.f[i][j], y[j], g.trapezoid(i, j, offsetMid))
-		g.z[i][j] = y[j] * g.inv[i][j]
-	}
-}
-
-// trapezoid is V₀ + k·∂V₀ at any node.
+// trapezoid is V₀ + k·∂V₀ at a node where exercised prices may be any set.
 //
 // An exercised value changes as exercise does, unless holding would gain more.
 // The difference across the edge sees, in place of an exercised value, the smooth
 // continuation of the held ones.
 func (g *grid) trapezoid(i, j int, offsetMid *row) float64 {
 	a, b, c := g.v[max(i-1, 0)][j], g.v[i][j], g.v[min(i+1, len(g.s)-1)][j]
-	switch {
-	case g.right == oneSided && i == g.edge[j]+1:
-		a += g.ghost[j]
-	case g.right == anywhere:
-		a, c = a+g.any.before[i][j], c+g.any.after[i][j]
-	}
+	a, c = a+g.any.before[i][j], c+g.any.after[i][j]
 	x := fma(g.lo[i][j], a, fma(g.up[i][j], c, float64((2-g.di[i][j])*b)))
-	if g.exercised(i, j) {
+	if g.any.on[j][i] {
 		x = max(x, b+float64(0.5*(offsetMid[j]-g.offset[j])))
 	}
 	return x
