@@ -58,7 +58,7 @@ const noRoute = 255
 // Reject; rows refused before are left alone. The error is that of a context that
 // ended before the batch was done, which then must not be used.
 func (e *Engine) Price(ctx context.Context, b *schema.Batch, w *Worker) error {
-	w.run.Methods.Interrupted = func() bool { return ctx.Err() != nil }
+	w.run.Methods.InterruptedBy(func() bool { return ctx.Err() != nil })
 	for _, s := range b.Results.Floats() {
 		clear(*s)
 	}

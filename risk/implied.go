@@ -41,7 +41,7 @@ func Imply(ctx context.Context, m *market.Market, d *schema.Dicts, quotes []sche
 	outcome := make([]vec.Implied, n)
 	vec.ImpliedVol(vol, outcome, forward, strike, time, price, sign)
 	methods := methods(m)
-	methods.Interrupted = func() bool { return ctx.Err() != nil }
+	methods.InterruptedBy(func() bool { return ctx.Err() != nil })
 	methods.ImpliedVols(open)
 	for i := range out {
 		switch q := byModel[i]; {

@@ -8,10 +8,7 @@ import (
 // Methods are the numerical methods behind products without a closed form, with
 // their settings and working memory. They serve one goroutine.
 type Methods struct {
-	// Interrupted, where it is set, is asked between lines that take long: once it
-	// says yes, the lines left have no results.
-	Interrupted func() bool
-
+	stop       func() bool
 	integral   *american.Solver
 	grid       pde.Solver
 	convention pde.Convention
@@ -29,7 +26,13 @@ func NewMethods(setting american.Setting, convention pde.Convention, tolerance f
 	return &Methods{integral: american.NewSolver(setting), convention: convention, grid: pde.Solver{Tolerance: tolerance}}
 }
 
-func (m *Methods) interrupted() bool { return m.Interrupted != nil && m.Interrupted() }
+// InterruptedBy sets what is asked between lines and boundaries, which take long:
+// once it says yes, the results at hand are void.
+func (m *Methods) InterruptedBy(stop func() bool) {
+	m.stop, m.integral.Interrupted = stop, stop
+}
+
+func (m *Methods) interrupted() bool { return m.stop != nil && m.stop() }
 
 // Schedule is the cash dividends that move a line, as seen now and as seen after
 // each step of theta. What goes ex within a step is taken off the price of the

@@ -32,6 +32,10 @@ const converged = 3e-3
 // Solver values batches of options. It keeps its working memory between batches
 // and serves one goroutine at a time.
 type Solver struct {
+	// Interrupted, where it is set, is asked between boundaries: once it says yes,
+	// Solve returns, and the results of that call are void.
+	Interrupted func() bool
+
 	first  int // rung
 	width  int
 	blocks [len(ladder)]*block
@@ -149,6 +153,9 @@ func (s *Solver) climb(r *Results, l *Lines, level int) {
 	b, g := s.blocks[level], &s.groups
 	g.collect(s.todo, &s.scaled)
 	for order := g.order; len(order) > 0; {
+		if s.Interrupted != nil && s.Interrupted() {
+			return
+		}
 		members := order[:min(s.width, len(order))]
 		order = order[len(members):]
 		for j := range b.width {
