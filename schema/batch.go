@@ -1,5 +1,7 @@
 package schema
 
+import "slices"
+
 // BatchRows is about how many rows a batch holds. Readers may give fewer or
 // somewhat more; nothing that is written depends on where batches end.
 const BatchRows = 4096
@@ -14,6 +16,8 @@ type Batch struct {
 	Results
 	Rejects []Reject // of rows with Status Rejected, in row order
 	Notes   []Note   // warnings, in row order
+
+	minutes []int64 // memory of Frame
 }
 
 // Positions are the columns of the position file, row i of each slice being
@@ -143,14 +147,14 @@ func (b *Batch) Resize(n int) {
 
 // Compact drops the rows with Status Rejected; the others keep their order.
 func (b *Batch) Compact() {
+	if !slices.Contains(b.Status, Rejected) {
+		return
+	}
 	keep := make([]int32, 0, b.N)
 	for i, s := range b.Status {
 		if s != Rejected {
 			keep = append(keep, int32(i))
 		}
-	}
-	if len(keep) == b.N {
-		return
 	}
 	b.N = len(keep)
 	for _, s := range append(b.Positions.Floats(), b.Results.Floats()...) {

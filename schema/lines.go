@@ -77,7 +77,7 @@ var lineFields = append([]lineField{
 	{Column{"expiry", Day, "", false, "", "expiry date"},
 		func(b *Batch, _ *Dicts) Vector { return Vector{Kind: KindDates, Dates: b.Expiry} }},
 	{Column{"expiry_minute", Int, "minutes after midnight", false, "", "time of day of the expiry, where one was given"},
-		func(b *Batch, _ *Dicts) Vector { return Vector{Kind: KindInts, Ints: minutes(b.ExpiryMinute)} }},
+		func(b *Batch, _ *Dicts) Vector { return Vector{Kind: KindInts, Ints: b.expiryMinutes()} }},
 	{Column{"strategy", Text, "", false, "", "the desk's own grouping"},
 		codes(func(d *Dicts) *Dict { return d.Strategies }, func(b *Batch) []Code { return b.Strategy })},
 	{Column{"mark", Float, "price", false, "", "observed unit price"},
@@ -167,14 +167,15 @@ func measureFields() []lineField {
 	return fields
 }
 
-func minutes(m []int16) []int64 {
-	out := make([]int64, len(m))
-	for i, v := range m {
-		if out[i] = int64(v); v == NoMinute {
-			out[i] = NoInt
+// expiryMinutes are the minutes as integers of the table.
+func (b *Batch) expiryMinutes() []int64 {
+	b.minutes = resized(b.minutes, len(b.ExpiryMinute))
+	for i, v := range b.ExpiryMinute {
+		if b.minutes[i] = int64(v); v == NoMinute {
+			b.minutes[i] = NoInt
 		}
 	}
-	return out
+	return b.minutes
 }
 
 // hasColumn reports whether a name is taken, in large or small letters:

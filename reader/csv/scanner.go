@@ -150,7 +150,11 @@ func (s *Scanner) next(b *Block, rows int) error {
 func (s *Scanner) read(b *Block) error {
 	have := len(b.Data)
 	if cap(b.Data) < have+s.o.ReadSize {
-		b.Data = append(make([]byte, 0, 2*have+s.o.ReadSize), b.Data...)
+		more := s.o.ReadSize
+		if have > 0 { // most files are short, and the others fill blocks
+			more = max(have, 4*s.o.ReadSize)
+		}
+		b.Data = append(make([]byte, 0, have+more), b.Data...)
 	}
 	n, err := s.r.Read(b.Data[have : have+s.o.ReadSize])
 	b.Data = b.Data[:have+n]

@@ -25,12 +25,21 @@ func (b *bounds) reset() {
 	*b = bounds{minText: b.minText[:0], maxText: b.maxText[:0]}
 }
 
-func (b *bounds) addInt(x int64) {
+// addFloats takes into account values that lie from low to high and reach both;
+// the caller counts them.
+func (b *bounds) addFloats(low, high float64) {
 	if b.values == 0 {
-		b.minInt, b.maxInt = x, x
+		b.minFloat, b.maxFloat = low, high
 	}
-	b.minInt, b.maxInt = min(b.minInt, x), max(b.maxInt, x)
-	b.values++
+	b.minFloat, b.maxFloat = min(b.minFloat, low), max(b.maxFloat, high)
+}
+
+// addInts is addFloats for integers.
+func (b *bounds) addInts(low, high int64) {
+	if b.values == 0 {
+		b.minInt, b.maxInt = low, high
+	}
+	b.minInt, b.maxInt = min(b.minInt, low), max(b.maxInt, high)
 }
 
 // addText takes a text into account. Texts are ordered by their bytes.

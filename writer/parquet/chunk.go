@@ -4,51 +4,71 @@ import (
 	"github.com/xitongsys/parquet-go/parquet"
 )
 
-// pageIndex is what the page index of a file tells about one column chunk.
-type pageIndex struct {
-	column *parquet.ColumnIndex // nil where the bounds of a page are not known
-	offset *parquet.OffsetIndex
+// chunk is a column chunk: the finished pages of a column in a row group.
+type chunk struct {
+	name     string
+	physical parquet.Type
+	codec    parquet.CompressionCodec // settled by the first page
+	dict     page                     // of dictionary values; no bytes where there is none
+	pages    []page
+	held     int64 // bytes of pages
 }
 
-// writeChunk writes the finished pages of the row group, and forgets them.
-func (c *column) writeChunk(w *counter) (*parquet.ColumnChunk, pageIndex, error) {
+// nextPage returns a page to be filled, with the memory of an earlier row group.
+func (c *chunk) nextPage() *page {
+	if n := len(c.pages); n < cap(c.pages) {
+		c.pages = c.pages[:n+1]
+	} else {
+		c.pages = append(c.pages, page{})
+	}
+	return &c.pages[len(c.pages)-1]
+}
+
+// write writes the pages, and returns what footer and page index say of them.
+func (c *chunk) write(w *counter, b *blocks) (*parquet.ColumnChunk, pageIndex, error) {
 	start := w.n
 	meta := &parquet.ColumnMetaData{
 		Type:         c.physical,
-		PathInSchema: []string{c.Name},
+		PathInSchema: []string{c.name},
 		Codec:        c.codec,
 	}
 	counts := map[parquet.Encoding]int32{}
-	if len(c.dictPage.bytes) > 0 {
-		if _, err := w.Write(c.dictPage.bytes); err != nil {
+	if len(c.dict.bytes) > 0 {
+		if err := c.dict.write(w, b); err != nil {
 			return nil, pageIndex{}, err
 		}
 		meta.DictionaryPageOffset = &start
-		meta.TotalUncompressedSize = int64(c.dictPage.uncompressed)
+		meta.TotalUncompressedSize = int64(c.dict.uncompressed)
 	}
 	meta.DataPageOffset = w.n
 
-	index := pageIndex{
-		column: &parquet.ColumnIndex{BoundaryOrder: parquet.BoundaryOrder_UNORDERED},
-		offset: &parquet.OffsetIndex{},
-	}
-	var chunk encodedBounds
+	index := newPageIndex()
+	var whole encodedBounds
 	for i := range c.pages {
 		p := &c.pages[i]
 		index.add(p, w.n, meta.NumValues)
-		chunk.merge(p.bounds, c.physical)
+		whole.merge(p.bounds, c.physical)
 		meta.NumValues += int64(p.rows)
 		meta.TotalUncompressedSize += int64(p.uncompressed)
 		counts[p.encoding]++
-		if _, err := w.Write(p.bytes); err != nil {
+		if err := p.write(w, b); err != nil {
 			return nil, pageIndex{}, err
 		}
 	}
 	meta.TotalCompressedSize = w.n - start
-	meta.Statistics = chunk.statistics()
+	meta.Statistics = whole.statistics()
 	meta.Encodings, meta.EncodingStats = encodings(counts, meta.DictionaryPageOffset != nil)
-	c.pages = c.pages[:0]
 	return &parquet.ColumnChunk{FileOffset: start, MetaData: meta}, index, nil
+}
+
+// reset forgets the pages, and gives back the blocks that were not written.
+func (c *chunk) reset(b *blocks) {
+	for i := range c.pages {
+		b.give(c.pages[i].block)
+		c.pages[i].block = nil
+	}
+	c.pages, c.held = c.pages[:0], 0
+	c.dict.bytes = c.dict.bytes[:0]
 }
 
 // encodings lists how the pages of a chunk are encoded.
@@ -69,23 +89,4 @@ func encodings(counts map[parquet.Encoding]int32, dict bool) ([]parquet.Encoding
 		}
 	}
 	return used, stats
-}
-
-// add notes a data page that stands at an offset of the file and begins with a
-// row of the row group.
-func (x *pageIndex) add(p *page, at, row int64) {
-	x.offset.PageLocations = append(x.offset.PageLocations, &parquet.PageLocation{
-		Offset: at, CompressedPageSize: int32(len(p.bytes)), FirstRowIndex: row,
-	})
-	b := &p.bounds
-	if !b.known && b.values > 0 {
-		x.column = nil
-	}
-	if x.column == nil {
-		return
-	}
-	x.column.NullPages = append(x.column.NullPages, b.values == 0)
-	x.column.MinValues = append(x.column.MinValues, b.min)
-	x.column.MaxValues = append(x.column.MaxValues, b.max)
-	x.column.NullCounts = append(x.column.NullCounts, int64(b.nulls))
 }

@@ -17,28 +17,31 @@ var (
 	errNotFinite = errors.New("not a finite number")
 )
 
-// column encodes one column: it fills a page, and keeps the finished pages of
-// the row group.
+// column encodes one column: it fills a page, and adds it to its chunk of the
+// row group when it is full.
 type column struct {
 	schema.Column
 	physical parquet.Type
+	width    int // of a value, in bytes; 0 for texts
 	comp     *compressor
+	blocks   *blocks
 
 	// the page being filled
 	rows    int
-	present []uint8 // optional columns: 1 where row i has a value, 0 for null
-	body    []byte  // values in PLAIN layout; of booleans a byte each
-	indices []uint32
+	present []uint8  // optional columns: 1 where row i has a value, 0 for null
+	body    []byte   // values in PLAIN layout; of booleans a byte each
+	indices []uint32 // of texts that are in the dictionary
 	bounds  bounds
 
-	dict     dictionary
-	dictPage page
-	pages    []page                   // the finished pages of the row group
-	codec    parquet.CompressionCodec // of the chunk; settled by its first page
+	texts   textDict // of which a column uses one
+	numbers numberDict
+
+	chunk *chunk // being filled
 }
 
-func newColumn(c schema.Column, comp *compressor) *column {
-	return &column{Column: c, physical: physicalType(c.Type), comp: comp}
+func newColumn(c schema.Column, comp *compressor, b *blocks) *column {
+	t := physicalType(c.Type)
+	return &column{Column: c, physical: t, width: valueWidth(t), comp: comp, blocks: b}
 }
 
 func physicalType(t schema.Type) parquet.Type {
@@ -55,6 +58,20 @@ func physicalType(t schema.Type) parquet.Type {
 	return parquet.Type_BYTE_ARRAY
 }
 
+// valueWidth is how many bytes a value takes in a page being filled; 0 is that
+// each takes its own.
+func valueWidth(t parquet.Type) int {
+	switch t {
+	case parquet.Type_DOUBLE, parquet.Type_INT64:
+		return 8
+	case parquet.Type_INT32:
+		return 4
+	case parquet.Type_BOOLEAN:
+		return 1
+	}
+	return 0
+}
+
 // add appends rows [from, to) of v, which all fit into the page as far as its
 // number of rows goes. If it fails, row is the row at fault.
 func (c *column) add(v *schema.Vector, from, to int, s *scratch) (row int, err error) {
@@ -65,9 +82,9 @@ func (c *column) add(v *schema.Vector, from, to int, s *scratch) (row int, err e
 	case schema.KindFloats:
 		row, err = c.addFloats(v.Floats[from:to])
 	case schema.KindInts:
-		row, err = c.addInts(v.Ints[from:to])
+		row, err = addWhole(c, v.Ints[from:to], schema.NoInt)
 	case schema.KindDates:
-		row, err = c.addDates(v.Dates[from:to])
+		row, err = addWhole(c, v.Dates[from:to], schema.NoDate)
 	case schema.KindBools:
 		row, err = c.addBools(v.Bools[from:to])
 	default:
@@ -82,25 +99,6 @@ func (c *column) add(v *schema.Vector, from, to int, s *scratch) (row int, err e
 	return to, err
 }
 
-// null notes that the next row has no value.
-func (c *column) null() error {
-	if c.Required {
-		return errNull
-	}
-	c.present = append(c.present, 0)
-	c.rows++
-	c.bounds.nulls++
-	return nil
-}
-
-// value notes that the next row has a value.
-func (c *column) value() {
-	if !c.Required {
-		c.present = append(c.present, 1)
-	}
-	c.rows++
-}
-
 // finish ends the last page of the row group.
 func (c *column) finish(s *scratch) error {
 	if c.rows > 0 {
@@ -112,39 +110,34 @@ func (c *column) finish(s *scratch) error {
 }
 
 // held is how many bytes the row group's pages take.
-func (c *column) held() int64 {
-	var n int64
-	for i := range c.pages {
-		n += int64(len(c.pages[i].bytes))
-	}
-	return n + int64(len(c.body))
-}
+func (c *column) held() int64 { return c.chunk.held + int64(len(c.body)) }
 
 // endPage turns what was added since the last page into a finished page.
 func (c *column) endPage(s *scratch) error {
-	encoding := parquet.Encoding_PLAIN
+	first := len(c.chunk.pages) == 0
 	s.raw = s.raw[:0]
 	if !c.Required {
-		s.raw = appendLevels(s.raw, c.present)
+		s.raw = appendLevels(s.raw, c.present, c.bounds.nulls)
 	}
-	switch {
-	case c.physical == parquet.Type_BOOLEAN:
-		s.raw = appendBits(s.raw, c.body)
-	case len(c.indices) > 0:
-		encoding = parquet.Encoding_RLE_DICTIONARY
-		width := c.dict.width()
-		s.raw = append(s.raw, byte(width))
-		s.raw = appendHybrid(s.raw, c.indices, width)
-	default:
-		s.raw = append(s.raw, c.body...)
+	encoding, block := c.encode(s)
+	if first {
+		if err := c.settleCodec(s, encoding, block); err != nil {
+			return err
+		}
 	}
-	packed, err := c.pack(s)
-	if err != nil {
-		return err
+	size := len(s.raw) + len(block)
+	packed := s.raw
+	if c.chunk.codec != parquet.CompressionCodec_UNCOMPRESSED {
+		s.raw = append(s.raw, block...)
+		block = nil
+		var err error
+		if packed, err = c.comp.pack(s, c.chunk.codec); err != nil {
+			return err
+		}
 	}
-	p := c.nextPage()
+	p := c.chunk.nextPage()
 	p.encoding, p.rows, p.bounds = encoding, c.rows, c.bounds.encoded(c.physical)
-	err = p.seal(&parquet.PageHeader{
+	err := p.seal(&parquet.PageHeader{
 		Type: parquet.PageType_DATA_PAGE,
 		DataPageHeader: &parquet.DataPageHeader{
 			NumValues:               int32(c.rows),
@@ -153,37 +146,101 @@ func (c *column) endPage(s *scratch) error {
 			RepetitionLevelEncoding: parquet.Encoding_RLE,
 			Statistics:              p.bounds.statistics(),
 		},
-	}, len(s.raw), packed, s)
+	}, size, packed, block, s)
+	c.chunk.held += int64(p.size())
+	if block != nil {
+		c.body = nil // it is the page's now
+	}
 	c.rows = 0
 	c.present, c.body, c.indices = c.present[:0], c.body[:0], c.indices[:0]
 	c.bounds.reset()
-	c.dict.page++
+	c.texts.page++
 	return err
 }
 
-// pack returns s.raw as the page is to hold it. The first page of the chunk
-// settles the codec of the whole chunk: compression of numbers that saves less
-// than a tenth only costs the readers time. Texts always gain, if not on their
-// first page of indices then in the dictionary.
-func (c *column) pack(s *scratch) ([]byte, error) {
-	if len(c.pages) > 0 {
-		return c.comp.pack(s, c.codec)
+// encode appends the page's values to s.raw, or returns them as a block if they
+// are numbers to be written as they lie.
+func (c *column) encode(s *scratch) (e parquet.Encoding, block []byte) {
+	indices, width := c.indices, 0
+	switch {
+	case c.physical == parquet.Type_BOOLEAN:
+		s.raw = appendBits(s.raw, c.body)
+		return parquet.Encoding_PLAIN, nil
+	case c.width > 0:
+		if !c.indexNumbers(s) {
+			return parquet.Encoding_PLAIN, c.body
+		}
+		indices = s.indices
+		width = indexWidth(len(c.numbers.values))
+	case len(c.indices) == 0:
+		s.raw = append(s.raw, c.body...)
+		return parquet.Encoding_PLAIN, nil
+	default:
+		width = indexWidth(len(c.texts.values))
 	}
-	c.codec = c.comp.codec
-	packed, err := c.comp.pack(s, c.codec)
-	if c.physical != parquet.Type_BYTE_ARRAY && len(packed)*10 > len(s.raw)*9 {
-		c.codec = parquet.CompressionCodec_UNCOMPRESSED
-		return s.raw, err
-	}
-	return packed, err
+	s.raw = append(s.raw, byte(width))
+	s.raw = appendHybrid(s.raw, indices, width)
+	return parquet.Encoding_RLE_DICTIONARY, nil
 }
 
-// nextPage returns a page to be filled, with the memory of an earlier row group.
-func (c *column) nextPage() *page {
-	if n := len(c.pages); n < cap(c.pages) {
-		c.pages = c.pages[:n+1]
-	} else {
-		c.pages = append(c.pages, page{})
+// indexNumbers makes s.indices of the page's numbers, if they go through the
+// dictionary.
+func (c *column) indexNumbers(s *scratch) bool {
+	d := &c.numbers
+	if d.off || len(c.body) == 0 {
+		return false
 	}
-	return &c.pages[len(c.pages)-1]
+	most := mostNumbers
+	if len(d.values) == 0 {
+		most = min(most, len(c.body)/c.width/repeats)
+	}
+	s.indices, d.off = d.index(s.indices[:0], c.body, c.width, most)
+	return !d.off
+}
+
+// trialBytes is how much of a chunk is packed to see whether it is worth it.
+const trialBytes = 32 << 10
+
+// settleCodec settles the codec of the chunk by its first page: numbers in
+// PLAIN layout that compression does not halve are not compressed. Texts always
+// gain, if not on their first page of indices then in the dictionary.
+func (c *column) settleCodec(s *scratch, e parquet.Encoding, block []byte) error {
+	c.chunk.codec = c.comp.codec
+	if c.physical == parquet.Type_BYTE_ARRAY || e != parquet.Encoding_PLAIN {
+		return nil
+	}
+	size := len(s.raw)
+	s.raw = append(s.raw, block[:min(len(block), trialBytes)]...)
+	packed, err := c.comp.pack(s, c.comp.codec)
+	if 2*len(packed) > len(s.raw) {
+		c.chunk.codec = parquet.CompressionCodec_UNCOMPRESSED
+	}
+	s.raw = s.raw[:size]
+	return err
+}
+
+// endDictionary makes the dictionary page of the chunk, if it has a dictionary,
+// and empties it.
+func (c *column) endDictionary(s *scratch) error {
+	s.raw = s.raw[:0]
+	values := len(c.texts.values)
+	if c.width > 0 {
+		values = len(c.numbers.values)
+		s.raw = c.numbers.appendPlain(s.raw, c.width)
+		c.numbers.reset()
+	} else {
+		s.raw = c.texts.appendPlain(s.raw)
+		c.texts.reset()
+	}
+	if values == 0 {
+		return nil
+	}
+	packed, err := c.comp.pack(s, c.chunk.codec)
+	if err != nil {
+		return err
+	}
+	return c.chunk.dict.seal(&parquet.PageHeader{
+		Type:                 parquet.PageType_DICTIONARY_PAGE,
+		DictionaryPageHeader: &parquet.DictionaryPageHeader{NumValues: int32(values), Encoding: parquet.Encoding_PLAIN},
+	}, len(s.raw), packed, nil, s)
 }

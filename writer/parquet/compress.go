@@ -11,6 +11,10 @@ import (
 	"github.com/xitongsys/parquet-go/parquet"
 )
 
+// zstdWindow is how far back matches are looked for: the encoder's memory grows
+// with it, and no page profits from more.
+const zstdWindow = 256 << 10
+
 // compressor is a codec of the file. It may be used by several goroutines.
 type compressor struct {
 	codec parquet.CompressionCodec
@@ -23,6 +27,7 @@ func newCompressor(name string, workers int) (*compressor, error) {
 		e, err := zstd.NewWriter(nil,
 			zstd.WithEncoderLevel(zstd.SpeedFastest),
 			zstd.WithEncoderConcurrency(workers),
+			zstd.WithWindowSize(zstdWindow),
 			zstd.WithEncoderCRC(false), // pages have a checksum of their own
 			zstd.WithZeroFrames(true))
 		return &compressor{parquet.CompressionCodec_ZSTD, e}, err

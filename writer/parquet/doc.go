@@ -1,10 +1,10 @@
 // Package parquet writes frames as an Apache Parquet file.
 //
 // It works on pages: each column copies its values into the page being filled,
-// in the PLAIN layout or as indices into a dictionary, and compresses the page
-// when it is full, so that of a row group only finished pages are held. Columns
-// are encoded in parallel. The file's own structures are those of the Parquet
-// format's Thrift definition.
+// in the PLAIN layout or as indices into a dictionary, and packs the page when it
+// is full, so that of a row group only finished pages are held. Columns are
+// encoded in parallel, and a row group is written while the next one fills. The
+// file's own structures are those of the Parquet format's Thrift definition.
 //
 // What stands in a file:
 //
@@ -14,8 +14,11 @@
 //   - Texts go through a dictionary of the row group, in the order in which they
 //     first appear; a column of free text in which most values differ, or whose
 //     dictionary grows past a limit, goes on as PLAIN.
-//   - A chunk of numbers whose first page shrinks by less than a tenth is stored
-//     uncompressed: the low bits of computed numbers are noise.
+//   - Numbers and dates go through a dictionary if each of those on the chunk's
+//     first page stands there four times or more on average.
+//   - A chunk of numbers without a dictionary is stored uncompressed if
+//     compression does not halve what its first page begins with: the low bits of
+//     computed numbers are noise.
 //   - Smallest and largest value and number of nulls of each page and chunk, a
 //     page index, and a CRC of each page.
 //

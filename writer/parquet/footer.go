@@ -6,7 +6,6 @@ import (
 	"maps"
 	"slices"
 
-	"github.com/apache/thrift/lib/go/thrift"
 	"github.com/xitongsys/parquet-go/parquet"
 
 	"nightbook/schema"
@@ -25,8 +24,7 @@ type footerInfo struct {
 
 // writeFooter writes the page index, the footer and the end of the file.
 func (p *Writer) writeFooter() error {
-	s := newSerializer()
-	if err := p.writeIndexes(s); err != nil {
+	if err := p.writeIndexes(); err != nil {
 		return err
 	}
 	// Readers look at name and version to know whether to trust the statistics.
@@ -48,50 +46,13 @@ func (p *Writer) writeFooter() error {
 		value := p.meta.pairs[key]
 		footer.KeyValueMetadata = append(footer.KeyValueMetadata, &parquet.KeyValue{Key: key, Value: &value})
 	}
-	size, err := p.write(s, footer)
+	b, err := p.thrift.serialize(footer)
 	if err != nil {
 		return err
 	}
-	end := binary.LittleEndian.AppendUint32(nil, uint32(size))
-	_, err = p.out.Write(append(end, magic...))
+	b = binary.LittleEndian.AppendUint32(b, uint32(len(b)))
+	_, err = p.out.Write(append(b, magic...))
 	return err
-}
-
-// writeIndexes writes the page index: the column indexes of all chunks, then
-// their offset indexes.
-func (p *Writer) writeIndexes(s *serializer) error {
-	at := func(i int) *parquet.ColumnChunk {
-		return p.groups[i/len(p.columns)].Columns[i%len(p.columns)]
-	}
-	for i, x := range p.indexes {
-		if x.column == nil {
-			continue
-		}
-		start := p.out.n
-		size, err := p.write(s, x.column)
-		if err != nil {
-			return err
-		}
-		at(i).ColumnIndexOffset, at(i).ColumnIndexLength = &start, &size
-	}
-	for i, x := range p.indexes {
-		start := p.out.n
-		size, err := p.write(s, x.offset)
-		if err != nil {
-			return err
-		}
-		at(i).OffsetIndexOffset, at(i).OffsetIndexLength = &start, &size
-	}
-	return nil
-}
-
-func (p *Writer) write(s *serializer, m thrift.TStruct) (int32, error) {
-	b, err := s.serialize(m)
-	if err != nil {
-		return 0, err
-	}
-	n, err := p.out.Write(b)
-	return int32(n), err
 }
 
 // schemaElements is the table as the format describes it: a root and its columns.

@@ -19,15 +19,21 @@ func appendHybrid[T uint8 | uint32](dst []byte, values []T, width int) []byte {
 			continue
 		}
 		dst = appendPacked(dst, values[literal:i+fill], width)
-		dst = binary.AppendUvarint(dst, uint64(run-fill)<<1)
-		for v, bits := uint32(values[i]), 0; bits < width; bits += 8 {
-			dst = append(dst, byte(v))
-			v >>= 8
-		}
+		dst = appendRun(dst, run-fill, uint32(values[i]), width)
 		i += run
 		literal = i
 	}
 	return appendPacked(dst, values[literal:], width)
+}
+
+// appendRun appends one run-length run.
+func appendRun(dst []byte, n int, value uint32, width int) []byte {
+	dst = binary.AppendUvarint(dst, uint64(n)<<1)
+	for ; width > 0; width -= 8 {
+		dst = append(dst, byte(value))
+		value >>= 8
+	}
+	return dst
 }
 
 // appendPacked appends one bit-packed run, the last group filled with zeros.
@@ -37,26 +43,37 @@ func appendPacked[T uint8 | uint32](dst []byte, values []T, width int) []byte {
 	}
 	groups := (len(values) + 7) / 8
 	dst = binary.AppendUvarint(dst, uint64(groups)<<1|1)
+	end := len(dst) + groups*width
 	var acc uint64
-	bits := 0
-	for i := range groups * 8 {
-		if i < len(values) {
-			acc |= uint64(values[i]) << bits
-		}
-		for bits += width; bits >= 8; bits -= 8 {
-			dst = append(dst, byte(acc))
-			acc >>= 8
+	bits := 0 // in acc, fewer than 32 between values
+	for _, v := range values {
+		acc |= uint64(v) << bits
+		if bits += width; bits >= 32 {
+			dst = binary.LittleEndian.AppendUint32(dst, uint32(acc))
+			acc >>= 32
+			bits -= 32
 		}
 	}
-	return dst
+	for len(dst) < end {
+		dst = append(dst, byte(acc))
+		acc >>= 8
+	}
+	return dst[:end]
 }
 
 // appendLevels appends definition levels of an optional column, with their
 // length before them, as a data page holds them.
-func appendLevels(dst []byte, present []uint8) []byte {
+func appendLevels(dst []byte, present []uint8, nulls int) []byte {
 	at := len(dst)
 	dst = append(dst, 0, 0, 0, 0)
-	dst = appendHybrid(dst, present, 1)
+	switch nulls {
+	case 0:
+		dst = appendRun(dst, len(present), 1, 1)
+	case len(present):
+		dst = appendRun(dst, len(present), 0, 1)
+	default:
+		dst = appendHybrid(dst, present, 1)
+	}
 	binary.LittleEndian.PutUint32(dst[at:], uint32(len(dst)-at-4))
 	return dst
 }

@@ -9,11 +9,11 @@ import (
 	"github.com/xitongsys/parquet-go/parquet"
 )
 
-// page is a finished page: its header and its data, as they go into the file.
+// page is a finished page: what goes into the file.
 type page struct {
-	bytes        []byte
-	headerSize   int
-	uncompressed int // size of header and data before compression
+	bytes        []byte // header and data
+	block        []byte // data behind them: the numbers of a page that is not packed
+	uncompressed int    // size of header and data before compression
 
 	// of data pages
 	encoding parquet.Encoding
@@ -21,28 +21,43 @@ type page struct {
 	bounds   encodedBounds
 }
 
-// seal makes the page's bytes from its header and its data, of size bytes
-// before compression.
-func (p *page) seal(h *parquet.PageHeader, size int, packed []byte, s *scratch) error {
-	sum := int32(crc32.ChecksumIEEE(packed))
+// size is how many bytes the page takes in the file.
+func (p *page) size() int { return len(p.bytes) + len(p.block) }
+
+// seal makes the page of its header and its data, which were size bytes before
+// compression. The page keeps the block, and copies the rest.
+func (p *page) seal(h *parquet.PageHeader, size int, packed, block []byte, s *scratch) error {
+	sum := int32(crc32.Update(crc32.ChecksumIEEE(packed), crc32.IEEETable, block))
 	h.Crc = &sum
-	h.UncompressedPageSize, h.CompressedPageSize = int32(size), int32(len(packed))
+	h.UncompressedPageSize, h.CompressedPageSize = int32(size), int32(len(packed)+len(block))
 	header, err := s.thrift.serialize(h)
 	if err != nil {
 		return err
 	}
-	p.headerSize = len(header)
 	p.uncompressed = len(header) + size
 	p.bytes = append(append(p.bytes[:0], header...), packed...)
+	p.block = block
 	return nil
+}
+
+// write writes the page, and gives its block back.
+func (p *page) write(w *counter, b *blocks) error {
+	_, err := w.Write(p.bytes)
+	if err == nil && len(p.block) > 0 {
+		_, err = w.Write(p.block)
+	}
+	b.give(p.block)
+	p.block = nil
+	return err
 }
 
 // scratch is the working memory of one worker.
 type scratch struct {
-	raw    []byte // a page before compression
-	packed []byte // and after
-	gzip   *gzip.Writer
-	thrift *serializer
+	raw     []byte   // a page before compression
+	packed  []byte   // and after
+	indices []uint32 // of a page's numbers
+	gzip    *gzip.Writer
+	thrift  *serializer
 }
 
 func newScratch() *scratch { return &scratch{gzip: newGzip(), thrift: newSerializer()} }

@@ -16,7 +16,7 @@ const (
 	pageRows = 16 << 10
 
 	// groupRows is how many rows a row group holds at most.
-	groupRows = 8 * pageRows
+	groupRows = 16 * pageRows
 
 	// groupBytes ends a row group early: it bounds the memory that long texts
 	// take. It is looked at every checkRows rows.
@@ -38,13 +38,23 @@ type Writer struct {
 	table   schema.Table
 	columns []*column
 	scratch []*scratch // one a worker
+	blocks  *blocks
 
-	rows      int64 // in the file
-	groupRows int64 // in the row group being filled
-	groups    []*parquet.RowGroup
-	indexes   []pageIndex // of every column chunk written, in order
-	meta      footerInfo
-	failed    error
+	rows      int64  // of the row groups that are full
+	group     *group // being filled; nil before its first row
+	groupRows int64  // in it
+
+	writing *group     // nil if none is
+	written chan error // of writing
+	spare   *group     // to be filled next
+
+	// of the goroutine that writes
+	thrift  *serializer
+	groups  []*parquet.RowGroup
+	indexes []packedIndex // of every column chunk written, in order
+
+	meta   footerInfo
+	failed error
 }
 
 // New starts a file.
@@ -55,12 +65,14 @@ func New(w io.Writer, t schema.Table, opt Options) (*Writer, error) {
 		return nil, err
 	}
 	p := &Writer{
-		out:   counter{w: w},
-		table: t,
-		meta:  footerInfo{version: opt.Version, pairs: opt.Metadata},
+		out:    counter{w: w},
+		table:  t,
+		thrift: newSerializer(),
+		blocks: newBlocks(blockCount(t)),
+		meta:   footerInfo{version: opt.Version, pairs: opt.Metadata},
 	}
 	for _, c := range t.Columns {
-		p.columns = append(p.columns, newColumn(c, comp))
+		p.columns = append(p.columns, newColumn(c, comp, p.blocks))
 	}
 	for range workers {
 		p.scratch = append(p.scratch, newScratch())
@@ -77,6 +89,9 @@ func (p *Writer) Write(f *schema.Frame) error {
 		panic("parquet: the frame's columns are not the table's")
 	}
 	for from := 0; from < f.N && p.failed == nil; {
+		if p.group == nil {
+			p.group = p.newGroup()
+		}
 		// Slices end at the same rows whatever the frames, and all columns stand
 		// at the same row when the size of the row group is looked at.
 		to := min(f.N, from+checkRows-int(p.groupRows%checkRows))
@@ -95,10 +110,27 @@ func (p *Writer) Close() error {
 	if p.failed == nil && p.groupRows > 0 {
 		p.failed = p.flush()
 	}
+	if err := p.settle(); p.failed == nil {
+		p.failed = err
+	}
 	if p.failed == nil {
 		p.failed = p.writeFooter()
 	}
 	return p.failed
+}
+
+// blockCount is how many blocks serve a table: those of the row group that
+// fills, of the pages that fill, and a page's more, as the row group before it
+// is being written.
+func blockCount(t schema.Table) int {
+	numbers := 0
+	for _, c := range t.Columns {
+		if valueWidth(physicalType(c.Type)) > 1 {
+			numbers++
+		}
+	}
+	const pages = groupRows / pageRows
+	return numbers * (pages + 2)
 }
 
 // add hands rows [from, to) of the frame to the columns.
@@ -148,35 +180,6 @@ func (p *Writer) held() int64 {
 		n += c.held()
 	}
 	return n
-}
-
-// flush ends the row group and writes it.
-func (p *Writer) flush() error {
-	err := p.each(func(i int, s *scratch) error { return p.columns[i].finish(s) })
-	if err != nil {
-		return err
-	}
-	group := &parquet.RowGroup{NumRows: p.groupRows}
-	start := p.out.n
-	for _, c := range p.columns {
-		chunk, index, err := c.writeChunk(&p.out)
-		if err != nil {
-			return err
-		}
-		group.TotalByteSize += chunk.MetaData.TotalUncompressedSize
-		group.Columns = append(group.Columns, chunk)
-		p.indexes = append(p.indexes, index)
-	}
-	size := p.out.n - start
-	group.FileOffset, group.TotalCompressedSize = &start, &size
-	if n := len(p.groups); n < 1<<15 {
-		ordinal := int16(n)
-		group.Ordinal = &ordinal
-	}
-	p.groups = append(p.groups, group)
-	p.rows += p.groupRows
-	p.groupRows = 0
-	return nil
 }
 
 // counter knows where in the file the next byte goes.

@@ -3,9 +3,8 @@ package parquet
 import (
 	"encoding/binary"
 	"math/bits"
+	"slices"
 	"strings"
-
-	"github.com/xitongsys/parquet-go/parquet"
 
 	"nightbook/schema"
 )
@@ -20,14 +19,14 @@ const (
 	scattered = pageRows / 4
 )
 
-// dictionary numbers the texts of a column chunk in the order in which they
+// textDict is the dictionary of a column chunk of texts, in the order in which they
 // first appear.
-type dictionary struct {
+type textDict struct {
 	off    bool // the rest of the chunk is PLAIN
 	offAll bool // so are the chunks to come
 
-	texts   []string
-	bytes   int // that texts take in the file
+	values  []string
+	bytes   int // that values take in the file
 	numbers map[string]uint32
 
 	// known[c] is the number, plus one, of the text behind code or choice c of
@@ -45,18 +44,29 @@ type dictionary struct {
 // addTexts appends rows [from, to) of a text vector, ending pages where they
 // are full of rows or of bytes. If it fails, row is the row at fault.
 func (c *column) addTexts(v *schema.Vector, from, to int, s *scratch) (row int, err error) {
-	d := &c.dict
+	d := &c.texts
 	d.know(v)
-	for i := from; i < to; i++ {
-		if err := c.addText(v, i); err != nil {
-			return i, err
+	for from < to {
+		end := min(to, from+pageRows-c.rows)
+		switch {
+		case d.off:
+			from, err = c.addPlain(v, from, end)
+		case v.Kind == schema.KindCodes:
+			from, err = addCoded(c, v, v.Codes, from, end)
+		case v.Kind == schema.KindChoices:
+			from, err = addCoded(c, v, v.Choices, from, end)
+		default:
+			from, err = c.addStrings(v, from, end)
+		}
+		if err != nil {
+			return from, err
 		}
 		if c.rows == pageRows || len(c.body) >= pageBytes || !d.off && d.bytes > dictionaryBytes {
 			if err := c.endPage(s); err != nil {
-				return i, err
+				return from, err
 			}
-			first := len(c.pages) == 1
-			if d.bytes > dictionaryBytes || first && v.Kind == schema.KindStrings && len(d.texts) > scattered {
+			first := len(c.chunk.pages) == 1
+			if d.bytes > dictionaryBytes || first && v.Kind == schema.KindStrings && len(d.values) > scattered {
 				d.off = true
 				d.offAll = d.offAll || first
 			}
@@ -65,52 +75,110 @@ func (c *column) addTexts(v *schema.Vector, from, to int, s *scratch) (row int, 
 	return to, nil
 }
 
-func (c *column) addText(v *schema.Vector, i int) error {
-	d := &c.dict
-	code := 0
-	switch v.Kind {
-	case schema.KindCodes:
-		code = int(v.Codes[i])
-	case schema.KindChoices:
-		code = int(v.Choices[i])
+// value notes that the next row has a value.
+func (c *column) value() {
+	if !c.Required {
+		c.present = append(c.present, 1)
 	}
-	if !d.off && code < len(d.known) && d.known[code] > 0 {
+	c.rows++
+}
+
+// null notes that the next row has none.
+func (c *column) null() error {
+	if c.Required {
+		return errNull
+	}
+	c.present = append(c.present, 0)
+	c.rows++
+	c.bounds.nulls++
+	return nil
+}
+
+// The next three append rows [from, to) to the page, up to the row that fills
+// it with bytes or overfills the dictionary. They return the row behind the
+// last one, or the row at fault.
+
+// addCoded appends texts that have codes, through the dictionary.
+func addCoded[C schema.Code | schema.Choice](c *column, v *schema.Vector, codes []C, from, to int) (int, error) {
+	d := &c.texts
+	c.indices = slices.Grow(c.indices, to-from)
+	for i := from; i < to; i++ {
+		code := int(codes[i])
+		n := uint32(0)
+		if code < len(d.known) {
+			n = d.known[code]
+		}
+		if n == 0 {
+			text := v.Text(i)
+			if text == "" {
+				if err := c.null(); err != nil {
+					return i, err
+				}
+				continue
+			}
+			n = d.number(text) + 1
+			d.remember(code, n)
+			if d.bytes > dictionaryBytes {
+				to = i + 1
+			}
+		}
 		c.value()
-		c.addIndex(d.known[code] - 1)
-		return nil
+		c.addIndex(n - 1)
 	}
-	text := v.Text(i)
-	if text == "" {
-		return c.null()
+	return to, nil
+}
+
+// addStrings appends texts that come as they are, through the dictionary.
+func (c *column) addStrings(v *schema.Vector, from, to int) (int, error) {
+	d := &c.texts
+	for i := from; i < to; i++ {
+		text := v.Strings.At(i)
+		if text == "" {
+			if err := c.null(); err != nil {
+				return i, err
+			}
+			continue
+		}
+		c.value()
+		c.addIndex(d.number(text))
+		if d.bytes > dictionaryBytes {
+			return i + 1, nil
+		}
 	}
-	c.value()
-	if d.off {
+	return to, nil
+}
+
+// addPlain appends texts without a dictionary.
+func (c *column) addPlain(v *schema.Vector, from, to int) (int, error) {
+	for i := from; i < to; i++ {
+		text := v.Text(i)
+		if text == "" {
+			if err := c.null(); err != nil {
+				return i, err
+			}
+			continue
+		}
+		c.value()
 		c.body = binary.LittleEndian.AppendUint32(c.body, uint32(len(text)))
 		c.body = append(c.body, text...)
 		c.bounds.addText(text)
-		return nil
+		if len(c.body) >= pageBytes {
+			return i + 1, nil
+		}
 	}
-	n, ok := d.numbers[text]
-	if !ok {
-		n = d.add(text, v.Kind)
-	}
-	if code > 0 {
-		d.remember(code, n)
-	}
-	c.addIndex(n)
-	return nil
+	return to, nil
 }
 
 func (c *column) addIndex(n uint32) {
 	c.indices = append(c.indices, n)
-	if d := &c.dict; d.seen[n] != d.page {
+	if d := &c.texts; d.seen[n] != d.page {
 		d.seen[n] = d.page
-		c.bounds.addText(d.texts[n])
+		c.bounds.addText(d.values[n])
 	}
 }
 
 // know prepares for a vector: codes of another source are not the same codes.
-func (d *dictionary) know(v *schema.Vector) {
+func (d *textDict) know(v *schema.Vector) {
 	if d.numbers == nil {
 		d.numbers, d.page = map[string]uint32{}, 1
 	}
@@ -127,57 +195,45 @@ func (d *dictionary) know(v *schema.Vector) {
 	}
 }
 
-func (d *dictionary) remember(code int, n uint32) {
+// remember notes the number, plus one, of a code's text.
+func (d *textDict) remember(code int, n uint32) {
 	for len(d.known) <= code {
 		d.known = append(d.known, 0)
 	}
-	d.known[code] = n + 1
+	d.known[code] = n
 }
 
-func (d *dictionary) add(text string, kind schema.Kind) uint32 {
-	if kind == schema.KindStrings {
-		text = strings.Clone(text) // it is part of the frame's memory
+// number returns the number of a text, giving it one if it has none.
+func (d *textDict) number(text string) uint32 {
+	n, ok := d.numbers[text]
+	if ok {
+		return n
 	}
-	n := uint32(len(d.texts))
-	d.texts = append(d.texts, text)
+	text = strings.Clone(text) // it may be part of the frame's memory
+	n = uint32(len(d.values))
+	d.values = append(d.values, text)
 	d.seen = append(d.seen, 0)
 	d.bytes += 4 + len(text)
 	d.numbers[text] = n
 	return n
 }
 
-// width is how many bits an index takes.
-func (d *dictionary) width() int { return max(1, bits.Len(uint(len(d.texts)-1))) }
+// indexWidth is how many bits an index into a dictionary of n values takes.
+func indexWidth(n int) int { return max(1, bits.Len(uint(n-1))) }
 
-// endDictionary makes the dictionary page of the chunk, if it has a dictionary,
-// and starts the next chunk's.
-func (c *column) endDictionary(s *scratch) error {
-	d := &c.dict
-	c.dictPage.bytes = c.dictPage.bytes[:0]
-	if len(d.texts) > 0 {
-		s.raw = s.raw[:0]
-		for _, text := range d.texts {
-			s.raw = binary.LittleEndian.AppendUint32(s.raw, uint32(len(text)))
-			s.raw = append(s.raw, text...)
-		}
-		packed, err := c.comp.pack(s, c.codec)
-		if err != nil {
-			return err
-		}
-		err = c.dictPage.seal(&parquet.PageHeader{
-			Type: parquet.PageType_DICTIONARY_PAGE,
-			DictionaryPageHeader: &parquet.DictionaryPageHeader{
-				NumValues: int32(len(d.texts)),
-				Encoding:  parquet.Encoding_PLAIN,
-			},
-		}, len(s.raw), packed, s)
-		if err != nil {
-			return err
-		}
+// appendPlain appends the dictionary as its page holds it.
+func (d *textDict) appendPlain(dst []byte) []byte {
+	for _, text := range d.values {
+		dst = binary.LittleEndian.AppendUint32(dst, uint32(len(text)))
+		dst = append(dst, text...)
 	}
-	clear(d.texts)
+	return dst
+}
+
+// reset empties the dictionary for the next chunk.
+func (d *textDict) reset() {
+	clear(d.values)
 	clear(d.known)
 	clear(d.numbers)
-	d.texts, d.seen, d.bytes, d.off = d.texts[:0], d.seen[:0], 0, d.offAll
-	return nil
+	d.values, d.seen, d.bytes, d.off = d.values[:0], d.seen[:0], 0, d.offAll
 }
