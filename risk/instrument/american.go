@@ -29,24 +29,28 @@ func (r *Run) american(yield []float64) {
 	m.status = now.Status
 	for i, s := range now.Status {
 		r.Flags[i], r.PriceError[i] = 0, math.NaN()
-		switch s {
-		case american.Exercised:
+		if s == american.Exercised {
 			r.Flags[i] = ExerciseNow
-		case american.OutOfReach:
-			r.onGrid(i, yield[i], true, &noDividends)
 		}
 	}
 	for step := range r.After {
 		lines.Time = r.TimeAfter[step]
 		m.after.Resize(r.N)
 		m.integral.Solve(&m.after, &lines)
+		copy(r.After[step], m.after.Price)
 		for i, s := range m.after.Status {
-			if now.Status[i] == american.OutOfReach {
-				continue // revalued on the grid
-			}
-			if r.After[step][i] = m.after.Price[i]; s == american.OutOfReach {
-				r.gridAfter(i, step, yield[i], true, &noDividends)
+			if s == american.OutOfReach { // then the line is priced on the grid throughout
+				now.Status[i] = american.OutOfReach
 			}
 		}
 	}
+	r.rows = r.rows[:0]
+	for i, s := range now.Status {
+		if s == american.OutOfReach {
+			r.rows = append(r.rows, int32(i))
+		}
+	}
+	r.onGrid(r.rows, yield, true, func(int32) *Schedule { return &noDividends })
 }
+
+var noDividends Schedule

@@ -181,6 +181,7 @@ func (m *Methods) evaluate(quotes []*Quote) {
 }
 
 func (m *Methods) onGrid(q *Quote) {
-	m.solve(&option{q.Spot, q.Strike, q.Time, q.Vol, q.Rate, q.Yield, q.Sign, q.American}, q.Dividends)
-	q.value, q.vega = m.cell.Price[0], m.cell.Vega[0]
+	m.chain.Strike, m.chain.Vol = append(m.chain.Strike[:0], q.Strike), append(m.chain.Vol[:0], q.Vol)
+	m.solve(terms{q.Spot, q.Time, q.Rate, q.Yield, q.Sign, q.American}, q.Dividends)
+	q.value, q.vega = m.cells.Price[0], m.cells.Vega[0]
 }

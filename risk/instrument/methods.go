@@ -13,17 +13,19 @@ type Methods struct {
 	grid       pde.Solver
 	convention pde.Convention
 
-	status []american.Status // of the lines at hand
-	after  american.Results  // of their revaluations
-	chain  pde.Chain
-	cell   pde.Results
+	status  []american.Status // of the lines at hand
+	after   american.Results  // of their revaluations
+	chain   pde.Chain
+	cells   pde.Results
+	chains  []chain
+	chainOf map[chainKey]int
 }
 
 // NewMethods returns the methods with a setting of the boundary integral, a
 // dividend model, and the error that finite differences may make, as a share of
 // the spot.
 func NewMethods(setting american.Setting, convention pde.Convention, tolerance float64) *Methods {
-	return &Methods{integral: american.NewSolver(setting), convention: convention, grid: pde.Solver{Tolerance: tolerance}}
+	return &Methods{integral: american.NewSolver(setting), convention: convention, grid: pde.Solver{Tolerance: tolerance}, chainOf: map[chainKey]int{}}
 }
 
 // InterruptedBy sets what is asked between lines and boundaries, which take long:

@@ -22,6 +22,7 @@ type Run struct {
 	Dividends []*Schedule // of the products that know them
 
 	Methods *Methods
+	rows    []int32 // scratch
 
 	model.Greeks
 	Exercise                  // of the products that know it
