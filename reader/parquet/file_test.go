@@ -56,8 +56,12 @@ func readFile(t testing.TB, name string) []byte {
 	return b
 }
 
-// packed are the files of testdata with every column, one for each codec at least.
-var packed = []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip", "int96"}
+// every are the files of testdata with every column; packed has one at least of
+// each codec.
+var (
+	every  = []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip", "int96"}
+	packed = []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip", "int96", "lz4-delta", "lz4-split", "lz4-plain"}
+)
 
 var wantedHeader = strings.Fields("id text f64 f64n f32 i8 i32 i64 u32 u64 flag day ms us ns dec9 dec18 dec38 fixed void")
 
@@ -98,7 +102,7 @@ func wanted(i int) []string {
 
 // The same rows come out of every layout, encoding and compression.
 func TestFiles(t *testing.T) {
-	for _, name := range packed {
+	for _, name := range every {
 		t.Run(name, func(t *testing.T) {
 			b := readFile(t, name+".parquet")
 			header, rows, err := rendered(bytes.NewReader(b), int64(len(b)))
@@ -122,6 +126,30 @@ func TestFiles(t *testing.T) {
 				}
 			}
 		})
+	}
+}
+
+// LZ4 pages of an independent implementation, in three encodings.
+func TestLZ4Files(t *testing.T) {
+	for name, want := range map[string]func(i int) string{
+		"lz4-delta": func(i int) string { return fmt.Sprint(i*i - 7) },
+		"lz4-split": func(i int) string { return strconv.FormatFloat(float64(i)/8-3, 'f', -1, 64) },
+		"lz4-plain": func(i int) string { return fmt.Sprintf("row %d of many", i/3) },
+	} {
+		b := readFile(t, name+".parquet")
+		_, rows, err := rendered(bytes.NewReader(b), int64(len(b)))
+		if err != nil || len(rows) != 200 {
+			t.Errorf("%s: %d rows, %v", name, len(rows), err)
+		}
+		for i, row := range rows {
+			w := want(i)
+			if name != "lz4-plain" && i%7 == 3 {
+				w = "∅"
+			}
+			if row[0] != w {
+				t.Errorf("%s, row %d: %s, want %s", name, i, row[0], w)
+			}
+		}
 	}
 }
 
@@ -215,7 +243,7 @@ func TestTruncatedPage(t *testing.T) {
 }
 
 func FuzzParquet(f *testing.F) {
-	for _, name := range []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip", "int96", "list", "empty"} {
+	for _, name := range []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip", "int96", "list", "empty", "lz4-delta", "lz4-split", "lz4-plain"} {
 		f.Add(readFile(f, name+".parquet"))
 	}
 	f.Fuzz(func(t *testing.T, b []byte) {

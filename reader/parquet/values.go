@@ -42,7 +42,7 @@ func (c *column) tooShort() error { return damaged("a page has fewer values than
 // setDictionary decodes the dictionary of a row group.
 func (v *values) setDictionary(c *column, data []byte, n int, e parquet.Encoding) error {
 	if e != parquet.Encoding_PLAIN && e != parquet.Encoding_PLAIN_DICTIONARY {
-		return fmt.Errorf("a dictionary in the encoding %s is not read", e)
+		return fmt.Errorf("a dictionary in the encoding %s is not read", encodingName(e))
 	}
 	if n < 0 || n > len(data) || c.physical == parquet.Type_BOOLEAN {
 		return damaged("a dictionary of %d values in %d bytes", n, len(data))
@@ -96,7 +96,15 @@ func (v *values) start(c *column, e parquet.Encoding, data []byte) error {
 			return v.startPrefixes(data)
 		}
 	}
-	return fmt.Errorf("%s in the encoding %s is not read", c.physical, e)
+	return fmt.Errorf("%s in the encoding %s is not read", c.physical, encodingName(e))
+}
+
+// encodingName names an encoding, one that came after this reader by its number.
+func encodingName(e parquet.Encoding) string {
+	if name := e.String(); name != "<UNSET>" {
+		return name
+	}
+	return fmt.Sprintf("number %d of the format", int64(e))
 }
 
 // width returns the bytes of a value of fixed width; 0 is that it has none.
