@@ -13,6 +13,7 @@
 // these files:
 //
 //	chain.go     what goes in and what comes out
+//	lines.go     lines of any kinds → chains
 //	solver.go    lines → sweeps, two meshes each, finer ones where the error asks
 //	outcome.go   a sweep, and what is read of its lines
 //	plan.go      how wide, how dense, how many steps

@@ -30,6 +30,7 @@ type work struct {
 	similar      bool      // they are read from one grid, at S/K
 	at           []row     // their lognormal prices, on the mesh, by lane
 	older, newer []outcome // read from the coarser mesh and the finer one
+	batch        batch
 }
 
 // Below certainBelow, σ√T changes a value by less than 4·10⁻⁶ of the spot.
@@ -69,15 +70,16 @@ func (s *Solver) Solve(c *Chain, r *Results) {
 	if len(c.Strike) != len(c.Vol) {
 		panic("pde: slices of different lengths")
 	}
-	tolerance := s.Tolerance
-	if !(tolerance > 0) {
-		tolerance = DefaultTolerance
-	}
 	w := s.take()
-	w.solve(c, r, tolerance)
-	s.mu.Lock()
-	s.free = append(s.free, w)
-	s.mu.Unlock()
+	w.solve(c, r, s.tolerance())
+	s.give(w)
+}
+
+func (s *Solver) tolerance() float64 {
+	if s.Tolerance > 0 {
+		return s.Tolerance
+	}
+	return DefaultTolerance
 }
 
 func (s *Solver) take() *work {
@@ -90,6 +92,12 @@ func (s *Solver) take() *work {
 	w := s.free[n]
 	s.free = s.free[:n]
 	return w
+}
+
+func (s *Solver) give(w *work) {
+	s.mu.Lock()
+	s.free = append(s.free, w)
+	s.mu.Unlock()
 }
 
 func (w *work) solve(c *Chain, r *Results, tolerance float64) {

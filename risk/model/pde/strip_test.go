@@ -133,3 +133,54 @@ func TestSmooth(t *testing.T) {
 		}
 	}
 }
+
+// Lines in any order are the chains that they make up, bit for bit.
+func TestLines(t *testing.T) {
+	rng := rand.New(rand.NewPCG(43, 44))
+	var s pde.Solver
+	terms := make([]line, 12)
+	for i := range terms {
+		terms[i] = random(rng)
+		terms[i].american = rng.IntN(3) > 0
+		for range rng.IntN(4) {
+			terms[i].divs = append(terms[i].divs, pde.Dividend{Time: rng.Float64(), Amount: 3 * rng.Float64()})
+		}
+		if i%4 == 3 { // but for one of them as the term before
+			terms[i] = terms[i-1]
+			switch i {
+			case 3:
+				terms[i].divs = []pde.Dividend{{Time: .01, Amount: 1}}
+			case 7:
+				terms[i].american = !terms[i].american
+			case 11:
+				terms[i].w = -terms[i].w
+			}
+		}
+	}
+	terms[5].r = math.NaN()
+	var l pde.Lines
+	const n = 200
+	for range n {
+		x := terms[rng.IntN(len(terms))]
+		l.Spot, l.Time, l.Vol, l.Rate = append(l.Spot, x.s), append(l.Time, x.t), append(l.Vol, x.v), append(l.Rate, x.r)
+		l.Yield, l.Sign, l.American = append(l.Yield, x.q), append(l.Sign, x.w), append(l.American, x.american)
+		l.Dividends = append(l.Dividends, slices.Clone(x.divs))
+		l.Strike = append(l.Strike, float64(80+5*rng.IntN(9)))
+	}
+	var r, alone pde.Results
+	s.SolveLines(&l, &r)
+	for i := range n {
+		one := line{s: l.Spot[i], k: l.Strike[i], t: l.Time[i], r: l.Rate[i], q: l.Yield[i], v: l.Vol[i], w: l.Sign[i], american: l.American[i], divs: l.Dividends[i]}
+		s.Solve(one.chain(), &alone)
+		if a, b := columns(&r, i), columns(&alone, 0); a != b {
+			t.Errorf("line %d: %x, alone %x", i, a, b)
+		}
+	}
+	if x := testing.AllocsPerRun(5, func() { s.SolveLines(&l, &r) }); x > 2 {
+		t.Errorf("%v allocations", x)
+	}
+	l.Spot, l.Strike, l.Time, l.Vol, l.Rate, l.Yield, l.Sign, l.American, l.Dividends = nil, nil, nil, nil, nil, nil, nil, nil, nil
+	if s.SolveLines(&l, &r); len(r.Price) != 0 {
+		t.Errorf("%d results of no lines", len(r.Price))
+	}
+}
