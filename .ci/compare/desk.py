@@ -39,8 +39,8 @@ S, K, T, r, sigma = (o[c].to_numpy() for c in ("price", "strike", "T", "r", "sig
 future = (o["kind"] == "future").to_numpy()
 q = np.where(future, r, o["carry_yield"].fillna(0).to_numpy())
 w = np.where(o["option_type"] == "call", 1.0, -1.0)
-root = sigma * np.sqrt(T)
 with np.errstate(all="ignore"):
+    root = sigma * np.sqrt(T)
     d1 = (np.log(S / K) + (r - q) * T) / root + root / 2
     d2 = d1 - root
     dq, dr, pdf = np.exp(-q * T), np.exp(-r * T), np.exp(-d1 * d1 / 2) / np.sqrt(2 * np.pi)
@@ -55,6 +55,7 @@ for name in ("V", "delta", "gamma", "vega", "theta", "rho"):
 lines["V"], lines["delta"] = lines["price"].fillna(1), 1.0
 for name, column in zip(("V", "delta", "gamma", "vega", "theta", "rho"), (value, delta, gamma, vega, theta, rho)):
     lines.loc[option, name] = column
+lines.loc[lines["instrument"] == "future", "V"] = 0.0  # margined
 
 size = lines["quantity"] * lines["multiplier"].fillna(1) * lines["fx"]
 lines["value_base"] = lines["V"] * size
