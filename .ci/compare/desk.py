@@ -56,6 +56,11 @@ lines["V"], lines["delta"] = lines["price"].fillna(1), 1.0
 for name, column in zip(("V", "delta", "gamma", "vega", "theta", "rho"), (value, delta, gamma, vega, theta, rho)):
     lines.loc[option, name] = column
 lines.loc[lines["instrument"] == "future", "V"] = 0.0  # margined
+forward = lines["instrument"] == "forward"
+f = lines[forward]
+carry = np.where(f["kind"] == "future", f["r"], f["carry_yield"].fillna(0))
+lines.loc[forward, "delta"] = np.exp(-carry * f["T"])
+lines.loc[forward, "V"] = f["price"] * np.exp(-carry * f["T"]) - f["strike"] * np.exp(-f["r"] * f["T"])
 
 size = lines["quantity"] * lines["multiplier"].fillna(1) * lines["fx"]
 lines["value_base"] = lines["V"] * size
