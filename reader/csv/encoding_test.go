@@ -1,8 +1,11 @@
 package csv
 
 import (
+	"bytes"
+	"io"
 	"strings"
 	"testing"
+	"testing/iotest"
 	"unicode/utf16"
 )
 
@@ -79,4 +82,30 @@ func TestWindows1252Table(t *testing.T) {
 	if string(out) != "A\u00A0éÿ" {
 		t.Errorf("Latin-1: %q", out)
 	}
+}
+
+// FuzzEncoding turns any bytes into UTF-8, read however they come.
+func FuzzEncoding(f *testing.F) {
+	for _, s := range []string{"", "a,b", "\xEF\xBB\xBFa", "\xFF\xFEa\x00\x3d\xd8\x00\xde", "\xFE\xFF\x00a\xd8", "\x80\x81\xe4"} {
+		for e := range EncodingNames {
+			f.Add([]byte(s), byte(e))
+		}
+	}
+	f.Fuzz(func(t *testing.T, b []byte, e byte) {
+		all := func(r io.Reader) string {
+			u, _, err := decoded(r, Encoding(int(e)%len(EncodingNames)))
+			if err != nil {
+				t.Fatal(err)
+			}
+			text, err := io.ReadAll(u)
+			if err != nil {
+				t.Fatal(err)
+			}
+			return string(text)
+		}
+		whole := all(bytes.NewReader(b))
+		if got := all(iotest.OneByteReader(bytes.NewReader(b))); got != whole {
+			t.Fatalf("byte by byte %q, at once %q", got, whole)
+		}
+	})
 }

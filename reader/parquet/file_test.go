@@ -241,12 +241,3 @@ func TestTruncatedPage(t *testing.T) {
 		t.Error("pages of zeros read well")
 	}
 }
-
-func FuzzParquet(f *testing.F) {
-	for _, name := range []string{"plain", "dictionary-snappy", "v2-zstd", "delta-gzip", "int96", "list", "empty", "lz4-delta", "lz4-split", "lz4-plain"} {
-		f.Add(readFile(f, name+".parquet"))
-	}
-	f.Fuzz(func(t *testing.T, b []byte) {
-		rendered(bytes.NewReader(b), int64(len(b)))
-	})
-}

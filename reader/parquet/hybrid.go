@@ -67,6 +67,9 @@ func (h *hybrid) head() error {
 		for i := range size {
 			h.value |= uint32(h.b[i]) << (8 * i)
 		}
+		if uint64(h.value)>>h.width != 0 {
+			return damaged("a run of %d in %d bits", h.value, h.width)
+		}
 		h.b, h.run = h.b[size:], count
 		return nil
 	}

@@ -333,3 +333,17 @@ func FuzzSheet(f *testing.F) {
 		}
 	})
 }
+
+// FuzzTexts changes the shared texts and the styles that cells refer to.
+func FuzzTexts(f *testing.F) {
+	const main = `xmlns="http://schemas.openxmlformats.org/spreadsheetml/2006/main"`
+	f.Add(`<sst `+main+`><si><t>one</t></si><si><r><t>t</t></r><rPh><t>x</t></rPh><r><t>wo_x0041_</t></r></si></sst>`,
+		`<styleSheet `+main+`><numFmts><numFmt numFmtId="164" formatCode="[h]:mm"/></numFmts><cellXfs><xf numFmtId="164"/><xf numFmtId="10"/></cellXfs></styleSheet>`)
+	f.Fuzz(func(t *testing.T, texts, styles string) {
+		header, lines, err := rendered(handmade(t, `<sheetData><row><c t="s"><v>0</v></c><c t="inlineStr"><is><t>b</t></is></c></row><row><c t="s"><v>1</v></c><c s="0"><v>46101.5</v></c></row><row><c s="1"><v>0.5</v></c></row></sheetData>`,
+			map[string]string{"xl/sharedStrings.xml": texts, "xl/styles.xml": styles}))
+		if err == nil && (len(header) == 0 || len(lines) == 0) {
+			t.Errorf("no header or no rows, and no error: %q %q", header, lines)
+		}
+	})
+}
