@@ -11,6 +11,7 @@ const width4 = 4
 type (
 	float4    = archsimd.Float64x4
 	bits4     = archsimd.Uint64x4
+	mask4     = archsimd.Mask64x4
 	lanes4    = [width4]float64
 	bitLanes4 = [width4]uint64
 )

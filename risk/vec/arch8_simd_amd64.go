@@ -11,6 +11,7 @@ const width8 = 8
 type (
 	float8    = archsimd.Float64x8
 	bits8     = archsimd.Uint64x8
+	mask8     = archsimd.Mask64x8
 	lanes8    = [width8]float64
 	bitLanes8 = [width8]uint64
 )

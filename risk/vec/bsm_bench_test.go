@@ -96,3 +96,18 @@ func benchSlices(bench *testing.B, f func(dst, x []float64), lo, hi float64) {
 func BenchmarkExp(b *testing.B)     { benchSlices(b, vec.Exp, -2, 2) }
 func BenchmarkLog(b *testing.B)     { benchSlices(b, vec.Log, 0.1, 10) }
 func BenchmarkNormCDF(b *testing.B) { benchSlices(b, vec.NormCDF, -6, 6) }
+
+func BenchmarkImpliedVol(bench *testing.B) {
+	for _, name := range vec.Tiers() {
+		bench.Run(name, func(bench *testing.B) {
+			defer vec.SetTier(name)()
+			b := benchBatch()
+			for i := range b.Spot {
+				b.Rate[i], b.Yield[i] = 0, 0
+			}
+			b.Prices()
+			outcome := make([]vec.Implied, benchLines)
+			perOption(bench, func() { vec.ImpliedVol(b.Vega, outcome, b.Spot, b.Strike, b.Time, b.Price, b.Sign) })
+		})
+	}
+}

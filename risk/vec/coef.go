@@ -55,6 +55,18 @@ const (
 	millsQ11 = 0x1.cf95c43ed04afp-21 // 8.634943994072101e-07
 )
 
+// h = w²(startP0 + … + startP3·w³)/(1 + startQ1·w + … + startQ4·w⁴) with w² = ln(1+v), v = h·exp(h²/2)/(1 − h·Φ(−h)/φ(h)), h ≥ 0: fit error 0.0015.
+const (
+	startP0 = 0x1.ffe87bc872d7ap-1  // 0.9998205835521923
+	startP1 = 0x1.309bd2e853746p-2  // 0.2974694208431753
+	startP2 = -0x1.549f782ffd967p-5 // -0.04157994722474961
+	startP3 = 0x1.305cd2b0f91efp-2  // 0.29722909169348005
+	startQ1 = 0x1.21c4f473e0991p-2  // 0.28297788579234245
+	startQ2 = 0x1.bc3ba692b2029p-1  // 0.8676425985404467
+	startQ3 = -0x1.33d7a250950b9p-8 // -0.004697301032667572
+	startQ4 = 0x1.ae3223e83da64p-3  // 0.2100565724610589
+)
+
 // log₂e; ln 2 = ln2Hi + ln2Lo with a short first part; 1/√(2π); 3·2⁵¹, which rounds what is added to it to an integer.
 const (
 	log2E      = 0x1.71547652b82fep+0  // 1.4426950408889634

@@ -28,6 +28,17 @@ func (b *BSM) run(want outputs) {
 	}
 }
 
+func (q *quotes) invert() {
+	switch active {
+	case avx512:
+		q.invert8()
+	case avx2:
+		q.invert4()
+	default:
+		q.invertGeneric()
+	}
+}
+
 func expSlice(dst, x []float64) {
 	switch active {
 	case avx512:

@@ -1,9 +1,9 @@
 // Package vec holds the arithmetic that runs once for every option: exp, ln, the
-// normal distribution, and the Black–Scholes–Merton formula with its
-// sensitivities, over slices.
+// normal distribution, the Black–Scholes–Merton formula with its sensitivities,
+// and its inverse, the implied volatility, over slices.
 //
-// The scalar code (exp.go, log.go, normal.go, bsm_generic.go) is the
-// specification. It uses no function of package math beyond FMA, Sqrt and the
+// The scalar code (exp.go, log.go, normal.go, bsm_generic.go, implied_generic.go) is
+// the specification. It uses no function of package math beyond FMA, Sqrt and the
 // bit conversions, all of which are exact or correctly rounded everywhere, and
 // it writes every other sum of a product as float64(x*y) + z, so that a compiler
 // may not fuse it. The AVX2 and AVX-512 forms, built with GOEXPERIMENT=simd,

@@ -112,19 +112,3 @@ func FuzzImpliedVol(f *testing.F) {
 		}
 	})
 }
-
-func BenchmarkImpliedVol(b *testing.B) {
-	rng := rand.New(rand.NewPCG(23, 24))
-	const n = 4096
-	col := func() []float64 { return make([]float64, n) }
-	x := BSM{Spot: col(), Strike: col(), Time: col(), Vol: col(), Rate: col(), Yield: col(), Sign: col(), Price: col()}
-	for i := range n {
-		x.Spot[i], x.Strike[i], x.Time[i], x.Vol[i], x.Sign[i] = 100, 60+80*rng.Float64(), 0.05+2*rng.Float64(), 0.1+0.5*rng.Float64(), float64(1-2*rng.IntN(2))
-	}
-	x.Prices()
-	vol, out := col(), make([]Implied, n)
-	for b.Loop() {
-		ImpliedVol(vol, out, x.Spot, x.Strike, x.Time, x.Price, x.Sign)
-	}
-	b.ReportMetric(n*float64(b.N)/b.Elapsed().Seconds(), "quotes/s")
-}

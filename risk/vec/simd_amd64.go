@@ -23,9 +23,11 @@ const (
 	one      = 1.0
 	two      = 2.0
 	negTwo   = -2.0
+	negThree = -3.0
 	negLn2Hi = -ln2Hi
 	negLn2Lo = -ln2Lo
 
+	negQuarter  = -0.25
 	negGaussEnd = -gaussEnd
 )
 

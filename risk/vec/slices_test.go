@@ -192,7 +192,7 @@ func TestLengthsMustAgree(t *testing.T) {
 // A batch made on the caller's stack stays there.
 func TestNothingIsAllocated(t *testing.T) {
 	src := ordinaryBatch(43, 300)
-	x := make([]float64, 300)
+	x, outcome := make([]float64, 300), make([]vec.Implied, 300)
 	for _, tier := range vec.Tiers() {
 		defer vec.SetTier(tier)()
 		for name, f := range map[string]func(){
@@ -200,7 +200,8 @@ func TestNothingIsAllocated(t *testing.T) {
 			"Core":   func() { b := *src; b.Core() },
 			"Prices": func() { b := *src; b.Prices() },
 			"Exp":    func() { vec.Exp(x, src.Vol) }, "Log": func() { vec.Log(x, src.Vol) }, "LogRatio": func() { vec.LogRatio(x, src.Spot, src.Strike) },
-			"NormPDF": func() { vec.NormPDF(x, src.Vol) }, "NormCDF": func() { vec.NormCDF(x, src.Vol) },
+			"ImpliedVol": func() { vec.ImpliedVol(x, outcome, src.Spot, src.Strike, src.Time, src.Price, src.Sign) },
+			"NormPDF":    func() { vec.NormPDF(x, src.Vol) }, "NormCDF": func() { vec.NormCDF(x, src.Vol) },
 		} {
 			if n := testing.AllocsPerRun(20, f); n != 0 {
 				t.Errorf("%s in tier %s allocates %v times", name, tier, n)

@@ -47,6 +47,14 @@ type table4 struct {
 	millsQ9       lanes4
 	millsQ10      lanes4
 	millsQ11      lanes4
+	startP0       lanes4
+	startP1       lanes4
+	startP2       lanes4
+	startP3       lanes4
+	startQ1       lanes4
+	startQ2       lanes4
+	startQ3       lanes4
+	startQ4       lanes4
 	log2E         lanes4
 	invSqrt2Pi    lanes4
 	roundShift    lanes4
@@ -63,6 +71,30 @@ type table4 struct {
 	gaussEnd      lanes4
 	negGaussEnd   lanes4
 	residualFloor lanes4
+	millsEnd      lanes4
+	expLowest     lanes4
+	expHighest    lanes4
+	third         lanes4
+	sixth         lanes4
+	negThree      lanes4
+	negQuarter    lanes4
+	sqrt2Pi       lanes4
+	ln2           lanes4
+	startFloor    lanes4
+	startLeast    lanes4
+	quantileP0    lanes4
+	quantileP1    lanes4
+	quantileP2    lanes4
+	quantileQ1    lanes4
+	quantileQ2    lanes4
+	quantileQ3    lanes4
+	quantileMost  lanes4
+	taylorFrom    lanes4
+	taylorWidth   lanes4
+	tailLeast     lanes4
+	tailMost      lanes4
+	closeEnough   lanes4
+	nearLimit     lanes4
 	absBits       bitLanes4
 	oneBits       bitLanes4
 	exponentBits  bitLanes4
@@ -79,6 +111,7 @@ type table4 struct {
 	hugeFrom      bitLanes4
 	tailFrom      bitLanes4
 	signBit       bitLanes4
+	reciprocals   [len(reciprocals)]lanes4
 }
 
 func (t *table4) fill() {
@@ -123,6 +156,14 @@ func (t *table4) fill() {
 	spread(t.millsQ9[:], millsQ9)
 	spread(t.millsQ10[:], millsQ10)
 	spread(t.millsQ11[:], millsQ11)
+	spread(t.startP0[:], startP0)
+	spread(t.startP1[:], startP1)
+	spread(t.startP2[:], startP2)
+	spread(t.startP3[:], startP3)
+	spread(t.startQ1[:], startQ1)
+	spread(t.startQ2[:], startQ2)
+	spread(t.startQ3[:], startQ3)
+	spread(t.startQ4[:], startQ4)
 	spread(t.log2E[:], log2E)
 	spread(t.invSqrt2Pi[:], invSqrt2Pi)
 	spread(t.roundShift[:], roundShift)
@@ -139,6 +180,30 @@ func (t *table4) fill() {
 	spread(t.gaussEnd[:], gaussEnd)
 	spread(t.negGaussEnd[:], negGaussEnd)
 	spread(t.residualFloor[:], residualFloor)
+	spread(t.millsEnd[:], millsEnd)
+	spread(t.expLowest[:], expLowest)
+	spread(t.expHighest[:], expHighest)
+	spread(t.third[:], third)
+	spread(t.sixth[:], sixth)
+	spread(t.negThree[:], negThree)
+	spread(t.negQuarter[:], negQuarter)
+	spread(t.sqrt2Pi[:], sqrt2Pi)
+	spread(t.ln2[:], ln2)
+	spread(t.startFloor[:], startFloor)
+	spread(t.startLeast[:], startLeast)
+	spread(t.quantileP0[:], quantileP0)
+	spread(t.quantileP1[:], quantileP1)
+	spread(t.quantileP2[:], quantileP2)
+	spread(t.quantileQ1[:], quantileQ1)
+	spread(t.quantileQ2[:], quantileQ2)
+	spread(t.quantileQ3[:], quantileQ3)
+	spread(t.quantileMost[:], quantileMost)
+	spread(t.taylorFrom[:], taylorFrom)
+	spread(t.taylorWidth[:], taylorWidth)
+	spread(t.tailLeast[:], tailLeast)
+	spread(t.tailMost[:], tailMost)
+	spread(t.closeEnough[:], closeEnough)
+	spread(t.nearLimit[:], nearLimit)
 	spread(t.absBits[:], absBits)
 	spread(t.oneBits[:], oneBits)
 	spread(t.exponentBits[:], exponentBits)
@@ -155,4 +220,7 @@ func (t *table4) fill() {
 	spread(t.hugeFrom[:], hugeFrom)
 	spread(t.tailFrom[:], tailFrom)
 	spread(t.signBit[:], signBit)
+	for i, r := range reciprocals {
+		spread(t.reciprocals[i][:], r)
+	}
 }

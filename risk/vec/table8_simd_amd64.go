@@ -47,6 +47,14 @@ type table8 struct {
 	millsQ9       lanes8
 	millsQ10      lanes8
 	millsQ11      lanes8
+	startP0       lanes8
+	startP1       lanes8
+	startP2       lanes8
+	startP3       lanes8
+	startQ1       lanes8
+	startQ2       lanes8
+	startQ3       lanes8
+	startQ4       lanes8
 	log2E         lanes8
 	invSqrt2Pi    lanes8
 	roundShift    lanes8
@@ -63,6 +71,30 @@ type table8 struct {
 	gaussEnd      lanes8
 	negGaussEnd   lanes8
 	residualFloor lanes8
+	millsEnd      lanes8
+	expLowest     lanes8
+	expHighest    lanes8
+	third         lanes8
+	sixth         lanes8
+	negThree      lanes8
+	negQuarter    lanes8
+	sqrt2Pi       lanes8
+	ln2           lanes8
+	startFloor    lanes8
+	startLeast    lanes8
+	quantileP0    lanes8
+	quantileP1    lanes8
+	quantileP2    lanes8
+	quantileQ1    lanes8
+	quantileQ2    lanes8
+	quantileQ3    lanes8
+	quantileMost  lanes8
+	taylorFrom    lanes8
+	taylorWidth   lanes8
+	tailLeast     lanes8
+	tailMost      lanes8
+	closeEnough   lanes8
+	nearLimit     lanes8
 	absBits       bitLanes8
 	oneBits       bitLanes8
 	exponentBits  bitLanes8
@@ -79,6 +111,7 @@ type table8 struct {
 	hugeFrom      bitLanes8
 	tailFrom      bitLanes8
 	signBit       bitLanes8
+	reciprocals   [len(reciprocals)]lanes8
 }
 
 func (t *table8) fill() {
@@ -123,6 +156,14 @@ func (t *table8) fill() {
 	spread(t.millsQ9[:], millsQ9)
 	spread(t.millsQ10[:], millsQ10)
 	spread(t.millsQ11[:], millsQ11)
+	spread(t.startP0[:], startP0)
+	spread(t.startP1[:], startP1)
+	spread(t.startP2[:], startP2)
+	spread(t.startP3[:], startP3)
+	spread(t.startQ1[:], startQ1)
+	spread(t.startQ2[:], startQ2)
+	spread(t.startQ3[:], startQ3)
+	spread(t.startQ4[:], startQ4)
 	spread(t.log2E[:], log2E)
 	spread(t.invSqrt2Pi[:], invSqrt2Pi)
 	spread(t.roundShift[:], roundShift)
@@ -139,6 +180,30 @@ func (t *table8) fill() {
 	spread(t.gaussEnd[:], gaussEnd)
 	spread(t.negGaussEnd[:], negGaussEnd)
 	spread(t.residualFloor[:], residualFloor)
+	spread(t.millsEnd[:], millsEnd)
+	spread(t.expLowest[:], expLowest)
+	spread(t.expHighest[:], expHighest)
+	spread(t.third[:], third)
+	spread(t.sixth[:], sixth)
+	spread(t.negThree[:], negThree)
+	spread(t.negQuarter[:], negQuarter)
+	spread(t.sqrt2Pi[:], sqrt2Pi)
+	spread(t.ln2[:], ln2)
+	spread(t.startFloor[:], startFloor)
+	spread(t.startLeast[:], startLeast)
+	spread(t.quantileP0[:], quantileP0)
+	spread(t.quantileP1[:], quantileP1)
+	spread(t.quantileP2[:], quantileP2)
+	spread(t.quantileQ1[:], quantileQ1)
+	spread(t.quantileQ2[:], quantileQ2)
+	spread(t.quantileQ3[:], quantileQ3)
+	spread(t.quantileMost[:], quantileMost)
+	spread(t.taylorFrom[:], taylorFrom)
+	spread(t.taylorWidth[:], taylorWidth)
+	spread(t.tailLeast[:], tailLeast)
+	spread(t.tailMost[:], tailMost)
+	spread(t.closeEnough[:], closeEnough)
+	spread(t.nearLimit[:], nearLimit)
 	spread(t.absBits[:], absBits)
 	spread(t.oneBits[:], oneBits)
 	spread(t.exponentBits[:], exponentBits)
@@ -155,4 +220,7 @@ func (t *table8) fill() {
 	spread(t.hugeFrom[:], hugeFrom)
 	spread(t.tailFrom[:], tailFrom)
 	spread(t.signBit[:], signBit)
+	for i, r := range reciprocals {
+		spread(t.reciprocals[i][:], r)
+	}
 }

@@ -105,6 +105,45 @@ for i in range(300):
     y = C * (1 + t) / (1 - t)
     mills_err = max(mills_err, abs(horner(mills_p, y) / horner(mills_q, y) / mills(y) * sqrt(2 * pi) - 1))
 
+# A first guess for the inversion: h >= 0 from v = h e^(h^2/2) / (1 - h mills(h)), of
+# which h = v for small v and h^2 = 2 ln v for large v. As a function of w =
+# sqrt(ln(1+v)) it is w^2 P(w)/Q(w), of degrees 3 and 4, on [0, inf); w = S (1+t)/(1-t).
+S = mpf("1.5")
+
+
+def log_v(h):
+    return log(h) + h * h / 2 - log(1 - h * mills(h))
+
+
+def start_h(w):
+    """The h of w, by bisection."""
+    lo, hi = mpf("1e-9"), mpf(10) * (1 + w)
+    for _ in range(100):
+        h = (lo + hi) / 2
+        if log_v(h) + log(1 + exp(-log_v(h))) < w * w:
+            lo = h
+        else:
+            hi = h
+    return h
+
+
+def fit_start(n):
+    m, rhs = matrix(2 * n, 2 * n), matrix(2 * n, 1)
+    for i, t in enumerate(chebyshev_nodes(2 * n)):
+        w = S * (1 + t) / (1 - t)
+        u, scale, ratio = w / S, (1 + w / S) ** (1 - n), start_h(w) / w**2
+        for k in range(n):
+            m[i, k] = u**k / ratio * scale
+        for k in range(1, n + 1):
+            m[i, n + k - 1] = -(u**k) * scale
+        rhs[i] = scale
+    s = lu_solve(m, rhs)
+    return [s[k] / S**k for k in range(n)], [mpf(1)] + [s[n + k - 1] / S**k for k in range(1, n + 1)]
+
+
+start_p, start_q = (rounded(c) for c in fit_start(4))
+start_err = max(abs(w**2 * horner(start_p, w) / horner(start_q, w) / start_h(w) - 1) for w in linspace(mpf("0.1"), mpf(27), 120))
+
 # ln 2 in two parts: the first has 40 bits, so its product with any exponent is exact.
 ln2 = log(mpf(2))
 ln2_hi = floor(ln2 * mpf(2) ** 40) / mpf(2) ** 40
@@ -116,12 +155,17 @@ GROUPS = [
      [(f"logC{i}", c) for i, c in enumerate(log_c)]),
     ("Φ(−y)·exp(y²/2) = (millsP0 + … + millsP10·y¹⁰)/(millsQ0 + … + millsQ11·y¹¹), y ≥ 0: fit error " + nstr(mills_err, 2),
      [(f"millsP{i}", c) for i, c in enumerate(mills_p)] + [(f"millsQ{i}", c) for i, c in enumerate(mills_q)]),
+    ("h = w²(startP0 + … + startP3·w³)/(1 + startQ1·w + … + startQ4·w⁴) with w² = ln(1+v), v = h·exp(h²/2)/(1 − h·Φ(−h)/φ(h)), h ≥ 0: fit error " + nstr(start_err, 2),
+     [(f"startP{i}", c) for i, c in enumerate(start_p)] + [(f"startQ{i}", c) for i, c in enumerate(start_q) if i > 0]),
     ("log₂e; ln 2 = ln2Hi + ln2Lo with a short first part; 1/√(2π); 3·2⁵¹, which rounds what is added to it to an integer",
      [("log2E", 1 / ln2), ("ln2Hi", ln2_hi), ("ln2Lo", ln2 - ln2_hi), ("invSqrt2Pi", 1 / sqrt(2 * pi)), ("roundShift", mpf(3) * 2**51)]),
 ]
 
 # The table of the vector forms holds these and the constants below once per lane, by the name they have in the scalar code.
-EXTRA = ["zero", "half", "negHalf", "one", "two", "negTwo", "negLn2Hi", "negLn2Lo", "gaussEnd", "negGaussEnd", "residualFloor"]
+EXTRA = ["zero", "half", "negHalf", "one", "two", "negTwo", "negLn2Hi", "negLn2Lo", "gaussEnd", "negGaussEnd", "residualFloor",
+         "millsEnd", "expLowest", "expHighest", "third", "sixth", "negThree", "negQuarter", "sqrt2Pi", "ln2", "startFloor", "startLeast",
+         "quantileP0", "quantileP1", "quantileP2", "quantileQ1", "quantileQ2", "quantileQ3", "quantileMost",
+         "taylorFrom", "taylorWidth", "tailLeast", "tailMost", "closeEnough", "nearLimit"]
 BITS = ["absBits", "oneBits", "exponentBits", "halfBinade", "biasBits", "roundBits", "priceFrom", "priceMask", "timeFrom",
         "timeMask", "rateMask", "logFrom", "logMask", "hugeFrom", "tailFrom", "signBit"]
 
@@ -146,11 +190,13 @@ def table():
         print(f"{name} lanes8")
     for name in BITS:
         print(f"{name} bitLanes8")
+    print("reciprocals [len(reciprocals)]lanes8")
     print("}\n\nfunc (t *table8) fill() {")
     for name in floats:
         print(f"spread(t.{name}[:], {name})")
     for name in BITS:
         print(f"spread(t.{name}[:], {name})")
+    print("for i, r := range reciprocals {\nspread(t.reciprocals[i][:], r)\n}")
     print("}")
 
 
