@@ -1,34 +1,27 @@
 //go:build ignore
 
-// Reference values of American and European options with cash dividends, by a
-// lattice: an explicit method that shares no code, no mesh and no stencil with
-// package pde.
-//
-//	go run pde_lattice.go | gzip -9n > pde_options.csv.gz
+// A lattice for American and European options with cash dividends: an explicit
+// method that shares no code, no mesh and no stencil with package pde. Two programs
+// use it, pde_table.go and pde_lines.go.
 //
 // Along y = ln S − (r − q − σ²/2)·t the equation is the heat equation. With
 // h² = 3σ²·dt the weights 1/6, 2/3, 1/6 solve it to fourth order in h. Exercise is
 // allowed after every step, so an American value comes out as that of an option
 // exercisable on N dates, whose distance to the limit is proportional to 1/N: two
 // lattices, N and 2N, extrapolated. How the kinks of exercise lie to the nodes
-// leaves some noise: three such pairs are averaged, and half their range is
-// written beside the price. A dividend moves the values by a polynomial through
-// six nodes. The payoff starts from cell means.
+// leaves some noise: three such pairs are averaged, and half their range is told
+// beside the price. A dividend moves the values by a polynomial through six nodes.
+// The payoff starts from cell means.
 //
-// Checked, before anything is written, against the closed form without dividends,
-// and against the American premium 0.106952702747 of the benchmark option of
-// Andersen, Lake & Offengenden 2016 (from memory, reproduced).
+// Both programs check it, before anything is written, against the closed form
+// without dividends, and against the American premium 0.106952702747 of the
+// benchmark option of Andersen, Lake & Offengenden 2016 (from memory, reproduced).
 package main
 
 import (
-	"bufio"
 	"fmt"
 	"math"
-	"math/rand/v2"
-	"os"
 	"slices"
-	"strconv"
-	"sync"
 )
 
 type option struct {
@@ -166,17 +159,21 @@ func extrapolated(o option, steps int) values {
 	return values{2*b.price - a.price, 2*b.delta - a.delta, 2*b.gamma - a.gamma}
 }
 
-// price is the mean of three, and half the range of the prices.
-func price(o option) (v values, spread float64) {
-	lo, hi := math.Inf(1), math.Inf(-1)
-	for _, n := range []int{steps, steps * 9 / 8, steps * 5 / 4} {
-		x := extrapolated(o, n)
-		v.price += x.price / 3
-		v.delta += x.delta / 3
-		v.gamma += x.gamma / 3
-		lo, hi = min(lo, x.price), max(hi, x.price)
+// price is the mean of three, and half their range.
+func price(o option, steps int) (mean, spread values) {
+	var x [3]values
+	for i, n := range []int{steps, steps * 9 / 8, steps * 5 / 4} {
+		x[i] = extrapolated(o, n)
 	}
-	return v, (hi - lo) / 2
+	each := func(of func(*values) *float64) {
+		a, b, c := *of(&x[0]), *of(&x[1]), *of(&x[2])
+		*of(&mean) = a/3 + b/3 + c/3
+		*of(&spread) = (max(a, b, c) - min(a, b, c)) / 2
+	}
+	each(func(v *values) *float64 { return &v.price })
+	each(func(v *values) *float64 { return &v.delta })
+	each(func(v *values) *float64 { return &v.gamma })
+	return mean, spread
 }
 
 func closed(o option) float64 {
@@ -186,97 +183,15 @@ func closed(o option) float64 {
 	return o.sign * (spot*math.Exp(-o.yield*o.time)*phi(o.sign*d) - o.strike*math.Exp(-o.rate*o.time)*phi(o.sign*(d-sd)))
 }
 
-func short(x float64, digits int) float64 {
-	y, _ := strconv.ParseFloat(strconv.FormatFloat(x, 'g', digits, 64), 64)
-	return y
-}
-
-func random(rng *rand.Rand) option {
-	logUniform := func(a, b float64) float64 { return a * math.Exp(rng.Float64()*math.Log(b/a)) }
-	o := option{
-		time: short(logUniform(7, 1500), 3) / 365, rate: short(-0.02+0.12*rng.Float64(), 3), yield: short(-0.03+0.12*rng.Float64(), 3),
-		sign: float64(1 - 2*rng.IntN(2)), vol: short(logUniform(0.08, 0.8), 3), american: rng.IntN(4) > 0,
-	}
-	sd := o.vol * math.Sqrt(o.time)
-	o.strike = short(spot*math.Exp((o.rate-o.yield)*o.time+2*sd*(2*rng.Float64()-1)), 4)
-	if rng.IntN(4) > 0 {
-		for range 1 + rng.IntN(5) {
-			o.divs = append(o.divs, [2]float64{short(0.99*o.time*rng.Float64(), 3), short(logUniform(0.1, 6), 3)})
-		}
-	}
-	return o
-}
-
-const (
-	lines      = 1000
-	withGreeks = 240 // of them: vega, rho and carry_rho by differences
-	steps      = 4000
-)
-
-func check() {
+// check panics unless the lattice gives the closed form and the benchmark.
+func check(steps int) {
 	o := option{time: 1, rate: 0.05, yield: 0.05, sign: -1, strike: 100, vol: 0.25}
-	if v, _ := price(o); math.Abs(v.price-closed(o)) > 2e-6 {
+	if v, _ := price(o, steps); math.Abs(v.price-closed(o)) > 2e-6 {
 		panic(fmt.Sprint("European off by ", v.price-closed(o)))
 	}
 	a := o
 	a.american = true
-	if v, _ := price(a); math.Abs(v.price-closed(o)-0.106952702747) > 2e-5 {
+	if v, _ := price(a, steps); math.Abs(v.price-closed(o)-0.106952702747) > 2e-5 {
 		panic(fmt.Sprint("American premium off by ", v.price-closed(o)-0.106952702747))
-	}
-}
-
-func main() {
-	check()
-	rng := rand.New(rand.NewPCG(20260105, 7))
-	options := make([]option, lines)
-	for i := range options {
-		options[i] = random(rng)
-	}
-	out := make([]string, lines)
-	next := make(chan int)
-	var wait sync.WaitGroup
-	for range 2 {
-		wait.Go(func() {
-			for i := range next {
-				o := options[i]
-				v, spread := price(o)
-				s := fmt.Sprintf("%v,%v,%v,%v,%v,%v,%v,", o.strike, o.time, o.vol, o.rate, o.yield, o.sign, o.american)
-				for k, d := range o.divs {
-					if k > 0 {
-						s += ";"
-					}
-					s += fmt.Sprintf("%v:%v", d[0], d[1])
-				}
-				s += fmt.Sprintf(",%.7f,%.1e,%.7f,%.8f", v.price, spread, v.delta, v.gamma)
-				if i < withGreeks {
-					diff := func(p func(*option) *float64, h float64) float64 {
-						a, b := o, o
-						*p(&a) -= h
-						*p(&b) += h
-						u, _ := price(a)
-						v, _ := price(b)
-						return (v.price - u.price) / (2 * h)
-					}
-					s += fmt.Sprintf(",%.4f,%.4f,%.4f",
-						diff(func(o *option) *float64 { return &o.vol }, 0.01*o.vol),
-						diff(func(o *option) *float64 { return &o.rate }, 2e-3/max(1, o.time)),
-						diff(func(o *option) *float64 { return &o.yield }, 2e-3/max(1, o.time)))
-				} else {
-					s += ",,,"
-				}
-				out[i] = s
-			}
-		})
-	}
-	for i := range options {
-		next <- i
-	}
-	close(next)
-	wait.Wait()
-	w := bufio.NewWriter(os.Stdout)
-	defer w.Flush()
-	fmt.Fprintln(w, "strike,time,vol,rate,yield,sign,american,dividends,price,spread,delta,gamma,vega,rho,carry_rho")
-	for _, s := range out {
-		fmt.Fprintln(w, s)
 	}
 }

@@ -83,6 +83,13 @@ class Slice:
                 + t * t * (3 - 2 * t) * self.w[i + 1] + t * t * (t - 1) * h * self.slope[i + 1])
 
 
+class Dividend:
+    """Cash that one unit pays its holder of the day before the ex-date."""
+
+    def __init__(self, day, t, amount):
+        self.day, self.t, self.amount = day, t, amount
+
+
 class Underlying:
     def __init__(self, folder, row):
         self.name, self.kind, self.currency = row["underlying"], row["kind"], row["currency"]
@@ -92,18 +99,30 @@ class Underlying:
         self.curve = row.get("curve") or self.currency
         self.slices = []
         self.surface_broken = False
+        self.dividends = []  # after as_of
+        self.dividends_broken = False
+
+    def dividends_until(self, day, T):
+        """Those of a contract that ends on a day, T years from now: an ex-date
+        on that day counts, however early the contract ends on it."""
+        return [Dividend(d.day, min(d.t, T), d.amount) for d in self.dividends if d.day <= day]
 
 
 class Market:
     def __init__(self, folder):
         self.as_of = folder.as_of
         self.reporting = folder.run["reporting_currency"]
+        models = folder.run.get("models", {})
+        self.american, self.dividend_model = models.get("american", "standard"), models.get("dividends", "piecewise")
+        assert self.dividend_model == "piecewise", "the lattice knows no other model"
         self.underlyings = {r["underlying"]: Underlying(folder, r) for r in folder.rows("underlyings")}
         self.fx = {r["currency"]: folder.number(r["rate"]) for r in folder.rows("fx")}
         self.fx.setdefault(self.reporting, mpf(1))
         self.curves = {}
         for r in folder.rows("rates"):
             self._add_rate(folder, r)
+        if folder.has("dividends"):
+            self._read_dividends(folder)
         self._read_surfaces(folder)
         closed = {folder.day(r["date"]) for r in folder.rows("holidays") if r["calendar"] == folder.run["calendar"]}
         self.days_to_business_day = 1
@@ -120,17 +139,31 @@ class Market:
         zero, discount = folder.number(r.get("zero_rate", "")), folder.number(r.get("discount_factor", ""))
         self.curves.setdefault(r["curve"], Curve()).add(T, zero * T if zero is not None else -log(discount))
 
+    def _read_dividends(self, folder):
+        for r in folder.rows("dividends"):
+            u = self.underlyings.get(r["underlying"])
+            if u is None or u.kind not in ("equity", "index"):
+                continue
+            try:
+                day, amount = folder.day(r["ex_date"]), folder.number(r["amount"])
+            except Refused:
+                u.dividends_broken = True
+                continue
+            if day > self.as_of.day:
+                u.dividends.append(Dividend(day, self.as_of.years_to(Moment(day)), amount))
+
     def _read_surfaces(self, folder):
         found = {}
         for r in folder.rows("vols"):
             u = self.underlyings[r["underlying"]]
             try:
-                T = self.as_of.years_to(folder.moment(r["expiry"]))
+                expiry = folder.moment(r["expiry"])
+                T = self.as_of.years_to(expiry)
                 strike, vol = folder.number(r["strike"]), folder.vol(r["vol"])
             except Refused:
                 u.surface_broken = True
                 continue
-            k = log(strike / self.forward(u, T))
+            k = log(strike / self.forward(u, T, expiry.day))
             found.setdefault((r["underlying"], T), []).append((k, vol * vol * T))
         for (name, T), points in sorted(found.items()):
             if T > 0:
@@ -144,12 +177,14 @@ class Market:
     def carry(self, u, T):
         return self.rate(u, T) if u.kind == "future" else u.carry
 
-    def forward(self, u, T):
+    def forward(self, u, T, day):
+        """Carried at the one rate to T, the dividends as well."""
         if u.kind == "future":
             return u.price
-        return u.price * exp((self.rate(u, T) - u.carry) * T)
+        b = self.rate(u, T) - u.carry
+        return u.price * exp(b * T) - sum(d.amount * exp(b * (T - d.t)) for d in u.dividends_until(day, T))
 
-    def vol(self, u, strike, T):
+    def vol(self, u, strike, T, day):
         """The volatility of strike and T, and where it comes from."""
         if u.surface_broken:
             raise Refused("bad_market_data")
@@ -157,7 +192,7 @@ class Market:
             if u.flat_vol is None:
                 raise Refused("no_vol")
             return u.flat_vol, "underlying"
-        k = log(strike / self.forward(u, T))
+        k = log(strike / self.forward(u, T, day))
         first, last = u.slices[0], u.slices[-1]
         if T <= first.T:
             return sqrt(first.variance(k) / first.T), "surface"

@@ -32,8 +32,11 @@ def future_option_value(F, K, T, r, vol, call):
     return exp(-r * T) * (K * normal_cdf(-d2) - F * normal_cdf(-d1))
 
 
-def forward_value(S, K, T, r, q):
-    return S * exp(-q * T) - K * exp(-r * T)
+def forward_value(S, K, T, r, q, dividends=()):
+    """Dividends are pairs of the amount and the years from its ex-date to T,
+    which the passing of time leaves as they are."""
+    forward = S * exp((r - q) * T) - sum(amount * exp((r - q) * left) for amount, left in dividends)
+    return (forward - K) * exp(-r * T)
 
 
 def future_forward_value(F, K, T, r):
@@ -58,13 +61,13 @@ def payoff_slope(instrument, S, K, call):
 GREEKS = ["delta", "gamma", "vega", "theta", "rho", "carry_rho", "vanna", "volga", "charm"]
 
 
-def value_function(instrument, kind, K, call):
+def value_function(instrument, kind, K, call, dividends=()):
     """V(S, T, r, q, vol). On a future, S is the futures price and V does not
     know q: with the futures price held, rho is the discounting alone."""
     if instrument == "forward" and kind == "future":
         return lambda S, T, r, q, vol: future_forward_value(S, K, T, r)
     if instrument == "forward":
-        return lambda S, T, r, q, vol: forward_value(S, K, T, r, q)
+        return lambda S, T, r, q, vol: forward_value(S, K, T, r, q, dividends)
     if kind == "future":
         return lambda S, T, r, q, vol: future_option_value(S, K, T, r, vol, call)
     return lambda S, T, r, q, vol: option_value(S, K, T, r, q, vol, call)

@@ -47,6 +47,9 @@ class Folder:
         self.percent = self.run.get("vols", {}).get("unit", "decimal") == "percent"
         self.as_of = self._moment(self.run["as_of"], "YYYY-MM-DD")
 
+    def has(self, table):
+        return (self.path / f"{table}.csv").exists() or (self.path / f"{table}.csv.gz").exists()
+
     def rows(self, table):
         """Yields each row as a dict under our own column names; None for a
         row that does not have the columns of its header."""

@@ -7,11 +7,12 @@ Formulas, 2nd ed., 2007 (from memory, reproduced to the printed digits).
 import datetime
 import unittest
 
-from mpmath import mp, mpf
+from mpmath import exp, mp, mpf
 
-from market import Slice
+from expected import after
+from market import Dividend, Slice, Underlying
 from price import forward_value, future_option_value, greeks, option_value, value_function
-from tables import add_tenor
+from tables import Moment, add_tenor
 
 
 def bsm(S, K, T, r, b, vol, call):
@@ -57,6 +58,42 @@ class Published(unittest.TestCase):
         S, K, T, r, q, vol = map(mpf, ("100", "90", ".7", ".03", ".01", ".25"))
         gap = option_value(S, K, T, r, q, vol, True) - option_value(S, K, T, r, q, vol, False)
         self.assertAlmostEqual(gap, forward_value(S, K, T, r, q), delta=1e-40)
+
+
+    def test_forward_with_dividends(self):
+        # J. C. Hull, Options, Futures, and Other Derivatives: 50, 8 %, ten months,
+        # 0.75 after three, six and nine (from memory, reproduced)
+        paid = [(mpf(".75"), mpf(10 - m) / 12) for m in (3, 6, 9)]
+        T, r = mpf(10) / 12, mpf(".08")
+        self.assertAlmostEqual(forward_value(mpf(50), mpf(0), T, r, mpf(0), paid) * exp(r * T), mpf("51.14"), delta=5e-3)
+        # at the moment of an ex-date nothing changes: what comes off the price
+        # comes off the dividends that are left
+        left = T - mpf(3) / 12
+        before = forward_value(mpf(50), mpf(45), left, r, mpf(0), paid)
+        behind = forward_value(mpf(50) - mpf(".75"), mpf(45), left, r, mpf(0), paid[1:])
+        self.assertAlmostEqual(before, behind, delta=1e-40)
+
+
+class Dividends(unittest.TestCase):
+    def setUp(self):
+        mp.dps = 50
+
+    def test_which_count(self):
+        day = datetime.date(2026, 8, 13)
+        u = Underlying.__new__(Underlying)
+        u.dividends = [Dividend(day + datetime.timedelta(days=n), mpf(n) / 365, mpf(n)) for n in (1, 30, 31)]
+        self.assertEqual([d.amount for d in u.dividends_until(day + datetime.timedelta(days=30), mpf(30) / 365)], [1, 30])
+        noon = u.dividends_until(day + datetime.timedelta(days=30), mpf("29.8") / 365)
+        self.assertEqual(noon[1].t, mpf("29.8") / 365)  # on the day of expiry, never behind the expiry
+
+    def test_what_goes_ex_within_a_step_comes_off_the_price(self):
+        class Now:
+            as_of = Moment(datetime.date(2026, 8, 13), 995)
+
+        paid = [Dividend(datetime.date(2026, 8, 14), mpf(1) / 365, mpf("1.3")), Dividend(datetime.date(2026, 9, 13), mpf(31) / 365, mpf(2))]
+        spot, left, rest = after(1, mpf(40), mpf(60) / 365, paid, Now)
+        self.assertEqual((spot, left, len(rest)), (mpf("38.7"), mpf(60) / 365 - mpf(1) / 365, 1))
+        self.assertAlmostEqual(rest[0].t, mpf(30) / 365, delta=1e-40)
 
 
 class Interpolation(unittest.TestCase):
