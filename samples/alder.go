@@ -11,7 +11,7 @@ import (
 // business day is four calendar days away.
 func alder() snapshot {
 	a := &alderDesk{ledger: ledger{prefix: "A", random: newRandom(4812, 1), columns: []string{
-		"line_id", "book", "underlying", "instrument", "quantity", "multiplier", "currency", "option_type", "exercise", "strike",
+		"line_id", "book", "underlying", "instrument", "quantity", "multiplier", "currency", "option_type", "exercise", "payoff", "strike",
 		"expiry", "vol", "mark", "entry_price", "strategy", "trader", "trade_ref", "remark"}},
 		asOf: day(2026, 6, 19)}
 	a.market()
@@ -29,7 +29,7 @@ func alder() snapshot {
 		row["trade_ref"] = "T26-" + row["line_id"][1:] + strconv.FormatInt(a.between(10, 99), 10)
 	}
 	return snapshot{name: "alder-index-desk", broken: a.broken, files: []file{
-		a.ledger.file(plain, nil), a.underlyingsFile(), alderRates(a.asOf), a.volsFile(),
+		a.ledger.file(plain, nil), underlyingsFile(a.quotes, "2026-06-19T17:35"), alderRates(a.asOf), volsFile(a.quotes, a.asOf),
 		alderFX(), alderBooks(), alderHolidays(), {"run.toml", []byte(alderRun)}}}
 }
 
@@ -76,18 +76,6 @@ func (a *alderDesk) market() {
 	a.kestrelFut.yield = 190 // means nothing on a future: shown to be ignored
 
 	a.quotes = []*quote{a.alder, a.bramble, a.kestrel, a.nettle, a.ostfen, a.quildale, a.tarnwick, a.hollow, a.alderFut, a.brambleFut, a.kestrelFut}
-}
-
-// option adds an option line.
-func (a *alderDesk) option(book string, q *quote, quantity int64, multiplier, optionType, strike, expiry, strategy string) map[string]string {
-	return a.add("book", book, "underlying", q.name, "instrument", "option", "quantity", strconv.FormatInt(quantity, 10),
-		"multiplier", multiplier, "option_type", optionType, "strike", strike, "expiry", expiry, "strategy", strategy)
-}
-
-// linear adds a stock, future, forward or cash line.
-func (a *alderDesk) linear(book, underlying, instrument string, quantity int64, more ...string) map[string]string {
-	return a.add(append([]string{"book", book, "underlying", underlying, "instrument", instrument,
-		"quantity", strconv.FormatInt(quantity, 10), "strategy", "hedge"}, more...)...)
 }
 
 // euVol sells strangles on ALDER-X in every expiry up to a year and buys the

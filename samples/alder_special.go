@@ -64,66 +64,19 @@ func (a *alderDesk) faulty() {
 	fault(schema.BadDate, like(a.alder), "expiry", "2026-09-31")
 	fault(schema.MissingValue, like(a.nettle), "strike", "")
 	fault(schema.UnknownUnderlying, like(a.alder), "underlying", "ALDERX")
-	fault(schema.Unsupported, like(a.ostfen), "exercise", "american")
+	fault(schema.Unsupported, like(a.ostfen), "exercise", "american", "payoff", "asset_digital")
 	fault(schema.CurrencyMismatch, like(a.bramble), "currency", "EUR")
 	fault(schema.NoVol, like(a.hollow), "remark", "volatility was to follow")
 	fault(schema.BadChoice, like(a.nettle), "option_type", "cal")
 	fault(schema.DuplicateLineID, like(a.alder), "line_id", "A0007", "remark", "booked again by mistake")
 	fault(schema.KindMismatch, a.linear("EU-HEDGE", a.nettle.name, "future", 12), "multiplier", "10")
 
-	// among the good lines, as they are met in life; the repeated line_id
-	// stays behind the line whose name it bears
-	n := len(a.rows) - len(a.broken)
-	bad := a.rows[n:]
-	good := a.rows[:n:n]
-	a.rows = nil
-	for i, row := range good {
-		a.rows = append(a.rows, row)
-		if i%15 == 14 && len(bad) > 0 {
-			a.rows, bad = append(a.rows, bad[0]), bad[1:]
-		}
-	}
-	a.rows = append(a.rows, bad...)
+	a.scatter(15) // the repeated line_id stays behind the line whose name it bears
 }
 
 var alderTraders = map[string]string{
 	"EU-VOL": "Ilva Rook", "EU-FLOW": "Ilva Rook", "EU-HEDGE": "Ilva Rook", "EU-SHARES": "Odo Fennel", "EU-OTC": "Odo Fennel",
 	"US-VOL": "Mirte Sallow", "US-HEDGE": "Mirte Sallow", "JP-VOL": "Benno Tide", "JP-SHARES": "Benno Tide", "TREASURY": "the desk",
-}
-
-func (a *alderDesk) underlyingsFile() file {
-	t := newTable(plain, "underlying", "kind", "currency", "price", "carry_yield", "vol", "curve", "lot", "observed_at")
-	for _, q := range a.quotes {
-		t.text(q.name)
-		t.text(schema.Kinds[q.kind])
-		t.text(q.currency)
-		t.number(q.price)
-		if q.yield == 0 {
-			t.text("")
-		} else {
-			t.number(decimal{q.yield, 4})
-		}
-		if q.flat == 0 {
-			t.text("")
-		} else {
-			t.vol(q.flat)
-		}
-		t.text(q.curve)
-		t.text("1")
-		t.text("2026-06-19T17:35")
-		t.end()
-	}
-	return t.file("underlyings.csv")
-}
-
-func (a *alderDesk) volsFile() file {
-	t := newTable(plain, "underlying", "expiry", "strike", "vol")
-	for _, q := range a.quotes {
-		if q.smile != nil {
-			q.surface(t, a.asOf)
-		}
-	}
-	return t.file("vols.csv")
 }
 
 // alderRates gives EUR and USD by tenor and zero rate, JPY by date and discount

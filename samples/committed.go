@@ -8,6 +8,7 @@ import (
 	"io"
 	"os"
 	"path/filepath"
+	"strconv"
 	"strings"
 
 	"nightbook/schema"
@@ -19,6 +20,9 @@ type snapshot struct {
 	name   string
 	files  []file
 	broken []brokenLine
+	// thousands has the README show its figures in thousands: as far as they
+	// hold where a numerical method gives them.
+	thousands bool
 }
 
 // brokenLine is a position line that is wrong on purpose.
@@ -27,7 +31,7 @@ type brokenLine struct {
 	code schema.RejectCode
 }
 
-func committed() []snapshot { return []snapshot{alder(), harbour()} }
+func committed() []snapshot { return []snapshot{alder(), harbour(), linden()} }
 
 // Regenerate writes the generated files of the committed snapshots into dir,
 // the samples folder. A compressed file stays as it is while its content is
@@ -106,9 +110,37 @@ func (l *ledger) add(pairs ...string) map[string]string {
 	return row
 }
 
+// option adds an option line.
+func (l *ledger) option(book string, q *quote, quantity int64, multiplier, optionType, strike, expiry, strategy string) map[string]string {
+	return l.add("book", book, "underlying", q.name, "instrument", "option", "quantity", strconv.FormatInt(quantity, 10),
+		"multiplier", multiplier, "option_type", optionType, "strike", strike, "expiry", expiry, "strategy", strategy)
+}
+
+// linear adds a stock, future, forward or cash line.
+func (l *ledger) linear(book, underlying, instrument string, quantity int64, more ...string) map[string]string {
+	return l.add(append([]string{"book", book, "underlying", underlying, "instrument", instrument,
+		"quantity", strconv.FormatInt(quantity, 10), "strategy", "hedge"}, more...)...)
+}
+
 // breaks notes that row is wrong and why.
 func (l *ledger) breaks(row map[string]string, code schema.RejectCode) {
 	l.broken = append(l.broken, brokenLine{row["line_id"], code})
+}
+
+// scatter moves the broken lines, which are the last, among the good ones, one
+// behind every so many.
+func (l *ledger) scatter(every int) {
+	n := len(l.rows) - len(l.broken)
+	bad := l.rows[n:]
+	good := l.rows[:n:n]
+	l.rows = nil
+	for i, row := range good {
+		l.rows = append(l.rows, row)
+		if i%every == every-1 && len(bad) > 0 {
+			l.rows, bad = append(l.rows, bad[0]), bad[1:]
+		}
+	}
+	l.rows = append(l.rows, bad...)
 }
 
 // file writes the ledger; headers maps our column names to the house's.
@@ -145,58 +177,6 @@ func (d *dialect) cell(column, v string) string {
 		return v[8:10] + "/" + v[5:7] + "/" + v[:4] + strings.Replace(v[10:], "T", " ", 1)
 	}
 	return v
-}
-
-// quote is an underlying of a committed desk.
-type quote struct {
-	name     string
-	kind     schema.Choice
-	currency string
-	price    decimal
-	rate     int64 // of its currency, ten-thousandths: for forwards in the generator only
-	yield    int64 // ten-thousandths
-	flat     int64 // hundredths of a volatility point; 0 is none
-	curve    string
-	smile    *smile // nil is no surface
-	expiries []schema.Date
-	clock    string // time of day of the surface's expiries, as T15:00, or ""
-}
-
-// forward returns the forward to an expiry in the units of the price.
-func (q *quote) forward(days int64) int64 {
-	if q.kind == schema.FuturePrice {
-		return q.price.n
-	}
-	return forwardPrice(q.price.n, q.rate, q.yield, days)
-}
-
-// step is the distance of listed strikes.
-func (q *quote) step() int64 { return niceStep(q.price.n / 50) }
-
-// near returns the listed strike nearest to permille of the price.
-func (q *quote) near(permille int64) string {
-	s := q.step()
-	return q.at((q.price.n*permille/1000 + s/2) / s * s)
-}
-
-// at writes n units of the price.
-func (q *quote) at(n int64) string { return string(decimal{n, q.price.places}.append(nil, '.')) }
-
-// now writes the price itself.
-func (q *quote) now() string { return q.at(q.price.n) }
-
-// surface writes the slices of q into a vols table.
-func (q *quote) surface(t *table, asOf schema.Date) {
-	for _, x := range q.expiries {
-		days := int64(x - asOf)
-		for _, d := range smileNodes {
-			t.text(q.name)
-			t.text(t.day(x) + strings.Replace(q.clock, "T", t.beforeClock(), 1))
-			t.number(decimal{q.smile.strike(q.forward(days), days, d), q.price.places})
-			t.vol(q.smile.vol(days, d))
-			t.end()
-		}
-	}
 }
 
 // beforeClock stands between a date and a time of day.

@@ -1,8 +1,6 @@
 package samples
 
 import (
-	"strconv"
-
 	"nightbook/schema"
 )
 
@@ -88,16 +86,6 @@ func (h *harbourDesk) market() {
 
 // at joins a day and a time of day.
 func at(d schema.Date, clock string) string { return d.String() + "T" + clock }
-
-func (h *harbourDesk) option(book string, q *quote, quantity int64, multiplier, optionType, strike, expiry, strategy string) map[string]string {
-	return h.add("book", book, "underlying", q.name, "instrument", "option", "quantity", strconv.FormatInt(quantity, 10),
-		"multiplier", multiplier, "option_type", optionType, "strike", strike, "expiry", expiry, "strategy", strategy)
-}
-
-func (h *harbourDesk) linear(book, underlying, instrument string, quantity int64, more ...string) map[string]string {
-	return h.add(append([]string{"book", book, "underlying", underlying, "instrument", instrument,
-		"quantity", strconv.FormatInt(quantity, 10), "strategy", "hedge"}, more...)...)
-}
 
 // offset writes the strike that lies permille from the price, to the tick at
 // which currency options are agreed.

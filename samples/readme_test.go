@@ -109,6 +109,10 @@ func bookTable(t *testing.T, s snapshot) []string {
 	walk = func(b string, level int) {
 		row := "| " + strings.Repeat("· ", level) + b
 		for _, v := range sums[b] {
+			if s.thousands {
+				row += fmt.Sprintf(" | %.1f", v/1000+0) // no −0
+				continue
+			}
 			row += " | " + grouped(v)
 		}
 		rows = append(rows, row+" |")
