@@ -16,7 +16,7 @@ var update = flag.Bool("update", false, "rewrite the golden files with what the 
 func TestGolden(t *testing.T) {
 	for _, snapshot := range sampleFolders(t) {
 		dir, golden := sampleRun(t, snapshot), filepath.Join("testdata/golden", filepath.Base(snapshot))
-		for _, name := range []string{"lines.csv", "books.csv", "underlyings.csv", "currencies.csv", "rejects.csv", "warnings.csv"} {
+		for _, name := range []string{"lines.csv", "books.csv", "underlyings.csv", "currencies.csv", "exercise.csv", "rejects.csv", "warnings.csv"} {
 			got, err := os.ReadFile(filepath.Join(dir, name))
 			if err != nil {
 				t.Fatal(err)

@@ -252,7 +252,7 @@ func TestLibreOffice(t *testing.T) {
 		// separator ',', quote '"', UTF-8, from line 1, cells as stored rather than as shown, every sheet
 		command(t, "soffice", "-env:UserInstallation=file://"+filepath.Join(work, "profile"), "--headless", "--convert-to",
 			"csv:Text - txt - csv (StarCalc):44,34,76,1,,0,false,false,false,false,false,-1", "--outdir", work, filepath.Join(dir, "report.xlsx"))
-		for _, sheet := range []string{"Summary", "Books", "Underlyings", "Lines", "Rejects", "Warnings", "Controls", "Columns"} {
+		for _, sheet := range []string{"Summary", "Books", "Underlyings", "Exercise", "Lines", "Rejects", "Warnings", "Controls", "Columns"} {
 			data, err := os.ReadFile(filepath.Join(work, "report-"+sheet+".csv"))
 			if err != nil || len(data) < 20 {
 				t.Errorf("%s: sheet %s: %d bytes, %v", snapshot, sheet, len(data), err)
@@ -298,6 +298,10 @@ func compareLinesSheet(t *testing.T, sheet, table string) {
 			y, errY := strconv.ParseFloat(text, 64)
 			if errX == nil && errY == nil {
 				if math.Abs(x-y) > 1e-13*math.Abs(y)+1e-17 { // it prints small numbers with a fixed count of decimals
+					t.Fatalf("%s: line %d, %s: the workbook shows %q, the table %q", sheet, i, name, got, text)
+				}
+			} else if schema.Lines.Column(name) != nil && schema.Lines.Column(name).Type == schema.Bool {
+				if !strings.EqualFold(got, text) { // it shows TRUE and FALSE
 					t.Fatalf("%s: line %d, %s: the workbook shows %q, the table %q", sheet, i, name, got, text)
 				}
 			} else if got != text && strings.TrimPrefix(text, "'") != got {
