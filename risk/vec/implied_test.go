@@ -3,6 +3,7 @@ package vec
 import (
 	"math"
 	"math/rand/v2"
+	"slices"
 	"testing"
 )
 
@@ -109,6 +110,14 @@ func FuzzImpliedVol(f *testing.F) {
 		v, o := implied1(fw, k, T, price, w)
 		if (o == ImpliedOK) != (v > 0) || v != v && o == ImpliedOK {
 			t.Fatalf("F %v K %v T %v price %v sign %v: vol %v, outcome %d", fw, k, T, price, w, v, o)
+		}
+		// The scalar form has done the one; a slice is for the vector forms.
+		const n = 8
+		col := func(x float64) []float64 { return slices.Repeat([]float64{x}, n) }
+		vols, outcomes := col(0), make([]Implied, n)
+		ImpliedVol(vols, outcomes, col(fw), col(k), col(T), col(price), col(w))
+		if got := vols[n-1]; math.Float64bits(got) != math.Float64bits(v) && got == got || outcomes[n-1] != o {
+			t.Fatalf("F %x K %x T %x price %x sign %v: vol %x, outcome %d; of eight alike %x, %d", fw, k, T, price, w, v, o, got, outcomes[n-1])
 		}
 	})
 }
