@@ -79,7 +79,7 @@ func BenchmarkStrip20(b *testing.B) {
 		}
 		s := pde.Solver{Tolerance: 1e-4}
 		var r pde.Results
-		b.Run(c.name, func(b *testing.B) {
+		b.Run(c.name+"/strip", func(b *testing.B) {
 			for b.Loop() {
 				s.Solve(&chain, &r)
 			}

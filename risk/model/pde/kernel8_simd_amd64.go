@@ -2,25 +2,14 @@
 
 package pde
 
-import (
-	"simd/archsimd"
-
-	"nightbook/risk/vec"
-)
+import "simd/archsimd"
 
 // The loops of kernel_generic.go with all lanes of a node in one AVX-512
 // register. The steps are the same, in the same order, so the bits are too.
 
-// wide says whether the vector forms are in use: where package vec uses its own.
-var wide = vec.Tier() == "avx512"
-
 func load(p *row) archsimd.Float64x8 { return archsimd.LoadFloat64x8(p) }
 
-func (g *grid) explicitHeld(from, until int, y *row) {
-	if !wide {
-		g.explicitHeldGeneric(from, until, y)
-		return
-	}
+func (g *grid) explicitHeld8(from, until int, y *row) {
 	if from >= until {
 		return
 	}
@@ -38,11 +27,7 @@ func (g *grid) explicitHeld(from, until int, y *row) {
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) explicitExercised(until int, y, held *row) {
-	if !wide {
-		g.explicitExercisedGeneric(until, y, held)
-		return
-	}
+func (g *grid) explicitExercised8(until int, y, held *row) {
 	if until == 0 {
 		return
 	}
@@ -61,11 +46,7 @@ func (g *grid) explicitExercised(until int, y, held *row) {
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) backwardDifference() {
-	if !wide {
-		g.backwardDifferenceGeneric()
-		return
-	}
+func (g *grid) backwardDifference8() {
 	n := len(g.s)
 	v, mid, f, inv, z := g.v[:n], g.mid[:n], g.f[:n], g.inv[:n], g.z[:n]
 	m, o := archsimd.BroadcastFloat64x8(bdfMid), archsimd.BroadcastFloat64x8(-bdfOld)
@@ -78,11 +59,7 @@ func (g *grid) backwardDifference() {
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) substituteHeld(dst []row, from int, x *row) {
-	if !wide {
-		g.substituteHeldGeneric(dst, from, x)
-		return
-	}
+func (g *grid) substituteHeld8(dst []row, from int, x *row) {
 	n := len(g.s)
 	f, z, dst := g.g[:n], g.z[:n], dst[:n]
 	y := load(x)
@@ -94,11 +71,7 @@ func (g *grid) substituteHeld(dst []row, from int, x *row) {
 	archsimd.ClearAVXUpperBits()
 }
 
-func (o *operator) factorLanes(drift, halfVar, growth *row) {
-	if !wide {
-		o.factorGeneric(drift, halfVar, growth)
-		return
-	}
+func (o *operator) factorLanes8(drift, halfVar, growth *row) {
 	n := len(o.s)
 	lo1, up1, lo2, up2 := o.lo1[:n], o.up1[:n], o.lo2[:n], o.up2[:n]
 	lo, di, up, fs, is, gs := o.lo[:n], o.di[:n], o.up[:n], o.f[:n], o.inv[:n], o.g[:n]
@@ -122,11 +95,7 @@ func (o *operator) factorLanes(drift, halfVar, growth *row) {
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) explicitMixed(from, until int, y, held *row) {
-	if !wide {
-		g.explicitMixedGeneric(from, until, y, held)
-		return
-	}
+func (g *grid) explicitMixed8(from, until int, y, held *row) {
 	if from >= until {
 		return
 	}
@@ -165,11 +134,7 @@ func (g *grid) cell8(i int, offset, signYield, interest, perVar, zero archsimd.F
 	return c
 }
 
-func (g *grid) examine(from, until int, offset *row) {
-	if !wide {
-		g.examineGeneric(from, until, offset)
-		return
-	}
+func (g *grid) examine8(from, until int, offset *row) {
 	o, signYield, interest, perVar, zero := load(offset), load(&g.signYield), load(&g.interest), load(&g.perVar), archsimd.BroadcastFloat64x8(0)
 	for i := from; i < until; i++ {
 		c := g.cell8(i, o, signYield, interest, perVar, zero)
@@ -178,11 +143,7 @@ func (g *grid) examine(from, until int, offset *row) {
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) substituteMixed(dst []row, from, last int, offset, x *row) {
-	if !wide {
-		g.substituteMixedGeneric(dst, from, last, offset, x)
-		return
-	}
+func (g *grid) substituteMixed8(dst []row, from, last int, offset, x *row) {
 	n := last + 1
 	dst, pay, f, z, first := dst[:n], g.pay[:n], g.g[:n], g.z[:n], g.first[:n]
 	o, y, zero := load(offset), load(x), archsimd.BroadcastFloat64x8(0)
@@ -212,11 +173,7 @@ func (g *grid) substituteMixed(dst []row, from, last int, offset, x *row) {
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) integrateUp() {
-	if !wide {
-		g.integrateUpGeneric()
-		return
-	}
+func (g *grid) integrateUp8() {
 	n := len(g.span)
 	span, v, sum := g.span[:n], g.v[:n], g.sum[:n+1]
 	x := archsimd.BroadcastFloat64x8(0)
@@ -228,11 +185,7 @@ func (g *grid) integrateUp() {
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) integrateDown() {
-	if !wide {
-		g.integrateDownGeneric()
-		return
-	}
+func (g *grid) integrateDown8() {
 	n := len(g.span)
 	span, v, sum := g.span[:n], g.v[:n], g.sum[:n+1]
 	x := archsimd.BroadcastFloat64x8(0)
@@ -244,11 +197,7 @@ func (g *grid) integrateDown() {
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) remap() {
-	if !wide {
-		g.remapGeneric()
-		return
-	}
+func (g *grid) remap8() {
 	d := &g.drop
 	n := len(g.perSpan)
 	cell, weight, at := d.cell[:d.until], d.weight[:d.until], g.at[:n+1]
@@ -269,11 +218,7 @@ func (g *grid) remap() {
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) exceed() {
-	if !wide {
-		g.exceedGeneric()
-		return
-	}
+func (g *grid) exceed8() {
 	n := len(g.s)
 	pay, v, z, more := g.pay[:n], g.v[:n], g.z[:n], g.more[:n]
 	o, zero := load(&g.offset), archsimd.BroadcastFloat64x8(0)
