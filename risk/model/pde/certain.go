@@ -23,7 +23,7 @@ func (r *Results) payoff(i int, c *Chain) {
 // rate and yield.
 type path struct {
 	core, bySpot, coreByRate, byYield float64
-	escrow, escrowByRate              float64
+	escrow, escrowByCarry             float64
 }
 
 func (p *path) grow(rate, yield, dt float64) {
@@ -35,7 +35,7 @@ func (p *path) grow(rate, yield, dt float64) {
 
 func (p *path) drop(amount float64) {
 	if p.core -= amount; p.core <= 0 {
-		*p = path{escrow: p.escrow, escrowByRate: p.escrowByRate}
+		*p = path{escrow: p.escrow, escrowByCarry: p.escrowByCarry}
 	}
 }
 
@@ -58,13 +58,10 @@ func (r *Results) certain(i int, c *Chain, divs schedule) {
 		r.Residual[i] = math.NaN()
 	}
 	p := path{core: c.Spot, bySpot: 1}
-	escrowNow := 0.0
 	if c.Convention == Escrowed {
-		v, d := divs.worth(rate, 0)
-		escrowNow = v
-		p.core, p.coreByRate = p.core-v, -d
+		v, d := divs.worth(rate-yield, 0)
+		p.core, p.coreByRate, p.byYield = p.core-v, -d, d
 	}
-	coreNow := p.core
 	try := func(p path, t, turns float64) {
 		f := float64(w * exp(-float64(rate*t)))
 		v := float64(f * (p.core + p.escrow - k))
@@ -75,10 +72,10 @@ func (r *Results) certain(i int, c *Chain, divs schedule) {
 		r.Status[i], r.Price[i], r.Delta[i] = Held, v, delta
 		gamma := float64(float64(yield*delta) * turns)
 		r.Gamma[i] = gamma
-		r.Charm[i] = float64(yield*delta) - float64((float64((rate-yield)*coreNow)+float64(rate*escrowNow))*gamma)
-		r.Rho[i] = float64(f*(p.coreByRate+p.escrowByRate)) - float64(t*v)
-		r.CarryRho[i] = float64(f * p.byYield)
-		r.Theta[i] = float64(rate*v) - float64((rate-yield)*float64(coreNow*delta)) - float64(float64(rate*escrowNow)*delta)
+		r.Charm[i] = float64(yield*delta) - float64(float64((rate-yield)*c.Spot)*gamma)
+		r.Rho[i] = float64(f*(p.coreByRate+p.escrowByCarry)) - float64(t*v)
+		r.CarryRho[i] = float64(f * (p.byYield - p.escrowByCarry))
+		r.Theta[i] = float64(rate*v) - float64((rate-yield)*float64(c.Spot*delta))
 		r.Residual[i] = 0
 	}
 	from := 0.0
@@ -91,7 +88,7 @@ func (r *Results) certain(i int, c *Chain, divs schedule) {
 			q := p
 			q.grow(rate, yield, t-from)
 			if c.Convention == Escrowed {
-				q.escrow, q.escrowByRate = divs[m:].worth(rate, t)
+				q.escrow, q.escrowByCarry = divs[m:].worth(rate-yield, t)
 			}
 			return q
 		}

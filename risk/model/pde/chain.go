@@ -13,7 +13,7 @@ const (
 	// Piecewise: S is lognormal between ex-dates and drops by the amount on
 	// each, floored at 0, so V(S, t⁻) = V(max(S−D, 0), t⁺).
 	Piecewise Convention = iota
-	// Escrowed: S less the present value of the dividends until expiry is
+	// Escrowed: S less the value Σ D·e^(−(r−q)t) of the dividends until expiry is
 	// lognormal. Exercise brings S itself.
 	Escrowed
 )

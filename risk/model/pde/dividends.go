@@ -27,14 +27,15 @@ func (s schedule) sum() float64 {
 	return x
 }
 
-// worth is the present value of all amounts at a time, and its derivative by
-// the rate.
-func (s schedule) worth(rate, time float64) (value, byRate float64) {
+// worth is what all amounts take from the price at a time, and its derivative by
+// the carry r − q, at which it grows: a yield on the whole price is one on what is
+// in escrow too, and the forward then is that of the cash-and-carry argument.
+func (s schedule) worth(carry, time float64) (value, byCarry float64) {
 	for _, d := range s {
 		t := d.Time - time
-		v := float64(d.Amount * exp(-float64(rate*t)))
+		v := float64(d.Amount * exp(-float64(carry*t)))
 		value += v
-		byRate -= float64(t * v)
+		byCarry -= float64(t * v)
 	}
-	return value, byRate
+	return value, byCarry
 }

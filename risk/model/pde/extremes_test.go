@@ -111,7 +111,7 @@ func binomial(l line, steps int) float64 {
 	escrow := func(t float64) (x float64) {
 		for _, d := range l.divs {
 			if d.Time >= t {
-				x += d.Amount * math.Exp(-l.r*(d.Time-t))
+				x += d.Amount * math.Exp(-(l.r-l.q)*(d.Time-t))
 			}
 		}
 		return x

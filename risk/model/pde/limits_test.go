@@ -75,20 +75,21 @@ func TestEscrowedEuropean(t *testing.T) {
 	var s pde.Solver
 	for _, w := range []float64{-1, 1} {
 		l := line{s: 100, k: 104, t: 1, r: .06, q: .01, v: .3, w: w, convention: pde.Escrowed, divs: []pde.Dividend{{Time: .4, Amount: 3}, {Time: .9, Amount: 4}}}
-		value := func(spot, r, passed float64) float64 {
+		value := func(spot, r, q, passed float64) float64 {
 			m := l
-			m.r, m.t = r, l.t-passed
+			m.r, m.q, m.t = r, q, l.t-passed
 			for _, d := range l.divs {
-				spot -= d.Amount * math.Exp(-r*(d.Time-passed))
+				spot -= d.Amount * math.Exp(-(r-q)*(d.Time-passed))
 			}
 			m.s = spot
 			return closed(m).price
 		}
 		got := solve(&s, l)
-		near(t, "price", got.price, value(100, .06, 0), 2e-3)
-		near(t, "delta", got.delta, (value(100.1, .06, 0)-value(99.9, .06, 0))/.2, 1e-4)
-		near(t, "rho", got.rho, (value(100, .0601, 0)-value(100, .0599, 0))/2e-4, 1e-2)
-		near(t, "theta", got.theta, (value(100, .06, 1e-3)-value(100, .06, -1e-3))/2e-3, 2e-3)
+		near(t, "price", got.price, value(100, .06, .01, 0), 2e-3)
+		near(t, "delta", got.delta, (value(100.1, .06, .01, 0)-value(99.9, .06, .01, 0))/.2, 1e-4)
+		near(t, "rho", got.rho, (value(100, .0601, .01, 0)-value(100, .0599, .01, 0))/2e-4, 1e-2)
+		near(t, "carry_rho", got.carryRho, (value(100, .06, .0101, 0)-value(100, .06, .0099, 0))/2e-4, 1e-2)
+		near(t, "theta", got.theta, (value(100, .06, .01, 1e-3)-value(100, .06, .01, -1e-3))/2e-3, 2e-3)
 		near(t, "residual", got.residual, 0, 1e-3)
 	}
 }
@@ -189,9 +190,9 @@ func certainSpot(l line, t float64, after bool) float64 {
 	if l.convention == pde.Escrowed {
 		escrow := 0.0
 		for _, d := range dividends {
-			s -= d.Amount * math.Exp(-l.r*d.Time)
+			s -= d.Amount * math.Exp(-(l.r-l.q)*d.Time)
 			if d.Time > t || d.Time == t && !after {
-				escrow += d.Amount * math.Exp(-l.r*(d.Time-t))
+				escrow += d.Amount * math.Exp(-(l.r-l.q)*(d.Time-t))
 			}
 		}
 		return s*math.Exp((l.r-l.q)*t) + escrow

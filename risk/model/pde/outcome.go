@@ -42,7 +42,7 @@ func (w *work) aim(c *Chain) {
 		for j := range lanes {
 			x := c.Spot
 			if c.Convention == Escrowed {
-				escrow, _ := w.divs.worth(w.op.rate[j], 0)
+				escrow, _ := w.divs.worth(w.op.rate[j]-w.op.yield[j], 0)
 				x -= escrow
 			}
 			unit := w.plan.unit
@@ -157,14 +157,14 @@ func (w *work) escrow(offset *row, c *Chain, l *leg, time float64) {
 	}
 	k := c.Sign / w.plan.unit
 	ahead := w.divs[l.ahead:]
-	x, _ := ahead.worth(w.op.rate[base], time)
+	x, _ := ahead.worth(w.op.rate[base]-w.op.yield[base], time)
 	for j := range lanes {
 		offset[j] = float64(k * x)
 	}
-	x, _ = ahead.worth(w.op.rate[rateUp], time)
-	offset[rateUp] = float64(k * x)
-	x, _ = ahead.worth(w.op.rate[rateDown], time)
-	offset[rateDown] = float64(k * x)
+	for _, j := range [...]int{rateUp, rateDown, yieldUp, yieldDown} {
+		x, _ = ahead.worth(w.op.rate[j]-w.op.yield[j], time)
+		offset[j] = float64(k * x)
+	}
 }
 
 // escrowChange is by how much the escrow grows in dt from now.
@@ -172,8 +172,8 @@ func (w *work) escrowChange(c *Chain, l *leg, dt float64) float64 {
 	if c.Convention != Escrowed {
 		return 0
 	}
-	a, _ := w.divs[l.ahead:].worth(c.Rate, dt)
-	b, _ := w.divs[l.ahead:].worth(c.Rate, 0)
+	a, _ := w.divs[l.ahead:].worth(c.Rate-c.Yield, dt)
+	b, _ := w.divs[l.ahead:].worth(c.Rate-c.Yield, 0)
 	return a - b
 }
 
@@ -200,7 +200,7 @@ func (b *outcome) store(a *outcome, r *Results, i int, c *Chain, divs schedule, 
 	}
 	escrow := 0.0
 	if c.Convention == Escrowed {
-		escrow, _ = divs.worth(c.Rate, 0)
+		escrow, _ = divs.worth(c.Rate-c.Yield, 0)
 		r.Boundary[i] += escrow
 		r.Beyond[i] += escrow
 	}
@@ -227,9 +227,8 @@ func (b *outcome) store(a *outcome, r *Results, i int, c *Chain, divs schedule, 
 	r.Rho[i], r.CarryRho[i] = f(b.rho, a.rho)*scale, f(b.carryRho, a.carryRho)*scale
 	r.Vanna[i], r.Charm[i] = f(b.vanna, a.vanna), f(b.charm, a.charm)
 	s, vol := c.Spot-escrow, c.Vol[i]
-	e := theta + float64(float64(c.Rate*escrow)*delta)
-	e = fma(float64(0.5*float64(vol*vol)), float64(float64(s*s)*g), e)
-	e = fma(c.Rate-c.Yield, float64(s*delta), e)
+	e := fma(float64(0.5*float64(vol*vol)), float64(float64(s*s)*g), theta)
+	e = fma(c.Rate-c.Yield, float64(c.Spot*delta), e)
 	e = fma(-c.Rate, v, e)
 	r.Residual[i] = math.Abs(e) / max(math.Abs(v), float64(1e-4*c.Spot))
 }

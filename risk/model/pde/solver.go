@@ -108,7 +108,7 @@ func (w *work) solve(c *Chain, r *Results, tolerance float64) {
 	w.divs = w.divs.take(c)
 	core := c.Spot
 	if c.Convention == Escrowed {
-		escrow, _ := w.divs.worth(c.Rate, 0)
+		escrow, _ := w.divs.worth(c.Rate-c.Yield, 0)
 		core -= escrow
 	}
 	for i := range n {
