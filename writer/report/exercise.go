@@ -4,6 +4,7 @@ import (
 	"fmt"
 
 	"nightbook/schema"
+	"nightbook/writer/xlsx"
 )
 
 // Exercise adds rows of the exercise table.
@@ -17,7 +18,18 @@ func (r *Report) Exercise(f *schema.Frame) error {
 func (r *Report) fillExercise(*schema.Summary) error {
 	sheet := r.book.Sheet("Exercise")
 	r.exercise.Finish()
-	sheet.Print(tableHead-1, tableHead, true)
+	widths := make([]float64, len(schema.ExerciseOut.Columns))
+	for i := range schema.ExerciseOut.Columns {
+		c := &schema.ExerciseOut.Columns[i]
+		widths[i] = xlsx.WidthOf(c)
+		if c.Name == "reason" {
+			for _, word := range schema.ExerciseReasons {
+				widths[i] = max(widths[i], float64(len(word)+2))
+			}
+		}
+	}
+	sheet.Widths(widths...)
+	sheet.Print(tableHead-1, tableHead, false)
 	note := "no American option is past its exercise boundary, and no call has less time value than its next dividend"
 	if r.exerciseSeen > 0 {
 		note = fmt.Sprintf("%s to exercise or to look at before an ex-date; of those sold, the holder decides", count(r.exerciseSeen, "American option"))

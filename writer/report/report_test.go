@@ -362,8 +362,12 @@ func TestExerciseSheet(t *testing.T) {
 	b := r.batch
 	b.OptionType[3], b.Strike[3], b.Spot[3], b.Price[3], b.Boundary[3], b.Expiry[3] = schema.Put, 100, 80, 20.5, 75, 20000
 	r.early = []schema.ExerciseRow{{Index: 3, Reason: schema.BeforeDividend, ExDate: 19990, Dividend: 0.75}}
-	rows := sheet(t, reopen(t, r.workbook(t, 100)), "Exercise")
+	f := reopen(t, r.workbook(t, 100))
+	rows := sheet(t, f, "Exercise")
 	row := rows[tableHead]
+	if width, err := f.GetColWidth("Exercise", "I"); err != nil || width <= float64(len(row[8])) {
+		t.Errorf("the reason %q stands in a column %v wide, %v", row[8], width, err)
+	}
 	if len(rows) != tableHead+1 || row[0] != b.LineID.At(3) || row[4] != "put" || row[8] != "before_dividend" || row[14] == "" {
 		t.Errorf("row %q", row)
 	}

@@ -50,8 +50,10 @@ func FormatOf(c *schema.Column) (whole, other string) {
 		switch {
 		case c.Name == "fx_rate":
 			return same(FormatRatio)
-		case c.Name == "price":
+		case c.Name == "price" || c.Name == "intrinsic" || c.Name == "time_value": // of one unit
 			return same(FormatPrice)
+		case c.Name == "price_error":
+			return same(FormatTiny)
 		}
 		return same(FormatMoney)
 	}
