@@ -20,7 +20,13 @@ type File struct {
 	failed error
 	closed bool
 	output schema.OutputFile
+
+	started int64 // how far the system has been told to write to the disk
 }
+
+// writebackBytes is how much is written to a file before the system is told to
+// take it to the disk: what waits until the end is what Close waits for.
+const writebackBytes = 8 << 20
 
 func createFile(path, name string) (*File, error) {
 	// A new file only, and never through a link that somebody put there.
@@ -36,6 +42,10 @@ func (f *File) Write(p []byte) (int, error) {
 	n, err := f.f.Write(p)
 	f.sum.Write(p[:n])
 	f.output.Bytes += int64(n)
+	if ahead := f.output.Bytes - f.started; ahead >= writebackBytes {
+		startWriteback(f.f, f.started, ahead)
+		f.started = f.output.Bytes
+	}
 	if err != nil {
 		f.failed = err
 	}

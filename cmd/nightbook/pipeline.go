@@ -50,14 +50,14 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 		return nil, err
 	}
 	defer positions.Close()
-	out, err := newOutputs(o, cfg, dicts, positions.Extra())
+	out, err := newOutputs(ctx, o, cfg, dicts, positions.Extra())
 	if err != nil {
 		return nil, err
 	}
 	defer out.abort()
 
 	engine := risk.NewEngine(mkt, dicts)
-	jobs := make([]*job, 2*o.workers+2)
+	jobs := make([]*job, o.workers+2)
 	for i := range jobs {
 		jobs[i] = new(job)
 	}

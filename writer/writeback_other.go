@@ -1,0 +1,7 @@
+//go:build !linux
+
+package writer
+
+import "os"
+
+func startWriteback(*os.File, int64, int64) {}
