@@ -50,7 +50,5 @@ func (r *Run) american(yield []float64) {
 			r.rows = append(r.rows, int32(i))
 		}
 	}
-	r.onGrid(r.rows, yield, true, func(int32) *Schedule { return &noDividends })
+	r.onGrid(r.rows, yield, true, nil)
 }
-
-var noDividends Schedule

@@ -158,13 +158,10 @@ func (q *Quote) step() {
 // evaluate sets value and vega of each quote at its Vol.
 func (m *Methods) evaluate(quotes []*Quote) {
 	var l american.Lines
-	var integral []*Quote
+	var integral, grid []*Quote
 	for _, q := range quotes {
-		if m.interrupted() {
-			return
-		}
 		if !q.American || len(q.Dividends) > 0 {
-			m.onGrid(q)
+			grid = append(grid, q)
 			continue
 		}
 		integral = append(integral, q)
@@ -175,13 +172,16 @@ func (m *Methods) evaluate(quotes []*Quote) {
 	m.integral.Solve(&m.after, &l)
 	for i, q := range integral {
 		if q.value, q.vega = m.after.Price[i], m.after.Vega[i]; m.after.Status[i] == american.OutOfReach {
-			m.onGrid(q)
+			grid = append(grid, q)
 		}
 	}
-}
-
-func (m *Methods) onGrid(q *Quote) {
-	m.chain.Strike, m.chain.Vol = append(m.chain.Strike[:0], q.Strike), append(m.chain.Vol[:0], q.Vol)
-	m.solve(terms{q.Spot, q.Time, q.Rate, q.Yield, q.Sign, q.American}, q.Dividends)
-	q.value, q.vega = m.cells.Price[0], m.cells.Vega[0]
+	clearLines(&m.gridLines)
+	m.gridLines.Convention = m.convention
+	for _, q := range grid {
+		addLine(&m.gridLines, q.Spot, q.Strike, q.Time, q.Vol, q.Rate, q.Yield, q.Sign, q.American, q.Dividends)
+	}
+	m.grid.SolveLines(&m.gridLines, &m.cells)
+	for i, q := range grid {
+		q.value, q.vega = m.cells.Price[i], m.cells.Vega[i]
+	}
 }

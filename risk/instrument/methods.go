@@ -13,25 +13,23 @@ type Methods struct {
 	grid       pde.Solver
 	convention pde.Convention
 
-	status  []american.Status // of the lines at hand
-	after   american.Results  // of their revaluations
-	chain   pde.Chain
-	cells   pde.Results
-	chains  []chain
-	chainOf map[chainKey]int
+	status    []american.Status // of the lines at hand
+	after     american.Results  // of their revaluations
+	gridLines pde.Lines
+	cells     pde.Results
 }
 
 // NewMethods returns the methods with a setting of the boundary integral, a
 // dividend model, and the error that finite differences may make, as a share of
 // the spot.
 func NewMethods(setting american.Setting, convention pde.Convention, tolerance float64) *Methods {
-	return &Methods{integral: american.NewSolver(setting), convention: convention, grid: pde.Solver{Tolerance: tolerance}, chainOf: map[chainKey]int{}}
+	return &Methods{integral: american.NewSolver(setting), convention: convention, grid: pde.Solver{Tolerance: tolerance}}
 }
 
 // InterruptedBy sets what is asked between lines and boundaries, which take long:
 // once it says yes, the results at hand are void.
 func (m *Methods) InterruptedBy(stop func() bool) {
-	m.stop, m.integral.Interrupted = stop, stop
+	m.stop, m.integral.Interrupted, m.grid.Interrupted = stop, stop, stop
 }
 
 func (m *Methods) interrupted() bool { return m.stop != nil && m.stop() }

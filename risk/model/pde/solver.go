@@ -15,6 +15,10 @@ type Solver struct {
 	// means DefaultTolerance.
 	Tolerance float64
 
+	// Interrupted, where it is set, is asked between sweeps: once it says yes, the
+	// call returns, and its results are void.
+	Interrupted func() bool
+
 	mu   sync.Mutex
 	free []*work // scratch that no call is using
 }
@@ -31,6 +35,7 @@ type work struct {
 	at           []row     // their lognormal prices, on the mesh, by lane
 	older, newer []outcome // read from the coarser mesh and the finer one
 	batch        batch
+	stop         func() bool
 }
 
 // Below certainBelow, σ√T changes a value by less than 4·10⁻⁶ of the spot.
@@ -85,12 +90,13 @@ func (s *Solver) tolerance() float64 {
 func (s *Solver) take() *work {
 	s.mu.Lock()
 	defer s.mu.Unlock()
-	n := len(s.free) - 1
-	if n < 0 {
-		return new(work)
+	var w *work
+	if n := len(s.free) - 1; n >= 0 {
+		w, s.free = s.free[n], s.free[:n]
+	} else {
+		w = new(work)
 	}
-	w := s.free[n]
-	s.free = s.free[:n]
+	w.stop = s.Interrupted
 	return w
 }
 
@@ -120,6 +126,8 @@ func (w *work) solve(c *Chain, r *Results, tolerance float64) {
 			r.payoff(i, c)
 		case c.Vol[i]*math.Sqrt(c.Time) < certainBelow:
 			r.certain(i, c, w.divs)
+		case w.stop != nil && w.stop():
+			return
 		default:
 			w.gather(i, c, core)
 			w.sweep(c, r, core, tolerance)
