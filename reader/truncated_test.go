@@ -14,7 +14,7 @@ import (
 // A packed file that is cut at any byte is refused, with its name: its rows are
 // never taken for all there are. Packages parquet and xlsx cut theirs.
 func TestTruncatedAnywhere(t *testing.T) {
-	text := desk(12, 5)
+	text := desk(3, 5)
 	for name, whole := range map[string]string{
 		"positions.csv.gz": gzipped(t, text), "positions.csv.zst": zstandard(t, text),
 	} {

@@ -1,8 +1,10 @@
 package main
 
 import (
+	"context"
 	"errors"
 	"fmt"
+	"io"
 	"os"
 	"path/filepath"
 	"slices"
@@ -17,6 +19,7 @@ import (
 // outputs are the files of a run. With options.out == "" there are none: refused
 // rows are listed on options.check, and the rest is dropped.
 type outputs struct {
+	ctx    context.Context // writing ends with it
 	o      *options
 	cfg    *schema.Config
 	dicts  *schema.Dicts
@@ -50,8 +53,8 @@ func (t *tableFile) close() error {
 	return t.file.Close()
 }
 
-func newOutputs(o *options, cfg *schema.Config, dicts *schema.Dicts, extra []string) (*outputs, error) {
-	out := &outputs{o: o, cfg: cfg, dicts: dicts}
+func newOutputs(ctx context.Context, o *options, cfg *schema.Config, dicts *schema.Dicts, extra []string) (*outputs, error) {
+	out := &outputs{ctx: ctx, o: o, cfg: cfg, dicts: dicts}
 	var err error
 	if o.out == "" {
 		w, err := writer.NewTable("csv", o.check, schema.RejectsOut, writer.Options{})
@@ -95,9 +98,23 @@ func (out *outputs) open(lines schema.Table) error {
 		if out.reportFile, err = out.folder.Create("report.xlsx"); err != nil {
 			return err
 		}
-		out.report, err = report.New(out.reportFile, out.cfg, lines)
+		out.report, err = report.New(stopping{out.ctx, out.reportFile}, out.cfg, lines)
 	}
 	return err
+}
+
+// stopping is a file whose writing ends with the run: what is left to be written
+// after the last line may be most of a workbook.
+type stopping struct {
+	ctx context.Context
+	w   io.Writer
+}
+
+func (s stopping) Write(p []byte) (int, error) {
+	if err := s.ctx.Err(); err != nil {
+		return 0, err
+	}
+	return s.w.Write(p)
 }
 
 func (out *outputs) tableFormats() []string {
@@ -109,7 +126,7 @@ func (out *outputs) table(t schema.Table, format string) (*tableFile, error) {
 	if err != nil {
 		return nil, err
 	}
-	w, err := writer.NewTable(format, f, t, writer.Options{
+	w, err := writer.NewTable(format, stopping{out.ctx, f}, t, writer.Options{
 		Compression: out.cfg.Parquet.Compression,
 		Version:     version,
 		Workers:     out.o.workers,
@@ -217,6 +234,9 @@ func (out *outputs) finish(s *schema.Summary) error {
 }
 
 func (out *outputs) commit(s *schema.Summary) error {
+	if err := out.ctx.Err(); err != nil {
+		return err
+	}
 	manifest, err := writer.Manifest(s, vec.Tier(), out.folder.Outputs())
 	if err != nil {
 		return err

@@ -1,7 +1,6 @@
 package main
 
 import (
-	"context"
 	"os"
 	"testing"
 
@@ -11,7 +10,7 @@ import (
 // TestMain lets the scripts call the real main.
 func TestMain(m *testing.M) {
 	testscript.Main(m, map[string]func(){
-		"nightbook": func() { os.Exit(run(context.Background(), os.Args, os.Stdout, os.Stderr)) },
+		"nightbook": main,
 	})
 }
 
