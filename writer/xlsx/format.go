@@ -18,6 +18,7 @@ const (
 	FormatInteger  = "0"
 	FormatDate     = "yyyy-mm-dd"
 	formatMeasured = "#,##0.######"
+	formatTruth    = `"TRUE";"TRUE";"FALSE"` // for office suites that show truth values as the numbers 1 and 0
 )
 
 // FormatOf returns the number format for the values of a column: one for whole
@@ -32,7 +33,9 @@ func FormatOf(c *schema.Column) (whole, other string) {
 		return same(FormatWhole)
 	case schema.Day:
 		return same(FormatDate)
-	case schema.Text, schema.Bool:
+	case schema.Bool:
+		return same(formatTruth)
+	case schema.Text:
 		return same("")
 	}
 	switch c.Unit {
