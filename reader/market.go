@@ -74,7 +74,7 @@ func (f *Folder) readMarket(name string, cfg *schema.Config, m *schema.Market, r
 			return o.in.fail(o.sheet, cfg.Limits.Exceeded(schema.MarketRows))
 		}
 	}
-	return o.done(f, o.rows)
+	return o.finish(f)
 }
 
 // marketRow reads the cells of one market row by the names of our columns, and

@@ -81,7 +81,7 @@ func (p *Positions) Next(pc *Piece) error {
 	}
 	if errors.Is(err, io.EOF) {
 		p.ended = true
-		if err := p.o.done(p.folder, p.o.rows); err != nil {
+		if err := p.o.finish(p.folder); err != nil {
 			return err
 		}
 		return io.EOF

@@ -35,6 +35,14 @@ type Scanner struct {
 	ended    bool
 	detected string
 	header   []string
+	long     Long
+}
+
+// Long counts the records that run over several lines without breaking a rule.
+type Long struct {
+	Records int64
+	First   int64 // line of the first of them
+	Lines   int64 // that they take up, all together
 }
 
 // NewScanner reads the header of r, its first record that is not blank. A
@@ -78,7 +86,7 @@ func (s *Scanner) readHeader() error {
 	for _, f := range splitQuoted(nil, &b, rec, s.o.Delimiter) {
 		s.header = append(s.header, strings.Trim(string(b.Data[f.start:f.end]), " \t"))
 	}
-	s.rows = 0
+	s.rows, s.long = 0, Long{}
 	if int64(len(s.header)) > s.o.Limits.Of(schema.Columns) {
 		return s.o.Limits.Exceeded(schema.Columns)
 	}
@@ -99,6 +107,17 @@ func (s *Scanner) Detected() string { return s.detected }
 
 // Delimiter returns the delimiter in use.
 func (s *Scanner) Delimiter() byte { return s.o.Delimiter }
+
+// Long counts the records read so far that run over several lines.
+func (s *Scanner) Long() Long { return s.long }
+
+func (l *Long) add(line int64, lines int) {
+	if l.Records == 0 {
+		l.First = line
+	}
+	l.Records++
+	l.Lines += int64(lines)
+}
 
 // Rows returns how many records have been handed out, the header not counted.
 func (s *Scanner) Rows() int64 { return s.rows }
@@ -125,6 +144,9 @@ func (s *Scanner) next(b *Block, rows int) error {
 				return s.tooLong(&c)
 			}
 			if c.end > 0 { // a blank line is no record
+				if c.lines > 1 && c.fault == NoFault {
+					s.long.add(s.line, c.lines)
+				}
 				b.Records = append(b.Records, Record{uint32(at), uint32(at + c.end), s.line, c.quoted, c.fault, uint32(c.lines)})
 			}
 			s.line += int64(c.lines)
