@@ -4,7 +4,9 @@ import (
 	"bytes"
 	"errors"
 	"fmt"
+	"os"
 	"path/filepath"
+	"strconv"
 	"strings"
 	"testing"
 
@@ -175,6 +177,26 @@ func TestFieldLimit(t *testing.T) {
 		r := s.rejects()
 		if len(r) != 1 || r[0].Index != 0 || r[0].Code != schema.BadRow || !strings.Contains(r[0].Reason, "field_bytes = 256 allows") || s.batches[0].N != 2 || s.batches[0].Status[1] != 0 {
 			t.Errorf("%s: %+v", name, r)
+		}
+	}
+}
+
+// The README lists the limits as they are.
+func TestLimitsInReadme(t *testing.T) {
+	readme, err := os.ReadFile("../README.md")
+	if err != nil {
+		t.Fatal(err)
+	}
+	for _, d := range schema.LimitDocs {
+		n := strconv.FormatInt(d.Default, 10)
+		for i := len(n) - 3; i > 0; i -= 3 {
+			n = n[:i] + "," + n[i:]
+		}
+		if line := fmt.Sprintf("\n| `%s` | %s | %s |\n", d.Key, n, d.Bounds); !strings.Contains(string(readme), line) {
+			t.Errorf("the README lacks %s", line)
+		}
+		if d.Key == "" || d.Least < 1 || d.Default < d.Least || d.Default > d.Most {
+			t.Errorf("%+v", d)
 		}
 	}
 }
