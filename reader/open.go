@@ -79,13 +79,13 @@ func (o *opened) start(cfg *schema.Config) (err error) {
 }
 
 // finish puts what was read to its end into the folder's inputs, and warns of
-// rows of several lines: a quotation mark out of place, closed by the next that
+// rows inside of fields: a quotation mark out of place, closed by the next that
 // is, makes one field of all that stands between them.
 func (o *opened) finish(f *Folder) error {
-	if t, ok := o.source.(*textFile); ok && t.Long().Records > 0 {
-		l := t.Long()
-		f.note(schema.Note{Code: schema.RowsOfLines, Subject: o.in.name, File: o.in.name, Line: l.First, Count: l.Records,
-			Message: fmt.Sprintf("rows run over several lines, %d in all, the first from line %d on: if they should not, look there for a quotation mark out of place", l.Lines, l.First)})
+	if t, ok := o.source.(*textFile); ok && t.Within().Lines > 0 {
+		w := t.Within()
+		f.note(schema.Note{Code: schema.RowInField, Subject: o.in.name, File: o.in.name, Line: w.First, Count: w.Lines,
+			Message: "quoted fields hold lines that look like rows of their own: if they are, a quotation mark is out of place, the first from this line on"})
 	}
 	return o.done(f, o.rows)
 }

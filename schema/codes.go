@@ -75,7 +75,7 @@ const (
 	QuoteNotUsed    NoteCode = "quote_not_used"
 	MarketRowUnused NoteCode = "market_row_unused"
 	PriceUncertain  NoteCode = "price_uncertain"
-	RowsOfLines     NoteCode = "rows_of_several_lines"
+	RowInField      NoteCode = "row_in_field"
 )
 
 // NoteCodes is the closed list of warnings.
@@ -93,7 +93,7 @@ var NoteCodes = []CodeDoc{
 	{string(FormatDetected), "the encoding of a file was detected, not declared"},
 	{string(MarketRowUnused), "vols or dividends have rows that no line can use: their underlying is not in underlyings, or its kind pays no dividends"},
 	{string(PriceUncertain), "finite differences did not meet the tolerance on their finest mesh: price_error of the lines says how far"},
-	{string(RowsOfLines), "rows of a text file run over several lines: if they should not, a quotation mark is out of place"},
+	{string(RowInField), "a quoted field of a text file runs over lines that look like rows of their own: a quotation mark may be out of place"},
 	{string(QuoteNotUsed), "quotes gave no volatility and are not in the surface"},
 	{string(NoPositions), "the position file has a header and no rows"},
 }

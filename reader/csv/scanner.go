@@ -35,14 +35,15 @@ type Scanner struct {
 	ended    bool
 	detected string
 	header   []string
-	long     Long
+	within   Within
 }
 
-// Long counts the records that run over several lines without breaking a rule.
-type Long struct {
-	Records int64
-	First   int64 // line of the first of them
-	Lines   int64 // that they take up, all together
+// Within counts the lines inside quoted fields that look like records of their
+// own, with as many delimiters as the header has: what a quotation mark out of
+// place makes of the records up to the next one.
+type Within struct {
+	Lines int64
+	First int64 // line of the first record that has some
 }
 
 // NewScanner reads the header of r, its first record that is not blank. A
@@ -86,7 +87,7 @@ func (s *Scanner) readHeader() error {
 	for _, f := range splitQuoted(nil, &b, rec, s.o.Delimiter) {
 		s.header = append(s.header, strings.Trim(string(b.Data[f.start:f.end]), " \t"))
 	}
-	s.rows, s.long = 0, Long{}
+	s.rows, s.within = 0, Within{}
 	if int64(len(s.header)) > s.o.Limits.Of(schema.Columns) {
 		return s.o.Limits.Exceeded(schema.Columns)
 	}
@@ -108,15 +109,21 @@ func (s *Scanner) Detected() string { return s.detected }
 // Delimiter returns the delimiter in use.
 func (s *Scanner) Delimiter() byte { return s.o.Delimiter }
 
-// Long counts the records read so far that run over several lines.
-func (s *Scanner) Long() Long { return s.long }
+// Within tells of the records read so far.
+func (s *Scanner) Within() Within { return s.within }
 
-func (l *Long) add(line int64, lines int) {
-	if l.Records == 0 {
-		l.First = line
+// lookWithin looks into a record that runs over several lines.
+func (s *Scanner) lookWithin(record []byte) {
+	lines := bytes.Split(record, []byte{'\n'})
+	for _, line := range lines[1:] {
+		if bytes.Count(line, []byte{s.o.Delimiter}) < max(1, len(s.header)-1) {
+			continue
+		}
+		if s.within.Lines == 0 {
+			s.within.First = s.line
+		}
+		s.within.Lines++
 	}
-	l.Records++
-	l.Lines += int64(lines)
 }
 
 // Rows returns how many records have been handed out, the header not counted.
@@ -145,7 +152,7 @@ func (s *Scanner) next(b *Block, rows int) error {
 			}
 			if c.end > 0 { // a blank line is no record
 				if c.lines > 1 && c.fault == NoFault {
-					s.long.add(s.line, c.lines)
+					s.lookWithin(b.Data[at : at+c.end])
 				}
 				b.Records = append(b.Records, Record{uint32(at), uint32(at + c.end), s.line, c.quoted, c.fault, uint32(c.lines)})
 			}
