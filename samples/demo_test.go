@@ -5,6 +5,7 @@ import (
 	"crypto/sha256"
 	"encoding/csv"
 	"encoding/hex"
+	"errors"
 	"fmt"
 	"io"
 	"io/fs"
@@ -287,6 +288,26 @@ func TestDemoRefuses(t *testing.T) {
 	for _, o := range []Options{{Lines: 0}, {Lines: -1}, {Lines: 1, Broken: -1}, {Lines: 1, Broken: perMillion + 1}} {
 		if err := Write(t.TempDir(), o); err == nil {
 			t.Errorf("%+v was accepted", o)
+		}
+	}
+}
+
+// A snapshot that is stopped while it is written is not there.
+func TestDemoStops(t *testing.T) {
+	stopped := errors.New("stopped")
+	for calls := range 4 {
+		dir, left := t.TempDir(), calls
+		err := Write(dir, Options{Lines: 20_000, Seed: 1, Stop: func() error {
+			if left--; left < 0 {
+				return stopped
+			}
+			return nil
+		}})
+		if !errors.Is(err, stopped) {
+			t.Fatalf("after %d steps: %v", calls, err)
+		}
+		if e, err := os.ReadDir(dir); err != nil || len(e) > 0 {
+			t.Errorf("after %d steps: %v is left, %v", calls, e, err)
 		}
 	}
 }

@@ -32,7 +32,7 @@ same bytes on every machine. Desks, books and underlyings are invented.`,
 			if lines < 0 {
 				return usagef("--lines takes a number from 0, not %d", lines)
 			}
-			if err := samples.Demo(dir, lines, c.Uint64("seed")); err != nil {
+			if err := samples.Write(dir, samples.Options{Lines: lines, Seed: c.Uint64("seed"), Stop: c.Context.Err}); err != nil {
 				return err
 			}
 			newConsole(c.App.ErrWriter, c.String("log")).say(fmt.Sprintf("wrote %s lines to %s", grouped(float64(lines), 0), dir), "lines", lines, "folder", dir)
