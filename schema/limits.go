@@ -77,6 +77,12 @@ func (l *Limits) Unpacked(bytes, packed int64) error {
 	if bytes > l.Of(UnpackedBytes) {
 		return l.Exceeded(UnpackedBytes)
 	}
+	return l.Grown(bytes, packed)
+}
+
+// Grown holds so many bytes, out of so many packed ones, to the limit on their
+// ratio alone.
+func (l *Limits) Grown(bytes, packed int64) error {
 	if bytes > ratioFrom && bytes/l.Of(UnpackedRatio) > packed {
 		return l.Exceeded(UnpackedRatio)
 	}

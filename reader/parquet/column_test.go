@@ -2,10 +2,14 @@ package parquet
 
 import (
 	"bytes"
+	"errors"
 	"strings"
 	"testing"
 
 	"github.com/xitongsys/parquet-go/parquet"
+
+	"nightbook/reader/table"
+	"nightbook/schema"
 )
 
 // The text of a time has as many digits as the time has, and no more.
@@ -45,6 +49,27 @@ func TestUnknownEncoding(t *testing.T) {
 		if err := c.values.start(c, e, nil); err == nil || err.Error() != want {
 			t.Errorf("%v, want %s", err, want)
 		}
+	}
+}
+
+// A few bytes that claim rows without end are stopped.
+func TestRowsWithoutBytes(t *testing.T) {
+	b := readFile(t, "lz4-delta.parquet")
+	f, err := Open(bytes.NewReader(b), int64(len(b)), schema.Limits{})
+	if err != nil {
+		t.Fatal(err)
+	}
+	c := f.columns[0]
+	f.group, f.left = 0, 1<<60
+	c.pages.left = 1 << 60
+	c.pages.levels.reset([]byte{0xfe, 0xff, 0xff, 0xff, 0x0f, 0}, 1) // a run of nulls
+	c.values.encoding = parquet.Encoding_PLAIN
+	var rows table.Rows
+	for err = f.Next(&rows); err == nil; err = f.Next(&rows) {
+	}
+	var limit *schema.LimitError
+	if !errors.As(err, &limit) || limit.Limit != schema.UnpackedRatio || f.row > 20_000_000 {
+		t.Errorf("%d rows of %d bytes: %v", f.row, len(b), err)
 	}
 }
 

@@ -164,6 +164,10 @@ func (f *File) Next(into *table.Rows) (err error) {
 		}
 	}
 	n := int(min(f.left, schema.BatchRows))
+	// Rows may take no bytes at all, as those of nulls do: their cells count instead.
+	if err := f.limits.Grown(8*(f.row+int64(n))*int64(len(f.columns)), f.size); err != nil {
+		return err
+	}
 	into.Reset(len(f.columns))
 	into.N = n
 	f.long, f.texts = f.long[:0], 0
