@@ -2,7 +2,10 @@
 
 package vec
 
-import "simd/archsimd"
+import (
+	"math"
+	"simd/archsimd"
+)
 
 // A switch at each entry, rather than a table of functions, lets the compiler see
 // that no argument escapes: a caller's BSM stays on its stack.
@@ -101,4 +104,11 @@ func (b *BSM) edgeLines(want outputs, lo, hi int) {
 			b.edge(want, i)
 		}
 	}
+}
+
+// inImpliedBox reports whether the vector code covers a quote: forward, strike and p
+// in [2^−128, 2^128), and not a case of its own.
+func inImpliedBox(f, k, p float64) bool {
+	from := ((math.Float64bits(f) - priceFrom) | (math.Float64bits(k) - priceFrom) | (math.Float64bits(p) - priceFrom)) & priceMask
+	return from == 0 && (f != k || p >= float64(f*atStrike))
 }

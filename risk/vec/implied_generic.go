@@ -181,10 +181,3 @@ func polish(s, next, a, value, p, inverse, hh, tt float64) float64 {
 	g := float64(r * math.FMA(0-r, math.FMA(0-r, math.FMA(r, -0.25, third), 0.5), 1))
 	return householder(s, g, inverse, hh, tt)
 }
-
-// inImpliedBox reports whether the vector code covers a quote: forward, strike and p
-// in [2^−128, 2^128), and not a case of its own.
-func inImpliedBox(f, k, p float64) bool {
-	from := ((math.Float64bits(f) - priceFrom) | (math.Float64bits(k) - priceFrom) | (math.Float64bits(p) - priceFrom)) & priceMask
-	return from == 0 && (f != k || p >= float64(f*atStrike))
-}
