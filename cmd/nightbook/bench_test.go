@@ -31,6 +31,31 @@ func benchmarkRun(b *testing.B, lines int64, formats ...string) {
 	b.ReportMetric(float64(after.TotalAlloc-before.TotalAlloc)/total, "B/line")
 }
 
+// BenchmarkGarbage tells what a line costs the collector in the steady state:
+// what a run of twice the lines allocates beyond a run of half, by line.
+func BenchmarkGarbage(b *testing.B) {
+	const lines = 1 << 19
+	var allocated [3]uint64
+	for n := 1; n <= 2; n++ {
+		dir := filepath.Join(b.TempDir(), "demo")
+		if err := samples.Demo(dir, int64(n*lines), 1); err != nil {
+			b.Fatal(err)
+		}
+		o := &options{snapshot: dir, out: b.TempDir(), formats: []string{"parquet"}, workers: runtime.GOMAXPROCS(0)}
+		var before, after runtime.MemStats
+		runtime.ReadMemStats(&before)
+		if _, err := pipeline(context.Background(), o, newConsole(io.Discard, "text")); err != nil {
+			b.Fatal(err)
+		}
+		runtime.ReadMemStats(&after)
+		allocated[n] = after.TotalAlloc - before.TotalAlloc
+	}
+	for b.Loop() {
+	}
+	b.ReportMetric(0, "ns/op")
+	b.ReportMetric((float64(allocated[2])-float64(allocated[1]))/lines, "B/line")
+}
+
 func BenchmarkRunParquet(b *testing.B) { benchmarkRun(b, 200_000, "parquet") }
 func BenchmarkRunCSV(b *testing.B)     { benchmarkRun(b, 200_000, "csv") }
 func BenchmarkRunXLSX(b *testing.B)    { benchmarkRun(b, 10_000, "xlsx") }

@@ -10,52 +10,72 @@ const (
 	slabBlocks = 64
 )
 
-// blocks are the memory in which numbers lie from the moment they are added
-// until they are in the file: a page that is not packed is never copied. They
-// are used again, and there are only so many: who takes one while all are in
-// use waits until some have been written.
+// blocks are the memory in which a row group lies until it is in the file: what
+// is packed, and numbers from the moment they are added, so that a page which is
+// not packed is never copied. They are used again. While a row group is being written, no more than a few are
+// made: who needs more waits until some have been written, so that a slow disk
+// costs time and not memory.
 type blocks struct {
-	free chan []byte
-
-	mu   sync.Mutex
-	slab []byte // to be cut up
-	left int    // how many may still be cut
+	mu      sync.Mutex
+	some    sync.Cond // free, or writing no more
+	free    [][]byte
+	slab    []byte // to be cut up
+	writing bool
+	few     int // how many may still be made while writing
 }
 
-func newBlocks(n int) *blocks { return &blocks{free: make(chan []byte, n), left: n} }
+func newBlocks(few int) *blocks {
+	b := &blocks{few: few}
+	b.some.L = &b.mu
+	return b
+}
 
 func (b *blocks) take() []byte {
-	select {
-	case block := <-b.free:
-		return block
-	default:
-	}
-	if block := b.cut(); block != nil {
-		return block
-	}
-	return <-b.free
-}
-
-// cut returns a new block, or nil if there are as many as there may be.
-func (b *blocks) cut() []byte {
 	b.mu.Lock()
 	defer b.mu.Unlock()
-	if b.left == 0 {
-		return nil
+	for len(b.free) == 0 {
+		if !b.writing {
+			return b.cut()
+		}
+		if b.few > 0 {
+			b.few--
+			return b.cut()
+		}
+		b.some.Wait()
 	}
+	last := len(b.free) - 1
+	block := b.free[last]
+	b.free = b.free[:last]
+	return block
+}
+
+// cut makes a block.
+func (b *blocks) cut() []byte {
 	if len(b.slab) == 0 {
-		b.slab = make([]byte, min(b.left, slabBlocks)*blockBytes)
+		b.slab = make([]byte, slabBlocks*blockBytes)
 		hugePages(b.slab)
 	}
 	block := b.slab[:0:blockBytes]
 	b.slab = b.slab[blockBytes:]
-	b.left--
 	return block
 }
 
-// give takes a block back; memory that is none is left to the collector.
-func (b *blocks) give(block []byte) {
-	if cap(block) == blockBytes {
-		b.free <- block[:0]
+// give takes blocks back; memory that is none is left to the collector.
+func (b *blocks) give(list [][]byte) {
+	b.mu.Lock()
+	defer b.mu.Unlock()
+	for _, block := range list {
+		if cap(block) == blockBytes {
+			b.free = append(b.free, block[:0])
+		}
 	}
+	b.some.Broadcast()
+}
+
+// setWriting notes whether a row group is being written, which gives back blocks.
+func (b *blocks) setWriting(yes bool) {
+	b.mu.Lock()
+	defer b.mu.Unlock()
+	b.writing = yes
+	b.some.Broadcast()
 }

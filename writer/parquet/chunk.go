@@ -12,6 +12,24 @@ type chunk struct {
 	dict     page                     // of dictionary values; no bytes where there is none
 	pages    []page
 	held     int64 // bytes of pages
+
+	blocks *blocks
+	owned  [][]byte // blocks that the pages' data are in
+	tail   []byte   // what is free of the last block that store took
+}
+
+// store copies packed data into blocks of the chunk, and appends where they are.
+func (c *chunk) store(to [][]byte, data []byte) [][]byte {
+	for len(data) > 0 {
+		if len(c.tail) == 0 {
+			block := c.blocks.take()[:blockBytes]
+			c.owned, c.tail = append(c.owned, block), block
+		}
+		n := copy(c.tail, data)
+		to = append(to, c.tail[:n])
+		c.tail, data = c.tail[n:], data[n:]
+	}
+	return to
 }
 
 // nextPage returns a page to be filled, with the memory of an earlier row group.
@@ -25,7 +43,7 @@ func (c *chunk) nextPage() *page {
 }
 
 // write writes the pages, and returns what footer and page index say of them.
-func (c *chunk) write(w *counter, b *blocks) (*parquet.ColumnChunk, pageIndex, error) {
+func (c *chunk) write(w *counter) (*parquet.ColumnChunk, pageIndex, error) {
 	start := w.n
 	meta := &parquet.ColumnMetaData{
 		Type:         c.physical,
@@ -34,7 +52,7 @@ func (c *chunk) write(w *counter, b *blocks) (*parquet.ColumnChunk, pageIndex, e
 	}
 	counts := map[parquet.Encoding]int32{}
 	if len(c.dict.bytes) > 0 {
-		if err := c.dict.write(w, b); err != nil {
+		if err := c.dict.write(w); err != nil {
 			return nil, pageIndex{}, err
 		}
 		meta.DictionaryPageOffset = &start
@@ -51,7 +69,7 @@ func (c *chunk) write(w *counter, b *blocks) (*parquet.ColumnChunk, pageIndex, e
 		meta.NumValues += int64(p.rows)
 		meta.TotalUncompressedSize += int64(p.uncompressed)
 		counts[p.encoding]++
-		if err := p.write(w, b); err != nil {
+		if err := p.write(w); err != nil {
 			return nil, pageIndex{}, err
 		}
 	}
@@ -61,12 +79,11 @@ func (c *chunk) write(w *counter, b *blocks) (*parquet.ColumnChunk, pageIndex, e
 	return &parquet.ColumnChunk{FileOffset: start, MetaData: meta}, index, nil
 }
 
-// reset forgets the pages, and gives back the blocks that were not written.
-func (c *chunk) reset(b *blocks) {
-	for i := range c.pages {
-		b.give(c.pages[i].block)
-		c.pages[i].block = nil
-	}
+// reset forgets the pages, and gives back their blocks.
+func (c *chunk) reset() {
+	c.blocks.give(c.owned)
+	clear(c.owned)
+	c.owned, c.tail = c.owned[:0], nil
 	c.pages, c.held = c.pages[:0], 0
 	c.dict.bytes = c.dict.bytes[:0]
 }

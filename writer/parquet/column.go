@@ -137,7 +137,7 @@ func (c *column) endPage(s *scratch) error {
 	}
 	p := c.chunk.nextPage()
 	p.encoding, p.rows, p.bounds = encoding, c.rows, c.bounds.encoded(c.physical)
-	err := p.seal(&parquet.PageHeader{
+	err := c.chunk.seal(p, &parquet.PageHeader{
 		Type: parquet.PageType_DATA_PAGE,
 		DataPageHeader: &parquet.DataPageHeader{
 			NumValues:               int32(c.rows),
@@ -147,9 +147,8 @@ func (c *column) endPage(s *scratch) error {
 			Statistics:              p.bounds.statistics(),
 		},
 	}, size, packed, block, s)
-	c.chunk.held += int64(p.size())
-	if block != nil {
-		c.body = nil // it is the page's now
+	if len(block) > 0 {
+		c.body = nil // it is the chunk's now
 	}
 	c.rows = 0
 	c.present, c.body, c.indices = c.present[:0], c.body[:0], c.indices[:0]
@@ -239,7 +238,7 @@ func (c *column) endDictionary(s *scratch) error {
 	if err != nil {
 		return err
 	}
-	return c.chunk.dict.seal(&parquet.PageHeader{
+	return c.chunk.seal(&c.chunk.dict, &parquet.PageHeader{
 		Type:                 parquet.PageType_DICTIONARY_PAGE,
 		DictionaryPageHeader: &parquet.DictionaryPageHeader{NumValues: int32(values), Encoding: parquet.Encoding_PLAIN},
 	}, len(s.raw), packed, nil, s)

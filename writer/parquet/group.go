@@ -17,7 +17,7 @@ func (p *Writer) newGroup() *group {
 	if p.spare = nil; g == nil {
 		g = &group{chunks: make([]chunk, len(p.columns))}
 		for i, c := range p.columns {
-			g.chunks[i].name, g.chunks[i].physical = c.Name, c.physical
+			g.chunks[i].name, g.chunks[i].physical, g.chunks[i].blocks = c.Name, c.physical, p.blocks
 		}
 	}
 	for i, c := range p.columns {
@@ -37,6 +37,7 @@ func (p *Writer) flush() error {
 	}
 	g, done := p.group, make(chan error, 1)
 	g.rows = p.groupRows
+	p.blocks.setWriting(true)
 	go func() { done <- p.writeGroup(g) }()
 	p.writing, p.written, p.group = g, done, nil
 	p.rows += p.groupRows
@@ -56,16 +57,18 @@ func (p *Writer) settle() error {
 func (p *Writer) writeGroup(g *group) error {
 	defer func() {
 		for i := range g.chunks {
-			g.chunks[i].reset(p.blocks)
+			g.chunks[i].reset()
 		}
+		p.blocks.setWriting(false)
 	}()
 	meta := &parquet.RowGroup{NumRows: g.rows}
 	start := p.out.n
 	for i := range g.chunks {
-		chunk, index, err := g.chunks[i].write(&p.out, p.blocks)
+		chunk, index, err := g.chunks[i].write(&p.out)
 		if err != nil {
 			return err
 		}
+		g.chunks[i].reset()
 		packed, err := index.packed(p.thrift)
 		if err != nil {
 			return err

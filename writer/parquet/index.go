@@ -21,7 +21,7 @@ func newPageIndex() pageIndex {
 // row of the row group.
 func (x *pageIndex) add(p *page, at, row int64) {
 	x.offset.PageLocations = append(x.offset.PageLocations, &parquet.PageLocation{
-		Offset: at, CompressedPageSize: int32(p.size()), FirstRowIndex: row,
+		Offset: at, CompressedPageSize: int32(p.size), FirstRowIndex: row,
 	})
 	b := &p.bounds
 	if !b.known && b.values > 0 {

@@ -11,9 +11,10 @@ import (
 
 // page is a finished page: what goes into the file.
 type page struct {
-	bytes        []byte // header and data
-	block        []byte // data behind them: the numbers of a page that is not packed
-	uncompressed int    // size of header and data before compression
+	bytes        []byte   // its header, and its data if they are few
+	data         [][]byte // else what stands behind the header, in blocks of the chunk
+	size         int      // of all of it
+	uncompressed int      // size of header and data before compression
 
 	// of data pages
 	encoding parquet.Encoding
@@ -21,12 +22,13 @@ type page struct {
 	bounds   encodedBounds
 }
 
-// size is how many bytes the page takes in the file.
-func (p *page) size() int { return len(p.bytes) + len(p.block) }
+// fewBytes are not worth a block.
+const fewBytes = 1 << 10
 
 // seal makes the page of its header and its data, which were size bytes before
-// compression. The page keeps the block, and copies the rest.
-func (p *page) seal(h *parquet.PageHeader, size int, packed, block []byte, s *scratch) error {
+// compression: what is packed, which is copied, and behind it a block, which
+// the chunk now owns.
+func (c *chunk) seal(p *page, h *parquet.PageHeader, size int, packed, block []byte, s *scratch) error {
 	sum := int32(crc32.Update(crc32.ChecksumIEEE(packed), crc32.IEEETable, block))
 	h.Crc = &sum
 	h.UncompressedPageSize, h.CompressedPageSize = int32(size), int32(len(packed)+len(block))
@@ -35,19 +37,28 @@ func (p *page) seal(h *parquet.PageHeader, size int, packed, block []byte, s *sc
 		return err
 	}
 	p.uncompressed = len(header) + size
-	p.bytes = append(append(p.bytes[:0], header...), packed...)
-	p.block = block
+	p.size = len(header) + len(packed) + len(block)
+	p.bytes, p.data = append(p.bytes[:0], header...), p.data[:0]
+	if len(packed) <= fewBytes {
+		p.bytes = append(p.bytes, packed...)
+	} else {
+		p.data = c.store(p.data, packed)
+	}
+	if len(block) > 0 {
+		p.data = append(p.data, block)
+		c.owned = append(c.owned, block)
+	}
+	c.held += int64(p.size)
 	return nil
 }
 
-// write writes the page, and gives its block back.
-func (p *page) write(w *counter, b *blocks) error {
+func (p *page) write(w *counter) error {
 	_, err := w.Write(p.bytes)
-	if err == nil && len(p.block) > 0 {
-		_, err = w.Write(p.block)
+	for _, piece := range p.data {
+		if err == nil {
+			_, err = w.Write(piece)
+		}
 	}
-	b.give(p.block)
-	p.block = nil
 	return err
 }
 

@@ -68,7 +68,7 @@ func New(w io.Writer, t schema.Table, opt Options) (*Writer, error) {
 		out:    counter{w: w},
 		table:  t,
 		thrift: newSerializer(),
-		blocks: newBlocks(blockCount(t)),
+		blocks: newBlocks(len(t.Columns)),
 		meta:   footerInfo{version: opt.Version, pairs: opt.Metadata},
 	}
 	for _, c := range t.Columns {
@@ -117,20 +117,6 @@ func (p *Writer) Close() error {
 		p.failed = p.writeFooter()
 	}
 	return p.failed
-}
-
-// blockCount is how many blocks serve a table: those of the row group that
-// fills, of the pages that fill, and a page's more, as the row group before it
-// is being written.
-func blockCount(t schema.Table) int {
-	numbers := 0
-	for _, c := range t.Columns {
-		if valueWidth(physicalType(c.Type)) > 1 {
-			numbers++
-		}
-	}
-	const pages = groupRows / pageRows
-	return numbers * (pages + 2)
 }
 
 // add hands rows [from, to) of the frame to the columns.
