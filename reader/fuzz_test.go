@@ -109,9 +109,9 @@ func FuzzGzip(f *testing.F) {
 		if len(got) == 1<<20 {
 			return
 		}
-		library, err := gzip.NewReader(bytes.NewReader(b))
-		if err != nil {
-			t.Fatal(err)
+		library, wantErr := gzip.NewReader(bytes.NewReader(b))
+		if wantErr != nil {
+			t.Fatal(wantErr)
 		}
 		want, wantErr := io.ReadAll(library)
 		if err == nil && wantErr == nil && !bytes.Equal(got, want) {

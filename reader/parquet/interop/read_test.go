@@ -55,7 +55,10 @@ func write(k kind, l layout, n int) ([]byte, error) {
 	var b bytes.Buffer
 	w := file.NewParquetWriter(&b, root, file.WithWriterProps(parquet.NewWriterProperties(options...)))
 	for from := 0; from < n; from += (n + 2) / 3 {
-		group := w.AppendRowGroup()
+		group, err := w.AppendRowGroupChecked()
+		if err != nil {
+			return nil, err
+		}
 		column, err := group.NextColumn()
 		if err != nil {
 			return nil, err
