@@ -100,6 +100,7 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 	}
 	r := &w.run
 	r.Resize(len(rows))
+	r.SameDay = e.after[instrument.NextDay] == e.after[instrument.NextBusinessDay]
 	for j, i := range rows {
 		r.Spot[j], r.Strike[j], r.Time[j] = b.Spot[i], b.Strike[i], b.Time[i]
 		r.Vol[j], r.Rate[j], r.Yield[j] = b.VolUsed[i], b.Rate[i], b.Carry[i]

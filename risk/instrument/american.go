@@ -33,7 +33,7 @@ func (r *Run) american(yield []float64) {
 			r.Flags[i] = ExerciseNow
 		}
 	}
-	for step := range r.After {
+	for step := range r.revaluations {
 		lines.Time = r.TimeAfter[step]
 		m.after.Resize(r.N)
 		m.integral.Solve(&m.after, &lines)

@@ -42,7 +42,7 @@ func ExpiredGeometricAsian(r *Run) {
 // the average so far moves towards it.
 func (r *Run) averageOn(average func(dst, average, spot, start, passed []float64),
 	price func(price, spot, strike, start, average, time, vol, rate, yield, sign []float64), yield []float64) {
-	for i := range r.After {
+	for i := range r.revaluations {
 		for j, left := range r.TimeAfter[i] {
 			r.passed[j] = r.Time[j] - left
 			r.startAfter[j] = min(r.AverageStart[j]-r.passed[j], left) // the rounding of two differences

@@ -5,7 +5,7 @@ import "nightbook/risk/model"
 // CashDigitalOnSpot prices options on a spot price that pay a fixed amount.
 func CashDigitalOnSpot(r *Run) {
 	model.CashDigital(&r.Greeks, r.Spot, r.Strike, r.Payout, r.Time, r.Vol, r.Rate, r.Yield, r.Sign)
-	for i := range r.After {
+	for i := range r.revaluations {
 		model.CashDigitalPrice(r.After[i], r.Spot, r.Strike, r.Payout, r.TimeAfter[i], r.Vol, r.Rate, r.Yield, r.Sign)
 	}
 }
@@ -13,7 +13,7 @@ func CashDigitalOnSpot(r *Run) {
 // CashDigitalOnFuture prices options on a futures price that pay a fixed amount.
 func CashDigitalOnFuture(r *Run) {
 	model.CashDigitalOnFuture(&r.Greeks, r.Spot, r.Strike, r.Payout, r.Time, r.Vol, r.Rate, r.Sign)
-	for i := range r.After {
+	for i := range r.revaluations {
 		model.CashDigitalPrice(r.After[i], r.Spot, r.Strike, r.Payout, r.TimeAfter[i], r.Vol, r.Rate, r.Rate, r.Sign)
 	}
 }
@@ -27,7 +27,7 @@ func ExpiredCashDigital(r *Run) {
 // AssetDigitalOnSpot prices options that pay one unit of the underlying.
 func AssetDigitalOnSpot(r *Run) {
 	model.AssetDigital(&r.Greeks, r.Spot, r.Strike, r.Time, r.Vol, r.Rate, r.Yield, r.Sign)
-	for i := range r.After {
+	for i := range r.revaluations {
 		model.AssetDigitalPrice(r.After[i], r.Spot, r.Strike, r.TimeAfter[i], r.Vol, r.Rate, r.Yield, r.Sign)
 	}
 }
@@ -35,7 +35,7 @@ func AssetDigitalOnSpot(r *Run) {
 // AssetDigitalOnFuture prices options that pay the futures price.
 func AssetDigitalOnFuture(r *Run) {
 	model.AssetDigitalOnFuture(&r.Greeks, r.Spot, r.Strike, r.Time, r.Vol, r.Rate, r.Sign)
-	for i := range r.After {
+	for i := range r.revaluations {
 		model.AssetDigitalPrice(r.After[i], r.Spot, r.Strike, r.TimeAfter[i], r.Vol, r.Rate, r.Rate, r.Sign)
 	}
 }

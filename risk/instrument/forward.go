@@ -8,7 +8,7 @@ import (
 // ForwardOnSpot values forwards on a spot price.
 func ForwardOnSpot(r *Run) {
 	model.Forward(&r.Greeks, r.Spot, r.Strike, r.Time, r.Rate, r.Yield)
-	for i := range r.After {
+	for i := range r.revaluations {
 		model.ForwardPrice(r.After[i], r.Spot, r.Strike, r.TimeAfter[i], r.Rate, r.Yield)
 	}
 }
@@ -20,7 +20,7 @@ func ForwardWithDividends(r *Run) {
 	for i, d := range r.Dividends {
 		model.LessDividends(&r.Greeks, i, r.Time[i], r.Rate[i], r.Yield[i], d.Now)
 	}
-	for step := range r.After {
+	for step := range r.revaluations {
 		left := r.TimeAfter[step]
 		model.ForwardPrice(r.After[step], r.Spot, r.Strike, left, r.Rate, r.Yield)
 		for i, d := range r.Dividends {
@@ -33,7 +33,7 @@ func ForwardWithDividends(r *Run) {
 // ForwardOnFuture values forwards on a futures price.
 func ForwardOnFuture(r *Run) {
 	model.ForwardOnFuture(&r.Greeks, r.Spot, r.Strike, r.Time, r.Rate)
-	for i := range r.After {
+	for i := range r.revaluations {
 		model.ForwardOnFuturePrice(r.After[i], r.Spot, r.Strike, r.TimeAfter[i], r.Rate)
 	}
 }

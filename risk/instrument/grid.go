@@ -57,7 +57,7 @@ func (r *Run) onGrid(rows []int32, yield []float64, early bool, schedules []*Sch
 			r.Flags[i] |= Uncertain
 		}
 	}
-	for step := range r.After {
+	for step := range r.revaluations {
 		for j, i := range rows {
 			d := schedule(i)
 			l.Spot[j], l.Time[j], l.Dividends[j] = r.Spot[i]-d.Drop[step], r.TimeAfter[step][i], d.After[step]

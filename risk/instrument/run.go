@@ -18,6 +18,7 @@ type Run struct {
 	Sign                                 []float64 // +1 call, −1 put, 0 neither
 	Entry                                []float64 // last margined price of a future
 	TimeAfter                            [Steps][]float64
+	SameDay                              bool // the next day is a business day, and the steps are one
 	Terms
 	Dividends []*Schedule // of the products that know them
 
@@ -55,6 +56,18 @@ func (r *Run) slices() []*[]float64 {
 		s = append(s, g)
 	}
 	return append(s, r.Terms.slices()...)
+}
+
+// revaluations are the steps to price After for, one where they are one.
+func (r *Run) revaluations(price func(step int) bool) {
+	if !price(NextDay) {
+		return
+	}
+	if r.SameDay {
+		copy(r.After[NextBusinessDay], r.After[NextDay])
+		return
+	}
+	price(NextBusinessDay)
 }
 
 // held says that the passing of a day changes nothing.

@@ -6,7 +6,7 @@ import "nightbook/risk/model"
 // negative and whose volatility is in units of that price.
 func VanillaOnSpread(r *Run) {
 	model.Bachelier(&r.Greeks, r.Spot, r.Strike, r.Time, r.Vol, r.Rate, r.Sign)
-	for i := range r.After {
+	for i := range r.revaluations {
 		model.BachelierPrice(r.After[i], r.Spot, r.Strike, r.TimeAfter[i], r.Vol, r.Rate, r.Sign)
 	}
 }
