@@ -1,7 +1,7 @@
 // Package samples makes the snapshot folders that nightbook is shown and
-// tried with: Demo writes an invented desk of any size, and Committed lists
-// the two small desks that stand in this folder, each with a README that says
-// what to look at.
+// tried with: Demo writes an invented desk of any size, and Regenerate the
+// small desks that stand in this folder, each with a README that says what to
+// look at.
 //
 // Everything in them is made up: desks, books, companies, indices, goods and
 // levels. Only the currency codes are real.
