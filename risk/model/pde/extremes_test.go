@@ -87,6 +87,28 @@ func TestAmericanDifferences(t *testing.T) {
 	}
 }
 
+// With a wide spread the mesh once reached down to where an ex-date drowned in
+// rounding. The value is from quadrature over the density of each period, with
+// SciPy's spline and normal distribution.
+func TestWideSpreadWithDividends(t *testing.T) {
+	var s pde.Solver
+	l := line{s: 100, k: 100, t: 1.95, r: .03, v: 4, w: -1, divs: []pde.Dividend{{Time: .33, Amount: 4}, {Time: 1.33, Amount: 4}}}
+	european := solve(&s, l)
+	near(t, "European put", european.price, 93.9626017, 2e-5*l.s)
+	l.american = true
+	if american := solve(&s, l); american.price < european.price || american.price > 100 {
+		t.Errorf("American put %v, European %v", american.price, european.price)
+	}
+	last := 0.0
+	for _, l.v = range []float64{.5, 1, 1.5, 2, 3, 4, 5, 6, 7, 8} {
+		got := solve(&s, l)
+		if !(got.price > last) || got.price > 100 {
+			t.Errorf("volatility %v: American put %v, %v at a lower one", l.v, got.price, last)
+		}
+		last = got.price
+	}
+}
+
 // American options under escrowed dividends against a binomial lattice of what is
 // not in escrow.
 func TestEscrowedAmerican(t *testing.T) {

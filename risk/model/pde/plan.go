@@ -21,6 +21,8 @@ const (
 	timeSteps = 5.0
 	halvings  = 3 // of the first step from expiry, where values change fastest
 	evenings  = 2 // of the first step before an ex-date
+
+	lowest = 1e-6 // price on a mesh with ex-dates, as a share of the spot
 )
 
 // plan is how a sweep is to go, but for the level.
@@ -66,6 +68,9 @@ func (p *plan) lay(unit, lo, hi, vol float64, c *Chain, divs schedule, tolerance
 	hi = float64(hi * exp(max(0, drift+half)+far))
 	if c.Convention == Piecewise {
 		lo = max(lo-divs.sum(), float64(0.1*lo))
+		if len(divs) > 0 { // lower cells are lost in the rounding of an ex-date, and their prices below its drop
+			lo = max(lo, float64(lowest*unit))
+		}
 	}
 	p.unit = unit
 	p.width = float64(densePart*sd) + float64(0.5*math.Abs(drift))
