@@ -31,6 +31,7 @@ type Options struct {
 	Version     string            // of this program, told in Parquet files
 	Compression string            // of Parquet: zstd, snappy, gzip or none; "" is zstd
 	Metadata    map[string]string // key-value pairs for the footer of Parquet files
+	GroupRows   int               // rows in a row group of Parquet; 0 is 262,144
 
 	// BareText turns off, for CSV, the protection against texts that a
 	// spreadsheet would run as formulas (see package csv).
@@ -46,6 +47,7 @@ func NewTable(format string, w io.Writer, t schema.Table, opt Options) (Table, e
 			Version:     opt.Version,
 			Compression: opt.Compression,
 			Metadata:    opt.Metadata,
+			GroupRows:   opt.GroupRows,
 		})
 	case "csv":
 		return csv.New(w, t, csv.Options{

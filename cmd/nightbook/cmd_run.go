@@ -18,6 +18,7 @@ type options struct {
 	asOf     string
 	formats  []string
 	workers  int
+	memory   int64 // ceiling in bytes; 0: none
 	strict   bool
 	replace  bool
 }
@@ -40,6 +41,7 @@ rejects.csv, warnings.csv and manifest.json.`,
 		Flags: append([]cli.Flag{
 			&cli.StringFlag{Name: "out", Value: "out", Usage: "folder `DIR` in which the results' folder is made"},
 			&cli.StringFlag{Name: "formats", Value: "xlsx,parquet", Usage: "`LIST` of xlsx, parquet and csv"},
+			&cli.StringFlag{Name: "memory", Usage: "take no more memory than `SIZE`, as 512MiB; row groups of Parquet files may be smaller for it", DefaultText: "no ceiling"},
 			&cli.BoolFlag{Name: "replace", Usage: "put the results in the place of those of an earlier run"},
 		}, readFlags...),
 		Action: func(c *cli.Context) error {
@@ -49,6 +51,9 @@ rejects.csv, warnings.csv and manifest.json.`,
 			}
 			if o.out = c.String("out"); o.out == "" {
 				return usagef("--out needs a folder")
+			}
+			if o.memory, err = parseSize(c.String("memory")); err != nil {
+				return err
 			}
 			o.replace = c.Bool("replace")
 			for f := range strings.SplitSeq(c.String("formats"), ",") {

@@ -5,15 +5,11 @@ import (
 	"fmt"
 	"io"
 	"log/slog"
-	"os"
 	"path/filepath"
 	"strings"
 	"text/tabwriter"
 	"time"
 	"unicode/utf8"
-
-	"github.com/schollz/progressbar/v3"
-	"golang.org/x/term"
 
 	"nightbook/schema"
 )
@@ -74,34 +70,6 @@ func (c *console) say(text string, args ...any) {
 		return
 	}
 	fmt.Fprintln(c.w, text)
-}
-
-// bar is a progress bar over the bytes of the position file. Without a
-// terminal it draws nothing.
-type bar struct{ *progressbar.ProgressBar }
-
-func (c *console) progress(size int64) bar {
-	f, ok := c.w.(*os.File)
-	if c.json != nil || !ok || !term.IsTerminal(int(f.Fd())) || size <= 0 {
-		return bar{}
-	}
-	return bar{progressbar.NewOptions64(size,
-		progressbar.OptionSetWriter(f), progressbar.OptionShowBytes(true), progressbar.OptionThrottle(100*time.Millisecond),
-		progressbar.OptionSetDescription("pricing"), progressbar.OptionClearOnFinish(), progressbar.OptionSetPredictTime(true))}
-}
-
-// reach moves the bar to a place in the file.
-func (b bar) reach(bytes int64) {
-	if b.ProgressBar != nil {
-		b.Set64(bytes)
-	}
-}
-
-// finish clears the bar away.
-func (b bar) finish() {
-	if b.ProgressBar != nil {
-		b.Finish()
-	}
 }
 
 // finished tells how a run went. dir is "" where nothing was written.

@@ -23,6 +23,7 @@ type outputs struct {
 	o      *options
 	cfg    *schema.Config
 	dicts  *schema.Dicts
+	share  share
 	folder *writer.Folder
 	frame  schema.Frame
 
@@ -53,8 +54,8 @@ func (t *tableFile) close() error {
 	return t.file.Close()
 }
 
-func newOutputs(ctx context.Context, o *options, cfg *schema.Config, dicts *schema.Dicts, extra []string) (*outputs, error) {
-	out := &outputs{ctx: ctx, o: o, cfg: cfg, dicts: dicts}
+func newOutputs(ctx context.Context, o *options, cfg *schema.Config, dicts *schema.Dicts, lines schema.Table, s share) (*outputs, error) {
+	out := &outputs{ctx: ctx, o: o, cfg: cfg, dicts: dicts, share: s}
 	var err error
 	if o.out == "" {
 		w, err := writer.NewTable("csv", o.check, schema.RejectsOut, writer.Options{})
@@ -71,7 +72,7 @@ func newOutputs(ctx context.Context, o *options, cfg *schema.Config, dicts *sche
 	if err != nil {
 		return nil, err
 	}
-	if err := out.open(schema.LinesTable(extra)); err != nil {
+	if err := out.open(lines); err != nil {
 		out.abort()
 		return nil, err
 	}
@@ -129,7 +130,8 @@ func (out *outputs) table(t schema.Table, format string) (*tableFile, error) {
 	w, err := writer.NewTable(format, stopping{out.ctx, f}, t, writer.Options{
 		Compression: out.cfg.Parquet.Compression,
 		Version:     version,
-		Workers:     out.o.workers,
+		Workers:     out.share.workers,
+		GroupRows:   out.share.groupRows,
 		Metadata: map[string]string{
 			"nightbook.version": version, "nightbook.schema_revision": strconv.Itoa(schema.Revision),
 			"nightbook.as_of": out.cfg.AsOf.String(), "nightbook.reporting_currency": out.cfg.ReportingCurrency,

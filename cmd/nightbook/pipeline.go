@@ -3,6 +3,7 @@ package main
 import (
 	"context"
 	"fmt"
+	"runtime/debug"
 	"slices"
 	"time"
 
@@ -19,6 +20,10 @@ type job struct {
 	piece reader.Piece
 	batch schema.Batch
 }
+
+// moreJobs is how many pieces are on their way beside those that the workers
+// have: one being cut, one being written.
+const moreJobs = 2
 
 // pipeline is the whole run: open → read → price → aggregate → write.
 //
@@ -50,29 +55,37 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 		return nil, err
 	}
 	defer positions.Close()
-	out, err := newOutputs(ctx, o, cfg, dicts, positions.Extra())
+	lines := schema.LinesTable(positions.Extra())
+	defer debug.SetMemoryLimit(debug.SetMemoryLimit(-1)) // as it was, behind divide
+	share, err := o.divide(lines.Columns)
+	if err != nil {
+		return nil, err
+	}
+	out, err := newOutputs(ctx, o, cfg, dicts, lines, share)
 	if err != nil {
 		return nil, err
 	}
 	defer out.abort()
 
 	engine := risk.NewEngine(mkt, dicts)
-	jobs := make([]*job, o.workers+2)
+	jobs := make([]*job, share.workers+moreJobs)
 	for i := range jobs {
 		jobs[i] = new(job)
 	}
-	binders := make([]*reader.Binder, o.workers)
-	scratch := make([]*risk.Worker, o.workers)
-	for i := range o.workers {
+	binders := make([]*reader.Binder, share.workers)
+	scratch := make([]*risk.Worker, share.workers)
+	for i := range share.workers {
 		binders[i], scratch[i] = positions.NewBinder(), engine.NewWorker()
 	}
 	gate := newGate(positions, raw.Faults, o.strict)
 	if err := gate.market(out); err != nil {
 		return nil, err
 	}
+	var memory flat
+	defer memory.end()
 	var early []schema.ExerciseRow
 	bar := con.progress(positions.Size())
-	err = ordered(ctx, jobs, o.workers,
+	err = ordered(ctx, jobs, share.workers,
 		func(j *job) error { return positions.Next(&j.piece) },
 		func(worker int, j *job) error {
 			if err := binders[worker].Bind(&j.piece, &j.batch); err != nil {
@@ -87,7 +100,8 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 			totals.AddRejects(&j.batch)
 			j.batch.Compact()
 			totals.AddLines(&j.batch, engine.Kind)
-			bar.reach(j.piece.Bytes)
+			memory.reach(gate.rowsIn)
+			bar.reach(j.piece.Bytes, gate.rowsIn)
 			early = engine.EarlyExercise(&j.batch, early[:0])
 			return out.batch(&j.batch, early)
 		})

@@ -1,7 +1,11 @@
 package main
 
 import (
+	"context"
+	"fmt"
 	"os"
+	"strconv"
+	"strings"
 	"testing"
 
 	"github.com/rogpeppe/go-internal/testscript"
@@ -11,7 +15,28 @@ import (
 func TestMain(m *testing.M) {
 	testscript.Main(m, map[string]func(){
 		"nightbook": main,
+		"peak":      peak,
 	})
+}
+
+// peak is nightbook, but ends with status 9 if the most memory it ever had
+// resident is above MOST MiB.
+func peak() {
+	code := run(context.Background(), os.Args, os.Stdout, os.Stderr)
+	if code == exitDone {
+		status, err := os.ReadFile("/proc/self/status")
+		var kib int64
+		if _, after, ok := strings.Cut(string(status), "VmHWM:"); err != nil || !ok {
+			code = exitFailed
+		} else if _, err := fmt.Sscan(after, &kib); err != nil {
+			code = exitFailed
+		}
+		if most, err := strconv.ParseInt(os.Getenv("MOST"), 10, 64); err != nil || kib > most<<10 {
+			fmt.Fprintf(os.Stderr, "%d KiB resident\n", kib)
+			code = 9
+		}
+	}
+	os.Exit(code)
 }
 
 // TestScripts drives the program as its users do.

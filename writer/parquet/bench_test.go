@@ -23,7 +23,7 @@ func benchmarkFrames(n int) []*schema.Frame {
 }
 
 func BenchmarkWriteLines(b *testing.B) {
-	const n = groupRows
+	const n = mostRows
 	frames := benchmarkFrames(n)
 	table := schema.LinesTable(invent.Extra)
 	for _, codec := range []string{"zstd", "snappy", "gzip", "none"} {

@@ -19,7 +19,7 @@ func noise(i int) float64 {
 // How a chunk of numbers is stored depends on what its first page holds; what is
 // read back never does.
 func TestNumbersEncoding(t *testing.T) {
-	const whole = groupRows / pageRows
+	const whole = mostRows / pageRows
 	zstd, none := parquet.CompressionCodec_ZSTD, parquet.CompressionCodec_UNCOMPRESSED
 	for name, c := range map[string]struct {
 		n                 int
@@ -27,11 +27,11 @@ func TestNumbersEncoding(t *testing.T) {
 		dictionary, plain int // pages of the first row group
 		codec             parquet.CompressionCodec
 	}{
-		"one number":          {groupRows + 10, func(int) float64 { return 0.25 }, whole, 0, zstd},
-		"a quarter different": {groupRows, func(i int) float64 { return noise(i % (pageRows / repeats)) }, whole, 0, zstd},
-		"more than a quarter": {groupRows, func(i int) float64 { return noise(i % (pageRows/repeats + 1)) }, 0, whole, none},
-		"all different":       {groupRows + 10, noise, 0, whole, none},
-		"counting":            {groupRows, func(i int) float64 { return float64(i) }, 0, whole, zstd},
+		"one number":          {mostRows + 10, func(int) float64 { return 0.25 }, whole, 0, zstd},
+		"a quarter different": {mostRows, func(i int) float64 { return noise(i % (pageRows / repeats)) }, whole, 0, zstd},
+		"more than a quarter": {mostRows, func(i int) float64 { return noise(i % (pageRows/repeats + 1)) }, 0, whole, none},
+		"all different":       {mostRows + 10, noise, 0, whole, none},
+		"counting":            {mostRows, func(i int) float64 { return float64(i) }, 0, whole, zstd},
 		"different later":     {4 * pageRows, func(i int) float64 { return noise(max(0, i-pageRows)) }, 2, 2, zstd},
 		"few rows":            {3, noise, 0, 1, none},
 		"nothing":             {10, func(int) float64 { return math.NaN() }, 0, 1, none},

@@ -1,6 +1,7 @@
 package parquet
 
 import (
+	"cmp"
 	"fmt"
 	"io"
 	"sync"
@@ -15,8 +16,8 @@ const (
 	// pageRows is how many rows a page holds at most: 128 KiB of doubles.
 	pageRows = 16 << 10
 
-	// groupRows is how many rows a row group holds at most.
-	groupRows = 16 * pageRows
+	// mostRows is how many rows a row group holds, unless Options say fewer.
+	mostRows = 16 * pageRows
 
 	// groupBytes ends a row group early: it bounds the memory that long texts
 	// take. It is looked at every checkRows rows.
@@ -30,6 +31,7 @@ type Options struct {
 	Version     string            // of the program
 	Compression string            // zstd, snappy, gzip or none; "" is zstd
 	Metadata    map[string]string // key-value pairs for the footer
+	GroupRows   int               // rows in a row group: see GroupRows; 0 is 262,144
 }
 
 // Writer writes one table.
@@ -43,6 +45,7 @@ type Writer struct {
 	rows      int64  // of the row groups that are full
 	group     *group // being filled; nil before its first row
 	groupRows int64  // in it
+	fullRows  int64  // when it is full
 
 	writing *group     // nil if none is
 	written chan error // of writing
@@ -70,6 +73,8 @@ func New(w io.Writer, t schema.Table, opt Options) (*Writer, error) {
 		thrift: newSerializer(),
 		blocks: newBlocks(len(t.Columns)),
 		meta:   footerInfo{version: opt.Version, pairs: opt.Metadata},
+
+		fullRows: int64(cmp.Or(opt.GroupRows, mostRows)),
 	}
 	for _, c := range t.Columns {
 		p.columns = append(p.columns, newColumn(c, comp, p.blocks))
@@ -98,7 +103,7 @@ func (p *Writer) Write(f *schema.Frame) error {
 		p.failed = p.add(f, from, to)
 		p.groupRows += int64(to - from)
 		from = to
-		if p.failed == nil && p.groupRows%checkRows == 0 && (p.groupRows == groupRows || p.held() > groupBytes) {
+		if p.failed == nil && p.groupRows%checkRows == 0 && (p.groupRows == p.fullRows || p.held() > groupBytes) {
 			p.failed = p.flush()
 		}
 	}

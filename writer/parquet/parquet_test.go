@@ -146,12 +146,12 @@ func TestRoundTrip(t *testing.T) {
 }
 
 func TestRowGroups(t *testing.T) {
-	const n = 2*groupRows + 5000
+	const n = 2*mostRows + 5000
 	frames := invent.Slices(invent.Rows(0, n, schema.NewDict()), 4096)
 	data := write(t, invent.Table, Options{Workers: 2, Version: "1.2.3", Metadata: map[string]string{"b": "2", "a": "1"}}, frames...)
 	compare(t, data, frames...)
 	footer := open(t, data).Footer
-	if len(footer.RowGroups) != 3 || footer.RowGroups[1].NumRows != groupRows || footer.RowGroups[2].NumRows != 5000 {
+	if len(footer.RowGroups) != 3 || footer.RowGroups[1].NumRows != mostRows || footer.RowGroups[2].NumRows != 5000 {
 		t.Errorf("row groups: %v", footer.RowGroups)
 	}
 	if *footer.CreatedBy != "nightbook version 1.2.3" {
@@ -165,7 +165,7 @@ func TestRowGroups(t *testing.T) {
 // The bytes must not depend on how rows come in frames, on the number of
 // workers, or on which code a text got.
 func TestBytesDependOnRowsOnly(t *testing.T) {
-	const n = groupRows + 3*pageRows/2
+	const n = mostRows + 3*pageRows/2
 	want := map[string][]byte{}
 	for workers := 1; workers <= 3; workers++ {
 		dict := schema.NewDict()

@@ -152,7 +152,7 @@ func sameBound(v *schema.Vector, got, want []byte) bool {
 
 // Every page, every chunk and the page index must tell the truth.
 func TestStructure(t *testing.T) {
-	const n = groupRows + pageRows + 100
+	const n = mostRows + pageRows + 100
 	f := invent.Rows(0, n, schema.NewDict())
 	data := write(t, invent.Table, Options{Workers: 2}, f)
 	meta := footer(t, data)
@@ -277,14 +277,14 @@ func readBack(t *testing.T, data []byte, f *schema.Frame) {
 
 func TestDictionaryGivenUp(t *testing.T) {
 	number := func(i int) string { return string(binary.BigEndian.AppendUint32([]byte("id"), uint32(i))) }
-	const whole = groupRows / pageRows
+	const whole = mostRows / pageRows
 	for name, c := range map[string]struct {
 		n     int
 		text  func(int) string
 		pages [][2]int // with a dictionary and plain, by row group
 	}{
-		"few texts":          {groupRows + 10, func(i int) string { return number(i % 100) }, [][2]int{{whole, 0}, {1, 0}}},
-		"all different":      {groupRows + 10, number, [][2]int{{1, whole - 1}, {0, 1}}},
+		"few texts":          {mostRows + 10, func(i int) string { return number(i % 100) }, [][2]int{{whole, 0}, {1, 0}}},
+		"all different":      {mostRows + 10, number, [][2]int{{1, whole - 1}, {0, 1}}},
 		"few rows":           {10, number, [][2]int{{1, 0}}},
 		"nothing":            {10, func(int) string { return "" }, [][2]int{{0, 1}}},
 		"nothing at first":   {3 * pageRows, func(i int) string { return strings.Repeat("x", i/pageRows) }, [][2]int{{2, 1}}},

@@ -1,0 +1,126 @@
+package main
+
+import (
+	"fmt"
+	"math"
+	"runtime"
+	"runtime/debug"
+	"strconv"
+	"strings"
+
+	"nightbook/schema"
+	"nightbook/writer/parquet"
+)
+
+// What the parts of a run take, in bytes: measured, and rounded up.
+const (
+	mib = 1 << 20
+
+	programMemory  = 24 * mib // the program itself, and what the collector is behind
+	jobMemory      = 6 * mib  // a batch on its way, with its piece of the file
+	workbookMemory = 40 * mib // report.xlsx: the sheets are on the disk
+	csvMemory      = 4 * mib
+)
+
+// share is how a run divides the memory it may take.
+type share struct {
+	workers   int
+	groupRows int // of the row groups of Parquet files; 0: as many as usual
+}
+
+// divide divides o.memory. It is called when the market is in memory. Row groups
+// depend on the ceiling and on the columns alone, so that the results are the
+// same with any number of workers.
+func (o *options) divide(columns []schema.Column) (share, error) {
+	if o.memory == 0 {
+		return share{workers: o.workers}, nil
+	}
+	var m runtime.MemStats
+	runtime.ReadMemStats(&m)
+	need := int64(programMemory) + int64(m.HeapAlloc)
+	s := share{}
+	for _, f := range o.formats {
+		switch f {
+		case "xlsx":
+			need += workbookMemory
+		case "csv":
+			need += csvMemory
+		case "parquet":
+			s.groupRows = parquet.GroupRows(columns, o.memory/2)
+			need += parquet.Memory(columns, s.groupRows)
+		}
+	}
+	const fewestJobs = 1 + moreJobs
+	if least := need + fewestJobs*jobMemory; least > o.memory {
+		return s, &hinted{
+			fmt.Errorf("--memory %s is too little for this run, which takes %d MiB", sizeText(o.memory), (least+mib-1)/mib),
+			"give --memory more, fewer --formats, or leave --memory away",
+		}
+	}
+	s.workers = int(min(int64(o.workers), (o.memory-need)/jobMemory-moreJobs))
+	debug.SetMemoryLimit(o.memory - programMemory)
+	return s, nil
+}
+
+// Once so many rows have been written all buffers have been made. What is
+// allocated after that is garbage, and the buffers hold no pointers: to collect
+// it early costs next to nothing, and keeps memory from growing with the file.
+const (
+	steadyRows      = 400_000
+	steadyGCPercent = 10
+)
+
+// flat has garbage collected early once a run is in its steady state.
+type flat struct {
+	on     bool
+	before int // the percentage that was set
+}
+
+func (f *flat) reach(rows int64) {
+	if !f.on && rows >= steadyRows {
+		f.on, f.before = true, debug.SetGCPercent(steadyGCPercent)
+	}
+}
+
+func (f *flat) end() {
+	if f.on {
+		debug.SetGCPercent(f.before)
+	}
+}
+
+// sizes are the units of --memory.
+var sizes = []struct {
+	suffix string
+	bytes  int64
+}{
+	{"KiB", 1 << 10}, {"MiB", 1 << 20}, {"GiB", 1 << 30}, {"kB", 1e3}, {"MB", 1e6}, {"GB", 1e9}, {"B", 1}, {"", 1},
+}
+
+// parseSize reads a size such as 512MiB; "" is 0, no ceiling.
+func parseSize(text string) (int64, error) {
+	if text == "" {
+		return 0, nil
+	}
+	for _, u := range sizes {
+		digits, ok := strings.CutSuffix(text, u.suffix)
+		if !ok {
+			continue
+		}
+		n, err := strconv.ParseInt(digits, 10, 64)
+		if err != nil || n <= 0 || n > math.MaxInt64/u.bytes {
+			break
+		}
+		return n * u.bytes, nil
+	}
+	return 0, usagef("--memory takes a size such as 512MiB (KiB, MiB, GiB, kB, MB, GB or bytes), not %q", text)
+}
+
+// sizeText writes a size as parseSize reads it.
+func sizeText(n int64) string {
+	for _, u := range []int{2, 1, 0} {
+		if n%sizes[u].bytes == 0 {
+			return strconv.FormatInt(n/sizes[u].bytes, 10) + sizes[u].suffix
+		}
+	}
+	return strconv.FormatInt(n, 10)
+}
