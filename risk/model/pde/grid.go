@@ -41,6 +41,9 @@ type grid struct {
 	offset   row
 	interest row // on the strike, w·r·K
 
+	strike    float64
+	worthless row // V at a price of 0, at the latest ex-date
+
 	v, prev []row // values now and one step before
 
 	// Nodes up to edge are exercised, none if it is −1; ghost is by how much the
@@ -67,6 +70,7 @@ func (g *grid) moveEdge(j, i int) {
 // open prepares the sweep of an option, at its expiry.
 func (g *grid) open(strike float64) {
 	n := len(g.s)
+	g.strike = strike
 	g.pay, g.v, g.prev = resize(g.pay, n), resize(g.v, n), resize(g.prev, n)
 	g.first = resize(g.first, n+1)
 	clear(g.first)

@@ -17,9 +17,11 @@ type drop struct {
 
 // exDate takes the values back over an ex-date: from just after it to just
 // before. drop is what the price falls by, 0 where only what exercise brings
-// changes; offset is that just before.
-func (g *grid) exDate(drop float64, offset *row) {
+// changes; left are the years to expiry; offset is what exercise brings more just
+// before.
+func (g *grid) exDate(drop, left float64, offset *row) {
 	if drop > 0 {
+		g.atZero(left)
 		g.shift(drop)
 	}
 	g.offset = *offset
@@ -39,7 +41,9 @@ func (g *grid) exDate(drop float64, offset *row) {
 // at the shifted edges, by a cubic through four of them, and differenced. What
 // one cell loses its neighbour gains, so that a kink narrower than a cell passes
 // without a bias; smooth values pass with a fourth-order error. Below the mesh V
-// is linear, and flat below a price of 0.
+// is linear down to the known value at a price of 0, and flat below that: were the
+// slope that of the last two nodes, its errors would grow from one of many
+// ex-dates to the next.
 // Source: conservative semi-Lagrangian remapping, as in R. Laprise & A. Plante,
 // Monthly Weather Review 123 (1995).
 func (g *grid) shift(by float64) {
@@ -112,6 +116,22 @@ func (m *mesh) cubic(cell int, x float64) (w [4]float64) {
 	return [4]float64{float64(b * cd * o[0]), float64(a * cd * o[1]), float64(ab * d * o[2]), float64(ab * c * o[3])}
 }
 
+// atZero sets what the option is worth on a price of 0, which stays 0: a put its
+// strike, now or at expiry.
+func (g *grid) atZero(left float64) {
+	g.worthless = row{}
+	if g.sign > 0 {
+		return
+	}
+	for j := range lanes {
+		d := exp(-float64(g.rate[j] * left))
+		if g.right != never {
+			d = max(d, 1)
+		}
+		g.worthless[j] = float64(g.strike * d)
+	}
+}
+
 // lowTail is V below the lowest edge, value + slope·(S−edge), and its integral
 // up to there.
 type lowTail struct {
@@ -121,13 +141,13 @@ type lowTail struct {
 
 func (g *grid) tail() lowTail {
 	n := len(g.s)
-	i, k, at := 0, 1, 0
+	i, at := 0, 0
 	if g.s[1] < g.s[0] {
-		i, k, at = n-1, n-2, n
+		i, at = n-1, n
 	}
 	t := lowTail{edge: g.edges[at], sum: g.sum[at]}
 	for j := range lanes {
-		t.slope[j] = (g.v[k][j] - g.v[i][j]) / (g.s[k] - g.s[i])
+		t.slope[j] = (g.v[i][j] - g.worthless[j]) / g.s[i]
 		t.value[j] = g.v[i][j] + float64(t.slope[j]*(t.edge-g.s[i]))
 	}
 	return t

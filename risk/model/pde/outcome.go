@@ -95,7 +95,7 @@ func (w *work) run(level int, c *Chain, out []outcome) {
 				drop = 0
 			}
 			for k := range grids {
-				grids[k].exDate(drop, &end)
+				grids[k].exDate(drop, c.Time-l.from, &end)
 			}
 		}
 		for m := range l.steps << level {
