@@ -267,6 +267,11 @@ func TestImplyByModel(t *testing.T) {
 				}
 			}
 		}
+		for style := schema.European; style <= schema.American; style++ { // V at the upper end of the search has a very wide spread
+			l := option("U", schema.Put, 100, 700, 0.3)
+			l.style = style
+			lines = append(lines, l)
+		}
 		priced := d.price(lines...)
 		var quotes []schema.QuoteRow
 		for i, l := range lines {

@@ -374,6 +374,8 @@ func TestExerciseSheet(t *testing.T) {
 	for column, want := range map[int]float64{5: 100, 9: 80, 10: 20.5, 11: 20, 12: 0.5, 13: 75, 15: 0.75} {
 		wantNumber(t, schema.ExerciseOut.Columns[column].Name, row[column], want)
 	}
+	summary := sheet(t, reopen(t, r.workbook(t, 100)), "Summary")
+	wantNumber(t, "early exercise in the summary", summary[find(t, summary, 0, "Early exercise")][1], 1)
 	if want := "1 American option to exercise or to look at before an ex-date; of those sold, the holder decides"; rows[1][0] != want {
 		t.Errorf("note %q", rows[1][0])
 	}

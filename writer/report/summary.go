@@ -53,8 +53,9 @@ func (r *Report) summaryRows(c cells, s *schema.Summary) error {
 		{"Expired", s.Total.Expired, "at their payoff"},
 		{"Rejected", s.Rejects, "in no total: see Rejects"},
 		{"Market rows rejected", s.Faults, "what needs them is rejected"},
+		{"Early exercise", r.exerciseSeen, "to exercise, or to look at before an ex-date: see Exercise"},
 	} {
-		if row.n == 0 && row.name == "Market rows rejected" {
+		if row.n == 0 && (row.name == "Market rows rejected" || row.name == "Early exercise") {
 			continue
 		}
 		c.Begin(0, 0)
