@@ -11,9 +11,14 @@ import (
 
 // Options says which demo snapshot to write.
 type Options struct {
-	Lines  int64  // position lines, at least 1
-	Seed   uint64 // another seed is another desk
-	Broken int64  // lines in a million that carry one fault each; 0 to 1,000,000; the first line is always whole
+	Lines int64  // position lines, at least 1
+	Seed  uint64 // another seed is another desk
+
+	// American: options on shares and futures are American, and shares pay cash
+	// dividends instead of a yield.
+	American bool
+
+	Broken int64 // lines in a million that carry one fault each; 0 to 1,000,000; the first line is always whole
 
 	Stop func() error // asked now and then: its error, if any, ends the writing; nil never does
 }
@@ -37,6 +42,7 @@ func Write(dir string, o Options) (err error) {
 		return err
 	}
 	d := newDesk(o.Seed)
+	d.american = o.American
 	market := d.marketFiles()
 	defer func() {
 		if err != nil {

@@ -86,6 +86,7 @@ type book struct {
 
 // desk is the whole invented house.
 type desk struct {
+	american    bool // see Options
 	asOf        schema.Date
 	expiries    []schema.Date
 	expired     string // the expiry that has just passed

@@ -10,7 +10,36 @@ import (
 
 // marketFiles returns the market tables of the snapshot.
 func (d *desk) marketFiles() []file {
-	return []file{d.underlyingsFile(), ratesFile(), d.volsFile(), fxFile(), d.booksFile(), d.holidaysFile()}
+	files := []file{d.underlyingsFile(), ratesFile(), d.volsFile(), fxFile(), d.booksFile(), d.holidaysFile()}
+	if d.american {
+		files = append(files, d.dividendsFile())
+	}
+	return files
+}
+
+// paysCash reports whether an underlying pays cash dividends, its yield then being
+// what they come to in a year.
+func (d *desk) paysCash(u *underlying) bool {
+	return d.american && u.kind == schema.Equity && u.yield > 0
+}
+
+// dividendsFile has each share pay a quarter of its yield every 91 days until
+// its last expiry, the first within a quarter.
+func (d *desk) dividendsFile() file {
+	t := newTable(plain, "underlying", "ex_date", "amount")
+	for i, u := range d.underlyings {
+		if !d.paysCash(u) {
+			continue
+		}
+		amount := max(1, u.price*u.yield/40_000)
+		for x := d.asOf + 1 + schema.Date(i*37%91); x <= u.expiries[len(u.expiries)-1]; x += 91 {
+			t.text(u.name)
+			t.date(x)
+			t.number(decimal{amount, u.places})
+			t.end()
+		}
+	}
+	return t.file("dividends.csv")
 }
 
 func (d *desk) underlyingsFile() file {
@@ -20,7 +49,7 @@ func (d *desk) underlyingsFile() file {
 		t.text(schema.Kinds[u.kind])
 		t.text(u.ccy.code)
 		t.number(decimal{u.price, u.places})
-		if u.kind == schema.FuturePrice {
+		if u.kind == schema.FuturePrice || d.paysCash(u) {
 			t.text("") // a futures price carries nothing
 		} else {
 			t.number(decimal{u.yield, 4})
@@ -141,6 +170,9 @@ as_of %s · reporting currency %s · %d underlyings · %d books, %d of them with
 		if i > 0 {
 			fmt.Fprintf(&b, "| %s | %d |\n", schema.Instruments[i], n)
 		}
+	}
+	if o.American {
+		b.WriteString("\nOptions on shares and futures are American; shares pay cash dividends.\n")
 	}
 	fmt.Fprintf(&b, `
 Of the options, %d expired on %s and wait for settlement: they come out with

@@ -27,15 +27,21 @@ type cells struct {
 	multiplier                   string
 	optionType, strike, expiry   string
 	strategy                     string
+	styled                       bool // there is a column for it
+	style                        string
 }
 
-const demoHeader = "line_id,book,underlying,instrument,quantity,multiplier,option_type,strike,expiry,strategy\n"
+const demoHeader = "line_id,book,underlying,instrument,quantity,multiplier,option_type,strike,expiry,strategy"
 
 // writePositions streams the position file. Lines stand book by book, as a
 // position system exports them.
 func (d *desk) writePositions(w io.Writer, o Options) (tally, error) {
 	var t tally
-	if _, err := io.WriteString(w, demoHeader); err != nil {
+	header := demoHeader + "\n"
+	if d.american {
+		header = demoHeader + ",exercise\n"
+	}
+	if _, err := io.WriteString(w, header); err != nil {
 		return t, err
 	}
 	r := newRandom(o.Seed, 2)
@@ -44,7 +50,7 @@ func (d *desk) writePositions(w io.Writer, o Options) (tally, error) {
 	buf := make([]byte, 0, 256)
 	var c cells // outside the loop: it escapes into the faults, once
 	for i := range o.Lines {
-		c = cells{id: i + 1}
+		c = cells{id: i + 1, styled: d.american}
 		b := d.leaves[share(i, o.Lines, leaves)]
 		c.book = b.name
 		kind := d.fill(&c, b, r)
@@ -92,6 +98,9 @@ func (d *desk) fill(c *cells, b *book, r *random) schema.Choice {
 		i := r.below(int64(len(u.expiries)))
 		c.expiry = u.days[i]
 		c.strike = u.strikes[i][r.below(int64(len(u.strikes[i])))]
+		if u.kind == schema.Equity || u.kind == schema.FuturePrice {
+			c.style = "american" // written where there is a column for it
+		}
 		c.optionType = "call"
 		if r.below(2) == 0 {
 			c.optionType = "put"
@@ -134,6 +143,9 @@ func (c *cells) append(b []byte) []byte {
 	b = append(append(b, ','), c.strike...)
 	b = append(append(b, ','), c.expiry...)
 	b = append(append(b, ','), c.strategy...)
+	if c.styled {
+		b = append(append(b, ','), c.style...)
+	}
 	return append(b, '\n')
 }
 

@@ -95,7 +95,7 @@ func TestDemoFirstLine(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
-	const want = demoHeader + "N00000001,SH-1-01,DUNSEDGE,option,-1235,100,call,17600,2026-12-18,put_spread\n"
+	const want = demoHeader + "\nN00000001,SH-1-01,DUNSEDGE,option,-1235,100,call,17600,2026-12-18,put_spread\n"
 	if !strings.HasPrefix(string(data), want) {
 		t.Errorf("positions.csv starts\n%s\nwant\n%s", data[:min(len(data), 2*len(want))], want)
 	}
