@@ -95,10 +95,10 @@ func (p *patience) Err() error {
 
 // Reading ends with the run, in the middle of any file.
 func TestReadingStops(t *testing.T) {
-	text := desk(3*schema.BatchRows, 3)
-	quotes := "underlying,expiry,strike,option_type,price\n" + strings.Repeat("ALBA,2026-06-19,100,call,5\n", 50_000)
+	text := desk(2*schema.BatchRows, 3)
+	quotes := "underlying,expiry,strike,option_type,price\n" + strings.Repeat("ALBA,2026-06-19,100,call,5\n", 25_000)
 	for name, file := range map[string]string{
-		"positions.csv": text, "positions.csv.gz": gzipped(t, text), "positions.csv.zst": zstandard(t, text), "positions.parquet": parquetOf(t, text), "positions.xlsx": sheetOf(t, desk(4000, 3)),
+		"positions.csv": text, "positions.csv.gz": gzipped(t, text), "positions.csv.zst": zstandard(t, text), "positions.parquet": parquetOf(t, text), "positions.xlsx": sheetOf(t, desk(1500, 3)),
 		"quotes.csv": quotes,
 	} {
 		over := map[string]string{"positions.csv": "", name: file, "run.toml": smallest["run.toml"] + "[vols]\nfrom = \"quotes\"\n"}

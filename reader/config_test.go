@@ -128,6 +128,8 @@ func TestConfigErrors(t *testing.T) {
 		"[workbook]\nmax_lines = -1":          "workbook.max_lines is -1",
 		"[workbook]\nmax_lines = 1000001":     "workbook.max_lines is 1000001",
 		"[parquet]\ncompression = 'lz4'":      `parquet.compression is "lz4"`,
+		"[parquet]\nutc = true":               "utc",
+		"[parquet]\nutc = 'desk'":             `parquet.utc is "desk": expected refuse or as_is`,
 		"[limits]\nrow_bytes = 1":             "limits.row_bytes is 1: expected a whole number from 1024 to 67108864",
 		"[limits]\nrow_bytes = '2 MiB'":       "limits.row_bytes is 2 MiB: expected a whole number",
 		"[limits]\nratio = 5":                 "limits.ratio: there is no such limit; the limits are field_bytes, row_bytes",

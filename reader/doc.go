@@ -7,6 +7,9 @@
 // know nothing of options; this one knows the columns of the schema and no
 // file format, and nothing of what a row is worth.
 //
+// A file is hashed as it is read. One that changes meanwhile is an error, and so
+// is one beyond a limit of [limits]; reading ends with the context of the run.
+//
 // A row that does not say what its table needs is refused with its address, as
 // a schema.Reject of the positions or a schema.Fault of the market. A file that
 // cannot be read at all, or lacks a column, is an error.
