@@ -5,6 +5,7 @@ import (
 	"encoding/binary"
 	"errors"
 	"fmt"
+	"hash/crc32"
 	"io"
 
 	"github.com/klauspost/compress/gzip"
@@ -74,6 +75,9 @@ func (c *column) nextPage() error {
 			err = io.ErrUnexpectedEOF
 		}
 		return fmt.Errorf("a page cannot be read to its end: %w", err)
+	}
+	if h.Crc != nil && uint32(*h.Crc) != crc32.ChecksumIEEE(p.packed) {
+		return damaged("the checksum of a page is not that of its bytes")
 	}
 	size := int(h.UncompressedPageSize)
 	switch h.Type {
