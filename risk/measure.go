@@ -1,6 +1,7 @@
 package risk
 
 import (
+	"math"
 	"strconv"
 
 	"nightbook/schema"
@@ -36,8 +37,13 @@ func measure(b *schema.Batch) {
 			check += notFinite(s[i])
 		}
 		if check != 0 {
-			refuse(b, i, schema.NotFinite, "", "", "a result is beyond the range of a double: check quantity "+number(b.Quantity[i])+
-				", multiplier "+number(b.Multiplier[i])+", strike "+number(b.Strike[i])+", vol "+number(b.VolUsed[i])+" and the price of the underlying")
+			reason := "a result is beyond the range of a double: check quantity " + number(b.Quantity[i]) +
+				", multiplier " + number(b.Multiplier[i]) + ", strike " + number(b.Strike[i]) + ", vol " + number(b.VolUsed[i]) + " and the price of the underlying"
+			if math.IsNaN(b.Price[i]) {
+				reason = "model " + schema.Models[b.Model[i]] + " has no value for such terms: vol " + number(b.VolUsed[i]) + " over " + number(b.Time[i]) +
+					" years, strike " + number(b.Strike[i]) + ", spot " + number(b.Spot[i]) + "; check them, and the rates"
+			}
+			refuse(b, i, schema.NotFinite, "", "", reason)
 		}
 	}
 }

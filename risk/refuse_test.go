@@ -104,6 +104,7 @@ func TestRefusals(t *testing.T) {
 		{"stock that is a call", line{underlying: "U", instrument: schema.Stock, kind: schema.Call}, schema.TermsMismatch, "option_type", "mend the instrument"},
 		{"future with a strike", line{underlying: "fut", instrument: schema.Future, strike: 9}, schema.TermsMismatch, "strike", "mend the instrument"},
 		{"beyond a double", huge, schema.NotFinite, "", "quantity 1e+307"},
+		{"too wide for the mesh", option("pays", schema.Call, 100, 3650, 10), schema.NotFinite, "", "finite_differences has no value for such terms: vol 10 over 10 years"},
 	} {
 		b := d.price(call("U"), c.l)
 		if b.Status[0] != schema.Priced {

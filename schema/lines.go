@@ -136,7 +136,7 @@ var lineFields = append([]lineField{
 		floats(func(b *Batch) []float64 { return b.Residual })},
 	{Column{"price_error", Float, money, false, "", "estimated error of price, of a line priced by finite_differences"},
 		floats(func(b *Batch) []float64 { return b.PriceError })},
-	{Column{"exercise_boundary", Float, "price", false, "", "price of the underlying at as_of at or beyond which exercise of an American option is optimal: at or below it for a put, at or above it for a call; null where there is none"},
+	{Column{"exercise_boundary", Float, "price", false, "", "price of the underlying at as_of at or beyond which exercise of an American option is optimal: at or below it for a put, at or above it for a call. null where there is none, or none near the price. Where rates are negative exercise may end at a second price, which is not shown"},
 		floats(func(b *Batch) []float64 { return b.Boundary })},
 	{Column{"exercise_now", Bool, "", true, "", "whether exercise of an American option is optimal at as_of"},
 		func(b *Batch, _ *Dicts) Vector { return Vector{Kind: KindBools, Bools: b.ExerciseNow} }},
@@ -149,8 +149,8 @@ var measureDocs = [NumMeasures]string{
 	"delta × spot × quantity × multiplier",
 	"change of delta_cash for a move of 1 %: gamma × spot² / 100 × quantity × multiplier",
 	"change of value for one volatility point: vega / 100 × quantity × multiplier",
-	"change of value to the next calendar day, by full revaluation, all else held",
-	"change of value to the next business day, by full revaluation, all else held",
+	"change of value to the next calendar day, by full revaluation, all else held but for cash dividends, which come off the price on their ex-date",
+	"change of value to the next business day, by full revaluation, all else held but for cash dividends, which come off the price on their ex-date",
 	"change of value for one basis point of rate: rho / 10,000 × quantity × multiplier",
 }
 
