@@ -83,11 +83,7 @@ func (n *Binder) Bind(pc *Piece, b *schema.Batch) error {
 		b.Raw.Start = append(b.Raw.Start, rows.Raw.Start...)
 		b.Raw.End = append(b.Raw.End, rows.Raw.End...)
 	} else {
-		for i := range rows.N {
-			at := len(b.Raw.Data)
-			b.Raw.Data = rows.AppendRow(b.Raw.Data, i)
-			b.Raw.AppendSpan(uint32(at), uint32(len(b.Raw.Data)))
-		}
+		b.AsText = rows.AppendRow // the piece keeps the rows until it is read into again
 	}
 	n.columns(b)
 	n.extra(b)
@@ -166,7 +162,7 @@ func (n *Binder) refuse(b *schema.Batch) {
 func (n *Binder) reject(b *schema.Batch, x problem, others []string) schema.Reject {
 	r := schema.Reject{
 		File: b.File, Sheet: n.p.o.sheet, Line: b.Line[x.row], Code: x.why.code, Reason: x.why.reason,
-		Row: strings.Clone(b.Raw.At(x.row)), Index: x.row,
+		Row: b.Row(x.row), Index: x.row,
 	}
 	if len(others) > 0 {
 		r.Reason += "; also: " + strings.Join(others, ", ")

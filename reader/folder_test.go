@@ -123,7 +123,7 @@ func TestSmallestSnapshot(t *testing.T) {
 	if b.Instrument[0] != schema.Stock || b.Quantity[0] != 10 || b.Multiplier[0] != 1 || b.Line[0] != 2 || b.Status[0] != 0 {
 		t.Errorf("row: %v %v %v %v %v", b.Instrument[0], b.Quantity[0], b.Multiplier[0], b.Line[0], b.Status[0])
 	}
-	if got := b.Raw.At(0); got != "L1,North,ALBA,stock,10" {
+	if got := b.Row(0); got != "L1,North,ALBA,stock,10" {
 		t.Errorf("raw %q", got)
 	}
 	var names []string

@@ -66,7 +66,7 @@ func FuzzPositions(f *testing.F) {
 			refused := 0
 			for i := range b.N {
 				b.LineID.At(i)
-				b.Raw.At(i)
+				b.Row(i)
 				for k := range b.Extra {
 					b.Extra[k].At(i)
 				}
@@ -77,7 +77,7 @@ func FuzzPositions(f *testing.F) {
 				x := b.Instrument[i]
 				if b.LineID.At(i) == "" || b.Book[i] == 0 || x == 0 || b.Quantity[i] != b.Quantity[i] ||
 					x == schema.Option && (b.Strike[i] != b.Strike[i] || b.Expiry[i] == schema.NoDate || b.OptionType[i] == 0) {
-					t.Fatalf("row %d lacks something and is not refused: %q", i, b.Raw.At(i))
+					t.Fatalf("row %d lacks something and is not refused: %q", i, b.Row(i))
 				}
 			}
 			if refused != len(b.Rejects) {

@@ -60,7 +60,7 @@ func notFinite(x float64) float64 {
 func refuse(b *schema.Batch, i int, code schema.RejectCode, column, value, reason string) uint8 {
 	b.Status[i] = schema.Rejected
 	b.Rejects = append(b.Rejects, schema.Reject{
-		Line: b.Line[i], Column: column, Code: code, Value: value, Reason: reason, Row: string(b.Raw.Bytes(i)), Index: i,
+		Line: b.Line[i], Column: column, Code: code, Value: value, Reason: reason, Row: b.Row(i), Index: i,
 	})
 	return noRoute
 }

@@ -17,6 +17,10 @@ type Batch struct {
 	Rejects []Reject // of rows with Status Rejected, in row order
 	Notes   []Note   // warnings, in row order
 
+	// AsText appends row i of a file that is no text as a line of text; nil where
+	// Raw has the rows. To make it of every row takes longer than to read them.
+	AsText func(to []byte, i int) []byte
+
 	minutes []int64 // memory of Frame
 }
 
@@ -121,6 +125,14 @@ func (p *Positions) Floats() []*[]float64 {
 	return []*[]float64{&p.Quantity, &p.Multiplier, &p.Strike, &p.Vol, &p.Mark, &p.Payout, &p.Barrier, &p.Rebate, &p.AverageSoFar, &p.EntryPrice}
 }
 
+// Row returns row i as it came. After Compact there are no such rows any more.
+func (b *Batch) Row(i int) string {
+	if b.AsText != nil {
+		return string(b.AsText(nil, i))
+	}
+	return string(b.Raw.Bytes(i))
+}
+
 // Resize makes every fixed-width column n rows long, keeping memory, and
 // empties the text columns, the rejects and the notes. The values are left over
 // from before: the reader sets those of Positions, the risk core those of Results.
@@ -139,14 +151,18 @@ func (b *Batch) Resize(n int) {
 	b.Expiry, b.AverageStart = resized(b.Expiry, n), resized(b.AverageStart, n)
 	b.ExpiryMinute = resized(b.ExpiryMinute, n)
 	b.ExerciseNow = resized(b.ExerciseNow, n)
-	for _, s := range b.texts() {
-		s.Reset()
+	b.LineID.Reset()
+	b.Raw.Reset()
+	b.AsText = nil
+	for i := range b.Extra {
+		b.Extra[i].Reset()
 	}
 	b.Rejects, b.Notes = b.Rejects[:0], b.Notes[:0]
 }
 
 // Compact drops the rows with Status Rejected; the others keep their order.
 func (b *Batch) Compact() {
+	b.Raw.Start, b.Raw.End, b.AsText = b.Raw.Start[:0], b.Raw.End[:0], nil
 	if !slices.Contains(b.Status, Rejected) {
 		return
 	}
@@ -170,8 +186,10 @@ func (b *Batch) Compact() {
 	b.Expiry, b.AverageStart = picked(b.Expiry, keep), picked(b.AverageStart, keep)
 	b.ExpiryMinute = picked(b.ExpiryMinute, keep)
 	b.ExerciseNow = picked(b.ExerciseNow, keep)
-	for _, s := range b.texts() {
-		s.Start, s.End = picked(s.Start, keep), picked(s.End, keep)
+	pick := func(s *Strings) { s.Start, s.End = picked(s.Start, keep), picked(s.End, keep) }
+	pick(&b.LineID)
+	for i := range b.Extra {
+		pick(&b.Extra[i])
 	}
 }
 
@@ -181,14 +199,6 @@ func (b *Batch) codes() []*[]Code {
 
 func (b *Batch) choices() []*[]Choice {
 	return []*[]Choice{&b.Instrument, &b.OptionType, &b.Exercise, &b.Payoff, &b.BarrierType, &b.Monitoring, &b.Status, &b.Model, &b.Setting, &b.DividendModel, &b.VolSource}
-}
-
-func (b *Batch) texts() []*Strings {
-	s := []*Strings{&b.LineID, &b.Raw}
-	for i := range b.Extra {
-		s = append(s, &b.Extra[i])
-	}
-	return s
 }
 
 func resized[T any](s []T, n int) []T {

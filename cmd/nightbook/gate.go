@@ -55,7 +55,7 @@ func (g *gate) rows(b *schema.Batch) error {
 		}
 		b.Status[i] = schema.Rejected
 		b.Rejects = append(b.Rejects, schema.Reject{
-			Line: b.Line[i], Column: "line_id", Code: schema.DuplicateLineID, Value: string(id), Index: i, Row: string(b.Raw.Bytes(i)),
+			Line: b.Line[i], Column: "line_id", Code: schema.DuplicateLineID, Value: string(id), Index: i, Row: b.Row(i),
 			Reason: "line_id stands on an earlier row, and that row counts: give this line an id of its own, or take it out",
 		})
 	}
