@@ -77,7 +77,8 @@ func (r *Results) expire(i int, l *Lines) {
 //
 //	V = max over t of w(S·e^(−qt) − K·e^(−rt)), or 0,
 //
-// now, at expiry, or where the derivative is 0 in between.
+// now, at expiry, or where the derivative is 0 in between. From the strike on, and
+// past rK/q, exercise gains at once and never gains more later: that is the boundary.
 func (r *Results) certain(i int, l *Lines) {
 	spot, strike, t, rate, yield, sign := l.Spot[i], l.Strike[i], l.Time[i], l.Rate[i], l.Yield[i], l.Sign[i]
 	worth := func(t float64) (asset, cash, v float64) {
@@ -85,7 +86,10 @@ func (r *Results) certain(i int, l *Lines) {
 		return asset, cash, float64(sign * (asset - cash))
 	}
 	r.fill(i, 0, Held)
-	r.Boundary[i] = math.NaN()
+	r.Boundary[i] = strike
+	if sign < 0 && yield > rate && rate > 0 || sign > 0 && rate > yield && yield > 0 {
+		r.Boundary[i] = float64(strike*rate) / yield
+	}
 	best, at := 0.0, -1.0
 	candidates := [3]float64{t, -1, 0}
 	if drift := rate - yield; drift != 0 && rate*yield > 0 {
@@ -105,7 +109,7 @@ func (r *Results) certain(i int, l *Lines) {
 	w := float64(sign * asset)
 	r.Price[i], r.Delta[i] = v, w/spot
 	if at == 0 {
-		r.Status[i], r.Residual[i], r.Boundary[i] = Exercised, math.NaN(), spot
+		r.Status[i], r.Residual[i] = Exercised, math.NaN()
 		return
 	}
 	r.Rho[i], r.CarryRho[i] = float64(sign*at)*cash, float64(-at*w)
