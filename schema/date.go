@@ -18,11 +18,27 @@ const minutesPerYear = 365 * 24 * 60
 
 // DateOf returns the date of y-m-d; ok is false where there is no such day.
 func DateOf(y, m, d int) (Date, bool) {
-	t := time.Date(y, time.Month(m), d, 0, 0, 0, 0, time.UTC)
-	if t.Year() != y || t.Month() != time.Month(m) || t.Day() != d {
+	if y < 1 || y > 9999 || m < 1 || m > 12 || d < 1 || d > daysIn(y, m) {
 		return NoDate, false
 	}
-	return Date(t.Unix() / 86400), y >= 1 && y <= 9999
+	if m < 3 { // the year begins in March: the leap day is its last
+		y, m = y-1, m+12
+	}
+	days := 365*y + y/4 - y/100 + y/400 + (153*(m-3)+2)/5 + d - 1
+	const epoch = 719_468 // 1970-01-01, from 0000-03-01
+	return Date(days - epoch), true
+}
+
+func daysIn(y, m int) int {
+	switch {
+	case m == 2 && y%4 == 0 && (y%100 != 0 || y%400 == 0):
+		return 29
+	case m == 2:
+		return 28
+	case m == 4 || m == 6 || m == 9 || m == 11:
+		return 30
+	}
+	return 31
 }
 
 // Time returns midnight UTC of the date.

@@ -1,6 +1,7 @@
 package schema
 
 import (
+	"encoding/binary"
 	"strings"
 	"sync"
 	"sync/atomic"
@@ -61,10 +62,19 @@ func (d *Dict) Len() int { return len(*d.names.Load()) }
 // Interner is one worker's view of a Dict: it takes the lock only for a text
 // it has not met. The zero value is not usable; see NewInterner.
 type Interner struct {
-	dict  *Dict
-	known map[string]Code
-	last  string
-	code  Code
+	dict   *Dict
+	known  map[string]Code
+	last   string
+	code   Code
+	recent [256]recentText
+}
+
+// recentText is a text of up to 16 bytes that was met lately, by its length, its
+// first bytes and its last. The zero value is the empty text and its code.
+type recentText struct {
+	first, last uint64
+	length      uint32
+	code        Code
 }
 
 // NewInterner returns a worker's view of d.
@@ -77,6 +87,19 @@ func (n *Interner) Code(text []byte) Code {
 	if string(text) == n.last { // rows of one book stand together
 		return n.code
 	}
+	if len(text) > 16 {
+		return n.find(text)
+	}
+	first, last := ends(text)
+	r := &n.recent[(first^last<<1)*0x9e3779b97f4a7c15>>56]
+	if r.first != first || r.last != last || r.length != uint32(len(text)) {
+		*r = recentText{first, last, uint32(len(text)), n.find(text)}
+	}
+	return r.code
+}
+
+// find looks a text up that is not the last one.
+func (n *Interner) find(text []byte) Code {
 	c, ok := n.known[string(text)]
 	if !ok {
 		s := string(text)
@@ -85,6 +108,20 @@ func (n *Interner) Code(text []byte) Code {
 	}
 	n.last, n.code = n.dict.Name(c), c
 	return c
+}
+
+// ends returns the first and the last bytes of a text of up to 16, which may
+// overlap: two texts of one length with the same ends are the same.
+func ends(text []byte) (first, last uint64) {
+	switch n := len(text); {
+	case n >= 8:
+		return binary.LittleEndian.Uint64(text), binary.LittleEndian.Uint64(text[n-8:])
+	case n >= 4:
+		return uint64(binary.LittleEndian.Uint32(text)), uint64(binary.LittleEndian.Uint32(text[n-4:]))
+	case n > 0:
+		return uint64(text[0]) | uint64(text[n/2])<<8, uint64(text[n-1])
+	}
+	return 0, 0
 }
 
 // Dicts are the dictionaries of one run.
