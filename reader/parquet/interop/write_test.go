@@ -2,6 +2,7 @@ package interop
 
 import (
 	"bytes"
+	"encoding/binary"
 	"errors"
 	"fmt"
 	"math"
@@ -215,6 +216,7 @@ func TestDamageIsFoundOut(t *testing.T) {
 	if err != nil {
 		t.Fatal(err)
 	}
+	footer := len(whole) - 8 - int(binary.LittleEndian.Uint32(whole[len(whole)-8:])) // it has no checksum
 	found := 0
 	for at := 4; at < len(whole)-8; at += 7 {
 		damaged := bytes.Clone(whole)
@@ -222,7 +224,7 @@ func TestDamageIsFoundOut(t *testing.T) {
 		got, err := read(damaged)
 		if err != nil {
 			found++
-		} else if at < 15_000 && !slices.Equal(got, want) { // where pages stand: the footer has no checksum
+		} else if at < footer && !slices.Equal(got, want) {
 			t.Fatalf("byte %d of %d changed, and the values with it", at, len(whole))
 		}
 	}
