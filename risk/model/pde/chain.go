@@ -45,7 +45,8 @@ type Results struct {
 	// Error estimates how far Price may be off.
 	Error []float64
 	// Boundary is the price at which exercise is optimal now: at or below it for
-	// a put, at or above it for a call. NaN if there is none within reach.
+	// a put, at or above it for a call. NaN if there is none within 4σ√T of Spot, or
+	// 2σ√T where exercise is optimal now.
 	Boundary []float64
 	// Beyond is the price past which exercise is no longer optimal, for options
 	// with a second boundary (puts with yield < rate < 0, calls with

@@ -186,6 +186,14 @@ const (
 	roughError = 3
 )
 
+// How far from the price a boundary is told of, in standard deviations: it is right
+// to 1 % up to there, and the end of the mesh soon moves it by ten times that. From
+// among exercised prices the end is nearer to it.
+const (
+	seenHeld      = 4.0
+	seenExercised = 2.0
+)
+
 // store writes line i: the outcome of the finer mesh b extrapolated from that of
 // the coarser one a, both times scale.
 func (b *outcome) store(a *outcome, r *Results, i int, c *Chain, divs schedule, p *plan, level int, scale float64) {
@@ -201,8 +209,17 @@ func (b *outcome) store(a *outcome, r *Results, i int, c *Chain, divs schedule, 
 	escrow := 0.0
 	if c.Convention == Escrowed {
 		escrow, _ = divs.worth(c.Rate-c.Yield, 0)
-		r.Boundary[i] += escrow
-		r.Beyond[i] += escrow
+	}
+	seen := seenHeld
+	if b.exercised {
+		seen = seenExercised
+	}
+	seen *= float64(c.Vol[i] * math.Sqrt(c.Time))
+	for _, x := range [...]*float64{&r.Boundary[i], &r.Beyond[i]} {
+		if !(math.Abs(lnRatio(*x, c.Spot-escrow)) <= seen) {
+			*x = math.NaN()
+		}
+		*x += escrow
 	}
 	if b.exercised {
 		at, beyond := r.Boundary[i], r.Beyond[i]
