@@ -8,6 +8,7 @@ package pde
 type scattered struct {
 	on     [lanes][]bool // the exercised nodes of each lane
 	rhs, x []float64
+	pay    []float64 // what exercise brings
 	// A held node is worth z + g·(the node before), the nodes after eliminated;
 	// or nearZ + nearG·(the node after), the nodes before eliminated.
 	z, g, nearZ, nearG []float64
@@ -17,7 +18,7 @@ type scattered struct {
 }
 
 func (a *scattered) size(n int) {
-	for _, p := range [...]*[]float64{&a.rhs, &a.x, &a.z, &a.g, &a.nearZ, &a.nearG} {
+	for _, p := range [...]*[]float64{&a.rhs, &a.x, &a.pay, &a.z, &a.g, &a.nearZ, &a.nearG} {
 		*p = resize(*p, n)
 	}
 	a.before, a.after = resize(a.before, n), resize(a.after, n)
@@ -58,11 +59,14 @@ const mostRounds = 50
 func (g *grid) stageAnywhere(j int, dst []row, offset float64) {
 	a, on := &g.any, g.any.on[j]
 	n := len(g.s)
+	for i, s := range g.on[j].s {
+		a.pay[i] = float64(g.sign*(s-g.strike[j])) + offset
+	}
 	for range mostRounds {
-		g.solveHeld(j, offset)
+		g.solveHeld(j)
 		changed := false
 		for i := range n {
-			e := g.pay[i] + offset
+			e := a.pay[i]
 			short := e > a.x[i]
 			if on[i] {
 				rest := fma(g.lo[i][j], a.x[max(i-1, 0)], fma(g.up[i][j], a.x[min(i+1, n-1)], a.rhs[i]))
@@ -78,40 +82,40 @@ func (g *grid) stageAnywhere(j int, dst []row, offset float64) {
 	// a last node before a boundary may be exercised only because the difference
 	// there sees no continuation
 	for i := range n {
-		if !on[i] || g.pay[i]+offset <= 0 {
+		if !on[i] || a.pay[i] <= 0 {
 			continue
 		}
 		if i > 0 && i < n-1 && on[i-1] && !on[i+1] {
-			c := g.cellIf(i, i-1, i+1, j, offset, g.lo[i][j], g.up[i][j], a.z, a.g)
+			c := g.cellIf(i, i-1, i+1, j, g.lo[i][j], g.up[i][j], a.z, a.g)
 			on[i] = c.excess <= -float64(c.pull*c.gain)
 		} else if i > 0 && i < n-1 && on[i+1] && !on[i-1] {
-			c := g.cellIf(i, i+1, i-1, j, offset, g.up[i][j], g.lo[i][j], a.nearZ, a.nearG)
+			c := g.cellIf(i, i+1, i-1, j, g.up[i][j], g.lo[i][j], a.nearZ, a.nearG)
 			on[i] = c.excess <= -float64(c.pull*c.gain)
 			if !on[i] {
 				break // the node before it is a boundary no more
 			}
 		}
 	}
-	g.solveHeld(j, offset)
+	g.solveHeld(j)
 	for i := range n {
 		a.before[i][j], a.after[i][j] = 0, 0
 		if on[i] {
 			continue
 		}
 		if i > 0 && on[i-1] {
-			c := edgeCell{pull: a.g[i], gain: g.gain(i, j, g.s[i]-g.s[i-1])}
-			c.excess = fma(c.pull, g.pay[i-1]+offset, a.z[i]) - (g.pay[i] + offset)
+			c := edgeCell{pull: a.g[i], gain: g.gain(i, j, g.s[i][j]-g.s[i-1][j])}
+			c.excess = fma(c.pull, a.pay[i-1], a.z[i]) - a.pay[i]
 			a.before[i][j] = c.ghost()
 			a.rhs[i] = fma(g.lo[i][j], a.before[i][j], a.rhs[i])
 		}
 		if i < n-1 && on[i+1] {
-			c := edgeCell{pull: a.nearG[i], gain: g.gain(i, j, g.s[i+1]-g.s[i])}
-			c.excess = fma(c.pull, g.pay[i+1]+offset, a.nearZ[i]) - (g.pay[i] + offset)
+			c := edgeCell{pull: a.nearG[i], gain: g.gain(i, j, g.s[i+1][j]-g.s[i][j])}
+			c.excess = fma(c.pull, a.pay[i+1], a.nearZ[i]) - a.pay[i]
 			a.after[i][j] = c.ghost()
 			a.rhs[i] = fma(g.up[i][j], a.after[i][j], a.rhs[i])
 		}
 	}
-	g.solveHeld(j, offset)
+	g.solveHeld(j)
 	for i := range n {
 		dst[i][j] = a.x[i]
 	}
@@ -119,15 +123,15 @@ func (g *grid) stageAnywhere(j int, dst []row, offset float64) {
 
 // cellIf is the cell of node i if it were held, its neighbour past exercised and
 // its neighbour next held; weights are those of the two.
-func (g *grid) cellIf(i, past, next, j int, offset, pastWeight, nextWeight float64, z, h []float64) edgeCell {
+func (g *grid) cellIf(i, past, next, j int, pastWeight, nextWeight float64, z, h []float64) edgeCell {
 	pivot := g.di[i][j] - float64(nextWeight*h[next])
-	c := edgeCell{pull: pastWeight / pivot, gain: g.gain(i, j, g.s[i]-g.s[past])}
-	c.excess = fma(c.pull, g.pay[past]+offset, fma(nextWeight, z[next], g.any.rhs[i])/pivot) - (g.pay[i] + offset)
+	c := edgeCell{pull: pastWeight / pivot, gain: g.gain(i, j, g.s[i][j]-g.s[past][j])}
+	c.excess = fma(c.pull, g.any.pay[past], fma(nextWeight, z[next], g.any.rhs[i])/pivot) - g.any.pay[i]
 	return c
 }
 
 // solveHeld solves for the held nodes of lane j, from both ends.
-func (g *grid) solveHeld(j int, offset float64) {
+func (g *grid) solveHeld(j int) {
 	a, on := &g.any, g.any.on[j]
 	n := len(g.s)
 	var z, h float64
@@ -135,7 +139,7 @@ func (g *grid) solveHeld(j int, offset float64) {
 		pivot := g.di[i][j] - float64(g.up[i][j]*h)
 		z, h = fma(g.up[i][j], z, a.rhs[i])/pivot, g.lo[i][j]/pivot
 		if on[i] {
-			z, h = g.pay[i]+offset, 0
+			z, h = a.pay[i], 0
 		}
 		a.z[i], a.g[i] = z, h
 	}
@@ -144,7 +148,7 @@ func (g *grid) solveHeld(j int, offset float64) {
 		pivot := g.di[i][j] - float64(g.lo[i][j]*h)
 		z, h = fma(g.lo[i][j], z, a.rhs[i])/pivot, g.up[i][j]/pivot
 		if on[i] {
-			z, h = g.pay[i]+offset, 0
+			z, h = a.pay[i], 0
 		}
 		a.nearZ[i], a.nearG[i] = z, h
 	}

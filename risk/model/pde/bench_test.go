@@ -97,3 +97,39 @@ func BenchmarkStrip20(b *testing.B) {
 		})
 	}
 }
+
+// Prices alone beside all results: lines a second of 10 shares with two dividends,
+// each with 40 American options of one expiry, of one volatility or of a smile.
+func BenchmarkPrices(b *testing.B) {
+	for _, c := range []struct {
+		name string
+		skew float64
+	}{{"flat", 0}, {"smile", .1}} {
+		l := new(pde.Lines)
+		for share := range 10 {
+			spot, vol := 40+10*float64(share), .18+.01*float64(share)
+			for i := range 40 {
+				z := -2 + .2*float64(i/2)
+				l.Spot, l.Strike, l.Time = append(l.Spot, spot), append(l.Strike, spot*(1+.7*z*vol)), append(l.Time, .5)
+				l.Vol, l.Rate, l.Yield = append(l.Vol, vol*(1-c.skew*z)), append(l.Rate, .03), append(l.Yield, .005)
+				l.Sign, l.American = append(l.Sign, float64(1-2*(i%2))), append(l.American, true)
+				l.Dividends = append(l.Dividends, []pde.Dividend{{Time: .15, Amount: .01 * spot}, {Time: .4, Amount: .01 * spot}})
+			}
+		}
+		var s pde.Solver
+		var r pde.Results
+		price := make([]float64, len(l.Spot))
+		for _, form := range []struct {
+			name string
+			run  func()
+		}{{"all", func() { s.SolveLines(l, &r) }}, {"prices", func() { s.Prices(l, price) }}} {
+			b.Run(c.name+"/"+form.name, func(b *testing.B) {
+				b.ReportAllocs()
+				for b.Loop() {
+					form.run()
+				}
+				b.ReportMetric(float64(len(price)*b.N)/b.Elapsed().Seconds(), "lines/s")
+			})
+		}
+	}
+}

@@ -18,6 +18,15 @@ func (s schedule) take(c *Chain) schedule {
 	return s
 }
 
+// core is the part of the spot that is lognormal.
+func (s schedule) core(c *Chain) float64 {
+	if c.Convention != Escrowed {
+		return c.Spot
+	}
+	escrow, _ := s.worth(c.Rate-c.Yield, 0)
+	return c.Spot - escrow
+}
+
 // sum is that of the amounts.
 func (s schedule) sum() float64 {
 	var x float64

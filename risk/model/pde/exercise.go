@@ -15,13 +15,13 @@ type edgeCell struct {
 // At the boundary of optimal exercise the value leaves the payoff smoothly,
 // V − payoff ≈ ½Γ(S−B)², and the equation itself gives ½σ²S²Γ = w(qS − rK).
 func (g *grid) gain(i, j int, h float64) float64 {
-	x := h / g.s[i]
+	x := h / g.s[i][j]
 	return g.gainOf(i, j, float64(x*x))
 }
 
 // gainOf is gain for (h/S)².
 func (g *grid) gainOf(i, j int, ratio2 float64) float64 {
-	x := float64((float64(g.signYield[j]*g.s[i]) - g.interest[j]) * float64(ratio2*g.perVar[j]))
+	x := float64((float64(g.signYield[j]*g.s[i][j]) - g.interest[j]) * float64(ratio2*g.perVar[j]))
 	if x > 0 {
 		return x
 	}

@@ -2,8 +2,9 @@ package pde
 
 import "math"
 
-// A sweep carries eight lanes: the option under its own parameters, under each
-// of them a little higher and lower, and one lane that repeats the first.
+// A sweep carries eight lanes. In Solve they are the option under its own
+// parameters, under each of them a little higher and lower, and one lane that
+// repeats the first; in Prices each is an option.
 const (
 	base = iota
 	volUp
@@ -18,6 +19,9 @@ const (
 
 type row = [lanes]float64
 
+// all is x in every lane.
+func all(x float64) row { return row{x, x, x, x, x, x, x, x} }
+
 // terms are the coefficients of the equation in each lane.
 type terms struct{ vol, rate, yield row }
 
@@ -30,18 +34,17 @@ const (
 	anywhere                 // at any prices
 )
 
-// grid is the state of one backward sweep of one line.
+// grid is the state of one backward sweep of one line, or of a line in each lane.
 type grid struct {
 	*operator
 	sign  float64
 	right exercise
 
-	// Exercise brings pay + offset, which in escrowed prices moves with time.
-	pay      []float64
+	// Exercise brings w(S−K) + offset, which in escrowed prices moves with time.
+	strike   row
 	offset   row
 	interest row // on the strike, w·r·K
 
-	strike    float64
 	worthless row // V at a price of 0, at the latest ex-date
 
 	v, prev []row // values now and one step before
@@ -67,52 +70,43 @@ func (g *grid) moveEdge(j, i int) {
 	g.edge[j] = i
 }
 
-// open prepares the sweep of an option, at its expiry.
-func (g *grid) open(strike float64) {
+// pay is what exercise brings at node i of lane j, but for the offset.
+func (g *grid) pay(i, j int) float64 { return float64(g.sign * (g.s[i][j] - g.strike[j])) }
+
+// begin prepares the sweep of an option in each lane, at its expiry.
+func (g *grid) begin(o *operator, sign float64, right exercise, strike *row) {
+	g.operator, g.sign, g.right = o, sign, right
 	n := len(g.s)
-	g.strike = strike
-	g.pay, g.v, g.prev = resize(g.pay, n), resize(g.v, n), resize(g.prev, n)
+	g.v, g.prev = resize(g.v, n), resize(g.prev, n)
 	g.first = resize(g.first, n+1)
 	clear(g.first)
-	for j := range lanes {
-		g.edge[j] = -1
-	}
 	g.first[0] = 1<<lanes - 1
 	if g.right == anywhere {
 		g.any.size(n)
 	}
-	g.offset, g.ghost = row{}, row{}
+	g.strike, g.offset, g.ghost = *strike, row{}, row{}
 	for j := range lanes {
-		g.interest[j] = float64(float64(g.sign*g.rate[j]) * strike)
+		g.edge[j] = -1
+		g.interest[j] = float64(float64(g.sign*g.rate[j]) * strike[j])
 	}
-	edge := -1
-	past := g.beyond(strike)
+	g.payoff()
+	var past int
 	var before, after float64
-	if past > 0 && past < n {
-		before, after = g.kink(past, (strike-g.s[past-1])/(g.s[past]-g.s[past-1]))
-	}
-	for i, s := range g.s {
-		p := float64(g.sign * (s - strike))
-		g.pay[i] = p
-		if p >= 0 {
-			edge = i
-		}
-		v := max(0, p)
-		switch i {
-		case past - 1:
-			v += before
-		case past:
-			v += after
-		}
-		for j := range lanes {
-			g.v[i][j] = v
-		}
-	}
 	for j := range lanes {
-		g.moveEdge(j, edge)
+		if m, k := g.on[j], strike[j]; j == 0 || m != g.on[j-1] || k != strike[j-1] {
+			before, after = 0, 0
+			if past = m.beyond(k); past > 0 && past < n {
+				before, after = m.kink(past, (k-m.s[past-1])/(m.s[past]-m.s[past-1]))
+			}
+		}
+		if past > 0 && past < n {
+			g.v[past-1][j] += before
+			g.v[past][j] += after
+		}
+		g.moveEdge(j, past-1)
 		if g.right == anywhere {
 			for i := range n {
-				g.any.on[j][i] = i <= edge
+				g.any.on[j][i] = i < past
 			}
 		}
 	}

@@ -19,8 +19,8 @@ type drop struct {
 // before. drop is what the price falls by, 0 where only what exercise brings
 // changes; left are the years to expiry; offset is what exercise brings more just
 // before.
-func (g *grid) exDate(drop, left float64, offset *row) {
-	if drop > 0 {
+func (g *grid) exDate(drop, left, offset *row) {
+	if drop[base] > 0 {
 		g.atZero(left)
 		g.shift(drop)
 	}
@@ -46,23 +46,33 @@ func (g *grid) exDate(drop, left float64, offset *row) {
 // ex-dates to the next.
 // Source: conservative semi-Lagrangian remapping, as in R. Laprise & A. Plante,
 // Monthly Weather Review 123 (1995).
-func (g *grid) shift(by float64) {
-	if by != g.drop.by {
-		g.drop.see(&g.mesh, by)
+func (g *grid) shift(by *row) {
+	for j, owner := range g.owner {
+		if d := &g.drops[j]; owner == j && by[j] != d.by {
+			d.see(g.on[j], by[j])
+		}
 	}
-	if g.s[1] > g.s[0] { // from the low prices up, where the small sums are
+	if g.ascending() { // from the low prices up, where the small sums are
 		g.integrateUp()
 	} else {
 		g.integrateDown()
 	}
+	if g.alike() {
+		g.interpolate()
+	} else {
+		g.interpolateEach()
+	}
 	tail := g.tail()
-	for i := range g.drop.from {
-		tail.integral(&g.at[i], g.edges[i]-by)
+	for j := range lanes {
+		d, edges := &g.drops[g.owner[j]], g.on[j].edges
+		for i := range d.from {
+			g.at[i][j] = tail.integral(j, edges[i]-by[j])
+		}
+		for i := d.until; i < len(edges); i++ {
+			g.at[i][j] = tail.integral(j, edges[i]-by[j])
+		}
 	}
-	for i := g.drop.until; i < len(g.edges); i++ {
-		tail.integral(&g.at[i], g.edges[i]-by)
-	}
-	g.remap()
+	g.difference()
 }
 
 // see finds where the edges of the cells fall to.
@@ -118,47 +128,44 @@ func (m *mesh) cubic(cell int, x float64) (w [4]float64) {
 
 // atZero sets what the option is worth on a price of 0, which stays 0: a put its
 // strike, now or at expiry.
-func (g *grid) atZero(left float64) {
+func (g *grid) atZero(left *row) {
 	g.worthless = row{}
 	if g.sign > 0 {
 		return
 	}
 	for j := range lanes {
-		d := exp(-float64(g.rate[j] * left))
+		d := exp(-float64(g.rate[j] * left[j]))
 		if g.right != never {
 			d = max(d, 1)
 		}
-		g.worthless[j] = float64(g.strike * d)
+		g.worthless[j] = float64(g.strike[j] * d)
 	}
 }
 
 // lowTail is V below the lowest edge, value + slope·(S−edge), and its integral
 // up to there.
-type lowTail struct {
-	edge              float64
-	sum, value, slope row
-}
+type lowTail struct{ edge, sum, value, slope row }
 
 func (g *grid) tail() lowTail {
 	n := len(g.s)
 	i, at := 0, 0
-	if g.s[1] < g.s[0] {
+	if !g.ascending() {
 		i, at = n-1, n
 	}
-	t := lowTail{edge: g.edges[at], sum: g.sum[at]}
-	for j := range lanes {
-		t.slope[j] = (g.v[i][j] - g.worthless[j]) / g.s[i]
-		t.value[j] = g.v[i][j] + float64(t.slope[j]*(t.edge-g.s[i]))
+	t := lowTail{sum: g.sum[at]}
+	for j, m := range g.on {
+		t.edge[j] = m.edges[at]
+		t.slope[j] = (g.v[i][j] - g.worthless[j]) / m.s[i]
+		t.value[j] = g.v[i][j] + float64(t.slope[j]*(t.edge[j]-m.s[i]))
 	}
 	return t
 }
 
-func (t *lowTail) integral(at *row, x float64) {
+// integral is that up to x in lane j.
+func (t *lowTail) integral(j int, x float64) float64 {
 	y := max(x, 0)
-	for j := range lanes {
-		v := t.value[j] + float64(t.slope[j]*(y-t.edge))
-		at[j] = t.sum[j] + float64((y-t.edge)*float64(0.5*(v+t.value[j]))) + float64((x-y)*v)
-	}
+	v := t.value[j] + float64(t.slope[j]*(y-t.edge[j]))
+	return t.sum[j] + float64((y-t.edge[j])*float64(0.5*(v+t.value[j]))) + float64((x-y)*v)
 }
 
 // exerciseNow exercises wherever that brings more. The kink that this leaves lies
@@ -170,7 +177,7 @@ func (g *grid) exerciseNow() {
 		for lanes := g.more[i] ^ g.more[i-1]; lanes != 0; lanes &= lanes - 1 {
 			j := bits.TrailingZeros8(lanes)
 			y, slope := g.crossing(i, j)
-			before, after := g.kink(i, y)
+			before, after := g.on[j].kink(i, y)
 			g.v[i-1][j] += float64(slope * before)
 			g.v[i][j] += float64(slope * after)
 		}
@@ -197,16 +204,17 @@ func (g *grid) exerciseNow() {
 // the kink by a share of the cell that depends on where in the cell it lies, and
 // with it the price, by up to 7·10⁻⁷ of the spot rather than 2·10⁻⁸.
 func (g *grid) crossing(i, j int) (y, slope float64) {
+	s := g.on[j].s
 	d, e := g.z[i-1][j], g.z[i][j]
 	y = d / (d - e)
-	h := g.s[i] - g.s[i-1]
+	h := s[i] - s[i-1]
 	secant := (e - d) / h
-	if i == 1 || i == len(g.s)-1 {
+	if i == 1 || i == len(s)-1 {
 		return y, math.Abs(secant)
 	}
-	before := (d - g.z[i-2][j]) / (g.s[i-1] - g.s[i-2])
-	after := (g.z[i+1][j] - e) / (g.s[i+1] - g.s[i])
-	bend := 0.5 * float64(h*((secant-before)/(g.s[i]-g.s[i-2])+(after-secant)/(g.s[i+1]-g.s[i-1])))
+	before := (d - g.z[i-2][j]) / (s[i-1] - s[i-2])
+	after := (g.z[i+1][j] - e) / (s[i+1] - s[i])
+	bend := 0.5 * float64(h*((secant-before)/(s[i]-s[i-2])+(after-secant)/(s[i+1]-s[i-1])))
 	slope = secant + float64(bend*(2*y-1))
 	if x := slope / secant; !(x > 0.5 && x < 2) { // no parabola: another kink is near
 		return y, math.Abs(secant)

@@ -35,6 +35,16 @@ func masks4(set uint8) (a, b archsimd.Mask64x4) {
 
 func bits4(a, b archsimd.Mask64x4) uint8 { return a.ToBits() | b.ToBits()<<4 }
 
+func (g *grid) payoff4() {
+	n := len(g.s)
+	s, v, zero := g.s[:n], g.v[:n], broadcast4(0)
+	for i := range n {
+		a, b := g.pay4(&s[i])
+		store4(&v[i], a.Merge(zero, a.Greater(zero)), b.Merge(zero, b.Greater(zero)))
+	}
+	archsimd.ClearAVXUpperBits()
+}
+
 func (g *grid) explicitHeld4(from, until int, y *row) {
 	if from >= until {
 		return
@@ -136,6 +146,18 @@ func (g *grid) substituteHeld4(dst []row, from int, x *row) {
 	archsimd.ClearAVXUpperBits()
 }
 
+func (r *rows) repeat4(m *mesh) {
+	n := len(m.s)
+	for _, c := range r.of(m) {
+		to, from := (*c.to)[:n], c.from[:n]
+		for i := range n {
+			x := broadcast4(from[i])
+			store4(&to[i], x, x)
+		}
+	}
+	archsimd.ClearAVXUpperBits()
+}
+
 func (o *operator) factorLanes4(drift, halfVar, growth *row) {
 	n := len(o.s)
 	lo1, up1, lo2, up2 := o.lo1[:n], o.up1[:n], o.lo2[:n], o.up2[:n]
@@ -144,9 +166,8 @@ func (o *operator) factorLanes4(drift, halfVar, growth *row) {
 	b0, b1, h0, h1, r0, r1 := lower(drift), upper(drift), lower(halfVar), upper(halfVar), lower(growth), upper(growth)
 	var inv0, inv1, next0, next1 float4
 	for i := n - 1; i >= 0; i-- {
-		l1, l2, u1, u2 := broadcast4(lo1[i]), broadcast4(lo2[i]), broadcast4(up1[i]), broadcast4(up2[i])
-		a0, a1 := b0.MulAdd(l1, h0.Mul(l2)), b1.MulAdd(l1, h1.Mul(l2))
-		c0, c1 := b0.MulAdd(u1, h0.Mul(u2)), b1.MulAdd(u1, h1.Mul(u2))
+		a0, a1 := b0.MulAdd(lower(&lo1[i]), h0.Mul(lower(&lo2[i]))), b1.MulAdd(upper(&lo1[i]), h1.Mul(upper(&lo2[i])))
+		c0, c1 := b0.MulAdd(lower(&up1[i]), h0.Mul(lower(&up2[i]))), b1.MulAdd(upper(&up1[i]), h1.Mul(upper(&up2[i])))
 		d0, d1 := r0.Add(a0.Add(c0)), r1.Add(a1.Add(c1))
 		f0, f1 := c0.Mul(inv0), c1.Mul(inv1)
 		inv0, inv1 = one.Div(d0.Sub(f0.Mul(next0))), one.Div(d1.Sub(f1.Mul(next1)))
@@ -167,8 +188,7 @@ func (g *grid) integrateUp4() {
 	a, b := broadcast4(0), broadcast4(0)
 	store4(&sum[0], a, b)
 	for i := range n {
-		h := broadcast4(span[i])
-		a, b = h.MulAdd(lower(&v[i]), a), h.MulAdd(upper(&v[i]), b)
+		a, b = lower(&span[i]).MulAdd(lower(&v[i]), a), upper(&span[i]).MulAdd(upper(&v[i]), b)
 		store4(&sum[i+1], a, b)
 	}
 	archsimd.ClearAVXUpperBits()
@@ -177,20 +197,19 @@ func (g *grid) integrateUp4() {
 func (g *grid) integrateDown4() {
 	n := len(g.span)
 	span, v, sum := g.span[:n], g.v[:n], g.sum[:n+1]
-	a, b := broadcast4(0), broadcast4(0)
+	zero := broadcast4(0)
+	a, b := zero, zero
 	store4(&sum[n], a, b)
 	for i := n - 1; i >= 0; i-- {
-		h := broadcast4(-span[i])
-		a, b = h.MulAdd(lower(&v[i]), a), h.MulAdd(upper(&v[i]), b)
+		a, b = zero.Sub(lower(&span[i])).MulAdd(lower(&v[i]), a), zero.Sub(upper(&span[i])).MulAdd(upper(&v[i]), b)
 		store4(&sum[i], a, b)
 	}
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) remap4() {
-	d := &g.drop
-	n := len(g.perSpan)
-	cell, weight, at := d.cell[:d.until], d.weight[:d.until], g.at[:n+1]
+func (g *grid) interpolate4() {
+	d := &g.drops[0]
+	cell, weight, at := d.cell[:d.until], d.weight[:d.until], g.at[:d.until]
 	for i := d.from; i < d.until; i++ {
 		w, s := &weight[i], g.sum[cell[i]:cell[i]+4]
 		w0, w1, w2, w3 := broadcast4(w[0]), broadcast4(w[1]), broadcast4(w[2]), broadcast4(w[3])
@@ -198,11 +217,16 @@ func (g *grid) remap4() {
 			w3.MulAdd(lower(&s[3]), w2.MulAdd(lower(&s[2]), w1.MulAdd(lower(&s[1]), w0.Mul(lower(&s[0]))))),
 			w3.MulAdd(upper(&s[3]), w2.MulAdd(upper(&s[2]), w1.MulAdd(upper(&s[1]), w0.Mul(upper(&s[0]))))))
 	}
-	v, per := g.v[:n], g.perSpan[:n]
+	archsimd.ClearAVXUpperBits()
+}
+
+func (g *grid) difference4() {
+	n := len(g.perSpan)
+	v, per, at := g.v[:n], g.perSpan[:n], g.at[:n+1]
 	a0, a1 := lower(&at[0]), upper(&at[0])
 	for i := range n {
-		b0, b1, p := lower(&at[i+1]), upper(&at[i+1]), broadcast4(per[i])
-		store4(&v[i], b0.Sub(a0).Mul(p), b1.Sub(a1).Mul(p))
+		b0, b1 := lower(&at[i+1]), upper(&at[i+1])
+		store4(&v[i], b0.Sub(a0).Mul(lower(&per[i])), b1.Sub(a1).Mul(upper(&per[i])))
 		a0, a1 = b0, b1
 	}
 	archsimd.ClearAVXUpperBits()
@@ -210,11 +234,12 @@ func (g *grid) remap4() {
 
 func (g *grid) exceed4() {
 	n := len(g.s)
-	pay, v, z, more := g.pay[:n], g.v[:n], g.z[:n], g.more[:n]
+	s, v, z, more := g.s[:n], g.v[:n], g.z[:n], g.more[:n]
 	o0, o1, zero := lower(&g.offset), upper(&g.offset), broadcast4(0)
 	for i := range n {
-		p, x0, x1 := broadcast4(pay[i]), lower(&v[i]), upper(&v[i])
-		d0, d1 := p.Add(o0).Sub(x0), p.Add(o1).Sub(x1)
+		p0, p1 := g.pay4(&s[i])
+		x0, x1 := lower(&v[i]), upper(&v[i])
+		d0, d1 := p0.Add(o0).Sub(x0), p1.Add(o1).Sub(x1)
 		store4(&z[i], d0, d1)
 		m0, m1 := d0.Greater(zero), d1.Greater(zero)
 		more[i] = bits4(m0, m1)
@@ -223,12 +248,19 @@ func (g *grid) exceed4() {
 	archsimd.ClearAVXUpperBits()
 }
 
-// cell4 is one half of the cell before node i; see edgeCell.
-func (g *grid) cell4(i int, f, z, offset, signYield, interest, perVar float4) (exercise, excess, gain float4) {
+// pay4 is pay in all lanes.
+func (g *grid) pay4(s *row) (a, b float4) {
+	sign := broadcast4(g.sign)
+	return sign.Mul(lower(s).Sub(lower(&g.strike))), sign.Mul(upper(s).Sub(upper(&g.strike)))
+}
+
+// cell4 is one half of the cell before a node; see edgeCell. Exercise brings there
+// here + offset, and at the node before it before + offset.
+func cell4(here, before, s, ratio2, f, z, offset, signYield, interest, perVar float4) (exercise, excess, gain float4) {
 	zero := broadcast4(0)
-	exercise = broadcast4(g.pay[i]).Add(offset)
-	excess = f.MulAdd(broadcast4(g.pay[max(i-1, 0)]).Add(offset), z.Sub(exercise))
-	x := signYield.Mul(broadcast4(g.s[i])).Sub(interest).Mul(broadcast4(g.ratio2[i]).Mul(perVar))
+	exercise = here.Add(offset)
+	excess = f.MulAdd(before.Add(offset), z.Sub(exercise))
+	x := signYield.Mul(s).Sub(interest).Mul(ratio2.Mul(perVar))
 	return exercise, excess, x.Merge(zero, x.Greater(zero))
 }
 
@@ -236,8 +268,10 @@ func (g *grid) examine4(from, until int, offset *row) {
 	zero := broadcast4(0)
 	for i := from; i < until; i++ {
 		f0, f1 := lower(&g.g[i]), upper(&g.g[i])
-		_, e0, n0 := g.cell4(i, f0, lower(&g.z[i]), lower(offset), lower(&g.signYield), lower(&g.interest), lower(&g.perVar))
-		_, e1, n1 := g.cell4(i, f1, upper(&g.z[i]), upper(offset), upper(&g.signYield), upper(&g.interest), upper(&g.perVar))
+		here0, here1 := g.pay4(&g.s[i])
+		before0, before1 := g.pay4(&g.s[max(i-1, 0)])
+		_, e0, n0 := cell4(here0, before0, lower(&g.s[i]), lower(&g.ratio2[i]), f0, lower(&g.z[i]), lower(offset), lower(&g.signYield), lower(&g.interest), lower(&g.perVar))
+		_, e1, n1 := cell4(here1, before1, upper(&g.s[i]), upper(&g.ratio2[i]), f1, upper(&g.z[i]), upper(offset), upper(&g.signYield), upper(&g.interest), upper(&g.perVar))
 		g.held[i] = bits4(e0.Greater(zero).Or(e0.Greater(zero.Sub(f0.Mul(n0)))), e1.Greater(zero).Or(e1.Greater(zero.Sub(f1.Mul(n1)))))
 	}
 	archsimd.ClearAVXUpperBits()
@@ -255,21 +289,23 @@ func ghost4(excess, pull, gain float4) float4 {
 
 func (g *grid) substituteMixed4(dst []row, from, last int, offset, x *row) {
 	n := last + 1
-	dst, pay, f, z, first := dst[:n], g.pay[:n], g.g[:n], g.z[:n], g.first[:n]
+	dst, s, f, z, first := dst[:n], g.s[:n], g.g[:n], g.z[:n], g.first[:n]
 	o0, o1, y0, y1 := lower(offset), upper(offset), lower(x), upper(x)
 	for i := range from {
-		p := broadcast4(pay[i])
-		store4(&dst[i], p.Add(o0), p.Add(o1))
+		p0, p1 := g.pay4(&s[i])
+		store4(&dst[i], p0.Add(o0), p1.Add(o1))
 	}
 	var held uint8
 	for i := from; i < n; i++ {
-		f0, f1, z0, z1, p := lower(&f[i]), upper(&f[i]), lower(&z[i]), upper(&z[i]), broadcast4(pay[i])
+		f0, f1, z0, z1 := lower(&f[i]), upper(&f[i]), lower(&z[i]), upper(&z[i])
+		here0, here1 := g.pay4(&s[i])
 		m0, m1 := masks4(held)
-		y0, y1 = f0.MulAdd(y0, z0).Merge(p.Add(o0), m0), f1.MulAdd(y1, z1).Merge(p.Add(o1), m1)
+		y0, y1 = f0.MulAdd(y0, z0).Merge(here0.Add(o0), m0), f1.MulAdd(y1, z1).Merge(here1.Add(o1), m1)
 		if first[i] != 0 {
 			m0, m1 = masks4(first[i])
-			p0, e0, n0 := g.cell4(i, f0, z0, o0, lower(&g.signYield), lower(&g.interest), lower(&g.perVar))
-			p1, e1, n1 := g.cell4(i, f1, z1, o1, upper(&g.signYield), upper(&g.interest), upper(&g.perVar))
+			before0, before1 := g.pay4(&s[max(i-1, 0)])
+			p0, e0, n0 := cell4(here0, before0, lower(&s[i]), lower(&g.ratio2[i]), f0, z0, o0, lower(&g.signYield), lower(&g.interest), lower(&g.perVar))
+			p1, e1, n1 := cell4(here1, before1, upper(&s[i]), upper(&g.ratio2[i]), f1, z1, o1, upper(&g.signYield), upper(&g.interest), upper(&g.perVar))
 			g0, g1 := ghost4(e0, f0, n0), ghost4(e1, f1, n1)
 			y0, y1 = p0.Add(f0.MulAdd(g0, e0)).Merge(y0, m0), p1.Add(f1.MulAdd(g1, e1)).Merge(y1, m1)
 			store4(&g.ghost, g0.Merge(lower(&g.ghost), m0), g1.Merge(upper(&g.ghost), m1))

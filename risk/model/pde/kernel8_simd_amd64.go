@@ -9,6 +9,17 @@ import "simd/archsimd"
 
 func load(p *row) archsimd.Float64x8 { return archsimd.LoadFloat64x8(p) }
 
+func (g *grid) payoff8() {
+	n := len(g.s)
+	s, v := g.s[:n], g.v[:n]
+	strike, sign, zero := load(&g.strike), archsimd.BroadcastFloat64x8(g.sign), archsimd.BroadcastFloat64x8(0)
+	for i := range n {
+		p := pay8(&s[i], strike, sign)
+		p.Merge(zero, p.Greater(zero)).Store(&v[i])
+	}
+	archsimd.ClearAVXUpperBits()
+}
+
 func (g *grid) explicitHeld8(from, until int, y *row) {
 	if from >= until {
 		return
@@ -71,6 +82,17 @@ func (g *grid) substituteHeld8(dst []row, from int, x *row) {
 	archsimd.ClearAVXUpperBits()
 }
 
+func (r *rows) repeat8(m *mesh) {
+	n := len(m.s)
+	for _, c := range r.of(m) {
+		to, from := (*c.to)[:n], c.from[:n]
+		for i := range n {
+			archsimd.BroadcastFloat64x8(from[i]).Store(&to[i])
+		}
+	}
+	archsimd.ClearAVXUpperBits()
+}
+
 func (o *operator) factorLanes8(drift, halfVar, growth *row) {
 	n := len(o.s)
 	lo1, up1, lo2, up2 := o.lo1[:n], o.up1[:n], o.lo2[:n], o.up2[:n]
@@ -79,8 +101,8 @@ func (o *operator) factorLanes8(drift, halfVar, growth *row) {
 	var inv, next archsimd.Float64x8
 	for i := n - 1; i >= 0; i-- {
 		b, h := load(drift), load(halfVar)
-		a := b.MulAdd(archsimd.BroadcastFloat64x8(lo1[i]), h.Mul(archsimd.BroadcastFloat64x8(lo2[i])))
-		c := b.MulAdd(archsimd.BroadcastFloat64x8(up1[i]), h.Mul(archsimd.BroadcastFloat64x8(up2[i])))
+		a := b.MulAdd(load(&lo1[i]), h.Mul(load(&lo2[i])))
+		c := b.MulAdd(load(&up1[i]), h.Mul(load(&up2[i])))
 		d := load(growth).Add(a.Add(c))
 		f := c.Mul(inv)
 		inv = one.Div(d.Sub(f.Mul(next)))
@@ -124,12 +146,18 @@ func (g *grid) explicitMixed8(from, until int, y, held *row) {
 // edge8 is what the cell before a node is in all lanes; see edgeCell.
 type edge8 struct{ exercise, excess, pull, gain archsimd.Float64x8 }
 
+// pay8 is pay in all lanes.
+func pay8(s *row, strike, sign archsimd.Float64x8) archsimd.Float64x8 {
+	return sign.Mul(load(s).Sub(strike))
+}
+
 func (g *grid) cell8(i int, offset, signYield, interest, perVar, zero archsimd.Float64x8) (c edge8) {
-	c.exercise = archsimd.BroadcastFloat64x8(g.pay[i]).Add(offset)
+	strike, sign := load(&g.strike), archsimd.BroadcastFloat64x8(g.sign)
+	c.exercise = pay8(&g.s[i], strike, sign).Add(offset)
 	c.pull = load(&g.g[i])
-	c.excess = c.pull.MulAdd(archsimd.BroadcastFloat64x8(g.pay[max(i-1, 0)]).Add(offset), load(&g.z[i]).Sub(c.exercise))
-	x := signYield.Mul(archsimd.BroadcastFloat64x8(g.s[i])).Sub(interest)
-	x = x.Mul(archsimd.BroadcastFloat64x8(g.ratio2[i]).Mul(perVar))
+	c.excess = c.pull.MulAdd(pay8(&g.s[max(i-1, 0)], strike, sign).Add(offset), load(&g.z[i]).Sub(c.exercise))
+	x := signYield.Mul(load(&g.s[i])).Sub(interest)
+	x = x.Mul(load(&g.ratio2[i]).Mul(perVar))
 	c.gain = x.Merge(zero, x.Greater(zero))
 	return c
 }
@@ -145,15 +173,16 @@ func (g *grid) examine8(from, until int, offset *row) {
 
 func (g *grid) substituteMixed8(dst []row, from, last int, offset, x *row) {
 	n := last + 1
-	dst, pay, f, z, first := dst[:n], g.pay[:n], g.g[:n], g.z[:n], g.first[:n]
+	dst, s, f, z, first := dst[:n], g.s[:n], g.g[:n], g.z[:n], g.first[:n]
 	o, y, zero := load(offset), load(x), archsimd.BroadcastFloat64x8(0)
+	strike, sign := load(&g.strike), archsimd.BroadcastFloat64x8(g.sign)
 	for i := range from {
-		archsimd.BroadcastFloat64x8(pay[i]).Add(o).Store(&dst[i])
+		pay8(&s[i], strike, sign).Add(o).Store(&dst[i])
 	}
 	var held uint8
 	for i := from; i < n; i++ {
 		y = load(&f[i]).MulAdd(y, load(&z[i]))
-		y = y.Merge(archsimd.BroadcastFloat64x8(pay[i]).Add(o), archsimd.Mask64x8FromBits(held))
+		y = y.Merge(pay8(&s[i], strike, sign).Add(o), archsimd.Mask64x8FromBits(held))
 		if first[i] != 0 {
 			here := archsimd.Mask64x8FromBits(first[i])
 			c := g.cell8(i, o, load(&g.signYield), load(&g.interest), load(&g.perVar), zero)
@@ -179,7 +208,7 @@ func (g *grid) integrateUp8() {
 	x := archsimd.BroadcastFloat64x8(0)
 	x.Store(&sum[0])
 	for i := range n {
-		x = archsimd.BroadcastFloat64x8(span[i]).MulAdd(load(&v[i]), x)
+		x = load(&span[i]).MulAdd(load(&v[i]), x)
 		x.Store(&sum[i+1])
 	}
 	archsimd.ClearAVXUpperBits()
@@ -188,19 +217,19 @@ func (g *grid) integrateUp8() {
 func (g *grid) integrateDown8() {
 	n := len(g.span)
 	span, v, sum := g.span[:n], g.v[:n], g.sum[:n+1]
-	x := archsimd.BroadcastFloat64x8(0)
+	zero := archsimd.BroadcastFloat64x8(0)
+	x := zero
 	x.Store(&sum[n])
 	for i := n - 1; i >= 0; i-- {
-		x = archsimd.BroadcastFloat64x8(-span[i]).MulAdd(load(&v[i]), x)
+		x = zero.Sub(load(&span[i])).MulAdd(load(&v[i]), x)
 		x.Store(&sum[i])
 	}
 	archsimd.ClearAVXUpperBits()
 }
 
-func (g *grid) remap8() {
-	d := &g.drop
-	n := len(g.perSpan)
-	cell, weight, at := d.cell[:d.until], d.weight[:d.until], g.at[:n+1]
+func (g *grid) interpolate8() {
+	d := &g.drops[0]
+	cell, weight, at := d.cell[:d.until], d.weight[:d.until], g.at[:d.until]
 	for i := d.from; i < d.until; i++ {
 		w, s := &weight[i], g.sum[cell[i]:cell[i]+4]
 		x := archsimd.BroadcastFloat64x8(w[0]).Mul(load(&s[0]))
@@ -208,11 +237,16 @@ func (g *grid) remap8() {
 		x = archsimd.BroadcastFloat64x8(w[2]).MulAdd(load(&s[2]), x)
 		archsimd.BroadcastFloat64x8(w[3]).MulAdd(load(&s[3]), x).Store(&at[i])
 	}
-	v, per := g.v[:n], g.perSpan[:n]
+	archsimd.ClearAVXUpperBits()
+}
+
+func (g *grid) difference8() {
+	n := len(g.perSpan)
+	v, per, at := g.v[:n], g.perSpan[:n], g.at[:n+1]
 	a := load(&at[0])
 	for i := range n {
 		b := load(&at[i+1])
-		b.Sub(a).Mul(archsimd.BroadcastFloat64x8(per[i])).Store(&v[i])
+		b.Sub(a).Mul(load(&per[i])).Store(&v[i])
 		a = b
 	}
 	archsimd.ClearAVXUpperBits()
@@ -220,11 +254,12 @@ func (g *grid) remap8() {
 
 func (g *grid) exceed8() {
 	n := len(g.s)
-	pay, v, z, more := g.pay[:n], g.v[:n], g.z[:n], g.more[:n]
+	s, v, z, more := g.s[:n], g.v[:n], g.z[:n], g.more[:n]
 	o, zero := load(&g.offset), archsimd.BroadcastFloat64x8(0)
+	strike, sign := load(&g.strike), archsimd.BroadcastFloat64x8(g.sign)
 	for i := range n {
 		x := load(&v[i])
-		d := archsimd.BroadcastFloat64x8(pay[i]).Add(o).Sub(x)
+		d := pay8(&s[i], strike, sign).Add(o).Sub(x)
 		d.Store(&z[i])
 		positive := d.Greater(zero)
 		more[i] = positive.ToBits()

@@ -2,6 +2,8 @@
 
 package pde
 
+func (g *grid) payoff() { g.payoffGeneric() }
+
 func (g *grid) explicitHeld(from, until int, y *row) { g.explicitHeldGeneric(from, until, y) }
 
 func (g *grid) explicitExercised(until int, y, held *row) { g.explicitExercisedGeneric(until, y, held) }
@@ -11,6 +13,8 @@ func (g *grid) examine(from, until int, offset *row) { g.examineGeneric(from, un
 func (g *grid) backwardDifference() { g.backwardDifferenceGeneric() }
 
 func (g *grid) substituteHeld(dst []row, from int, x *row) { g.substituteHeldGeneric(dst, from, x) }
+
+func (r *rows) repeat(m *mesh) { r.repeatGeneric(m) }
 
 func (o *operator) factorLanes(drift, halfVar, growth *row) { o.factorGeneric(drift, halfVar, growth) }
 
@@ -26,6 +30,8 @@ func (g *grid) integrateUp() { g.integrateUpGeneric() }
 
 func (g *grid) integrateDown() { g.integrateDownGeneric() }
 
-func (g *grid) remap() { g.remapGeneric() }
+func (g *grid) interpolate() { g.interpolateGeneric() }
+
+func (g *grid) difference() { g.differenceGeneric() }
 
 func (g *grid) exceed() { g.exceedGeneric() }

@@ -10,6 +10,17 @@ var (
 	half = vec.Tier() == "avx2"
 )
 
+func (g *grid) payoff() {
+	switch {
+	case wide:
+		g.payoff8()
+	case half:
+		g.payoff4()
+	default:
+		g.payoffGeneric()
+	}
+}
+
 func (g *grid) explicitHeld(from, until int, y *row) {
 	switch {
 	case wide:
@@ -51,6 +62,17 @@ func (g *grid) substituteHeld(dst []row, from int, x *row) {
 		g.substituteHeld4(dst, from, x)
 	default:
 		g.substituteHeldGeneric(dst, from, x)
+	}
+}
+
+func (r *rows) repeat(m *mesh) {
+	switch {
+	case wide:
+		r.repeat8(m)
+	case half:
+		r.repeat4(m)
+	default:
+		r.repeatGeneric(m)
 	}
 }
 
@@ -120,14 +142,25 @@ func (g *grid) integrateDown() {
 	}
 }
 
-func (g *grid) remap() {
+func (g *grid) interpolate() {
 	switch {
 	case wide:
-		g.remap8()
+		g.interpolate8()
 	case half:
-		g.remap4()
+		g.interpolate4()
 	default:
-		g.remapGeneric()
+		g.interpolateGeneric()
+	}
+}
+
+func (g *grid) difference() {
+	switch {
+	case wide:
+		g.difference8()
+	case half:
+		g.difference4()
+	default:
+		g.differenceGeneric()
 	}
 }
 

@@ -7,6 +7,15 @@ func fma(x, y, z float64) float64 { return math.FMA(x, y, z) }
 // The loops in which the time goes, each over all lanes of a run of nodes: the
 // specification of every other form.
 
+// payoffGeneric has V as it is at expiry, but for the kink.
+func (g *grid) payoffGeneric() {
+	for i := range g.s {
+		for j := range lanes {
+			g.v[i][j] = max(0, g.pay(i, j))
+		}
+	}
+}
+
 // explicitHeldGeneric is the right-hand side of the first stage, V + kL·V, at
 // nodes from to until−1, eliminated from the far end; y is the eliminated value
 // of the node after.
@@ -75,18 +84,28 @@ func (g *grid) substituteHeldGeneric(dst []row, from int, x *row) {
 func (o *operator) factorGeneric(drift, halfVar, growth *row) {
 	var inv, next row
 	for i := len(o.s) - 1; i >= 0; i-- {
-		a2, a1, c2, c1 := o.lo2[i], o.lo1[i], o.up2[i], o.up1[i]
+		a2, a1, c2, c1 := &o.lo2[i], &o.lo1[i], &o.up2[i], &o.up1[i]
 		lo, di, up := &o.lo[i], &o.di[i], &o.up[i]
 		fs, is, gs := &o.f[i], &o.inv[i], &o.g[i]
 		for j := range lanes {
-			a := math.FMA(drift[j], a1, float64(halfVar[j]*a2))
-			c := math.FMA(drift[j], c1, float64(halfVar[j]*c2))
+			a := math.FMA(drift[j], a1[j], float64(halfVar[j]*a2[j]))
+			c := math.FMA(drift[j], c1[j], float64(halfVar[j]*c2[j]))
 			d := growth[j] + (a + c)
 			f := float64(c * inv[j])
 			v := 1 / (d - float64(f*next[j]))
 			inv[j], next[j] = v, a
 			lo[j], di[j], up[j] = a, d, c
 			fs[j], is[j], gs[j] = f, v, float64(a*v)
+		}
+	}
+}
+
+// repeatGeneric has all lanes on one mesh.
+func (r *rows) repeatGeneric(m *mesh) {
+	for _, c := range r.of(m) {
+		to := *c.to
+		for i, x := range c.from {
+			to[i] = all(x)
 		}
 	}
 }
@@ -137,8 +156,8 @@ func (g *grid) examineGeneric(from, until int, offset *row) {
 // cellAt is the cell before node i of lane j.
 func (g *grid) cellAt(i, j int, offset float64) edgeCell {
 	pull := g.g[i][j] // 0 at the first node
-	e := g.z[i][j] - (g.pay[i] + offset)
-	return edgeCell{excess: math.FMA(pull, g.pay[max(i-1, 0)]+offset, e), pull: pull, gain: g.gainOf(i, j, g.ratio2[i])}
+	e := g.z[i][j] - (g.pay(i, j) + offset)
+	return edgeCell{excess: math.FMA(pull, g.pay(max(i-1, 0), j)+offset, e), pull: pull, gain: g.gainOf(i, j, g.ratio2[i][j])}
 }
 
 // substituteMixedGeneric completes a stage up to node last, from where on all
@@ -147,7 +166,7 @@ func (g *grid) cellAt(i, j int, offset float64) edgeCell {
 func (g *grid) substituteMixedGeneric(dst []row, from, last int, offset, x *row) {
 	for i := range from {
 		for j := range lanes {
-			dst[i][j] = g.pay[i] + offset[j]
+			dst[i][j] = g.pay(i, j) + offset[j]
 		}
 	}
 	var held uint8
@@ -161,9 +180,9 @@ func (g *grid) substituteMixedGeneric(dst []row, from, last int, offset, x *row)
 			case first>>j&1 > 0:
 				c := g.cellAt(i, j, offset[j])
 				g.ghost[j] = c.ghost()
-				x[j] = g.pay[i] + offset[j] + math.FMA(c.pull, g.ghost[j], c.excess)
+				x[j] = g.pay(i, j) + offset[j] + math.FMA(c.pull, g.ghost[j], c.excess)
 			default:
-				x[j] = g.pay[i] + offset[j]
+				x[j] = g.pay(i, j) + offset[j]
 			}
 			o[j] = x[j]
 		}
@@ -176,10 +195,10 @@ func (g *grid) substituteMixedGeneric(dst []row, from, last int, offset, x *row)
 func (g *grid) integrateUpGeneric() {
 	var x row
 	g.sum[0] = x
-	for i, h := range g.span {
-		v, o := &g.v[i], &g.sum[i+1]
+	for i := range g.span {
+		v, o, h := &g.v[i], &g.sum[i+1], &g.span[i]
 		for j := range lanes {
-			x[j] = math.FMA(h, v[j], x[j])
+			x[j] = math.FMA(h[j], v[j], x[j])
 			o[j] = x[j]
 		}
 	}
@@ -191,18 +210,18 @@ func (g *grid) integrateDownGeneric() {
 	n := len(g.span)
 	g.sum[n] = x
 	for i := n - 1; i >= 0; i-- {
-		v, o, h := &g.v[i], &g.sum[i], -g.span[i]
+		v, o, h := &g.v[i], &g.sum[i], &g.span[i]
 		for j := range lanes {
-			x[j] = math.FMA(h, v[j], x[j])
+			x[j] = math.FMA(-h[j], v[j], x[j])
 			o[j] = x[j]
 		}
 	}
 }
 
-// remapGeneric has V as the means over the cells of the integral at the edges
-// after a drop.
-func (g *grid) remapGeneric() {
-	d := &g.drop
+// interpolateGeneric is the integral at the edges after a drop, all lanes being on
+// one mesh, but for what comes from below it.
+func (g *grid) interpolateGeneric() {
+	d := &g.drops[0]
 	for i := d.from; i < d.until; i++ {
 		k, w, o := d.cell[i], &d.weight[i], &g.at[i]
 		p, q, r, s := &g.sum[k], &g.sum[k+1], &g.sum[k+2], &g.sum[k+3]
@@ -210,10 +229,25 @@ func (g *grid) remapGeneric() {
 			o[j] = math.FMA(w[3], s[j], math.FMA(w[2], r[j], math.FMA(w[1], q[j], float64(w[0]*p[j]))))
 		}
 	}
-	for i, h := range g.perSpan {
-		a, b, o := &g.at[i], &g.at[i+1], &g.v[i]
+}
+
+// interpolateEach is the same where each lane is on a mesh of its own.
+func (g *grid) interpolateEach() {
+	for j := range lanes {
+		d := &g.drops[g.owner[j]]
+		for i := d.from; i < d.until; i++ {
+			w, s := &d.weight[i], g.sum[d.cell[i]:d.cell[i]+4]
+			g.at[i][j] = math.FMA(w[3], s[3][j], math.FMA(w[2], s[2][j], math.FMA(w[1], s[1][j], float64(w[0]*s[0][j]))))
+		}
+	}
+}
+
+// differenceGeneric has V as the means over the cells of the integral at the edges.
+func (g *grid) differenceGeneric() {
+	for i := range g.perSpan {
+		a, b, o, h := &g.at[i], &g.at[i+1], &g.v[i], &g.perSpan[i]
 		for j := range lanes {
-			o[j] = (b[j] - a[j]) * h
+			o[j] = (b[j] - a[j]) * h[j]
 		}
 	}
 }
@@ -221,10 +255,10 @@ func (g *grid) remapGeneric() {
 // exceedGeneric has in z by how much exercise exceeds V, and adds that where it is
 // positive; more tells the lanes.
 func (g *grid) exceedGeneric() {
-	for i, p := range g.pay {
+	for i := range g.s {
 		g.more[i] = 0
 		for j := range lanes {
-			d := p + g.offset[j] - g.v[i][j]
+			d := g.pay(i, j) + g.offset[j] - g.v[i][j]
 			g.z[i][j] = d
 			if d > 0 {
 				g.more[i] |= 1 << j

@@ -30,28 +30,16 @@ type batch struct {
 // Shapes: the slices of l have one length; r is resized to it.
 // Invalid, special cases, accuracy: see Solve.
 func (s *Solver) SolveLines(l *Lines, r *Results) {
-	n := len(l.Spot)
-	if len(l.American) != n || len(l.Dividends) != n {
-		panic("pde: slices of different lengths")
-	}
-	for _, x := range l.numbers() {
-		if len(x) != n {
-			panic("pde: slices of different lengths")
-		}
-	}
+	n := l.count()
 	r.Resize(n)
 	w := s.take()
 	b := &w.batch
-	b.order = resize(b.order, n)
-	for i := range b.order {
-		b.order[i] = i
-	}
-	slices.SortFunc(b.order, l.compare)
+	b.order = l.sorted(b.order)
 	for from, until := 0, 0; from < n; from = until {
 		first := b.order[from]
-		c := &b.chain
-		*c = Chain{Spot: l.Spot[first], Time: l.Time[first], Rate: l.Rate[first], Yield: l.Yield[first], Sign: l.Sign[first],
-			American: l.American[first], Dividends: l.Dividends[first], Convention: l.Convention, Strike: c.Strike[:0], Vol: c.Vol[:0]}
+		c, strike, vol := &b.chain, b.chain.Strike[:0], b.chain.Vol[:0]
+		*c = l.chain(first)
+		c.Strike, c.Vol = strike, vol
 		b.place = b.place[:0]
 		for until = from; until < n && l.compareTerms(first, b.order[until]) == 0; until++ {
 			if i := b.order[until]; until == from || compareBits(l.Strike[i], l.Strike[b.order[until-1]]) != 0 {
@@ -66,6 +54,36 @@ func (s *Solver) SolveLines(l *Lines, r *Results) {
 	}
 	b.chain.Dividends = nil
 	s.give(w)
+}
+
+// chain is line i by itself.
+func (l *Lines) chain(i int) Chain {
+	return Chain{Spot: l.Spot[i], Time: l.Time[i], Rate: l.Rate[i], Yield: l.Yield[i], Sign: l.Sign[i], American: l.American[i],
+		Dividends: l.Dividends[i], Convention: l.Convention, Strike: l.Strike[i : i+1], Vol: l.Vol[i : i+1]}
+}
+
+// count returns how many lines there are.
+func (l *Lines) count() int {
+	n := len(l.Spot)
+	if len(l.American) != n || len(l.Dividends) != n {
+		panic("pde: slices of different lengths")
+	}
+	for _, x := range l.numbers() {
+		if len(x) != n {
+			panic("pde: slices of different lengths")
+		}
+	}
+	return n
+}
+
+// sorted orders the lines.
+func (l *Lines) sorted(order []int) []int {
+	order = resize(order, len(l.Spot))
+	for i := range order {
+		order[i] = i
+	}
+	slices.SortFunc(order, l.compare)
+	return order
 }
 
 // numbers are those of a line; the strike, by which lines of a chain differ, is

@@ -35,15 +35,20 @@ func (m *mesh) place(l *layout, level int, sign float64) {
 	below, above := l.below<<level, l.above<<level
 	d := l.step / float64(int(1)<<level)
 	n := below + above + 1
-	m.s = resize(m.s, n)
+	m.s, m.span = resize(m.s, n), resize(m.span, n)
+	x := m.span // not in use yet
 	for i := range n {
-		s := vec.Exp1(l.width * sinh(float64(i-below)*d))
+		k := i - below
 		if sign > 0 {
-			m.s[n-1-i] = s
-		} else {
-			m.s[i] = s
+			k = above - i
 		}
+		x[i] = float64(k) * d
 	}
+	vec.Exp(m.s, x)
+	for i, e := range m.s { // good to some ulp of 1: nodes need to be somewhere, not at a place
+		x[i] = l.width * float64(0.5*(e-1/e))
+	}
+	vec.Exp(m.s, x)
 	m.over = m.over[:0]
 	m.weigh()
 }
@@ -84,6 +89,43 @@ func (m *mesh) weigh() {
 	}
 }
 
+// rows are numbers of a mesh at its nodes, by lane: what the loops over all lanes
+// read.
+type rows struct {
+	s, span, perSpan, ratio2, lo2, up2, lo1, up1 []row
+}
+
+// numbers are those of a mesh, and where the rows of them are.
+type numbers struct {
+	to   *[]row
+	from []float64
+}
+
+func (r *rows) of(m *mesh) [8]numbers {
+	return [8]numbers{
+		{&r.s, m.s}, {&r.span, m.span}, {&r.perSpan, m.perSpan}, {&r.ratio2, m.ratio2},
+		{&r.lo2, m.lo2}, {&r.up2, m.up2}, {&r.lo1, m.lo1}, {&r.up1, m.up1},
+	}
+}
+
+func (r *rows) size(n int) {
+	for _, p := range r.of(new(mesh)) {
+		*p.to = resize(*p.to, n)
+	}
+}
+
+// set has lanes from from to until−1 on a mesh.
+func (r *rows) set(from, until int, m *mesh) {
+	for _, c := range r.of(m) {
+		to := *c.to
+		for i, x := range c.from {
+			for j := from; j < until; j++ {
+				to[i][j] = x
+			}
+		}
+	}
+}
+
 // beyond returns the first node past price x in the order of the mesh, len(s)
 // if there is none.
 func (m *mesh) beyond(x float64) int {
@@ -98,12 +140,6 @@ func (m *mesh) beyond(x float64) int {
 		}
 	}
 	return lo
-}
-
-// sinh is good to some ulp of 1: nodes need to be somewhere, not at a place.
-func sinh(x float64) float64 {
-	e := vec.Exp1(x)
-	return 0.5 * (e - 1/e)
 }
 
 func asinh(x float64) float64 {

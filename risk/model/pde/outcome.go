@@ -58,71 +58,55 @@ func (w *work) aim(c *Chain) {
 // strike 1.
 func (w *work) open(level int, c *Chain) []grid {
 	w.op.open(&w.plan.layout, level, c.Sign)
+	for j := range w.course {
+		w.course[j] = course{&w.plan, w.divs}
+	}
 	n := len(w.group)
 	if w.similar {
 		n = 1
 	}
+	grids := w.some(n)
+	right := w.right(c)
+	for k := range grids {
+		strike := 1.0
+		if !w.similar {
+			strike = c.Strike[w.group[k]] / w.plan.unit
+		}
+		strikes := all(strike)
+		grids[k].begin(&w.op, c.Sign, right, &strikes)
+	}
+	return grids
+}
+
+// some returns so many grids.
+func (w *work) some(n int) []grid {
 	if n > len(w.grids) {
 		w.grids = append(w.grids, make([]grid, n-len(w.grids))...)
 	}
-	right := w.right(c)
-	grids := w.grids[:n]
-	for k := range grids {
-		g := &grids[k]
-		g.operator, g.sign, g.right = &w.op, c.Sign, right
-		if w.similar {
-			g.open(1)
-		} else {
-			g.open(c.Strike[w.group[k]] / w.plan.unit)
-		}
-	}
-	return grids
+	return w.grids[:n]
 }
 
 // run sweeps from expiry to now on one level and reads the lines of the group,
 // then one step further for what needs differences in time.
 func (w *work) run(level int, c *Chain, out []outcome) {
 	grids := w.open(level, c)
-	var mid, end row
-	var l leg
-	var dt float64
-	for _, l = range w.plan.legs {
-		dt = l.dt / float64(int(1)<<level)
-		if l.event {
-			w.escrow(&end, c, &l, l.from)
-			drop := l.drop / w.plan.unit
-			if c.Convention == Escrowed {
-				drop = 0
-			}
-			for k := range grids {
-				grids[k].exDate(drop, c.Time-l.from, &end)
-			}
-		}
-		for m := range l.steps << level {
-			w.escrow(&mid, c, &l, l.from-float64((float64(m)+gamma)*dt))
-			w.escrow(&end, c, &l, l.from-float64(float64(m+1)*dt))
-			for k := range grids {
-				grids[k].step(dt, &mid, &end)
-			}
-		}
-	}
+	w.sweep(level, c.Convention, grids)
+	l := &w.plan.legs[len(w.plan.legs)-1]
+	dt := l.dt / float64(int(1)<<level)
 	for k := range out {
 		g := &grids[min(k, len(grids)-1)]
 		out[k] = g.outcome(&w.at[k], c)
 		// with a fixed spot the lognormal part moves as the escrow does
-		shift := w.escrowChange(c, &l, dt) / w.plan.unit
+		shift := w.escrowChange(c, l, dt) / w.plan.unit
 		var aim reading
 		later := g.read(&aim, g.prev, base, w.at[k][base]-shift)
 		out[k].theta, out[k].charm = later.value, later.slope
 	}
-	w.escrow(&mid, c, &l, -float64(gamma*dt))
-	w.escrow(&end, c, &l, -dt)
-	for k := range grids {
-		grids[k].step(dt, &mid, &end)
-	}
+	steps := all(dt)
+	w.step(c.Convention, grids, len(w.plan.legs)-1, &row{}, 0, &steps)
 	for k := range out {
 		g, o := &grids[min(k, len(grids)-1)], &out[k]
-		shift := w.escrowChange(c, &l, -dt) / w.plan.unit
+		shift := w.escrowChange(c, l, -dt) / w.plan.unit
 		var aim reading
 		earlier := g.read(&aim, g.v, base, w.at[k][base]-shift)
 		o.theta = (o.theta - earlier.value) / (2 * dt)
@@ -148,23 +132,6 @@ func (g *grid) outcome(x *row, c *Chain) outcome {
 	}
 	o.boundary, o.beyond = g.boundaries(x[base], base)
 	return o
-}
-
-// escrow sets what exercise brings beyond the lognormal part of the price.
-func (w *work) escrow(offset *row, c *Chain, l *leg, time float64) {
-	if c.Convention != Escrowed {
-		return
-	}
-	k := c.Sign / w.plan.unit
-	ahead := w.divs[l.ahead:]
-	x, _ := ahead.worth(w.op.rate[base]-w.op.yield[base], time)
-	for j := range lanes {
-		offset[j] = float64(k * x)
-	}
-	for _, j := range [...]int{rateUp, rateDown, yieldUp, yieldDown} {
-		x, _ = ahead.worth(w.op.rate[j]-w.op.yield[j], time)
-		offset[j] = float64(k * x)
-	}
 }
 
 // escrowChange is by how much the escrow grows in dt from now.
@@ -194,11 +161,36 @@ const (
 	seenExercised = 2.0
 )
 
+// errorOf estimates the error of a price, from those on meshes of a level, b, and
+// of the level before, a, both times scale.
+func (p *plan) errorOf(a, b, scale, spot float64, level int) float64 {
+	kept := keptError
+	if p.rough {
+		kept = roughError
+	}
+	return max(kept*math.Abs(b-a)/3*scale, p.expected*spot/float64(int(1)<<(2*level-2)))
+}
+
+// richardson extrapolates to none the second-order error of b and, on cells twice
+// as wide, a.
+func richardson(b, a float64) float64 { return b + (b-a)/3 }
+
+// extrapolated is the price of line i, held, from those of two meshes.
+func extrapolated(a, b, scale float64, c *Chain, i int) float64 {
+	v := max(0, float64(richardson(b, a)*scale))
+	if c.American {
+		v = max(v, c.payoff(i))
+	}
+	return v
+}
+
+// payoff is what line i pays if it is exercised now.
+func (c *Chain) payoff(i int) float64 { return max(0, float64(c.Sign*(c.Spot-c.Strike[i]))) }
+
 // store writes line i: the outcome of the finer mesh b extrapolated from that of
 // the coarser one a, both times scale.
 func (b *outcome) store(a *outcome, r *Results, i int, c *Chain, divs schedule, p *plan, level int, scale float64) {
-	f := func(b, a float64) float64 { return b + (b-a)/3 }
-	payoff := max(0, float64(c.Sign*(c.Spot-c.Strike[i])))
+	f := richardson
 	r.Boundary[i], r.Beyond[i] = float64(b.boundary*scale), float64(b.beyond*scale)
 	if x := f(b.boundary, a.boundary); x == x {
 		r.Boundary[i] = float64(x * scale)
@@ -225,19 +217,12 @@ func (b *outcome) store(a *outcome, r *Results, i int, c *Chain, divs schedule, 
 		at, beyond := r.Boundary[i], r.Beyond[i]
 		r.fill(i, 0, Exercised)
 		r.Boundary[i], r.Beyond[i] = at, beyond
-		r.Price[i], r.Delta[i], r.Residual[i] = payoff, c.Sign, math.NaN()
+		r.Price[i], r.Delta[i], r.Residual[i] = c.payoff(i), c.Sign, math.NaN()
 		return
 	}
 	r.Status[i] = Held
-	kept := keptError
-	if p.rough {
-		kept = roughError
-	}
-	r.Error[i] = max(kept*math.Abs(b.price-a.price)/3*scale, p.expected*c.Spot/float64(int(1)<<(2*level-2)))
-	v := max(0, float64(f(b.price, a.price)*scale))
-	if c.American {
-		v = max(v, payoff)
-	}
+	r.Error[i] = p.errorOf(a.price, b.price, scale, c.Spot, level)
+	v := extrapolated(a.price, b.price, scale, c, i)
 	delta, g, theta := f(b.delta, a.delta), f(b.gamma, a.gamma)/scale, float64(f(b.theta, a.theta)*scale)
 	r.Price[i], r.Delta[i], r.Gamma[i], r.Theta[i] = v, delta, g, theta
 	r.Vega[i], r.Volga[i] = f(b.vega, a.vega)*scale, f(b.volga, a.volga)*scale

@@ -62,7 +62,7 @@ func (g *grid) within(i, k, j int) float64 {
 			ghost = g.any.after[k][j]
 		}
 	}
-	s, h := g.s[i], g.s[k]-g.s[i]
+	s, h := g.s[i][j], g.s[k][j]-g.s[i][j]
 	if ghost == 0 {
 		return s
 	}
@@ -76,7 +76,7 @@ func (g *grid) region(x float64, j int) (from, until int, exercised bool) {
 	if g.right == never {
 		return 0, n, false
 	}
-	k := g.beyond(x) // the first node past x
+	k := g.on[j].beyond(x) // the first node past x
 	i := max(k-1, 0)
 	k = min(k, n-1)
 	exercised = g.exercised(i, j)
@@ -87,7 +87,7 @@ func (g *grid) region(x float64, j int) (from, until int, exercised bool) {
 		} else {
 			b = g.within(k, i, j)
 		}
-		if x != b && (x > b) == (g.s[k] > g.s[i]) {
+		if x != b && (x > b) == (g.s[k][j] > g.s[i][j]) {
 			i = k
 			exercised = g.exercised(k, j)
 		} else if x == b {
@@ -145,10 +145,10 @@ func (g *grid) boundaries(x float64, j int) (at, beyond float64) {
 func (g *grid) read(c *reading, v []row, j int, x float64) point {
 	from, until, exercised := g.region(x, j)
 	if exercised {
-		return point{value: float64(g.sign*x) + (g.pay[from] - float64(g.sign*g.s[from])) + g.offset[j], slope: g.sign, exercised: true}
+		return point{value: float64(g.sign*x) + (g.pay(from, j) - float64(g.sign*g.s[from][j])) + g.offset[j], slope: g.sign, exercised: true}
 	}
 	if c.x != x || c.first < from || c.first+c.nodes > until || c.nodes < min(readNodes, until-from) {
-		c.aim(&g.mesh, x, from, until)
+		c.aim(g.on[j], x, from, until)
 	}
 	return point{value: c.sum(&c.f, v, j), slope: c.sum(&c.fs, v, j), curve: c.sum(&c.fss, v, j)}
 }

@@ -29,17 +29,21 @@ type work struct {
 	grids        []grid // one for each strike of a strip
 	plan         plan
 	divs         schedule
+	course       [lanes]course
 	done         []bool
 	group        []int     // the lines of one sweep
 	similar      bool      // they are read from one grid, at S/K
 	at           []row     // their lognormal prices, on the mesh, by lane
 	older, newer []outcome // read from the coarser mesh and the finer one
 	batch        batch
+	prices       prices
 	stop         func() bool
 }
 
 // Below certainBelow, σ√T changes a value by less than 4·10⁻⁶ of the spot.
 const certainBelow = 1e-5
+
+func (c *Chain) isCertain(i int) bool { return c.Vol[i]*math.Sqrt(c.Time) < certainBelow }
 
 // finestLevel bounds the refinement: a mesh 8 times as dense as the coarse one.
 const finestLevel = 3
@@ -112,11 +116,7 @@ func (w *work) solve(c *Chain, r *Results, tolerance float64) {
 	w.done = resize(w.done, n)
 	clear(w.done)
 	w.divs = w.divs.take(c)
-	core := c.Spot
-	if c.Convention == Escrowed {
-		escrow, _ := w.divs.worth(c.Rate-c.Yield, 0)
-		core -= escrow
-	}
+	core := w.divs.core(c)
 	for i := range n {
 		switch {
 		case w.done[i]:
@@ -124,13 +124,13 @@ func (w *work) solve(c *Chain, r *Results, tolerance float64) {
 			r.fill(i, math.NaN(), Invalid)
 		case c.Time == 0:
 			r.payoff(i, c)
-		case c.Vol[i]*math.Sqrt(c.Time) < certainBelow:
+		case c.isCertain(i):
 			r.certain(i, c, w.divs)
 		case w.stop != nil && w.stop():
 			return
 		default:
 			w.gather(i, c, core)
-			w.sweep(c, r, core, tolerance)
+			w.refine(c, r, core, tolerance)
 		}
 	}
 }
@@ -163,17 +163,22 @@ func (w *work) gather(i int, c *Chain, core float64) {
 	}
 }
 
-// sweep prices the lines of a group: on level 0 and 1, and each on further levels
-// until its estimated error is within the tolerance. What comes out for a line
-// does not depend on the others.
-func (w *work) sweep(c *Chain, r *Results, core, tolerance float64) {
-	vol := c.Vol[w.group[0]]
-	if w.similar {
+// lay plans the sweep of lines of a volatility, similar or not.
+func (w *work) lay(c *Chain, vol, core float64, similar bool, tolerance float64) {
+	if similar {
 		away := float64(similarWithin * float64(vol*math.Sqrt(c.Time)))
 		w.plan.lay(1, exp(-away), exp(away), vol, c, w.divs, tolerance)
 	} else {
 		w.plan.lay(core, core, core, vol, c, w.divs, tolerance)
 	}
+}
+
+// refine prices the lines of a group: on level 0 and 1, and each on further levels
+// until its estimated error is within the tolerance. What comes out for a line
+// does not depend on the others.
+func (w *work) refine(c *Chain, r *Results, core, tolerance float64) {
+	vol := c.Vol[w.group[0]]
+	w.lay(c, vol, core, w.similar, tolerance)
 	w.op.terms = bumped(c, vol)
 	w.aim(c)
 	w.older, w.newer = resize(w.older, len(w.group)), resize(w.newer, len(w.group))

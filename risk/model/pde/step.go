@@ -18,9 +18,13 @@ const (
 // ex-date.
 // Source: R. E. Bank et al., Transient simulation of silicon devices and
 // circuits, IEEE Trans. CAD 4 (1985).
-func (g *grid) step(dt float64, offsetMid, offset *row) {
-	if k := float64(0.5 * gamma * dt); k != g.k {
-		g.factor(k)
+func (g *grid) step(dt, offsetMid, offset *row) {
+	var k row
+	for j := range lanes {
+		k[j] = float64(0.5 * gamma * dt[j])
+	}
+	if k != g.k {
+		g.factor(&k)
 	}
 	if g.right == anywhere {
 		g.stepAnywhere(offsetMid, offset)

@@ -33,14 +33,20 @@ func TestTiers(t *testing.T) {
 		if n%6 == 0 {
 			c.Convention = Escrowed
 		}
+		smile := .1 * float64(n%2)
 		for range 9 {
-			c.Strike, c.Vol = append(c.Strike, 70+60*rng.Float64()), append(c.Vol, .2)
+			c.Strike, c.Vol = append(c.Strike, 70+60*rng.Float64()), append(c.Vol, .2+float64(smile*rng.Float64()))
 		}
 		wide, half = false, false
 		s.Solve(&c, &want)
 		for _, form := range forms {
 			wide, half = form[0], form[1]
 			s.Solve(&c, &got)
+			for i, x := range pricesOf(&s, &c) {
+				if math.Float64bits(x) != math.Float64bits(want.Price[i]) {
+					t.Errorf("%+v, line %d, AVX-512 %v: %v by itself, without vectors %v", c, i, wide, x, want.Price[i])
+				}
+			}
 			for k, column := range got.columns() {
 				for i, x := range *column {
 					if y := (*want.columns()[k])[i]; math.Float64bits(x) != math.Float64bits(y) && (x == x || y == y) {
@@ -50,4 +56,15 @@ func TestTiers(t *testing.T) {
 			}
 		}
 	}
+}
+
+func pricesOf(s *Solver, c *Chain) []float64 {
+	l := Lines{Strike: c.Strike, Vol: c.Vol, Convention: c.Convention}
+	for range c.Strike {
+		l.Spot, l.Time, l.Rate, l.Yield = append(l.Spot, c.Spot), append(l.Time, c.Time), append(l.Rate, c.Rate), append(l.Yield, c.Yield)
+		l.Sign, l.American, l.Dividends = append(l.Sign, c.Sign), append(l.American, c.American), append(l.Dividends, c.Dividends)
+	}
+	price := make([]float64, len(c.Strike))
+	s.Prices(&l, price)
+	return price
 }
