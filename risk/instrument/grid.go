@@ -62,9 +62,10 @@ func (r *Run) onGrid(rows []int32, yield []float64, early bool, schedules []*Sch
 			d := schedule(i)
 			l.Spot[j], l.Time[j], l.Dividends[j] = r.Spot[i]-d.Drop[step], r.TimeAfter[step][i], d.After[step]
 		}
-		m.grid.SolveLines(l, cells)
+		m.prices = resized(m.prices, len(rows))
+		m.grid.Prices(l, m.prices)
 		for j, i := range rows {
-			r.After[step][i] = cells.Price[j]
+			r.After[step][i] = m.prices[j]
 			if l.Spot[j] <= 0 { // the dividend took all, and the price stays 0
 				r.After[step][i] = worthless(r.Strike[i], r.Rate[i], l.Time[j], r.Sign[i], early)
 			}

@@ -57,7 +57,7 @@ func (m *Methods) ImpliedVols(quotes []*Quote) {
 		if active = active[:n]; n == 0 || m.interrupted() {
 			break
 		}
-		m.evaluate(active)
+		m.evaluate(active, true)
 		for _, q := range active {
 			q.step()
 		}
@@ -79,7 +79,7 @@ func (m *Methods) bracket(quotes []*Quote) {
 		for _, q := range quotes {
 			q.Vol = vol(q)
 		}
-		m.evaluate(quotes)
+		m.evaluate(quotes, false)
 		for _, q := range quotes {
 			if out := judge(q); out != vec.ImpliedOK && !q.done {
 				q.Outcome, q.done = out, true
@@ -155,8 +155,8 @@ func (q *Quote) step() {
 	q.Vol = next
 }
 
-// evaluate sets value and vega of each quote at its Vol.
-func (m *Methods) evaluate(quotes []*Quote) {
+// evaluate sets value and, if it is asked for, vega of each quote at its Vol.
+func (m *Methods) evaluate(quotes []*Quote, vega bool) {
 	var l american.Lines
 	var integral, grid []*Quote
 	for _, q := range quotes {
@@ -179,6 +179,14 @@ func (m *Methods) evaluate(quotes []*Quote) {
 	m.gridLines.Convention = m.convention
 	for _, q := range grid {
 		addLine(&m.gridLines, q.Spot, q.Strike, q.Time, q.Vol, q.Rate, q.Yield, q.Sign, q.American, q.Dividends)
+	}
+	if !vega {
+		m.prices = resized(m.prices, len(grid))
+		m.grid.Prices(&m.gridLines, m.prices)
+		for i, q := range grid {
+			q.value = m.prices[i]
+		}
+		return
 	}
 	m.grid.SolveLines(&m.gridLines, &m.cells)
 	for i, q := range grid {

@@ -17,6 +17,7 @@ type Methods struct {
 	after     american.Results  // of their revaluations
 	gridLines pde.Lines
 	cells     pde.Results
+	prices    []float64 // of their revaluations
 }
 
 // NewMethods returns the methods with a setting of the boundary integral, a
