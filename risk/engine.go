@@ -139,6 +139,10 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 	}
 }
 
+// worstError is the error of a price by finite differences, as a share of the
+// spot, beyond which no line is priced: the loosest tolerance that can be asked for.
+const worstError = 1e-2
+
 // exercise scatters what is known of the rows of a run besides their values.
 func (e *Engine) exercise(b *schema.Batch, w *Worker, rows []int32) {
 	x := &w.run.Exercise
@@ -149,10 +153,16 @@ func (e *Engine) exercise(b *schema.Batch, w *Worker, rows []int32) {
 		switch {
 		case x.Flags[j]&instrument.OnGrid != 0:
 			b.Model[i] = schema.ModelFiniteDifferences
+		case x.Flags[j]&instrument.InClosedForm != 0:
+			b.Model[i] = schema.ModelBSM
 		default:
 			b.Setting[i] = e.market.Models.American
 		}
-		if x.Flags[j]&instrument.Uncertain != 0 {
+		switch {
+		case x.PriceError[j] > worstError*b.Spot[i]:
+			refuse(b, int(i), schema.Inaccurate, "", "", "the estimated error of its price by finite differences is "+number(x.PriceError[j])+
+				", more than 1 % of the price of the underlying: price it elsewhere, or check vol "+number(b.VolUsed[i])+", time "+number(b.Time[i])+" and the dividends of the underlying")
+		case x.Flags[j]&instrument.Uncertain != 0:
 			w.note(b, int(i), schema.PriceUncertain, b.Underlying[i])
 		}
 	}

@@ -15,8 +15,8 @@ import (
 )
 
 // Imply finds the volatility of each quote against a market: one row a quote,
-// in their order. European quotes without cash dividends are inverted in closed
-// form, the others with the models that price lines. The market's surfaces are
+// in their order. European quotes without cash dividends, or with escrowed ones, are inverted in
+// closed form, the others with the models that price lines. The market's surfaces are
 // not looked at. The error is that of a context that ended before.
 func Imply(ctx context.Context, m *market.Market, d *schema.Dicts, quotes []schema.QuoteRow) ([]schema.ImpliedRow, error) {
 	out := make([]schema.ImpliedRow, len(quotes))
@@ -33,7 +33,7 @@ func Imply(ctx context.Context, m *market.Market, d *schema.Dicts, quotes []sche
 		}
 		forward[i], strike[i], time[i], sign[i] = out[i].Forward, q.Strike, q.Time, q.Sign
 		price[i] = q.Price / vec.Exp1(0-float64(q.Rate*q.Time))
-		if q.American || q.Dividends != nil {
+		if q.American || q.Dividends != nil && m.Models.Dividends == schema.Piecewise {
 			byModel[i] = q
 			open = append(open, q)
 		}

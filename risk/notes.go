@@ -37,6 +37,9 @@ func (e *Engine) flushNotes(b *schema.Batch, w *Worker) {
 		case schema.VolFallback:
 			n.Subject = e.dicts.Underlyings.Name(key.subject)
 			n.Message = n.Subject + " has no surface: its flat volatility was used"
+		case schema.DividendsLarge:
+			n.Subject = e.dicts.Underlyings.Name(key.subject)
+			n.Message = "the cash dividends of " + n.Subject + " before an expiry are worth more than 40 % of its price: check dividends; a piecewise price stays at 0 or above, and its forward does not"
 		case schema.PriceUncertain:
 			n.Subject = e.dicts.Underlyings.Name(key.subject)
 			n.Message = "finite differences did not meet the tolerance for options on " + n.Subject + ": price_error says how far off their prices may be"

@@ -24,6 +24,7 @@ const (
 	TermsMismatch     RejectCode = "terms_mismatch"
 	Unsupported       RejectCode = "unsupported"
 	NotFinite         RejectCode = "not_finite"
+	Inaccurate        RejectCode = "inaccurate"
 )
 
 // CodeDoc is the meaning of a code.
@@ -53,6 +54,7 @@ var RejectCodes = []CodeDoc{
 	{string(TermsMismatch), "the line has terms that its instrument or payoff does not know"},
 	{string(Unsupported), "this version does not price such a line"},
 	{string(NotFinite), "the result is not a finite number"},
+	{string(Inaccurate), "finite differences cannot tell the price of the line to 1 % of the price of its underlying"},
 }
 
 // NoteCode is one of the closed list of warnings.
@@ -75,6 +77,7 @@ const (
 	QuoteNotUsed    NoteCode = "quote_not_used"
 	MarketRowUnused NoteCode = "market_row_unused"
 	PriceUncertain  NoteCode = "price_uncertain"
+	DividendsLarge  NoteCode = "dividends_large"
 	RowInField      NoteCode = "row_in_field"
 )
 
@@ -93,6 +96,7 @@ var NoteCodes = []CodeDoc{
 	{string(FormatDetected), "the encoding of a file was detected, not declared"},
 	{string(MarketRowUnused), "vols or dividends have rows that no line can use: their underlying is not in underlyings, or its kind pays no dividends"},
 	{string(PriceUncertain), "finite differences did not meet the tolerance on their finest mesh: price_error of the lines says how far"},
+	{string(DividendsLarge), "the cash dividends before an expiry are worth more than 40 % of the price: piecewise holds the price at 0 or above, the forward does not, and put, call and forward lose their parity"},
 	{string(RowInField), "a quoted field of a text file runs over lines that look like rows of their own: a quotation mark may be out of place"},
 	{string(QuoteNotUsed), "quotes gave no volatility and are not in the surface"},
 	{string(NoPositions), "the position file has a header and no rows"},

@@ -50,7 +50,7 @@ var QuoteStatusDocs = []CodeDoc{
 	{"expired", "the option has expired at as_of"},
 	{"crossed", "the bid is above the ask"},
 	{"below_bound", "the price is at or below what the option is worth without any volatility"},
-	{"above_bound", "the price is at or above what the option is worth at any volatility"},
+	{"above_bound", "the price is at or above what the option is worth at any volatility; where there is no closed form, at one of 1000 % or with σ√T of 12"},
 }
 
 // ImpliedRow is a quote and the volatility it implies. Vol is NaN where Status

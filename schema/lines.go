@@ -90,7 +90,7 @@ var lineFields = append([]lineField{
 		choices(Models, func(b *Batch) []Choice { return b.Model })},
 	{Column{"setting", Text, "", false, "", "accuracy setting of an American option priced by boundary_integral: fast, standard or exact"},
 		choices(Settings, func(b *Batch) []Choice { return b.Setting })},
-	{Column{"dividend_model", Text, "", false, "", "what a cash dividend does to the price of an equity or an index: piecewise or escrowed"},
+	{Column{"dividend_model", Text, "", true, "", "convention of the run: what a cash dividend does to the price of an equity or an index, piecewise or escrowed; where none counts, dividends_pv is null"},
 		choices(DividendModels, func(b *Batch) []Choice { return b.DividendModel })},
 	{Column{"vol_source", Text, "", false, "", "where the volatility came from: the line, the surface, the underlying"},
 		choices(VolSources, func(b *Batch) []Choice { return b.VolSource })},

@@ -11,7 +11,13 @@ import (
 func AmericanWithDividends(r *Run) { r.withDividends(true) }
 
 // EuropeanWithDividends prices European calls and puts on such a share.
-func EuropeanWithDividends(r *Run) { r.withDividends(false) }
+func EuropeanWithDividends(r *Run) {
+	if r.Methods.convention == pde.Escrowed {
+		r.escrowed()
+		return
+	}
+	r.withDividends(false)
+}
 
 func (r *Run) withDividends(early bool) {
 	r.rows = r.rows[:0]

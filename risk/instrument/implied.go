@@ -22,6 +22,7 @@ type Quote struct {
 	low, high   float64 // the volatility lies between
 	value, vega float64 // at Vol
 	done        bool
+	onGrid      bool // value is by finite differences
 }
 
 // High returns the highest volatility that is sought for the quote.
@@ -32,6 +33,7 @@ const (
 	highestVol    = 10
 	highestSpread = 12
 	mostRounds    = 100
+	integralNoise = 1e-9 // of the spot: how close the search comes to a price by the integral
 )
 
 // ImpliedVols finds for each quote the volatility at which the methods that price
@@ -63,7 +65,11 @@ func (m *Methods) ImpliedVols(quotes []*Quote) {
 		}
 	}
 	for _, q := range quotes {
-		if q.Outcome == vec.ImpliedOK && !(math.Abs(q.value-q.Price) <= m.grid.Tolerance*q.Spot) {
+		tolerance := float64(integralNoise * q.Spot)
+		if q.onGrid {
+			tolerance = float64(m.grid.Tolerance * q.Spot)
+		}
+		if q.Outcome == vec.ImpliedOK && !(math.Abs(q.value-q.Price) <= tolerance) {
 			q.Outcome = vec.ImpliedNaN
 		}
 		if q.Outcome != vec.ImpliedOK {
@@ -184,12 +190,12 @@ func (m *Methods) evaluate(quotes []*Quote, vega bool) {
 		m.prices = resized(m.prices, len(grid))
 		m.grid.Prices(&m.gridLines, m.prices)
 		for i, q := range grid {
-			q.value = m.prices[i]
+			q.value, q.onGrid = m.prices[i], true
 		}
 		return
 	}
 	m.grid.SolveLines(&m.gridLines, &m.cells)
 	for i, q := range grid {
-		q.value, q.vega = m.cells.Price[i], m.cells.Vega[i]
+		q.value, q.vega, q.onGrid = m.cells.Price[i], m.cells.Vega[i], true
 	}
 }

@@ -56,9 +56,10 @@ type Flag uint8
 
 // The facts.
 const (
-	ExerciseNow Flag = 1 << iota // exercise is optimal now
-	OnGrid                       // priced by finite differences
-	Uncertain                    // PriceError is above the tolerance
+	ExerciseNow  Flag = 1 << iota // exercise is optimal now
+	OnGrid                        // priced by finite differences
+	Uncertain                     // PriceError is above the tolerance
+	InClosedForm                  // there was a formula after all
 )
 
 func (e *Exercise) resize(n int) {

@@ -23,7 +23,8 @@ type Run struct {
 	Dividends []*Schedule // of the products that know them
 
 	Methods *Methods
-	rows    []int32 // scratch
+	rows    []int32   // scratch
+	rest    []float64 // scratch: prices without what is in escrow
 
 	model.Greeks
 	Exercise                  // of the products that know it
@@ -48,7 +49,7 @@ func resized[T any](s []T, n int) []T {
 }
 
 func (r *Run) slices() []*[]float64 {
-	s := []*[]float64{&r.Spot, &r.Strike, &r.Time, &r.Vol, &r.Rate, &r.Yield, &r.Sign, &r.Entry}
+	s := []*[]float64{&r.Spot, &r.Strike, &r.Time, &r.Vol, &r.Rate, &r.Yield, &r.Sign, &r.Entry, &r.rest}
 	for i := range Steps {
 		s = append(s, &r.TimeAfter[i], &r.After[i])
 	}

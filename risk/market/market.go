@@ -269,7 +269,7 @@ func (b *builder) underlying(r schema.UnderlyingRow, vols []schema.VolRow, paid 
 		b.notes = append(b.notes, schema.Note{Code: schema.MarketRowUnused, Subject: r.Name, Count: int64(len(paid)),
 			Message: "dividends has rows of " + r.Name + ", which is of kind " + schema.Kinds[r.Kind] + ": they are not used; only kinds equity and index pay cash dividends"})
 	}
-	if at, bad := b.faults["dividends"][r.Name]; bad {
+	if at, bad := b.faults["dividends"][r.Name]; bad && (r.Kind == schema.Equity || r.Kind == schema.Index) {
 		u.Fault = "its cash dividends have a refused row: mend " + at
 	}
 	if (r.Kind == schema.FuturePrice || r.Kind == schema.Spread) && r.CarryYield != 0 {

@@ -36,6 +36,7 @@ func Lines(from, n int, dicts *schema.Dicts) *schema.Batch {
 		}
 		spot := 50 + float64(name)
 		b.Instrument[i], b.Model[i], b.Status[i] = schema.Stock, schema.ModelMark, schema.Priced
+		b.DividendModel[i] = schema.Piecewise
 		b.Spot[i], b.FX[i], b.Price[i] = spot, []float64{1, 1.08, 1.27}[name%3], spot
 		b.Delta[i] = 1
 		for _, f := range [][]float64{b.Gamma, b.Vega, b.Theta, b.Rho, b.CarryRho, b.Vanna, b.Volga, b.Charm} {

@@ -82,7 +82,8 @@ class Line:
 
 def expected(line, market):
     """The numbers of one line, and its texts."""
-    out = {"quantity": line.quantity, "multiplier": line.multiplier, "strike": line.strike, "mark": line.mark, "status": "priced", "exercise_now": "false"}
+    out = {"quantity": line.quantity, "multiplier": line.multiplier, "strike": line.strike, "mark": line.mark, "status": "priced", "exercise_now": "false",
+           "dividend_model": market.dividend_model}
     if line.expiry is not None and line.expiry.minute is not None:
         out["expiry_minute"] = mpf(line.expiry.minute)
     out.update({g: mpf(0) for g in GREEKS})
@@ -143,8 +144,6 @@ def dated_line(line, u, market, out):
     if line.instrument == "option":
         vol, source = (line.vol, "line") if line.vol is not None else market.vol(u, K, T, day)
         out.update(vol_used=vol, vol_source=source, model=OPTION_MODELS[u.kind])
-        if u.kind in ("equity", "index"):
-            out["dividend_model"] = market.dividend_model
         if paid or line.american:
             out["model"] = "finite_differences" if paid else "boundary_integral"
             out["setting"] = "" if paid else market.american
