@@ -26,6 +26,7 @@ var (
 	storedNaN   = &finding{schema.BadNumber, "the cell holds NaN, which is no number: write null for an empty cell"}
 	notUTF8     = &finding{schema.BadText, "the text is not valid UTF-8: save the file as UTF-8, or declare its encoding in [csv] encoding"}
 	hasControl  = &finding{schema.BadText, "the text holds a control character"}
+	hasMark     = &finding{schema.BadText, "the text holds a byte order mark (U+FEFF), which cannot be seen: take it out; where two files were put together, the second begins with one"}
 	tooLongText = &finding{schema.BadText, "the text is longer than 256 bytes"}
 	notCurrency = &finding{schema.BadChoice, "expected a currency as three letters of ISO 4217, such as USD"}
 )
@@ -87,6 +88,9 @@ func checkName(b []byte) *finding {
 	for _, r := range string(b) {
 		if 0x80 <= r && r < 0xA0 {
 			return hasControl
+		}
+		if r == 0xFEFF {
+			return hasMark
 		}
 	}
 	return nil

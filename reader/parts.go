@@ -25,7 +25,8 @@ type parts struct {
 	list   []part
 	keys   []int // of part.keys: those that are columns
 	header []string
-	all    int64 // bytes of the files
+	schema []string // of every file
+	all    int64    // bytes of the files
 
 	at   int   // the part being read
 	past int64 // bytes of those before it
@@ -46,7 +47,6 @@ func (f *Folder) openParts(in *input, cfg *schema.Config) (*parts, error) {
 	if err := p.find(); err != nil {
 		return nil, err
 	}
-	var first []string
 	for i := range p.list {
 		x := &p.list[i]
 		file, err := x.open(f.ctx)
@@ -62,14 +62,14 @@ func (f *Folder) openParts(in *input, cfg *schema.Config) (*parts, error) {
 		}
 		p.all += file.size()
 		if i == 0 {
-			first, p.header = rows.Schema(), slices.Clone(rows.Header())
+			p.schema, p.header = rows.Schema(), slices.Clone(rows.Header())
 			continue
 		}
-		if err := agree(first, rows.Schema()); err != nil {
+		if err := agree(p.schema, rows.Schema()); err != nil {
 			return nil, fmt.Errorf("%s: %w, as those of %s: write all files of the folder with one schema", x.path, err, p.list[0].name)
 		}
 		if !slices.Equal(x.keys, p.list[0].keys) {
-			return nil, fmt.Errorf("%s: it stands in folders for %s, %s in folders for %s: name the folders alike", x.path, listed(x.keys), p.list[0].name, listed(p.list[0].keys))
+			return nil, fmt.Errorf("%s: it stands in folders for %s, %s in folders for %s: name the folders alike", x.path, listedKeys(x.keys), p.list[0].name, listedKeys(p.list[0].keys))
 		}
 	}
 	for k, key := range p.list[0].keys {
@@ -99,11 +99,12 @@ func agree(first, other []string) error {
 
 // find lists the files of the folder and of those below it.
 func (p *parts) find() error {
-	err := filepath.WalkDir(p.in.path, func(path string, e fs.DirEntry, err error) error {
+	root := p.in.path + string(filepath.Separator) // so that it may be a link
+	err := filepath.WalkDir(root, func(path string, e fs.DirEntry, err error) error {
 		if err != nil {
 			return err
 		}
-		if path == p.in.path {
+		if path == root {
 			return p.folder.ctx.Err()
 		}
 		// What engines leave beside the data, _SUCCESS and the like, and hidden files.
@@ -129,7 +130,10 @@ func (p *parts) find() error {
 		x := part{input: input{path: path, name: p.in.name + "/" + filepath.ToSlash(below), table: p.in.table, format: p.in.format}}
 		for _, dir := range strings.Split(filepath.ToSlash(filepath.Dir(below)), "/") {
 			if key, value, ok := strings.Cut(dir, "="); ok {
-				x.keys, x.values = append(x.keys, unescaped(key)), append(x.values, unescaped(value))
+				if key = unescaped(key); slices.ContainsFunc(x.keys, func(k string) bool { return strings.EqualFold(k, key) }) {
+					return fmt.Errorf("%s: it stands in two folders that give %s a value: leave one", path, key)
+				}
+				x.keys, x.values = append(x.keys, key), append(x.values, unescaped(value))
 			}
 		}
 		p.list = append(p.list, x)
@@ -139,6 +143,14 @@ func (p *parts) find() error {
 		err = fmt.Errorf("%s: the folder holds no .parquet file", p.in.path)
 	}
 	return err
+}
+
+// listedKeys joins the keys of a file's folders for an error.
+func listedKeys(keys []string) string {
+	if len(keys) == 0 {
+		return "no column"
+	}
+	return strings.Join(keys, ", ")
 }
 
 // unescaped returns a key or value as it was before it became the name of a folder.
@@ -200,7 +212,7 @@ func (p *parts) openPart(x *part) error {
 	if err != nil {
 		return file.fail("", err)
 	}
-	if len(p.rows.Header())+len(p.keys) != len(p.header) {
+	if agree(p.schema, p.rows.Schema()) != nil { // it was another file when the folder was opened
 		return fmt.Errorf("%s: %w", x.path, errChanged)
 	}
 	return nil

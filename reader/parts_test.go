@@ -2,6 +2,7 @@ package reader
 
 import (
 	"context"
+	"errors"
 	"fmt"
 	"os"
 	"path/filepath"
@@ -115,7 +116,8 @@ func TestPartsRefused(t *testing.T) {
 		want  string
 	}{
 		"other columns":     {map[string]string{"a.parquet": one, "b.parquet": parquetFile(t, short{"1", "ALBA", "stock", "1"})}, "b.parquet: its column 2 is underlying BYTE_ARRAY text and not book BYTE_ARRAY text, as those of positions.parquet/a.parquet"},
-		"fewer folders":     {map[string]string{"x=1/a.parquet": one, "z.parquet": one}, "z.parquet: it stands in folders for no files"},
+		"fewer folders":     {map[string]string{"x=1/a.parquet": one, "z.parquet": one}, "z.parquet: it stands in folders for no column, positions.parquet/x=1/a.parquet in folders for x"},
+		"a key twice":       {map[string]string{"x=1/X=2/a.parquet": one}, "x=1/X=2/a.parquet: it stands in two folders that give X a value"},
 		"another form":      {map[string]string{"a.parquet": one, "b.csv": "x"}, "b.csv: not a .parquet file"},
 		"nothing":           {map[string]string{"_SUCCESS": " "}, "the folder holds no .parquet file"},
 		"one cut short":     {map[string]string{"a.parquet": one, "b.parquet": one[:len(one)-1]}, "b.parquet: the file is cut short"},
@@ -139,5 +141,57 @@ func TestPartsRefused(t *testing.T) {
 	}
 	if _, err := OpenFolder(context.Background(), dir); err == nil || !strings.Contains(err.Error(), "both positions.csv and positions.parquet hold positions") {
 		t.Error(err)
+	}
+}
+
+// The folder may be a link to where the files lie.
+func TestPartsLink(t *testing.T) {
+	dir := partsOf(t, "", map[string]string{"x=1/a.parquet": parquetFile(t, noted{"1", "North", "ALBA", "stock", 1, ""})})
+	path, elsewhere := filepath.Join(dir, "positions.parquet"), filepath.Join(t.TempDir(), "parts")
+	if err := os.Rename(path, elsewhere); err != nil {
+		t.Fatal(err)
+	}
+	if err := os.Symlink(elsewhere, path); err != nil {
+		t.Skip(err)
+	}
+	s, err := readAll(dir)
+	if err != nil || s.positions.Rows() != 1 || s.batches[0].File != "positions.parquet/x=1/a.parquet" {
+		t.Errorf("%v, %+v", err, s)
+	}
+}
+
+// A file that takes the place of another after the columns were settled is not
+// read into them, though it has as many.
+func TestPartsChanged(t *testing.T) {
+	one := parquetFile(t, short{"1", "ALBA", "stock", "1"})
+	dir := partsOf(t, "", map[string]string{"book=North/a.parquet": one, "book=North/b.parquet": one})
+	f, err := OpenFolder(context.Background(), dir)
+	if err != nil {
+		t.Fatal(err)
+	}
+	cfg, err := f.Config("")
+	if err != nil {
+		t.Fatal(err)
+	}
+	p, err := f.Positions(cfg, schema.NewDicts())
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer p.Close()
+	var pc Piece
+	if err := p.Next(&pc); err != nil {
+		t.Fatal(err)
+	}
+	type other struct {
+		Underlying string `parquet:"name=underlying, type=BYTE_ARRAY, convertedtype=UTF8"`
+		LineID     string `parquet:"name=line_id, type=BYTE_ARRAY, convertedtype=UTF8"`
+		Instrument string `parquet:"name=instrument, type=BYTE_ARRAY, convertedtype=UTF8"`
+		Quantity   string `parquet:"name=quantity, type=BYTE_ARRAY, convertedtype=UTF8"`
+	}
+	if err := os.WriteFile(filepath.Join(dir, "positions.parquet", "book=North", "b.parquet"), []byte(parquetFile(t, other{"1", "ALBA", "stock", "1"})), 0o644); err != nil {
+		t.Fatal(err)
+	}
+	if err := p.Next(&pc); !errors.Is(err, errChanged) || !strings.Contains(err.Error(), "b.parquet") {
+		t.Errorf("%v", err)
 	}
 }

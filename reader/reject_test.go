@@ -32,6 +32,7 @@ func TestRejects(t *testing.T) {
 		{"A\x7f,North,ALBA,stock,1", "line_id", schema.BadText, "A\x7f", "control character"},
 		{"\"A\nB\",North,ALBA,stock,1", "line_id", schema.BadText, "A\nB", "control character"},
 		{"A,North\u0085,ALBA,stock,1", "book", schema.BadText, "North\u0085", "control character"},
+		{"\uFEFFA,North,ALBA,stock,1", "line_id", schema.BadText, "\uFEFFA", "byte order mark"},
 		{"A,N\xFCrd,ALBA,stock,1", "book", schema.BadText, "N\xFCrd", "not valid UTF-8"},
 		{"A," + long + ",ALBA,stock,1", "book", schema.BadText, long, "longer than 256 bytes"},
 		{"A,North,ALBA,stock,ten", "quantity", schema.BadNumber, "ten", "expected a number"},

@@ -219,6 +219,7 @@ func (c *column) start(r io.ReaderAt, size int64, m *parquet.ColumnMetaData, row
 	if m.NumValues != rows {
 		return damaged("it has %d values for %d rows", m.NumValues, rows)
 	}
+	c.values.dictionary = plain{} // that of the row group before is none of this one's
 	return c.pages.start(r, size, m)
 }
 

@@ -83,3 +83,29 @@ func TestUnknownAnnotation(t *testing.T) {
 		t.Error(err)
 	}
 }
+
+// A row group without a dictionary of its own does not take that of the one before.
+func TestDictionaryOfItsRowGroup(t *testing.T) {
+	f := &File{limits: new(schema.Limits)}
+	c := &column{physical: parquet.Type_INT32, file: f}
+	if err := c.values.setDictionary(c, []byte{7, 0, 0, 0}, 1, parquet.Encoding_PLAIN); err != nil {
+		t.Fatal(err)
+	}
+	index := []byte{1, 2, 0} // of one bit: a run of one 0
+	read := func() error {
+		if err := c.values.start(c, parquet.Encoding_RLE_DICTIONARY, index); err != nil {
+			return err
+		}
+		return c.values.read(c, 1)
+	}
+	if err := read(); err != nil || c.values.ints[0] != 7 {
+		t.Fatalf("%v %v", err, c.values.ints)
+	}
+	meta := &parquet.ColumnMetaData{Type: parquet.Type_INT32, NumValues: 1, DataPageOffset: 4}
+	if err := c.start(bytes.NewReader(make([]byte, 100)), 100, meta, 1); err != nil {
+		t.Fatal(err)
+	}
+	if err := read(); !errors.Is(err, errDamaged) {
+		t.Errorf("%v, want a damaged file", err)
+	}
+}
