@@ -83,12 +83,21 @@ func (w *work) listJobs(l *Lines, price []float64, tolerance float64) {
 		}
 		w.lay(&c, c.Vol[0], core, similar, tolerance)
 		o := job{from: from, until: until, similar: similar, right: w.right(&c), sign: c.Sign, core: core, plan: w.plan}
-		b.legs = append(b.legs, w.plan.legs...)
-		o.plan.legs = b.legs[len(b.legs)-len(w.plan.legs):]
+		o.plan.legs = b.keep(w.plan.legs)
 		b.turn = append(b.turn, len(b.jobs))
 		b.jobs = append(b.jobs, o)
 	}
 	slices.SortFunc(b.turn, func(i, k int) int { return cmp.Or(b.jobs[i].compare(&b.jobs[k]), i-k) })
+}
+
+// keep returns a copy of legs, which those of the job before may be: volatilities
+// that are near each other have the same.
+func (b *prices) keep(legs []leg) []leg {
+	if last := len(b.jobs) - 1; last >= 0 && slices.Equal(b.jobs[last].plan.legs, legs) {
+		return b.jobs[last].plan.legs
+	}
+	b.legs = append(b.legs, legs...)
+	return b.legs[len(b.legs)-len(legs):]
 }
 
 // isShared reports whether line k is read from the grid of line i.
