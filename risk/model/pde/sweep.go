@@ -1,7 +1,7 @@
 package pde
 
 // course is what a lane of a sweep goes by. In Solve the lanes have one course, in
-// Prices each its own; the courses of a sweep are alike, see compareCourse.
+// Prices each its own; the courses of a sweep are alike, see compare.
 type course struct {
 	plan *plan
 	divs schedule
