@@ -39,6 +39,7 @@ type Worker struct {
 	last  termKey
 	term  term
 	notes map[noteKey]*schema.Note
+	taken []rowNote
 
 	rows      [][]int32              // by route: 2·product, plus 1 for its expired form
 	schedules []*instrument.Schedule // by row of the batch
@@ -163,7 +164,7 @@ func (e *Engine) exercise(b *schema.Batch, w *Worker, rows []int32) {
 			refuse(b, int(i), schema.Inaccurate, "", "", "the estimated error of its price by finite differences is "+number(x.PriceError[j])+
 				", more than 1 % of the price of the underlying: price it elsewhere, or check vol "+number(b.VolUsed[i])+", time "+number(b.Time[i])+" and the dividends of the underlying")
 		case x.Flags[j]&instrument.Uncertain != 0:
-			w.note(b, int(i), schema.PriceUncertain, b.Underlying[i])
+			w.note(int(i), schema.PriceUncertain, b.Underlying[i])
 		}
 	}
 }

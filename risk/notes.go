@@ -13,19 +13,33 @@ type noteKey struct {
 	subject schema.Code
 }
 
-// note counts a warning about row i; flushNotes writes them to the batch.
-func (w *Worker) note(b *schema.Batch, i int, code schema.NoteCode, subject schema.Code) {
-	key := noteKey{code, subject}
-	n := w.notes[key]
-	if n == nil {
-		n = &schema.Note{Code: code, Line: b.Line[i]}
-		w.notes[key] = n
-	}
-	n.Count++
+// rowNote is a warning about a row, which may be refused yet.
+type rowNote struct {
+	noteKey
+	row int32
 }
 
-// flushNotes moves the worker's warnings to the batch, in a fixed order.
+// note takes down a warning about row i; flushNotes writes them to the batch.
+func (w *Worker) note(i int, code schema.NoteCode, subject schema.Code) {
+	w.taken = append(w.taken, rowNote{noteKey{code, subject}, int32(i)})
+}
+
+// flushNotes counts the worker's warnings about rows that were priced, and moves
+// them to the batch, in a fixed order.
 func (e *Engine) flushNotes(b *schema.Batch, w *Worker) {
+	for _, t := range w.taken {
+		if b.Status[t.row] == schema.Rejected {
+			continue
+		}
+		n := w.notes[t.noteKey]
+		if n == nil {
+			n = &schema.Note{Code: t.code, Line: b.Line[t.row]}
+			w.notes[t.noteKey] = n
+		}
+		n.Line = min(n.Line, b.Line[t.row])
+		n.Count++
+	}
+	w.taken = w.taken[:0]
 	for key, n := range w.notes {
 		switch key.code {
 		case schema.CurveFlatEnd:

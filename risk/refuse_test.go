@@ -269,3 +269,25 @@ func TestSurfaceThatCannotBeBuilt(t *testing.T) {
 		}
 	}
 }
+
+// A warning is about lines that were priced with what it tells of, not about those
+// refused afterwards.
+func TestWarningsLeaveOutRefusedLines(t *testing.T) {
+	d := newDesk(t)
+	d.rate("EUR", 0.03)
+	d.underlying("flat", schema.Equity, "EUR", 100, 0, 0.4)
+	d.underlying("bare", schema.Equity, "EUR", 100, 0, nan)
+	huge := option("flat", schema.Call, 100, 500, 0)
+	huge.quantity, huge.multiplier = 1e300, 1e300
+	b := d.price(huge, option("bare", schema.Call, 100, 500, 0), option("flat", schema.Call, 100, 500, 0), option("flat", schema.Call, 100, 50, 0))
+	if len(b.Rejects) != 2 {
+		t.Fatal(b.Rejects)
+	}
+	got := map[schema.NoteCode][2]int64{}
+	for _, n := range b.Notes {
+		got[n.Code] = [2]int64{n.Count, n.Line}
+	}
+	if len(b.Notes) != 2 || got[schema.CurveFlatEnd] != [2]int64{2, 4} || got[schema.VolFallback] != [2]int64{2, 4} {
+		t.Errorf("warnings %v", b.Notes)
+	}
+}

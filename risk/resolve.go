@@ -116,7 +116,7 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 		}
 		route, w.schedules[i] = 2*(at-1), t.dividends
 		if t.dividendsPV > largeDividends*u.Price {
-			w.note(b, i, schema.DividendsLarge, b.Underlying[i])
+			w.note(i, schema.DividendsLarge, b.Underlying[i])
 		}
 		if b.DividendsPV[i] = t.dividendsPV; inst == schema.Option && e.market.Models.Dividends == schema.Escrowed && !(t.forward > 0) {
 			return refuse(b, i, schema.BadMarketData, "underlying", u.Name, "the forward price to expiry is "+number(t.forward)+
@@ -129,7 +129,7 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 		b.Carry[i] = t.rate
 	}
 	if !t.curveInside {
-		w.note(b, i, schema.CurveFlatEnd, u.CurveID)
+		w.note(i, schema.CurveFlatEnd, u.CurveID)
 	}
 	if inst == schema.Option && !e.volatility(b, i, u, t, w) {
 		return noRoute
@@ -187,11 +187,11 @@ func (e *Engine) volatility(b *schema.Batch, i int, u *market.Underlying, t term
 		vol, inside := u.Surface.Vol(b.Strike[i], t.forward, t.time)
 		b.VolUsed[i], b.VolSource[i] = vol, schema.VolFromSurface
 		if !inside {
-			w.note(b, i, schema.SurfaceFlatEnd, b.Underlying[i])
+			w.note(i, schema.SurfaceFlatEnd, b.Underlying[i])
 		}
 	case !math.IsNaN(u.FlatVol):
 		b.VolUsed[i], b.VolSource[i] = u.FlatVol, schema.VolFromUnderlying
-		w.note(b, i, schema.VolFallback, b.Underlying[i])
+		w.note(i, schema.VolFallback, b.Underlying[i])
 	default:
 		refuse(b, i, schema.NoVol, "vol", "", "there is no volatility: give the line a vol, or "+u.Name+" a surface in vols or a vol in underlyings")
 		return false
