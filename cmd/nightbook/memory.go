@@ -5,6 +5,7 @@ import (
 	"math"
 	"runtime"
 	"runtime/debug"
+	"runtime/metrics"
 	"strconv"
 	"strings"
 
@@ -25,7 +26,8 @@ const (
 // share is how a run divides the memory it may take.
 type share struct {
 	workers   int
-	groupRows int // of the row groups of Parquet files; 0: as many as usual
+	groupRows int   // of the row groups of Parquet files; 0: as many as usual
+	live      int64 // bytes that may be in use at a time; 0: any number
 }
 
 // divide divides o.memory. It is called when the market is in memory. Row groups
@@ -35,10 +37,35 @@ func (o *options) divide(columns []schema.Column) (share, error) {
 	if o.memory == 0 {
 		return share{workers: o.workers}, nil
 	}
+	runtime.GC() // what is left of reading is not what the market takes
 	var m runtime.MemStats
 	runtime.ReadMemStats(&m)
-	need := int64(programMemory) + int64(m.HeapAlloc)
-	s := share{}
+	s, need := o.needed(columns, o.memory)
+	need += int64(m.HeapAlloc)
+	const fewest = (1 + moreJobs) * jobMemory
+	if need+fewest > o.memory {
+		// With more memory the row groups are larger, which takes some of it.
+		enough := o.memory
+		for more := need; more+fewest > enough; more += int64(m.HeapAlloc) {
+			enough = (more + fewest + 2*mib) / mib * mib
+			_, more = o.needed(columns, enough)
+		}
+		return s, &hinted{
+			fmt.Errorf("--memory %s is too little for this run, which takes %d MiB", sizeText(o.memory), enough/mib),
+			"give --memory more, fewer --formats, or leave --memory away",
+		}
+	}
+	s.workers = int(min(int64(o.workers), (o.memory-need)/jobMemory-moreJobs))
+	most := o.memory - programMemory
+	s.live = most / 8 * 7 // what is kept grows by more than it was, now and then
+	debug.SetMemoryLimit(most)
+	return s, nil
+}
+
+// needed returns the row groups under a ceiling, and what a run takes beside the
+// market and the batches on their way.
+func (o *options) needed(columns []schema.Column, ceiling int64) (s share, need int64) {
+	need = programMemory
 	for _, f := range o.formats {
 		switch f {
 		case "xlsx":
@@ -46,20 +73,37 @@ func (o *options) divide(columns []schema.Column) (share, error) {
 		case "csv":
 			need += csvMemory
 		case "parquet":
-			s.groupRows = parquet.GroupRows(columns, o.memory/2)
+			s.groupRows = parquet.GroupRows(columns, ceiling/2)
 			need += parquet.Memory(columns, s.groupRows)
 		}
 	}
-	const fewestJobs = 1 + moreJobs
-	if least := need + fewestJobs*jobMemory; least > o.memory {
-		return s, &hinted{
-			fmt.Errorf("--memory %s is too little for this run, which takes %d MiB", sizeText(o.memory), (least+mib-1)/mib),
-			"give --memory more, fewer --formats, or leave --memory away",
-		}
+	return s, need
+}
+
+// held looks at what the collector could not free when it last looked: names that
+// differ from line to line are kept, and no collector can keep a ceiling for them.
+type held struct {
+	most   int64 // 0: any number of bytes
+	sample [1]metrics.Sample
+}
+
+func newHeld(most int64) *held {
+	return &held{most, [1]metrics.Sample{{Name: "/gc/heap/live:bytes"}}}
+}
+
+// check fails a run that holds more than it may.
+func (h *held) check(o *options, file string, rows int64) error {
+	if h.most == 0 {
+		return nil
 	}
-	s.workers = int(min(int64(o.workers), (o.memory-need)/jobMemory-moreJobs))
-	debug.SetMemoryLimit(o.memory - programMemory)
-	return s, nil
+	if metrics.Read(h.sample[:]); int64(h.sample[0].Value.Uint64()) <= h.most {
+		return nil
+	}
+	return &hinted{
+		fmt.Errorf("%s: --memory %s is too little for what is kept of the first %d rows: every name of a book, an underlying or a strategy, and every line_id that does not end in a number",
+			file, sizeText(o.memory), rows),
+		"give --memory more, or see whether these columns hold what they should: their texts differ from row to row",
+	}
 }
 
 // Once so many rows have been written all buffers have been made. What is

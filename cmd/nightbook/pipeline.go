@@ -83,6 +83,7 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 	}
 	var memory flat
 	defer memory.end()
+	kept := newHeld(share.live)
 	var early []schema.ExerciseRow
 	bar := con.progress(positions.Size())
 	err = ordered(ctx, jobs, share.workers,
@@ -101,6 +102,9 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 			j.batch.Compact()
 			totals.AddLines(&j.batch, engine.Kind)
 			memory.reach(gate.rowsIn)
+			if err := kept.check(o, positions.Name(), gate.rowsIn); err != nil {
+				return err
+			}
 			bar.reach(j.piece.Bytes, gate.rowsIn)
 			early = engine.EarlyExercise(&j.batch, early[:0])
 			return out.batch(&j.batch, early)

@@ -7,6 +7,7 @@ import (
 	"path/filepath"
 	"slices"
 	"strconv"
+	"strings"
 
 	"github.com/rogpeppe/go-internal/testscript"
 )
@@ -17,6 +18,7 @@ var scriptCommands = map[string]func(ts *testscript.TestScript, neg bool, args [
 	"samefolder": scriptSameFolder,
 	"only":       scriptOnly,
 	"cpfolder":   scriptCopyFolder,
+	"ownbooks":   scriptOwnBooks,
 }
 
 // scriptStatus runs a command that must end with a status: status N COMMAND ….
@@ -95,4 +97,19 @@ func scriptCopyFolder(ts *testscript.TestScript, neg bool, args []string) {
 		ts.Fatalf("usage: cpfolder from to")
 	}
 	ts.Check(os.CopyFS(ts.MkAbs(args[1]), os.DirFS(ts.MkAbs(args[0]))))
+}
+
+// scriptOwnBooks gives each line of a position file a book of its own: ownbooks FILE.
+func scriptOwnBooks(ts *testscript.TestScript, neg bool, args []string) {
+	if neg || len(args) != 1 {
+		ts.Fatalf("usage: ownbooks file")
+	}
+	lines := strings.Split(ts.ReadFile(args[0]), "\n")
+	for i, line := range lines[1:] {
+		if id, rest, ok := strings.Cut(line, ","); ok {
+			_, rest, _ = strings.Cut(rest, ",")
+			lines[1+i] = id + ",B" + strconv.Itoa(i) + "," + rest
+		}
+	}
+	ts.Check(os.WriteFile(ts.MkAbs(args[0]), []byte(strings.Join(lines, "\n")), 0o666))
 }
