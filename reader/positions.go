@@ -96,5 +96,13 @@ func (p *Positions) Next(pc *Piece) error {
 	return nil
 }
 
+// CheckBooks fails if the rows bound so far name more books than the limit allows.
+func (p *Positions) CheckBooks() error {
+	if int64(p.dicts.Books.Len()-1) > p.cfg.Limits.Of(schema.Books) { // the empty text has a code too
+		return p.o.in.fail(p.o.sheet, p.cfg.Limits.Exceeded(schema.Books))
+	}
+	return nil
+}
+
 // Close closes the file.
 func (p *Positions) Close() error { return p.o.Close() }

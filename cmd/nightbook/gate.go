@@ -48,6 +48,9 @@ func (g *gate) market(out *outputs) error {
 // rows passes a priced batch.
 func (g *gate) rows(b *schema.Batch) error {
 	g.rowsIn += int64(b.N)
+	if err := g.positions.CheckBooks(); err != nil {
+		return err
+	}
 	for i := range b.N {
 		id := b.LineID.Bytes(i)
 		if len(id) == 0 || !g.ids.Seen(id) || b.Status[i] == schema.Rejected {
