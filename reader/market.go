@@ -65,6 +65,9 @@ func (f *Folder) readMarket(name string, cfg *schema.Config, m *schema.Market, r
 			if len(bad) > 0 && bad[0].Row == i {
 				r.refuse(-1, &finding{schema.BadRow, bad[0].Reason})
 				bad = bad[1:]
+				if name == "quotes" { // each is answered, this one too
+					m.Quotes = append(m.Quotes, unreadQuote(r))
+				}
 			} else {
 				row(r)
 			}

@@ -39,6 +39,12 @@ func quoteRows(m *schema.Market, _ *schema.Config) func(*marketRow) {
 	}
 }
 
+// unreadQuote returns the quote of a row that cannot be taken apart.
+func unreadQuote(r *marketRow) schema.QuoteRow {
+	x, nan := r.rejected(), math.NaN()
+	return schema.QuoteRow{Line: r.line(), Day: schema.NoDate, Minute: schema.NoMinute, Strike: nan, Price: nan, Bid: nan, Ask: nan, Reject: &x}
+}
+
 // chosen returns a word of a closed list, 0 for an empty cell or a column that
 // is not there; empty, if not nil, is what is wrong with those.
 func (r *marketRow) chosen(name string, list schema.Choices, other, empty *finding) schema.Choice {

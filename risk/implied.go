@@ -66,6 +66,9 @@ func prepare(m *market.Market, d *schema.Dicts, q *schema.ImpliedRow) *instrumen
 		if r.Column != "" {
 			where = "column " + r.Column + ", "
 		}
+		if r.Code == schema.BadRow {
+			return no(schema.QuoteRejected, r.Reason)
+		}
 		return no(schema.QuoteRejected, fmt.Sprintf("%s%s %q: %s", where, r.Code, r.Value, r.Reason))
 	}
 	if q.Used = q.Price; math.IsNaN(q.Price) {
@@ -166,8 +169,12 @@ func SurfaceOf(implied []schema.ImpliedRow, file string) ([]schema.VolRow, []sch
 		if q.Status != schema.QuoteOK {
 			n := lost[q.Underlying]
 			if n == nil {
+				whose := "of " + q.Underlying
+				if q.Underlying == "" {
+					whose = "that name no underlying"
+				}
 				n = &schema.Note{Code: schema.QuoteNotUsed, Subject: q.Underlying, Line: q.Line, File: file,
-					Message: "quotes of " + q.Underlying + " gave no volatility and are not in its surface: nightbook implied tells why"}
+					Message: "quotes " + whose + " gave no volatility and are not in the surface: nightbook implied tells why"}
 				lost[q.Underlying] = n
 			}
 			n.Count++

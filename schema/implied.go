@@ -44,7 +44,7 @@ var QuoteStatuses = Choices{"", "ok", "rejected", "no_market", "unsupported", "e
 // QuoteStatusDocs is the closed list of what can become of a quote.
 var QuoteStatusDocs = []CodeDoc{
 	{"ok", "the volatility gives the price back"},
-	{"rejected", "a cell of the quote cannot be read"},
+	{"rejected", "the row, or a cell of it, cannot be read"},
 	{"no_market", "the underlying, its price or its zero curve is missing or in doubt"},
 	{"unsupported", "this version does not invert such an option"},
 	{"expired", "the option has expired at as_of"},
