@@ -1,6 +1,7 @@
 package main
 
 import (
+	"context"
 	"fmt"
 	"math"
 	"runtime"
@@ -8,6 +9,7 @@ import (
 	"runtime/metrics"
 	"strconv"
 	"strings"
+	"time"
 
 	"nightbook/schema"
 	"nightbook/writer/parquet"
@@ -91,12 +93,78 @@ func newHeld(most int64) *held {
 	return &held{most, [1]metrics.Sample{{Name: "/gc/heap/live:bytes"}}}
 }
 
+func (h *held) over() bool {
+	if h.most == 0 {
+		return false
+	}
+	metrics.Read(h.sample[:])
+	return int64(h.sample[0].Value.Uint64()) > h.most
+}
+
+// marketWatch keeps the ceiling while the market is read and built.
+type marketWatch struct {
+	stop   chan struct{}
+	over   chan error // what it found, once it has stopped
+	err    error
+	cancel context.CancelFunc
+}
+
+const (
+	watchEvery  = 20 * time.Millisecond
+	leastMarket = 32 * mib // below that it is told later, when it is known what the run takes
+)
+
+// watchMarket has the collector keep the ceiling from now on. What it returns is
+// cancelled when it cannot, or when the watch is closed.
+func (o *options) watchMarket(ctx context.Context) (context.Context, *marketWatch) {
+	w := &marketWatch{stop: make(chan struct{}), over: make(chan error, 1), cancel: func() {}}
+	if o.memory == 0 {
+		w.over <- nil
+		return ctx, w
+	}
+	ctx, w.cancel = context.WithCancel(ctx)
+	most := max(o.memory-programMemory, leastMarket)
+	debug.SetMemoryLimit(most)
+	h, stop := newHeld(most/8*7), w.stop
+	go func() {
+		tick := time.NewTicker(watchEvery)
+		defer tick.Stop()
+		for !h.over() {
+			select {
+			case <-stop:
+				w.over <- nil
+				return
+			case <-tick.C:
+			}
+		}
+		err := &hinted{
+			fmt.Errorf("--memory %s is too little for the market, which is held whole: more than %d MiB were in use before it was read", sizeText(o.memory), h.most/mib),
+			"give --memory more, or see whether the files of the market hold what they should; [limits] market_rows bounds them",
+		}
+		w.over <- err
+		w.cancel()
+	}()
+	return ctx, w
+}
+
+// end ends the watch and returns what it found, however often it is called.
+func (w *marketWatch) end() error {
+	if w.stop != nil {
+		close(w.stop)
+		w.stop, w.err = nil, <-w.over
+	}
+	return w.err
+}
+
+// close ends the watch and what ran under it.
+func (w *marketWatch) close() {
+	w.end()
+	w.cancel()
+}
+
 // check fails a run that holds more than it may.
 func (h *held) check(o *options, file string, rows int64) error {
-	if h.most == 0 {
-		return nil
-	}
-	if metrics.Read(h.sample[:]); int64(h.sample[0].Value.Uint64()) <= h.most {
+	if !h.over() {
 		return nil
 	}
 	return &hinted{

@@ -1,12 +1,17 @@
 package main
 
 import (
+	"context"
 	"errors"
 	"fmt"
+	"os"
+	"path/filepath"
+	"runtime"
 	"runtime/debug"
 	"strings"
 	"testing"
 
+	"nightbook/samples"
 	"nightbook/schema"
 )
 
@@ -35,5 +40,43 @@ func TestEnoughMemory(t *testing.T) {
 				}
 			}
 		}
+	}
+}
+
+// A market beyond the ceiling ends the run while it is read.
+func TestMarketBeyondMemory(t *testing.T) {
+	dir := filepath.Join(t.TempDir(), "desk")
+	if err := samples.Write(dir, samples.Options{Lines: 10, Seed: 1}); err != nil {
+		t.Fatal(err)
+	}
+	f, err := os.OpenFile(filepath.Join(dir, "vols.csv"), os.O_APPEND|os.O_WRONLY, 0)
+	if err != nil {
+		t.Fatal(err)
+	}
+	var b strings.Builder
+	for i := range 1_000_000 {
+		fmt.Fprintf(&b, "BIG,20%02d-01-01,%d,0.2\n", 27+i%70, 1+i/70)
+	}
+	if _, err := f.WriteString(b.String()); err != nil {
+		t.Fatal(err)
+	}
+	if err := f.Close(); err != nil {
+		t.Fatal(err)
+	}
+	o := &options{snapshot: dir, out: filepath.Join(t.TempDir(), "out"), formats: []string{"csv"}, workers: 1, memory: 100 * mib}
+	b.Reset()
+	_, err = pipeline(context.Background(), o, newConsole(os.Stderr, "text"))
+	if err == nil || !strings.Contains(err.Error(), "--memory 100MiB is too little for the market") {
+		t.Errorf("%v", err)
+	}
+	if limit := debug.SetMemoryLimit(-1); limit < 1<<40 {
+		t.Errorf("a limit of %d bytes is left behind", limit)
+	}
+	// The user's stop is told as that.
+	runtime.GC() // what is in use is as the collector saw it last
+	ctx, cancel := context.WithCancel(context.Background())
+	cancel()
+	if _, err := pipeline(ctx, o, newConsole(os.Stderr, "text")); !errors.Is(err, context.Canceled) {
+		t.Errorf("%v", err)
 	}
 }

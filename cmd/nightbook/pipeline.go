@@ -1,6 +1,7 @@
 package main
 
 import (
+	"cmp"
 	"context"
 	"fmt"
 	"runtime/debug"
@@ -29,6 +30,9 @@ const moreJobs = 2
 //
 // With o.out == "" everything is read and priced, and nothing written.
 func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, error) {
+	defer debug.SetMemoryLimit(debug.SetMemoryLimit(-1)) // as it was
+	ctx, watch := o.watchMarket(ctx)
+	defer watch.close()
 	folder, err := reader.OpenFolder(ctx, o.snapshot)
 	if err != nil {
 		return nil, err
@@ -39,11 +43,11 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 	}
 	raw, err := folder.Market(cfg)
 	if err != nil {
-		return nil, err
+		return nil, cmp.Or(watch.end(), err)
 	}
 	dicts := schema.NewDicts()
 	mkt, marketNotes, err := buildMarket(ctx, folder, cfg, raw, dicts)
-	if err != nil {
+	if err := cmp.Or(watch.end(), err); err != nil {
 		return nil, err
 	}
 	totals, err := aggregate.NewTotals(raw.Books, dicts)
@@ -56,7 +60,6 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 	}
 	defer positions.Close()
 	lines := schema.LinesTable(positions.Extra())
-	defer debug.SetMemoryLimit(debug.SetMemoryLimit(-1)) // as it was, behind divide
 	share, err := o.divide(lines.Columns)
 	if err != nil {
 		return nil, err
