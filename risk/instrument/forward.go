@@ -24,7 +24,7 @@ func ForwardWithDividends(r *Run) {
 		left := r.TimeAfter[step]
 		model.ForwardPrice(r.After[step], r.Spot, r.Strike, left, r.Rate, r.Yield)
 		for i, d := range r.Dividends {
-			gone := d.Drop[step] * vec.Exp1(0-float64(r.Yield[i]*left[i])) // of the spot
+			gone := float64(d.Drop[step] * vec.Exp1(0-float64(r.Yield[i]*left[i]))) // of the spot
 			r.After[step][i] -= gone + model.DividendsWorth(left[i], r.Rate[i], r.Yield[i], d.After[step])
 		}
 	}
