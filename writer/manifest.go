@@ -19,7 +19,6 @@ type manifest struct {
 	Program           string          `json:"program"`
 	Version           string          `json:"version"`
 	SchemaRevision    int             `json:"schema_revision"`
-	Kernel            string          `json:"kernel"`
 	AsOf              string          `json:"as_of"`
 	ReportingCurrency string          `json:"reporting_currency"`
 	Calendar          string          `json:"calendar"`
@@ -147,11 +146,9 @@ type manifestFile struct {
 }
 
 // Manifest returns manifest.json: what was read, what was written, and the
-// figures to hold a later reading of the files against. The kernel is the name
-// of the pricing kernel that ran: the one field that tells of the machine, and
-// may differ between machines for the same inputs. A total that is not finite is
-// refused.
-func Manifest(s *schema.Summary, kernel string, outputs []schema.OutputFile) ([]byte, error) {
+// figures to hold a later reading of the files against. Nothing in it tells of the
+// machine. A total that is not finite is refused.
+func Manifest(s *schema.Summary, outputs []schema.OutputFile) ([]byte, error) {
 	if err := finiteTotals(s); err != nil {
 		return nil, err
 	}
@@ -159,7 +156,6 @@ func Manifest(s *schema.Summary, kernel string, outputs []schema.OutputFile) ([]
 		Program:           program,
 		Version:           s.Version,
 		SchemaRevision:    schema.Revision,
-		Kernel:            kernel,
 		AsOf:              s.Config.AsOf.String(),
 		ReportingCurrency: s.Config.ReportingCurrency,
 		Calendar:          s.Config.Calendar,

@@ -20,22 +20,22 @@ func summary(n int) *schema.Summary {
 func TestManifest(t *testing.T) {
 	s := summary(300)
 	outputs := []schema.OutputFile{{Name: "lines.parquet", SHA256: "ab", Bytes: 12, Rows: 300}}
-	data, err := Manifest(s, "avx2", outputs)
+	data, err := Manifest(s, outputs)
 	if err != nil {
 		t.Fatal(err)
 	}
 	for range 3 {
-		if again, err := Manifest(summary(300), "avx2", outputs); err != nil || !bytes.Equal(again, data) {
+		if again, err := Manifest(summary(300), outputs); err != nil || !bytes.Equal(again, data) {
 			t.Fatal("other bytes", err)
 		}
 	}
 	var m struct {
-		Program, Version, Kernel, Caution string
-		SchemaRevision                    int    `json:"schema_revision"`
-		AsOf                              string `json:"as_of"`
-		Currency                          string `json:"reporting_currency"`
-		Conventions                       map[string]string
-		Counts                            struct {
+		Program, Version, Caution string
+		SchemaRevision            int    `json:"schema_revision"`
+		AsOf                      string `json:"as_of"`
+		Currency                  string `json:"reporting_currency"`
+		Conventions               map[string]string
+		Counts                    struct {
 			In       int64 `json:"rows_in"`
 			Priced   int64
 			Expired  int64
@@ -72,7 +72,7 @@ func TestManifest(t *testing.T) {
 	if err := d.Decode(&m); err != nil {
 		t.Fatal(err)
 	}
-	if m.Program != "nightbook" || m.Version != "1.2.3" || m.Kernel != "avx2" || m.SchemaRevision != schema.Revision ||
+	if m.Program != "nightbook" || m.Version != "1.2.3" || m.SchemaRevision != schema.Revision ||
 		m.AsOf != "2026-01-30" || m.Currency != "USD" || m.Caution != schema.Caution || len(m.Conventions) < 5 {
 		t.Errorf("head: %+v", m)
 	}
@@ -100,7 +100,7 @@ func TestManifest(t *testing.T) {
 		t.Errorf("outputs: %+v", m.Outputs)
 	}
 	last := -1
-	for _, key := range []string{"program", "version", "schema_revision", "kernel", "as_of", "reporting_currency", "conventions", "models", "american_setting",
+	for _, key := range []string{"program", "version", "schema_revision", "as_of", "reporting_currency", "conventions", "models", "american_setting",
 		"counts", "control_totals", "quantity", "value_base", "inputs", "outputs", "caution"} {
 		at := bytes.Index(data, []byte(`"`+key+`":`))
 		if at <= last {
@@ -120,13 +120,13 @@ func TestManifestRefusesWhatIsNotFinite(t *testing.T) {
 	} {
 		s := summary(10)
 		spoil(s)
-		if _, err := Manifest(s, "generic", nil); err == nil || !strings.Contains(err.Error(), name) || !strings.Contains(err.Error(), "not finite") {
+		if _, err := Manifest(s, nil); err == nil || !strings.Contains(err.Error(), name) || !strings.Contains(err.Error(), "not finite") {
 			t.Errorf("%s: error %v", name, err)
 		}
 	}
 	s := summary(10)
 	s.MaxResidual = math.NaN() // no option was priced
-	data, err := Manifest(s, "generic", nil)
+	data, err := Manifest(s, nil)
 	if err != nil || !bytes.Contains(data, []byte(`"max_pde_residual": null`)) {
 		t.Errorf("no option priced: %v", err)
 	}
@@ -189,7 +189,7 @@ func TestRejectsAsTheyCame(t *testing.T) {
 func ExampleManifest() {
 	s := &schema.Summary{Config: &schema.Config{ReportingCurrency: "EUR"}, Version: "1.0", MaxResidual: math.NaN()}
 	s.Config.AsOf.Minute = schema.NoMinute
-	data, err := Manifest(s, "generic", nil)
+	data, err := Manifest(s, nil)
 	if err != nil {
 		fmt.Println(err)
 	}
@@ -199,7 +199,6 @@ func ExampleManifest() {
 	//   "program": "nightbook",
 	//   "version": "1.0",
 	//   "schema_revision": 2,
-	//   "kernel": "generic",
 	//   "as_of": "1970-01-01",
 	//   "reporting_currency": "EUR",
 }

@@ -11,6 +11,7 @@ import (
 	"time"
 	"unicode/utf8"
 
+	"nightbook/risk/vec"
 	"nightbook/schema"
 )
 
@@ -78,7 +79,7 @@ func (c *console) finished(verb string, s *schema.Summary, dir string, took time
 	if c.json != nil {
 		c.json.Info(verb, "as_of", s.Config.AsOf.String(), "rows_in", s.RowsIn, "priced", s.Total.Priced, "expired", s.Total.Expired,
 			"rejected", s.Rejects, "market_rows_rejected", s.Faults, "warnings", len(s.Notes), "value_base", s.Total.Measures[schema.Value],
-			"reporting_currency", s.Config.ReportingCurrency, "folder", dir, "seconds", took.Seconds(), "rows_per_second", rate)
+			"reporting_currency", s.Config.ReportingCurrency, "folder", dir, "seconds", took.Seconds(), "rows_per_second", rate, "kernel", vec.Tier())
 		return
 	}
 	fmt.Fprintf(c.w, "%s %s: %s rows in = %s priced + %s expired + %s rejected", verb, s.Config.AsOf,
@@ -97,7 +98,7 @@ func (c *console) finished(verb string, s *schema.Summary, dir string, took time
 	if dir != "" {
 		fmt.Fprintf(c.w, "results in %s\n", filepath.ToSlash(dir))
 	}
-	fmt.Fprintf(c.w, "%.2f s, %s rows a second\n", took.Seconds(), grouped(rate, 0))
+	fmt.Fprintf(c.w, "%.2f s, %s rows a second (%s)\n", took.Seconds(), grouped(rate, 0), vec.Tier())
 }
 
 // mostBooks is how many top-level books are told of.

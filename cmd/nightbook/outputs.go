@@ -10,7 +10,6 @@ import (
 	"slices"
 	"strconv"
 
-	"nightbook/risk/vec"
 	"nightbook/schema"
 	"nightbook/writer"
 	"nightbook/writer/report"
@@ -239,7 +238,7 @@ func (out *outputs) commit(s *schema.Summary) error {
 	if err := out.ctx.Err(); err != nil {
 		return err
 	}
-	manifest, err := writer.Manifest(s, vec.Tier(), out.folder.Outputs())
+	manifest, err := writer.Manifest(s, out.folder.Outputs())
 	if err != nil {
 		return err
 	}
