@@ -12,7 +12,5 @@ import (
 func main() {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
 	context.AfterFunc(ctx, stop) // a second Ctrl-C ends the program at once
-	status := run(ctx, os.Args, os.Stdout, os.Stderr)
-	stop()
-	os.Exit(status)
+	os.Exit(run(ctx, os.Args, os.Stdout, os.Stderr)) // still listening: a run that is done says so
 }
