@@ -165,8 +165,13 @@ func (p *Writer) each(do func(i int, s *scratch) error) error {
 	return nil
 }
 
+// held is how many bytes the pages of the row group at hand take: none where
+// there is none, the last one being written.
 func (p *Writer) held() int64 {
 	var n int64
+	if p.group == nil {
+		return 0
+	}
 	for _, c := range p.columns {
 		n += c.held()
 	}
