@@ -11,6 +11,6 @@ import (
 
 func main() {
 	ctx, stop := signal.NotifyContext(context.Background(), os.Interrupt, syscall.SIGTERM)
-	context.AfterFunc(ctx, stop) // a second Ctrl-C ends the program at once
+	context.AfterFunc(ctx, stop)                     // a second Ctrl-C ends the program at once
 	os.Exit(run(ctx, os.Args, os.Stdout, os.Stderr)) // still listening: a run that is done says so
 }
