@@ -1,9 +1,6 @@
 package instrument
 
-import (
-	"nightbook/risk/model"
-	"nightbook/risk/vec"
-)
+import "nightbook/risk/model"
 
 // ForwardOnSpot values forwards on a spot price.
 func ForwardOnSpot(r *Run) {
@@ -16,18 +13,11 @@ func ForwardOnSpot(r *Run) {
 // ForwardWithDividends values forwards on a share that pays cash dividends before
 // they expire.
 func ForwardWithDividends(r *Run) {
-	model.Forward(&r.Greeks, r.Spot, r.Strike, r.Time, r.Rate, r.Yield)
-	for i, d := range r.Dividends {
-		model.LessDividends(&r.Greeks, i, r.Time[i], r.Rate[i], r.Yield[i], d.Now)
-	}
-	for step := range r.revaluations {
-		left := r.TimeAfter[step]
-		model.ForwardPrice(r.After[step], r.Spot, r.Strike, left, r.Rate, r.Yield)
-		for i, d := range r.Dividends {
-			gone := float64(d.Drop[step] * vec.Exp1(0-float64(r.Yield[i]*left[i]))) // of the spot
-			r.After[step][i] -= gone + model.DividendsWorth(left[i], r.Rate[i], r.Yield[i], d.After[step])
-		}
-	}
+	r.lessEscrow(func() {
+		model.Forward(&r.Greeks, r.rest, r.Strike, r.Time, r.Rate, r.Yield)
+	}, func(step int) {
+		model.ForwardPrice(r.After[step], r.rest, r.Strike, r.TimeAfter[step], r.Rate, r.Yield)
+	})
 }
 
 // ForwardOnFuture values forwards on a futures price.

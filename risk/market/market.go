@@ -262,14 +262,15 @@ func (b *builder) underlying(r schema.UnderlyingRow, vols []schema.VolRow, paid 
 		Price: r.Price, Yield: r.CarryYield, FlatVol: r.Vol,
 		CurveID: b.dicts.Curves.Code(curve), Curve: b.curve[curve],
 	}
-	switch pays := r.Kind == schema.Equity || r.Kind == schema.Index; {
+	pays := r.Kind == schema.Equity || r.Kind == schema.Index
+	switch {
 	case pays:
 		u.Dividends = dividends(paid, b.cfg.AsOf)
 	case len(paid) > 0:
 		b.notes = append(b.notes, schema.Note{Code: schema.MarketRowUnused, Subject: r.Name, Count: int64(len(paid)),
 			Message: "dividends has rows of " + r.Name + ", which is of kind " + schema.Kinds[r.Kind] + ": they are not used; only kinds equity and index pay cash dividends"})
 	}
-	if at, bad := b.faults["dividends"][r.Name]; bad && (r.Kind == schema.Equity || r.Kind == schema.Index) {
+	if at, bad := b.faults["dividends"][r.Name]; bad && pays {
 		u.Fault = "its cash dividends have a refused row: mend " + at
 	}
 	if (r.Kind == schema.FuturePrice || r.Kind == schema.Spread) && r.CarryYield != 0 {

@@ -1,9 +1,6 @@
 package model
 
-import (
-	"nightbook/risk/model/pde"
-	"nightbook/risk/vec"
-)
+import "nightbook/risk/vec"
 
 // Forward values agreements to buy at strike after time.
 //
@@ -58,37 +55,4 @@ func ForwardOnFuturePrice(price, future, strike, time, rate []float64) {
 	for i, f := range future {
 		price[i] = (f - strike[i]) * vec.Exp1(0-float64(rate[i]*time[i]))
 	}
-}
-
-// LessDividends takes from contract i, a forward on a price that pays cash
-// dividends until time, what they are worth.
-//
-// Computes V − Σ D·e^(−rt − q(T−t)) over the dividends D at t in (0, T]: what
-// they make of e^(−qT) units of the underlying. Source: as Forward.
-func LessDividends(g *Greeks, i int, time, rate, yield float64, dividends []pde.Dividend) {
-	for _, d := range dividends {
-		if !(d.Time > 0 && d.Time <= time) {
-			continue
-		}
-		w := dividendWorth(d, time, rate, yield)
-		g.Price[i] -= w
-		g.Theta[i] -= float64(rate * w)
-		g.Rho[i] += float64(d.Time * w)
-		g.CarryRho[i] += float64((time - d.Time) * w)
-	}
-}
-
-// DividendsWorth is what LessDividends takes from the price.
-func DividendsWorth(time, rate, yield float64, dividends []pde.Dividend) float64 {
-	var sum float64
-	for _, d := range dividends {
-		if d.Time > 0 && d.Time <= time {
-			sum += dividendWorth(d, time, rate, yield)
-		}
-	}
-	return sum
-}
-
-func dividendWorth(d pde.Dividend, time, rate, yield float64) float64 {
-	return float64(d.Amount * vec.Exp1(0-float64(rate*d.Time)-float64(yield*(time-d.Time))))
 }

@@ -41,10 +41,28 @@ func (s schedule) sum() float64 {
 // in escrow too, and the forward then is that of the cash-and-carry argument.
 func (s schedule) worth(carry, time float64) (value, byCarry float64) {
 	for _, d := range s {
-		t := d.Time - time
-		v := float64(d.Amount * exp(-float64(carry*t)))
+		v, by := d.escrow(carry, time)
 		value += v
-		byCarry -= float64(t * v)
+		byCarry += by
+	}
+	return value, byCarry
+}
+
+func (d Dividend) escrow(carry, time float64) (value, byCarry float64) {
+	t := d.Time - time
+	value = float64(d.Amount * exp(-float64(carry*t)))
+	return value, -float64(t * value)
+}
+
+// Escrow is what the dividends within (0, expiry] take from a price under the
+// escrowed model, Σ D·e^(−(r−q)t), and its derivative by the carry r − q.
+func Escrow(dividends []Dividend, expiry, carry float64) (value, byCarry float64) {
+	for _, d := range dividends {
+		if d.Time > 0 && d.Time <= expiry {
+			v, by := d.escrow(carry, 0)
+			value += v
+			byCarry += by
+		}
 	}
 	return value, byCarry
 }
