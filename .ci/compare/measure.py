@@ -1,21 +1,25 @@
-"""Times commands in turn: measure.py ROUNDS NAME COMMAND [NAME COMMAND ...].
+"""Times commands in turn: measure.py ROUNDS FOLDER NAME COMMAND [NAME COMMAND ...].
 
-Prints the median seconds, CPU seconds and peak memory of each, and the ratios of
+Each finds FOLDER empty, and nothing of the one before waiting to go to the disk. Prints the median seconds, CPU seconds and peak memory of each, and the ratios of
 their seconds, round by round: median, smallest, largest.
 """
 
 import os
+import shutil
 import subprocess
 import sys
 import time
 from statistics import median
 
-rounds, pairs = int(sys.argv[1]), sys.argv[2:]
+rounds, folder, pairs = int(sys.argv[1]), sys.argv[2], sys.argv[3:]
 names, commands = pairs[::2], pairs[1::2]
 
 
 def timed(command):
     """Seconds, CPU seconds and peak MiB of a shell command, children included."""
+    shutil.rmtree(folder, ignore_errors=True)
+    os.mkdir(folder)
+    os.sync()
     with open(os.devnull, "wb") as null:
         start = time.monotonic()
         child = subprocess.Popen(["/bin/sh", "-c", "exec " + command], stdout=null, stderr=subprocess.PIPE)
