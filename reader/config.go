@@ -30,6 +30,8 @@ import (
 //	date_format = "YYYY-MM-DD"      # the letters YYYY, MM, DD in the house's order, such as "DD.MM.YYYY";
 //	                                # HH:MM or HH:MM:SS may follow a date; default "YYYY-MM-DD"
 //	encoding = "utf-8"              # utf-8, windows-1252 or utf-16; a byte order mark in a file wins; default "utf-8"
+//	guard_formulas = true           # of the files written: put an apostrophe before a text that a spreadsheet would
+//	                                # take for a formula; default true
 //
 //	[vols]
 //	unit = "decimal"                # decimal: 0.20 is 20 %; percent: 20 is. Holds for the vol columns of
@@ -66,6 +68,8 @@ type runFile struct {
 		DecimalComma bool   `toml:"decimal_comma"`
 		DateFormat   string `toml:"date_format"`
 		Encoding     string `toml:"encoding"`
+
+		GuardFormulas *bool `toml:"guard_formulas"`
 	} `toml:"csv"`
 	Vols struct {
 		Unit string `toml:"unit"`
@@ -224,6 +228,7 @@ func (r *runFile) csv() (c schema.CSVConfig, err error) {
 		return c, fmt.Errorf("csv.encoding is %q: expected one of %s", r.CSV.Encoding, strings.Join(csv.EncodingNames[:], ", "))
 	}
 	c.Encoding = r.CSV.Encoding
+	c.BareText = r.CSV.GuardFormulas != nil && !*r.CSV.GuardFormulas
 	return c, nil
 }
 

@@ -41,6 +41,7 @@ delimiter = ";"
 decimal_comma = true
 date_format = "DD.MM.YYYY"
 encoding = "windows-1252"
+guard_formulas = false
 [vols]
 unit = "percent"
 [workbook]
@@ -63,7 +64,7 @@ vol = "IV"
 		t.Fatal(err)
 	}
 	want := &schema.Config{AsOf: moment(t, "2026-03-20T17:30"), ReportingCurrency: "USD", Calendar: "Northport",
-		CSV:    schema.CSVConfig{Delimiter: ';', DecimalComma: true, DateFormat: "DD.MM.YYYY", Encoding: "windows-1252"},
+		CSV:    schema.CSVConfig{Delimiter: ';', DecimalComma: true, DateFormat: "DD.MM.YYYY", Encoding: "windows-1252", BareText: true},
 		Models: schema.ModelsConfig{American: schema.Exact, Dividends: schema.Escrowed, Tolerance: 1e-6},
 		Vols:   schema.VolsConfig{Percent: true}, Parquet: schema.ParquetConfig{Compression: "none"}, Limits: schema.Limits{schema.Rows: 7},
 		Columns: map[string]map[string]string{"positions": {"strike": "Strike Px"}, "vols": {"vol": "IV"}}}

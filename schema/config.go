@@ -19,12 +19,13 @@ type Config struct {
 	Columns map[string]map[string]string
 }
 
-// CSVConfig says how the house writes its text files.
+// CSVConfig says how the house writes its text files, and how it wants ours.
 type CSVConfig struct {
 	Delimiter    byte   // 0: comma
 	DecimalComma bool   // 1.234,5 rather than 1,234.5
 	DateFormat   string // in the letters YYYY, MM, DD; "" is YYYY-MM-DD
 	Encoding     string // utf-8, windows-1252 or utf-16; "" is utf-8
+	BareText     bool   // in files written, no apostrophe before what a spreadsheet takes for a formula
 }
 
 // VolsConfig says how volatilities are written.

@@ -61,7 +61,7 @@ func words(column string) string {
 }
 
 // csvTexts says how a text of a CSV file may differ from the text it stands for.
-const csvTexts = "In CSV files a text that a spreadsheet would take for a formula, that is one that begins, after any apostrophes, with `=`, `+`, `-`, `@`, a tab or a line break and is no plain number, has an apostrophe before it." +
+const csvTexts = "In CSV files a text that a spreadsheet would take for a formula, that is one that begins, after any apostrophes, with `=`, `+`, `-`, `@`, a tab or a line break and is no plain number, has an apostrophe before it, unless `guard_formulas = false` stands under `[csv]` of run.toml." +
 	" Each NUL, and each byte that is not UTF-8, is written as `\\xHH`, such as `\\xE9` in the columns value and row of rejects."
 
 func dictionaryMarkdown(b *bytes.Buffer) {

@@ -57,7 +57,7 @@ func newOutputs(ctx context.Context, o *options, cfg *schema.Config, dicts *sche
 	out := &outputs{ctx: ctx, o: o, cfg: cfg, dicts: dicts, share: s}
 	var err error
 	if o.out == "" {
-		w, err := writer.NewTable("csv", o.check, schema.RejectsOut, writer.Options{})
+		w, err := writer.NewTable("csv", o.check, schema.RejectsOut, writer.Options{BareText: cfg.CSV.BareText})
 		out.rejected = &tableFile{Table: w}
 		return out, err
 	}
@@ -128,6 +128,7 @@ func (out *outputs) table(t schema.Table, format string) (*tableFile, error) {
 	}
 	w, err := writer.NewTable(format, stopping{out.ctx, f}, t, writer.Options{
 		Compression: out.cfg.Parquet.Compression,
+		BareText:    out.cfg.CSV.BareText,
 		Version:     version,
 		Workers:     out.share.workers,
 		GroupRows:   out.share.groupRows,
