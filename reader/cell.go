@@ -52,7 +52,7 @@ type cells struct {
 // text returns a cell's text without spaces around it; nil is an empty cell.
 func (c *cells) text(col, i int) []byte {
 	if v := &c.Cols[col]; v.Kind == schema.KindStrings {
-		return trim(v.Strings.Bytes(i))
+		return trim(c.Text(col, i))
 	}
 	c.scratch = c.AppendText(c.scratch[:0], col, i)
 	return c.scratch
@@ -133,7 +133,7 @@ func (c *cells) number(col, i int) (float64, *finding) {
 		}
 		return math.NaN(), notNumber
 	}
-	b := trim(c.Cols[col].Strings.Bytes(i))
+	b := trim(c.Text(col, i))
 	if len(b) == 0 {
 		return math.NaN(), nil
 	}
@@ -162,7 +162,7 @@ func (c *cells) date(col, i int) (schema.Date, int16, *finding) {
 		}
 		return v.Dates[i], schema.NoMinute, nil
 	case schema.KindStrings:
-		b := trim(v.Strings.Bytes(i))
+		b := trim(c.Text(col, i))
 		if len(b) == 0 {
 			return schema.NoDate, schema.NoMinute, nil
 		}

@@ -32,6 +32,10 @@ const (
 type Rows struct {
 	schema.Frame
 
+	// Coded says, of a column of text, whether it is one, and then has its cells in
+	// place of the vector: see Text. It has an entry for every column.
+	Coded []Coded
+
 	// Cells says, of a text vector, how each cell is meant; nil is Text for all.
 	// Of a vector of floats or integers, Fault parts the NaN or NoInt that the file
 	// holds from the empty cell. It has an entry for every column.
@@ -58,12 +62,14 @@ func (r *Rows) Reset(columns int) {
 	for len(r.Cells) < columns {
 		r.Cells = append(r.Cells, nil)
 	}
+	r.Coded = slices.Grow(r.Coded[:0], columns)[:columns]
 	r.Cols, r.Cells = r.Cols[:columns], r.Cells[:columns]
 	for i := range r.Cols {
 		c := &r.Cols[i]
 		c.Strings.Reset()
 		c.Floats, c.Ints, c.Dates = c.Floats[:0], c.Ints[:0], c.Dates[:0]
 		r.Cells[i] = nil
+		r.Coded[i].Words, r.Coded[i].At = nil, r.Coded[i].At[:0]
 	}
 	r.Line, r.Bad = r.Line[:0], r.Bad[:0]
 	r.Raw.Reset()
@@ -74,13 +80,18 @@ func (r *Rows) AppendColumn(text string, kind Cell) {
 	n := len(r.Cols)
 	r.Cols = slices.Grow(r.Cols, 1)[:n+1]
 	r.Cells = append(r.Cells, nil)
-	v := &r.Cols[n]
+	r.Coded = slices.Grow(r.Coded, 1)[:n+1]
+	v, c := &r.Cols[n], &r.Coded[n]
 	v.Kind = schema.KindStrings
 	v.Strings.Reset()
-	v.Strings.Data = append(v.Strings.Data, text...)
-	for range r.N {
-		v.Strings.AppendSpan(0, uint32(len(text)))
-		r.Cells[n] = append(r.Cells[n], kind)
+	var word schema.Strings
+	word.AppendString(text)
+	word.AppendString("")
+	c.Words, c.At = NewWords(word), append(c.At[:0], make([]uint32, r.N)...)
+	if kind != Text {
+		for range r.N {
+			r.Cells[n] = append(r.Cells[n], kind)
+		}
 	}
 }
 
@@ -99,7 +110,7 @@ func (r *Rows) Cell(col, i int) Cell {
 func (r *Rows) AppendText(b []byte, col, i int) []byte {
 	switch v := &r.Cols[col]; v.Kind {
 	case schema.KindStrings:
-		return append(b, v.Strings.Bytes(i)...)
+		return append(b, r.Text(col, i)...)
 	case schema.KindFloats:
 		if r.Cell(col, i) == Fault {
 			return append(b, "NaN"...)
