@@ -11,6 +11,7 @@ import pandas as pd
 from scipy.special import ndtr
 
 DAYS = {"W": 7, "M": 30.4375, "Y": 365.25}
+LEAST = 1 / 8760  # an hour: what is left of an option that has expired
 GREEKS = "price delta gamma vega theta rho carry_rho vanna volga charm".split()
 
 folder, out = sys.argv[1], sys.argv[2]
@@ -51,7 +52,7 @@ w = np.where(o["option_type"] == "call", 1.0, -1.0)
 
 def price(T):
     """The price, and what the sensitivities need of it."""
-    T = np.maximum(T, 0)
+    T = np.maximum(T, LEAST)
     root = sigma * np.sqrt(T)
     d1 = (np.log(S / K) + (r - q) * T) / root + root / 2
     d2 = d1 - root
@@ -60,6 +61,7 @@ def price(T):
 
 
 with np.errstate(all="ignore"):
+    T, sigma = np.maximum(T, LEAST), np.nan_to_num(sigma, nan=0.1)  # only expired ones have none
     V, root, d1, d2, spot, paid = price(T)
     density = spot * np.exp(-d1 * d1 / 2) / np.sqrt(2 * np.pi)
     delta = w * spot / S * ndtr(w * d1)
@@ -72,14 +74,14 @@ with np.errstate(all="ignore"):
     volga = vega * d1 * d2 / sigma
     charm = q * delta - density / S * ((r - q) / root - d2 / (2 * T))
     residual = abs(theta + sigma**2 * S**2 * gamma / 2 + (r - q) * S * delta - r * V) / np.maximum(abs(V), 1e-4 * S)
-    day = np.nan_to_num(price(T - 1 / 365)[0] - V)
+    day = price(T - 1 / 365)[0] - V
     closed = pd.read_csv(f"{folder}/holidays.csv")["date"].tolist()
     next_day = as_of + pd.offsets.CustomBusinessDay(holidays=closed)
-    business_day = np.nan_to_num(price(T - (next_day - as_of).days / 365)[0] - V)
+    business_day = price(T - (next_day - as_of).days / 365)[0] - V
 
 for name in GREEKS + ["day", "business_day"]:
     lines[name] = 0.0
-lines["price"], lines["delta"] = lines["spot"].fillna(1), 1.0
+lines["price"], lines["delta"] = lines["spot"].fillna(1), lines["spot"].notna().astype(float)
 lines["pde_residual"], lines["model"] = np.nan, "mark"
 for name, column in zip(GREEKS, (V, delta, gamma, vega, theta, rho, carry_rho, vanna, volga, charm)):
     lines.loc[option, name] = column
@@ -88,8 +90,16 @@ lines.loc[option, "model"] = np.where(future, "black_76", "black_scholes_merton"
 lines.loc[lines["instrument"] == "future", "price"] = 0.0  # margined
 forward = lines["instrument"] == "forward"
 f = lines[forward]
-lines.loc[forward, "delta"] = np.exp(-f["carry"] * f["time"])
-lines.loc[forward, "price"] = (f["forward"] - f["strike"]) * np.exp(-f["rate"] * f["time"])
+spot, paid = f["spot"] * np.exp(-f["carry"] * f["time"]), f["strike"] * np.exp(-f["rate"] * f["time"])
+held = margined[forward]
+lines.loc[forward, "delta"], lines.loc[forward, "price"] = np.exp(-f["carry"] * f["time"]), spot - paid
+lines.loc[forward, "theta"] = f["carry"] * spot - f["rate"] * paid
+lines.loc[forward, "rho"] = f["time"] * np.where(held, paid - spot, paid)
+lines.loc[forward, "carry_rho"] = np.where(held, 0, -f["time"] * spot)
+lines.loc[forward, "charm"] = f["carry"] * np.exp(-f["carry"] * f["time"])
+lines.loc[forward, "day"] = lines.loc[forward, "theta"] / 365
+lines.loc[forward, "business_day"] = lines.loc[forward, "theta"] / 365 * (next_day - as_of).days
+lines.loc[forward, "model"], lines.loc[lines["instrument"] == "cash", "model"] = "discounted_forward", "face"
 
 size = lines["quantity"] * lines["multiplier"].fillna(1)
 lines["delta_units"] = lines["delta"] * size
