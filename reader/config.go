@@ -124,7 +124,7 @@ func (f *Folder) readConfig() (string, error) {
 		return "", fmt.Errorf("%s: %w", path, errNotRegular)
 	}
 	if info.Size() > maxRunFile {
-		return "", fmt.Errorf("%s: larger than 1 MiB", path)
+		return "", fmt.Errorf("%s: larger than 1 MiB, which no configuration is: see whether it is another file", path)
 	}
 	text, err := os.ReadFile(path)
 	if err != nil {
@@ -148,7 +148,7 @@ func parseConfig(text, asOf, folder string) (*schema.Config, error) {
 	}
 	for _, key := range meta.Undecoded() {
 		if key[0] != "columns" && key[0] != "limits" { // looked at below
-			return nil, fmt.Errorf("unknown key %s", key)
+			return nil, fmt.Errorf("unknown key %s: mend its name or take it out; the keys are %s", key, strings.Join(configKeys(), ", "))
 		}
 	}
 	cfg := &schema.Config{ReportingCurrency: strings.ToUpper(r.ReportingCurrency), Calendar: r.Calendar}

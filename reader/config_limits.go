@@ -3,6 +3,7 @@ package reader
 import (
 	"errors"
 	"fmt"
+	"reflect"
 	"slices"
 	"strings"
 
@@ -29,6 +30,24 @@ func checkLimits(section any) (l schema.Limits, err error) {
 		l[k] = n
 	}
 	return l, nil
+}
+
+// configKeys lists the keys of run.toml.
+func configKeys() []string {
+	var keys []string
+	t := reflect.TypeFor[runFile]()
+	for i := range t.NumField() {
+		f := t.Field(i)
+		key := f.Tag.Get("toml")
+		if f.Type.Kind() != reflect.Struct {
+			keys = append(keys, key)
+			continue
+		}
+		for k := range f.Type.NumField() {
+			keys = append(keys, key+"."+f.Type.Field(k).Tag.Get("toml"))
+		}
+	}
+	return keys
 }
 
 func limitNames() []string {

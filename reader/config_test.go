@@ -186,3 +186,12 @@ func FuzzConfig(f *testing.F) {
 		}
 	})
 }
+
+// A key that is none is told with those that there are.
+func TestConfigKeys(t *testing.T) {
+	_, err := parseConfig("as_of = 2026-03-20\nreporting_currency = \"USD\"\n[csv]\ndelimeter = \";\"\n", "", "x")
+	if err == nil || !strings.Contains(err.Error(), "unknown key csv.delimeter: mend its name or take it out; the keys are as_of, reporting_currency, calendar, csv.delimiter, ") ||
+		!strings.HasSuffix(err.Error(), "limits, columns") {
+		t.Errorf("%v", err)
+	}
+}

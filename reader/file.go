@@ -9,6 +9,7 @@ import (
 	"fmt"
 	"hash"
 	"io"
+	"io/fs"
 	"os"
 	"sync/atomic"
 
@@ -43,6 +44,9 @@ func (in *input) open(ctx context.Context) (*file, error) {
 	info, err := os.Stat(in.path)
 	if err == nil && !info.Mode().IsRegular() { // to open a pipe would wait for its writer
 		err = fmt.Errorf("%s: %w", in.path, errNotRegular)
+	}
+	if link, linkErr := os.Readlink(in.path); linkErr == nil && errors.Is(err, fs.ErrNotExist) {
+		err = fmt.Errorf("%s: it is a link to %s, which is not there: mend the link, or put the file itself there", in.path, link)
 	}
 	if err != nil {
 		return nil, err
@@ -128,7 +132,9 @@ func inputOfBytes(name, table string, text []byte) schema.InputFile {
 	return schema.InputFile{Name: name, Table: table, SHA256: hex.EncodeToString(sum[:]), Bytes: int64(len(text))}
 }
 
-var errTrailing = errors.New("something that is not gzip stands behind the end of the packed text: the file is damaged, or was written over a longer one")
+var errTrailing = errors.New("something else stands behind the end of the packed text: the file is damaged, or was written over a longer one")
+
+const fetchAgain = "fetch it again, or have it written again"
 
 // unpacked returns the file's text without its compression. A packed file that
 // ends too early gives io.ErrUnexpectedEOF.
@@ -136,25 +142,20 @@ func (f *file) unpacked(limits *schema.Limits) (io.Reader, error) {
 	switch f.in.format.packed {
 	case "gzip":
 		packed := bufio.NewReaderSize(f, 64<<10)
+		at := func() int64 { return f.taken.Load() - int64(packed.Buffered()) }
 		z, err := gzip.NewReader(packed)
-		if err == io.EOF {
-			return nil, fmt.Errorf("not a gzip file: %w", io.ErrUnexpectedEOF)
-		}
 		if err != nil {
-			return nil, err
+			return nil, f.unpacking(noEOF(err), at())
 		}
 		z.Multistream(false)
-		return &bounded{r: &members{z, packed}, f: f, limits: limits}, nil
+		return &bounded{r: &members{z, packed}, f: f, limits: limits, at: at}, nil
 	case "zstd":
-		if f.size() == 0 { // the decoder takes nothing at all for an empty text
-			return nil, fmt.Errorf("not a zstd file: %w", io.ErrUnexpectedEOF)
-		}
 		z, err := zstd.NewReader(f, zstd.WithDecoderMaxWindow(uint64(limits.Of(schema.WindowBytes))))
 		if err != nil {
 			return nil, err
 		}
 		f.close = z.Close
-		return &bounded{r: z, f: f, limits: limits}, nil
+		return &bounded{r: z, f: f, limits: limits, at: f.taken.Load}, nil
 	}
 	return struct{ io.Reader }{f}, nil
 }
@@ -185,11 +186,12 @@ func (m *members) Read(p []byte) (int, error) {
 	return n, nil
 }
 
-// bounded holds unpacking to the limits.
+// bounded holds unpacking to the limits, and tells where it failed.
 type bounded struct {
 	r      io.Reader
 	f      *file
 	limits *schema.Limits
+	at     func() int64 // how far the packed file has been read
 	n      int64
 }
 
@@ -202,5 +204,29 @@ func (b *bounded) Read(p []byte) (int, error) {
 	if err := b.limits.Unpacked(b.n, b.f.taken.Load()); err != nil {
 		return 0, err
 	}
+	if err != nil && err != io.EOF {
+		err = b.f.unpacking(err, b.at())
+	}
 	return n, err
+}
+
+// unpacking says of an error of what unpacks the file how far it has come.
+func (f *file) unpacking(err error, at int64) error {
+	switch {
+	case f.ctx.Err() != nil, ownError(err):
+		return err
+	case errors.Is(err, io.ErrUnexpectedEOF):
+		return fmt.Errorf("its %d bytes are not all of it: %w", f.size(), err)
+	case errors.Is(err, errTrailing), errors.Is(err, zstd.ErrMagicMismatch): // that at the start of the file has been looked at
+		return fmt.Errorf("before byte %d of %d, %w: %s", at+1, f.size(), errTrailing, fetchAgain)
+	}
+	return fmt.Errorf("the packed text is damaged within the first %d of its %d bytes (%w): %s", at, f.size(), err, fetchAgain)
+}
+
+// noEOF returns err, an early end as such.
+func noEOF(err error) error {
+	if err == io.EOF {
+		return io.ErrUnexpectedEOF
+	}
+	return err
 }

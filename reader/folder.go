@@ -39,7 +39,7 @@ func OpenFolder(ctx context.Context, dir string, needed ...string) (*Folder, err
 	}
 	entries, err := os.ReadDir(dir)
 	if err != nil {
-		return nil, fmt.Errorf("snapshot folder: %w", err)
+		return nil, fmt.Errorf("snapshot folder: %w: give the folder that holds the positions, the market and %s", err, configName)
 	}
 	f := &Folder{ctx: ctx, dir: dir, tables: map[string]*input{}}
 	var files, foreign []string
@@ -51,7 +51,12 @@ func OpenFolder(ctx context.Context, dir string, needed ...string) (*Folder, err
 		info, err := os.Stat(filepath.Join(dir, e.Name()))
 		parted := err == nil && info.IsDir()
 		if parted && !strings.EqualFold(filepath.Ext(e.Name()), ".parquet") {
-			continue // a folder of the house's own
+			stem, rest := stemOf(e.Name())
+			if _, known := formatOf(rest); known && inputTable(stem) != nil {
+				return nil, fmt.Errorf("%s: it is a folder: only positions.parquet may be one; write %s as one file", filepath.Join(dir, e.Name()), stem)
+			}
+			files = append(files, e.Name()+"/") // of the house's own
+			continue
 		}
 		files = append(files, e.Name())
 		read, err := f.add(e.Name(), parted)
@@ -202,4 +207,4 @@ func listed(names []string) string {
 
 // errNotRegular is given for a table that is no plain file: a run reads what
 // lies on disk, twice if need be.
-var errNotRegular = errors.New("not a regular file")
+var errNotRegular = errors.New("not a regular file, but a pipe, a device or a folder: write what it holds to a file")

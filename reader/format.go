@@ -12,17 +12,19 @@ import (
 type format struct {
 	suffix string
 	packed string // "", "gzip" or "zstd"
+	magic  string // with which each such file begins; "": none
+	what   string
 	open   func(*file, *schema.Config) (source, error)
 }
 
 // formats is the list of all of them: to read one more is to add a line.
 func formats() []format {
 	return []format{
-		{".csv", "", openCSV},
-		{".csv.gz", "gzip", openCSV},
-		{".csv.zst", "zstd", openCSV},
-		{".parquet", "", openParquet},
-		{".xlsx", "", openXLSX},
+		{".csv", "", "", "a text file", openCSV},
+		{".csv.gz", "gzip", "\x1f\x8b", "a gzip file", openCSV},
+		{".csv.zst", "zstd", "\x28\xb5\x2f\xfd", "a zstd file", openCSV},
+		{".parquet", "", "PAR1", "a Parquet file", openParquet},
+		{".xlsx", "", "PK\x03\x04", "a workbook", openXLSX},
 	}
 }
 

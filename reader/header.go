@@ -18,13 +18,16 @@ type binding struct {
 // bind finds the columns of t in the header of a file. mapping gives, for some
 // of our columns, the house's own header. Headers are compared without regard
 // to case and to spaces around them.
-func bind(in *input, header []string, mapping map[string]string) (*binding, error) {
+func bind(in *input, header []string, mapping map[string]string, limits *schema.Limits) (*binding, error) {
 	t := in.table
 	b := &binding{at: make([]int, len(t.Columns)), names: make([]string, len(t.Columns))}
 	taken := make([]string, len(header)) // by place in the file: our column
-	for _, h := range header {
+	for at, h := range header {
+		if len(h) > int(limits.Of(schema.FieldBytes)) {
+			return nil, fmt.Errorf("%s: the name of column %d, which begins with %q: %w", in.path, at+1, h[:shown], limits.Exceeded(schema.FieldBytes))
+		}
 		if !utf8.ValidString(h) {
-			return nil, fmt.Errorf("%s: the header %q is not valid UTF-8: declare the file's encoding in [csv] encoding of %s", in.path, h, configName)
+			return nil, fmt.Errorf("%s: the header %q is not valid UTF-8: save the file as UTF-8, or declare what it is written in under [csv] encoding of %s", in.path, cutShort(h), configName)
 		}
 	}
 	for k := range t.Columns {
@@ -108,12 +111,31 @@ func delimiterHint(header []string) string {
 	return ""
 }
 
+// What a message tells of a header: so many columns, and so many bytes of a name.
+const (
+	told  = 60
+	shown = 100
+)
+
+// headerList lists the columns of a file for a message.
 func headerList(header []string) string {
-	quoted := make([]string, len(header))
+	quoted := make([]string, 0, told+1)
 	for i, h := range header {
-		quoted[i] = fmt.Sprintf("%q", h)
+		if i == told {
+			quoted = append(quoted, fmt.Sprintf("and %d more", len(header)-told))
+			break
+		}
+		quoted = append(quoted, fmt.Sprintf("%q", cutShort(h)))
 	}
 	return strings.Join(quoted, " ")
+}
+
+// cutShort cuts a name off that is too long for a message.
+func cutShort(h string) string {
+	if len(h) <= shown {
+		return h
+	}
+	return strings.ToValidUTF8(h[:shown], "") + "…"
 }
 
 // emptyNameNote is the warning on columns without a name.

@@ -3,7 +3,6 @@ package reader
 import (
 	"errors"
 	"fmt"
-	"io"
 
 	"nightbook/reader/table"
 	"nightbook/schema"
@@ -48,7 +47,10 @@ func (f *Folder) open(name string, cfg *schema.Config) (*opened, error) {
 			return nil, err
 		}
 		o.stored = file
-		if o.source, err = in.format.open(file, cfg); err != nil {
+		if err = file.checkContent(); err == nil {
+			o.source, err = in.format.open(file, cfg)
+		}
+		if err != nil {
 			return nil, errors.Join(file.fail("", err), file.Close())
 		}
 	}
@@ -67,7 +69,7 @@ func (o *opened) start(cfg *schema.Config) (err error) {
 	if s, ok := o.source.(interface{ Sheet() string }); ok {
 		o.sheet = s.Sheet()
 	}
-	if o.binding, err = bind(o.in, o.Header(), cfg.Columns[o.in.table.Name]); err != nil {
+	if o.binding, err = bind(o.in, o.Header(), cfg.Columns[o.in.table.Name], &cfg.Limits); err != nil {
 		return err
 	}
 	o.style.decimalComma = cfg.CSV.DecimalComma
@@ -107,10 +109,7 @@ func (in *input) fail(sheet string, err error) error {
 		named.File, named.Sheet = in.path, sheet
 		return &named
 	}
-	if errors.Is(err, io.ErrUnexpectedEOF) {
-		return fmt.Errorf("%s: the file is cut short: %w", in.path, err)
-	}
-	return fmt.Errorf("%s: %w", in.path, err)
+	return fmt.Errorf("%s: %w", in.path, remedied(err))
 }
 
 func (f *file) reached() int64 { return f.taken.Load() }

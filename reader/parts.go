@@ -53,7 +53,10 @@ func (f *Folder) openParts(in *input, cfg *schema.Config) (*parts, error) {
 		if err != nil {
 			return nil, err
 		}
-		rows, err := parquet.Open(file, file.size(), cfg.Limits)
+		var rows *parquet.File
+		if err = file.checkContent(); err == nil {
+			rows, err = parquet.Open(file, file.size(), cfg.Limits)
+		}
 		if err != nil {
 			return nil, errors.Join(file.fail("", err), file.Close())
 		}

@@ -46,7 +46,7 @@ func (h *hinted) Unwrap() error { return h.err }
 // problem tells of an error that ends the program.
 func (c *console) problem(err error, status int) {
 	var h *hinted
-	hint := ""
+	hint := remedyFor(err)
 	if errors.As(err, &h) {
 		hint = h.hint
 	}

@@ -24,7 +24,7 @@ var EncodingNames = [...]string{"utf-8", "windows-1252", "utf-16"}
 // decoded returns r as UTF-8 without its byte order mark. A byte order mark
 // wins over the encoding declared: detected then names what it showed.
 func decoded(r io.Reader, declared Encoding) (utf8 io.Reader, detected string, err error) {
-	var head [3]byte
+	var head [4]byte
 	n, err := io.ReadFull(r, head[:])
 	if err != nil && err != io.EOF && !errors.Is(err, io.ErrUnexpectedEOF) {
 		return nil, "", err
@@ -37,6 +37,8 @@ func decoded(r io.Reader, declared Encoding) (utf8 io.Reader, detected string, e
 	}
 	found, low, mark := declared, 0, 0
 	switch {
+	case n == 4 && head == [4]byte{0xFF, 0xFE, 0, 0}, n == 4 && head == [4]byte{0, 0, 0xFE, 0xFF}:
+		return nil, "", fault(0, "the byte order mark shows the file to be UTF-32, which is not read: save it as UTF-8")
 	case bytes.HasPrefix(head[:n], []byte{0xEF, 0xBB, 0xBF}):
 		found, mark = UTF8, 3
 	case bytes.HasPrefix(head[:n], []byte{0xFF, 0xFE}):

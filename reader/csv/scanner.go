@@ -81,6 +81,9 @@ func (s *Scanner) readHeader() error {
 		return fault(rec.Line, "the header cannot be read: "+rec.Fault.String())
 	}
 	text := b.Data[rec.Start:rec.End]
+	if bytes.IndexByte(text, 0) >= 0 {
+		return fault(rec.Line, zeroBytes(text))
+	}
 	if bytes.IndexByte(text, '\r') >= 0 && !rec.Quoted {
 		return fault(rec.Line, "lines end in a carriage return alone: save the file with LF or CRLF line ends")
 	}
@@ -92,6 +95,19 @@ func (s *Scanner) readHeader() error {
 		return s.o.Limits.Exceeded(schema.Columns)
 	}
 	return nil
+}
+
+// zeroBytes says what a header is that holds bytes of zero: most often text in
+// two or four bytes a character, without a byte order mark.
+func zeroBytes(text []byte) string {
+	const utf8 = "save the file as UTF-8"
+	switch zeros := bytes.Count(text, []byte{0}); {
+	case zeros == len(text):
+		return "the file begins with zero bytes: it was not written to its end; fetch it again, or have it written again"
+	case zeros >= len(text)/2+len(text)/5:
+		return "the header holds zero bytes, as UTF-32 does, which is not read: " + utf8
+	}
+	return `the header holds zero bytes, which are no text: ` + utf8 + `, or, if it is UTF-16, set [csv] encoding = "utf-16" in run.toml`
 }
 
 // NewDecoder returns a decoder for the blocks of the file.

@@ -98,7 +98,7 @@ type relation struct {
 func (w *Workbook) readWorkbook() (string, error) {
 	top, err := w.relations("")
 	if err != nil {
-		return "", err
+		return "", fmt.Errorf("%w; if it is an archive of files and no workbook, unpack it and give the file within", err)
 	}
 	book := "xl/workbook.xml"
 	for _, r := range top {
