@@ -7,7 +7,6 @@ import (
 	"github.com/xitongsys/parquet-go/parquet"
 
 	"nightbook/reader/table"
-	"nightbook/schema"
 )
 
 // meaning is what the values of a column stand for.
@@ -37,13 +36,13 @@ type column struct {
 	utc      bool  // of timestamps: the clock is that of UTC
 	optional bool
 
-	file    *File // that it is part of
-	pages   pages
-	present []bool
-	values  values
-	clock   []byte // scratch
-	stamp   int64  // the time written out last, and its text: rows have few expiries
-	dated   []byte
+	file   *File // that it is part of
+	pages  pages
+	levels []uint32 // of the rows at hand: 1 where there is a value
+	values values
+	clock  []byte // scratch
+	stamp  int64  // the time written out last, and its text: rows have few expiries
+	dated  []byte
 }
 
 // String returns the column's name and type.
@@ -219,7 +218,7 @@ func (c *column) start(r io.ReaderAt, size int64, m *parquet.ColumnMetaData, row
 	if m.NumValues != rows {
 		return damaged("it has %d values for %d rows", m.NumValues, rows)
 	}
-	c.values.dictionary = plain{} // that of the row group before is none of this one's
+	c.values.dictionary.forget() // that of the row group before is none of this one's
 	return c.pages.start(r, size, m)
 }
 
@@ -238,12 +237,8 @@ func (c *column) read(into *table.Rows, at, n int) error {
 		if err != nil {
 			return err
 		}
-		if err := c.values.read(c, stored); err != nil {
+		if err := c.take(into, at, k, stored); err != nil {
 			return err
-		}
-		c.convert(into, at)
-		if c.file.texts > c.file.limits.Of(schema.BatchBytes) {
-			return c.file.limits.Exceeded(schema.BatchBytes)
 		}
 		if c.pages.left -= k; c.pages.left == 0 && c.values.encoding == parquet.Encoding_BYTE_STREAM_SPLIT && c.values.done != c.values.count {
 			return damaged("a page has %d values, its header says %d", c.values.count, c.values.done)
@@ -253,26 +248,58 @@ func (c *column) read(into *table.Rows, at, n int) error {
 	return nil
 }
 
-// readPresent finds out which of the next n rows have a value, and how many.
-func (c *column) readPresent(n int) (stored int, err error) {
-	if cap(c.present) < n {
-		c.present = make([]bool, schema.BatchRows)
-	}
-	c.present = c.present[:n]
-	if !c.optional {
-		for i := range c.present {
-			c.present[i] = true
+// take appends the next n rows of the page, of which stored have a value: words
+// and numbers of the dictionary by their places, plain texts as they lie in the
+// page, all else value by value.
+func (c *column) take(into *table.Rows, at, n, stored int) error {
+	v, d := &into.Cols[at], &c.values.dictionary
+	if c.values.encoding == parquet.Encoding_RLE_DICTIONARY {
+		switch {
+		case d.words != nil:
+			return c.takeWords(into, at, n, stored)
+		case d.size == 0 || d.odd || c.meaning > ints && c.meaning != days:
+		default:
+			places, err := c.places(n, stored)
+			if err != nil {
+				return err
+			}
+			switch c.meaning {
+			case floats:
+				v.Floats = gather(v.Floats, d.floats, places)
+			case ints:
+				v.Ints = gather(v.Ints, d.ints, places)
+			case days:
+				v.Dates = gather(v.Dates, d.days, places)
+			}
+			return nil
 		}
+	}
+	into.SpellOut(at)
+	if c.values.encoding == parquet.Encoding_PLAIN && c.meaning == texts && c.physical == parquet.Type_BYTE_ARRAY {
+		return c.takePlainTexts(into, at, n, stored)
+	}
+	if err := c.values.read(c, stored); err != nil {
+		return err
+	}
+	c.convert(into, at, n, stored)
+	return c.file.holdTexts(into, at)
+}
+
+// readPresent finds out which of the next n > 0 rows have a value, and how many.
+func (c *column) readPresent(n int) (stored int, err error) {
+	c.levels = nil
+	if !c.optional {
 		return n, nil
 	}
-	levels, err := c.pages.levels.next(n)
-	if err != nil {
+	level, ok, err := c.pages.levels.alike(n)
+	if ok || err != nil {
+		return n * int(level), err
+	}
+	if c.levels, err = c.pages.levels.next(n); err != nil {
 		return 0, err
 	}
-	for i, l := range levels {
-		if c.present[i] = l == 1; l == 1 {
-			stored++
-		}
+	for _, l := range c.levels {
+		stored += int(l)
 	}
 	return stored, nil
 }

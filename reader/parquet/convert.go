@@ -61,74 +61,112 @@ func marks(kind table.Cell) (m [schema.BatchRows]table.Cell) {
 	return m
 }
 
-// convert appends the values read last to the vector, nulls where there is none.
-func (c *column) convert(into *table.Rows, at int) {
+// convert appends the stored values read last to the vector of n rows, nulls
+// where there is none.
+func (c *column) convert(into *table.Rows, at, n, stored int) {
 	v := &into.Cols[at]
 	from := &c.values.plain
-	k := 0 // of the stored values
 	switch c.meaning {
 	case floats:
-		if len(from.floats) == len(c.present) && !slices.ContainsFunc(from.floats, math.IsNaN) {
-			v.Floats = append(v.Floats, from.floats...)
-			return
+		if hasNaN(from.floats) {
+			mark(into, at, len(v.Floats), from.floats, c.rows(n, stored), func(x float64) bool { return math.IsNaN(x) })
 		}
-		for _, present := range c.present {
-			x := math.NaN()
-			if present {
-				x = from.floats[k]
-				k++
-				if math.IsNaN(x) {
-					fault(into, at, len(v.Floats))
-				}
-			}
-			v.Floats = append(v.Floats, x)
-		}
+		v.Floats = stretch(v.Floats, from.floats, c.rows(n, stored), math.NaN())
+		return
 	case ints:
-		for _, present := range c.present {
-			x := int64(schema.NoInt)
-			if present {
-				x = from.ints[k]
-				k++
-				if x == schema.NoInt {
-					fault(into, at, len(v.Ints))
-				}
-			}
-			v.Ints = append(v.Ints, x)
+		if hasNoInt(from.ints) {
+			mark(into, at, len(v.Ints), from.ints, c.rows(n, stored), func(x int64) bool { return x == schema.NoInt })
 		}
-	case days:
-		for _, present := range c.present {
+		v.Ints = stretch(v.Ints, from.ints, c.rows(n, stored), schema.NoInt)
+		return
+	}
+	k := 0 // of the stored values
+	longest := int(c.file.limits.Of(schema.FieldBytes))
+	for _, level := range c.rows(n, stored) {
+		switch present := level == 1; c.meaning {
+		case days:
 			x := schema.NoDate
 			if present {
 				x = day(from.ints[k])
-				k++
 			}
 			v.Dates = append(v.Dates, x)
-		}
-	case texts:
-		longest := int(c.file.limits.Of(schema.FieldBytes))
-		for _, present := range c.present {
+		case texts:
 			var x []byte
 			if present {
-				x = from.bytes[k]
-				k++
-				if len(x) > longest {
+				if x = from.bytes[k]; len(x) > longest {
 					c.file.long, x = append(c.file.long, v.Strings.Len()), nil
 				}
 				c.file.texts += int64(len(x))
 			}
 			v.Strings.Append(x)
-		}
-	default:
-		for _, present := range c.present {
+		default:
 			c.clock = c.clock[:0]
 			if present {
-				c.clock = c.text(c.clock, k)
-				k++
+				c.clock = c.text(c.clock, from, k)
 			}
 			v.Strings.Append(c.clock)
 		}
+		k += int(level)
 	}
 }
+
+// rows returns the levels of the n rows at hand, of which stored have a value.
+func (c *column) rows(n, stored int) []uint32 {
+	switch {
+	case n == 0 || n > schema.BatchRows:
+	case stored == n:
+		return everyRow[:n]
+	case stored == 0:
+		return noRow[:n]
+	}
+	return c.levels
+}
+
+// The levels of rows that all have a value, and of rows of which none has.
+var (
+	everyRow = levelsOf(1)
+	noRow    [schema.BatchRows]uint32
+)
+
+func levelsOf(level uint32) (l [schema.BatchRows]uint32) {
+	for i := range l {
+		l[i] = level
+	}
+	return l
+}
+
+// stretch appends the rows with these levels to a vector.
+func stretch[T any](to, stored []T, levels []uint32, null T) []T {
+	if len(stored) == len(levels) {
+		return append(to, stored...)
+	}
+	n := len(to)
+	to = append(to, make([]T, len(levels))...)
+	spread(to[n:], stored, levels, null)
+	return to
+}
+
+// mark marks the cells of the rows whose value is odd: it stands for null, and is none.
+func mark[T any](into *table.Rows, at, row int, stored []T, levels []uint32, odd func(T) bool) {
+	k := 0
+	for i, level := range levels {
+		if level == 1 && odd(stored[k]) {
+			fault(into, at, row+i)
+		}
+		k += int(level)
+	}
+}
+
+func hasNaN(s []float64) bool {
+	for _, x := range s {
+		if x != x {
+			return true
+		}
+	}
+	return false
+}
+
+func hasNoInt(s []int64) bool { return slices.Contains(s, schema.NoInt) }
 
 // fault marks a cell as a stored NaN or NoInt, which is no null.
 func fault(into *table.Rows, at, row int) {
@@ -147,10 +185,9 @@ func day(n int64) schema.Date {
 	return schema.Date(n)
 }
 
-// text appends the text of stored value k of a column whose values are none of
+// text appends the text of value k of a column whose values are none of
 // the vectors' own kinds.
-func (c *column) text(b []byte, k int) []byte {
-	from := &c.values.plain
+func (c *column) text(b []byte, from *plain, k int) []byte {
 	switch c.meaning {
 	case bools:
 		return strconv.AppendBool(b, from.ints[k] != 0)

@@ -30,7 +30,8 @@ type File struct {
 	total int64
 
 	unpacked int64 // bytes of pages
-	texts    int64 // bytes of text in the run being read
+	texts    int64 // bytes of text in the run being read, or more; see holdTexts
+	counted  bool  // not more
 	long     []int // its rows with a field that is too long
 }
 
@@ -170,17 +171,18 @@ func (f *File) Next(into *table.Rows) (err error) {
 	}
 	into.Reset(len(f.columns))
 	into.N = n
-	f.long, f.texts = f.long[:0], 0
+	f.long, f.texts, f.counted = f.long[:0], 0, false
 	for i, c := range f.columns {
 		if err := c.read(into, i, n); err != nil {
 			return fmt.Errorf("column %s, row group %d: %w", c.name, f.group+1, err)
 		}
 	}
 	f.refuse(into)
-	for range n {
-		f.row++
-		into.Line = append(into.Line, f.row)
+	into.Line = slices.Grow(into.Line, n)[:n]
+	for i := range into.Line {
+		into.Line[i] = f.row + int64(i) + 1
 	}
+	f.row += int64(n)
 	if f.left -= int64(n); f.left > 0 {
 		return nil
 	}

@@ -106,6 +106,7 @@ func FuzzValues(f *testing.F) {
 			return
 		}
 		c := &column{name: "x", physical: parquet.Type(physical), file: &File{limits: &schema.Limits{}}}
+		c.file.columns = []*column{c}
 		e := &parquet.SchemaElement{Name: "x", Type: &c.physical}
 		if c.physical == fixed {
 			c.length = 1 + int(sort>>3)
@@ -141,14 +142,9 @@ func FuzzValues(f *testing.F) {
 		rows.Reset(1)
 		c.prepare(&rows, 0)
 		rows.N = n
-		c.present = make([]bool, n)
-		for i := range c.present {
-			c.present[i] = true
-		}
-		if c.values.read(c, n) != nil {
+		if n == 0 || c.take(&rows, 0, n, n) != nil {
 			return
 		}
-		c.convert(&rows, 0)
 		for i := range n {
 			rows.AppendText(nil, 0, i)
 		}

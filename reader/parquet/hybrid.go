@@ -1,6 +1,10 @@
 package parquet
 
-import "encoding/binary"
+import (
+	"encoding/binary"
+
+	"nightbook/schema"
+)
 
 // hybrid reads Parquet's mixture of runs and bit-packed groups of small
 // integers: levels, and indices into a dictionary.
@@ -24,30 +28,50 @@ func (h *hybrid) reset(b []byte, width int) {
 // next returns the next n values, valid until it is called again.
 func (h *hybrid) next(n int) ([]uint32, error) {
 	if cap(h.out) < n {
-		h.out = make([]uint32, n)
+		h.out = make([]uint32, max(n, schema.BatchRows))
 	}
 	h.out = h.out[:n]
-	for at := 0; at < n; {
+	return h.out, h.read(h.out)
+}
+
+// read reads the next len(out) values.
+func (h *hybrid) read(out []uint32) error {
+	for len(out) > 0 {
 		switch {
 		case h.run > 0:
-			k := min(h.run, n-at)
+			k := min(h.run, len(out))
 			for i := range k {
-				h.out[at+i] = h.value
+				out[i] = h.value
 			}
 			h.run -= k
-			at += k
+			out = out[k:]
 		case h.packed > 0:
-			k := min(h.packed, n-at)
-			h.unpack(h.out[at : at+k])
+			k := min(h.packed, len(out))
+			h.unpack(out[:k])
 			h.packed -= k
-			at += k
+			out = out[k:]
 		default:
 			if err := h.head(); err != nil {
-				return nil, err
+				return err
 			}
 		}
 	}
-	return h.out, nil
+	return nil
+}
+
+// alike takes the next n > 0 values if they are of one run: it returns what they
+// are, and whether so.
+func (h *hybrid) alike(n int) (value uint32, ok bool, err error) {
+	if h.run == 0 && h.packed == 0 {
+		if err := h.head(); err != nil {
+			return 0, false, err
+		}
+	}
+	if h.run < n {
+		return 0, false, nil
+	}
+	h.run -= n
+	return h.value, true, nil
 }
 
 // head reads the head of the next run or stretch.
@@ -90,27 +114,52 @@ func (h *hybrid) head() error {
 	return nil
 }
 
-// unpack reads len(out) values from the bits of a stretch.
+// unpack reads len(out) values from the bits of a stretch: as many at a time as
+// are sure to lie in the eight bytes that the first of them begins in.
 func (h *hybrid) unpack(out []uint32) {
-	if h.width == 1 {
-		for i := range out {
-			out[i] = uint32(h.bits[h.bit>>3]>>(h.bit&7)) & 1
-			h.bit++
+	w := uint(h.width)
+	mask := uint64(1)<<w - 1
+	bit := uint(h.bit)
+	h.bit += len(out) * h.width
+	switch {
+	case w <= 7 || w == 8: // those of 8 bits begin with their bytes
+		for len(out) >= 8 && bit>>3+8 <= uint(len(h.bits)) {
+			x := binary.LittleEndian.Uint64(h.bits[bit>>3:]) >> (bit & 7)
+			o := out[:8:8]
+			o[0] = uint32(x & mask)
+			o[1] = uint32(x >> (w & 63) & mask)
+			o[2] = uint32(x >> (2 * w & 63) & mask)
+			o[3] = uint32(x >> (3 * w & 63) & mask)
+			o[4] = uint32(x >> (4 * w & 63) & mask)
+			o[5] = uint32(x >> (5 * w & 63) & mask)
+			o[6] = uint32(x >> (6 * w & 63) & mask)
+			o[7] = uint32(x >> (7 * w & 63) & mask)
+			out = out[8:]
+			bit += 8 * w
 		}
-		return
+	case w <= 14 || w == 16:
+		for len(out) >= 4 && bit>>3+8 <= uint(len(h.bits)) {
+			x := binary.LittleEndian.Uint64(h.bits[bit>>3:]) >> (bit & 7)
+			o := out[:4:4]
+			o[0] = uint32(x & mask)
+			o[1] = uint32(x >> (w & 63) & mask)
+			o[2] = uint32(x >> (2 * w & 63) & mask)
+			o[3] = uint32(x >> (3 * w & 63) & mask)
+			out = out[4:]
+			bit += 4 * w
+		}
 	}
-	mask := uint64(1)<<h.width - 1
 	for i := range out {
-		at := h.bit >> 3
+		at := bit >> 3
 		var word uint64
-		if at+8 <= len(h.bits) {
+		if at+8 <= uint(len(h.bits)) {
 			word = binary.LittleEndian.Uint64(h.bits[at:])
 		} else {
 			var last [8]byte
 			copy(last[:], h.bits[at:])
 			word = binary.LittleEndian.Uint64(last[:])
 		}
-		out[i] = uint32(word >> (h.bit & 7) & mask)
-		h.bit += h.width
+		out[i] = uint32(word >> (bit & 7) & mask)
+		bit += w
 	}
 }

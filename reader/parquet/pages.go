@@ -85,7 +85,7 @@ func (c *column) nextPage() error {
 		if h.DictionaryPageHeader == nil {
 			return damaged("a dictionary without a header")
 		}
-		data, err := p.unpack.page(p.codec, p.packed, size, nil) // kept for the whole row group
+		data, err := c.unpackDictionary(size)
 		if err != nil {
 			return err
 		}
@@ -104,6 +104,29 @@ func (c *column) nextPage() error {
 	return nil // an index: not needed
 }
 
+// unpackDictionary unpacks a dictionary. Numbers are taken from it at once; of
+// texts and the like, the bytes are kept as they are.
+func (c *column) unpackDictionary(size int) ([]byte, error) {
+	p := &c.pages
+	switch c.physical {
+	case parquet.Type_INT32, parquet.Type_INT64, parquet.Type_FLOAT, parquet.Type_DOUBLE:
+		return p.unpacked(p.codec, p.packed, size)
+	}
+	return p.unpack.page(p.codec, p.packed, size, nil)
+}
+
+// unpacked returns a page unpacked, valid until the next is read.
+func (p *pages) unpacked(codec parquet.CompressionCodec, packed []byte, size int) ([]byte, error) {
+	if codec == parquet.CompressionCodec_UNCOMPRESSED && len(packed) == size {
+		return packed, nil
+	}
+	data, err := p.unpack.page(codec, packed, size, p.data)
+	if err == nil {
+		p.data = data
+	}
+	return data, err
+}
+
 // readBytes reads n bytes, asking for memory as they come: the size is only a
 // claim of the file until then.
 func readBytes(r io.Reader, buf []byte, n int) ([]byte, error) {
@@ -112,7 +135,7 @@ func readBytes(r io.Reader, buf []byte, n int) ([]byte, error) {
 	for len(buf) < n {
 		k := min(step, n-len(buf))
 		if cap(buf) < len(buf)+k {
-			buf = append(make([]byte, 0, min(n, 2*len(buf)+step)), buf...)
+			buf = append(make([]byte, 0, min(n+n/8, 2*len(buf)+step)), buf...) // the next page is about as long
 		}
 		got, err := io.ReadFull(r, buf[len(buf):len(buf)+k])
 		buf = buf[:len(buf)+got]
@@ -126,11 +149,10 @@ func readBytes(r io.Reader, buf []byte, n int) ([]byte, error) {
 // startPage begins a page of the first layout: levels and values packed together.
 func (c *column) startPage(h *parquet.DataPageHeader, size int) error {
 	p := &c.pages
-	data, err := p.unpack.page(p.codec, p.packed, size, p.data)
+	data, err := p.unpacked(p.codec, p.packed, size)
 	if err != nil {
 		return err
 	}
-	p.data = data
 	if c.optional {
 		if h.DefinitionLevelEncoding != parquet.Encoding_RLE {
 			return fmt.Errorf("levels in the encoding %s are not read", h.DefinitionLevelEncoding)
@@ -161,11 +183,10 @@ func (c *column) startPageV2(h *parquet.DataPageHeaderV2, size int) error {
 	if !h.IsCompressed {
 		codec = parquet.CompressionCodec_UNCOMPRESSED
 	}
-	data, err := p.unpack.page(codec, p.packed[r+d:], size-r-d, p.data)
+	data, err := p.unpacked(codec, p.packed[r+d:], size-r-d)
 	if err != nil {
 		return err
 	}
-	p.data = data
 	p.left = int(h.NumValues)
 	return c.startValues(h.Encoding, data)
 }
@@ -194,6 +215,9 @@ func (u *unpacker) page(codec parquet.CompressionCodec, packed []byte, size int,
 	case parquet.CompressionCodec_SNAPPY:
 		if n, err := snappy.DecodedLen(packed); err != nil || n != size {
 			return nil, damaged("a Snappy page does not have the size in its header")
+		}
+		if buf != nil && cap(buf) < size && size/21 <= len(packed) { // pages of one column are about as long
+			buf = make([]byte, size+size/8)
 		}
 		data, err = snappy.Decode(buf[:cap(buf)], packed)
 	case parquet.CompressionCodec_GZIP:

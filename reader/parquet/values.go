@@ -26,7 +26,8 @@ type values struct {
 	count    int    // values of a byte-stream-split page, and how many are read
 	done     int
 
-	dictionary plain
+	dictionary dictionary
+	at         []uint32 // places in it
 	plain
 }
 
@@ -38,22 +39,6 @@ type plain struct {
 }
 
 func (c *column) tooShort() error { return damaged("a page has fewer values than its header says") }
-
-// setDictionary decodes the dictionary of a row group.
-func (v *values) setDictionary(c *column, data []byte, n int, e parquet.Encoding) error {
-	if e != parquet.Encoding_PLAIN && e != parquet.Encoding_PLAIN_DICTIONARY {
-		return fmt.Errorf("a dictionary in the encoding %s is not read", encodingName(e))
-	}
-	if n < 0 || n > len(data) || c.physical == parquet.Type_BOOLEAN {
-		return damaged("a dictionary of %d values in %d bytes", n, len(data))
-	}
-	if int64(n) > c.file.limits.Of(schema.DictionaryValues) {
-		return c.file.limits.Exceeded(schema.DictionaryValues)
-	}
-	v.dictionary = plain{}
-	_, err := v.dictionary.read(c, data, n)
-	return err
-}
 
 // start begins with the values of a page.
 func (v *values) start(c *column, e parquet.Encoding, data []byte) error {
@@ -132,12 +117,12 @@ func (v *values) read(c *column, n int) (err error) {
 		v.data, err = v.plain.read(c, v.data, n)
 		return err
 	case parquet.Encoding_RLE_DICTIONARY:
-		return v.readIndices(c, n)
+		return v.readIndices(n)
 	case parquet.Encoding_RLE:
 		bits, err := v.indices.next(n)
-		v.ints = v.ints[:0]
-		for _, b := range bits {
-			v.ints = append(v.ints, int64(b))
+		v.ints = resized(v.ints, n)
+		for i, b := range bits {
+			v.ints[i] = int64(b)
 		}
 		return err
 	case parquet.Encoding_BYTE_STREAM_SPLIT:
@@ -161,40 +146,10 @@ func (v *values) readBits(c *column, n int) error {
 	if v.bit+n > 8*len(v.data) {
 		return c.tooShort()
 	}
-	v.ints = v.ints[:0]
-	for range n {
-		v.ints = append(v.ints, int64(v.data[v.bit>>3]>>(v.bit&7)&1))
+	v.ints = resized(v.ints, n)
+	for i := range v.ints {
+		v.ints[i] = int64(v.data[v.bit>>3] >> (v.bit & 7) & 1)
 		v.bit++
-	}
-	return nil
-}
-
-func (v *values) readIndices(c *column, n int) error {
-	indices, err := v.indices.next(n)
-	if err != nil {
-		return err
-	}
-	v.ints, v.floats, v.bytes = v.ints[:0], v.floats[:0], v.bytes[:0]
-	d := &v.dictionary
-	size := uint32(max(len(d.ints), len(d.floats), len(d.bytes)))
-	for _, i := range indices {
-		if i >= size {
-			return damaged("an index of %d into a dictionary of %d values", i, size)
-		}
-	}
-	switch {
-	case len(d.ints) > 0:
-		for _, i := range indices {
-			v.ints = append(v.ints, d.ints[i])
-		}
-	case len(d.floats) > 0:
-		for _, i := range indices {
-			v.floats = append(v.floats, d.floats[i])
-		}
-	default:
-		for _, i := range indices {
-			v.bytes = append(v.bytes, d.bytes[i])
-		}
 	}
 	return nil
 }
@@ -222,12 +177,9 @@ func (p *plain) read(c *column, data []byte, n int) (rest []byte, err error) {
 	p.ints, p.floats, p.bytes = p.ints[:0], p.floats[:0], p.bytes[:0]
 	if c.physical == parquet.Type_BYTE_ARRAY {
 		for range n {
-			if len(data) < 4 {
-				return nil, c.tooShort()
-			}
-			size := uint64(binary.LittleEndian.Uint32(data))
-			if size > uint64(len(data)-4) {
-				return nil, damaged("a text longer than its page")
+			size, err := textAt(c, data)
+			if err != nil {
+				return nil, err
 			}
 			p.bytes = append(p.bytes, data[4:4+size])
 			data = data[4+size:]
@@ -238,32 +190,42 @@ func (p *plain) read(c *column, data []byte, n int) (rest []byte, err error) {
 	if w == 0 || n > len(data)/w {
 		return nil, c.tooShort()
 	}
-	switch at := data; c.physical {
+	switch c.physical {
 	case parquet.Type_INT32:
-		for range n {
-			p.ints = append(p.ints, int64(int32(binary.LittleEndian.Uint32(at))))
-			at = at[4:]
+		p.ints = resized(p.ints, n)
+		for i := range p.ints {
+			p.ints[i] = int64(int32(binary.LittleEndian.Uint32(data[4*i:])))
 		}
 	case parquet.Type_INT64:
-		for range n {
-			p.ints = append(p.ints, int64(binary.LittleEndian.Uint64(at)))
-			at = at[8:]
+		p.ints = resized(p.ints, n)
+		for i := range p.ints {
+			p.ints[i] = int64(binary.LittleEndian.Uint64(data[8*i:]))
 		}
 	case parquet.Type_FLOAT:
-		for range n {
-			p.floats = append(p.floats, float64(math.Float32frombits(binary.LittleEndian.Uint32(at))))
-			at = at[4:]
+		p.floats = resized(p.floats, n)
+		for i := range p.floats {
+			p.floats[i] = float64(math.Float32frombits(binary.LittleEndian.Uint32(data[4*i:])))
 		}
 	case parquet.Type_DOUBLE:
-		for range n {
-			p.floats = append(p.floats, math.Float64frombits(binary.LittleEndian.Uint64(at)))
-			at = at[8:]
+		p.floats = resized(p.floats, n)
+		for i := range p.floats {
+			p.floats[i] = math.Float64frombits(binary.LittleEndian.Uint64(data[8*i:]))
 		}
 	default:
-		for range n {
+		for at := data; n > 0; n-- {
 			p.bytes = append(p.bytes, at[:w])
 			at = at[w:]
 		}
+		n = len(p.bytes)
 	}
 	return data[n*w:], nil
+}
+
+// resized returns s with n elements of no value in particular, in its memory if
+// that has room.
+func resized[T any](s []T, n int) []T {
+	if cap(s) < n {
+		return make([]T, n, max(n, schema.BatchRows+1))
+	}
+	return s[:n]
 }
