@@ -18,6 +18,7 @@ type Positions struct {
 	cfg    *schema.Config
 	dicts  *schema.Dicts
 	extra  []string
+	market int // underlyings that the market has
 	ended  bool
 }
 
@@ -47,7 +48,7 @@ func (f *Folder) Positions(cfg *schema.Config, d *schema.Dicts) (*Positions, err
 	if dropped > 0 {
 		f.note(emptyNameNote(o.in, dropped))
 	}
-	return &Positions{folder: f, o: o, cfg: cfg, dicts: d, extra: o.extraNames(o.Header())}, nil
+	return &Positions{folder: f, o: o, cfg: cfg, dicts: d, extra: o.extraNames(o.Header()), market: d.Underlyings.Len()}, nil
 }
 
 // Extra returns the names of the house's own further columns, in file order.
@@ -96,10 +97,20 @@ func (p *Positions) Next(pc *Piece) error {
 	return nil
 }
 
-// CheckBooks fails if the rows bound so far name more books than the limit allows.
-func (p *Positions) CheckBooks() error {
-	if int64(p.dicts.Books.Len()-1) > p.cfg.Limits.Of(schema.Books) { // the empty text has a code too
-		return p.o.in.fail(p.o.sheet, p.cfg.Limits.Exceeded(schema.Books))
+// CheckNames fails if the rows bound so far name more books, strategies, or
+// underlyings that the market does not have, than the limits allow: each is kept.
+func (p *Positions) CheckNames() error {
+	for _, x := range [...]struct {
+		limit schema.Limit
+		names int
+	}{
+		{schema.Books, p.dicts.Books.Len() - 1}, // the empty text has a code too
+		{schema.Underlyings, p.dicts.Underlyings.Len() - p.market},
+		{schema.Strategies, p.dicts.Strategies.Len() - 1},
+	} {
+		if int64(x.names) > p.cfg.Limits.Of(x.limit) {
+			return p.o.in.fail(p.o.sheet, p.cfg.Limits.Exceeded(x.limit))
+		}
 	}
 	return nil
 }

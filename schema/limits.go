@@ -15,6 +15,8 @@ const (
 	Columns
 	Rows
 	Books
+	Underlyings
+	Strategies
 	MarketRows
 	Parts
 	UnpackedBytes
@@ -44,6 +46,8 @@ var LimitDocs = [limitCount]LimitDoc{
 	Columns:          {"columns", 2048, 1, 4096, "columns of a table", "it has more columns"},
 	Rows:             {"rows", 1e9, 1, 1e12, "rows of the positions", "it has more rows"},
 	Books:            {"books", 20_000, 1, 1e8, "different books in the positions, each of which takes some kilobytes of memory", "its rows name more books"},
+	Underlyings:      {"underlyings", 100_000, 1, 1e8, "different underlyings in the positions that the market does not have", "its rows name more underlyings that the market does not have"},
+	Strategies:       {"strategies", 1e6, 1, 1e9, "different strategies in the positions", "its rows name more strategies"},
 	MarketRows:       {"market_rows", 1e7, 1, 1e9, "rows of any other table, all held in memory", "it has more rows"},
 	Parts:            {"parts", 10_000, 1, 1e6, "files of a folder of Parquet files", "it holds more files"},
 	UnpackedBytes:    {"unpacked_bytes", 64 << 30, 1 << 20, 1 << 50, "bytes that a file unpacks to", "it unpacks to more bytes"},

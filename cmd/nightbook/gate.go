@@ -48,7 +48,7 @@ func (g *gate) market(out *outputs) error {
 // rows passes a priced batch.
 func (g *gate) rows(b *schema.Batch) error {
 	g.rowsIn += int64(b.N)
-	if err := g.positions.CheckBooks(); err != nil {
+	if err := g.positions.CheckNames(); err != nil {
 		return err
 	}
 	for i := range b.N {
