@@ -76,7 +76,7 @@ func TestAmericanPastItsBoundary(t *testing.T) {
 		if !b.ExerciseNow[i] || b.Price[i] != want.price || b.Delta[i] != want.delta || b.Gamma[i] != 0 || b.Rho[i] != 0 || b.Measures[schema.ThetaCash1D][i] != 0 {
 			t.Errorf("line %d: now %v, price %v, delta %v, theta %v", i, b.ExerciseNow[i], b.Price[i], b.Delta[i], b.Measures[schema.ThetaCash1D][i])
 		}
-		if w := orientation(b.OptionType[i]); w*b.Boundary[i] > w*50 {
+		if w := orientations[b.OptionType[i]]; w*b.Boundary[i] > w*50 {
 			t.Errorf("line %d: boundary %v, spot 50", i, b.Boundary[i])
 		}
 	}

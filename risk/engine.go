@@ -35,20 +35,19 @@ func (e *Engine) Kind(c schema.Code) schema.Choice {
 
 // Worker is the scratch memory of one goroutine.
 type Worker struct {
-	terms map[termKey]term
-	last  termKey
-	term  term
+	terms terms
 	notes map[noteKey]*schema.Note
 	taken []rowNote
 
-	rows      [][]int32              // by route: 2·product, plus 1 for its expired form
-	schedules []*instrument.Schedule // by row of the batch
+	termOf    []int32   // by row of the batch: where in terms.list
+	onSurface []int32   // the rows whose volatility is read off a surface
+	rows      [][]int32 // by route: 2·product, plus 1 for its expired form
 	run       instrument.Run
 }
 
 // NewWorker returns scratch memory for one goroutine.
 func (e *Engine) NewWorker() *Worker {
-	w := &Worker{terms: map[termKey]term{}, notes: map[noteKey]*schema.Note{}, rows: make([][]int32, 2*len(products))}
+	w := &Worker{notes: map[noteKey]*schema.Note{}, rows: make([][]int32, 2*len(products))}
 	w.run.Methods = methods(e.market)
 	return w
 }
@@ -60,13 +59,13 @@ const noRoute = 255
 // ended before the batch was done, which then must not be used.
 func (e *Engine) Price(ctx context.Context, b *schema.Batch, w *Worker) error {
 	w.run.Methods.InterruptedBy(func() bool { return ctx.Err() != nil })
-	for _, s := range b.Results.Floats() {
-		clear(*s)
-	}
+	w.terms.trim()
+	w.termOf = append(w.termOf[:0], make([]int32, b.N)...)
+	w.onSurface = w.onSurface[:0]
 	for i := range w.rows {
 		w.rows[i] = w.rows[i][:0]
 	}
-	w.schedules = append(w.schedules[:0], make([]*instrument.Schedule, b.N)...)
+	e.unresolved(b)
 	for i := range b.N {
 		if b.Status[i] == schema.Rejected {
 			continue
@@ -75,9 +74,16 @@ func (e *Engine) Price(ctx context.Context, b *schema.Batch, w *Worker) error {
 			w.rows[route] = append(w.rows[route], int32(i))
 		}
 	}
+	w.smiles(b)
 	for route, rows := range w.rows {
-		if len(rows) > 0 {
-			e.priceRun(b, w, route, rows)
+		together := len(rows) // lines of finite differences share work
+		if !products[route/2].knowsExercise() || route%2 == 1 {
+			together = blockRows
+		}
+		for len(rows) > 0 {
+			n := min(together, len(rows))
+			e.priceRun(b, w, route, rows[:n])
+			rows = rows[n:]
 		}
 	}
 	if err := ctx.Err(); err != nil {
@@ -106,9 +112,10 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 		r.Spot[j], r.Strike[j], r.Time[j] = b.Spot[i], b.Strike[i], b.Time[i]
 		r.Vol[j], r.Rate[j], r.Yield[j] = b.VolUsed[i], b.Rate[i], b.Carry[i]
 		r.Entry[j] = b.EntryPrice[i]
-		r.Sign[j] = orientation(b.OptionType[i])
+		r.Sign[j] = orientations[b.OptionType[i]]
+		t := &w.terms.list[w.termOf[i]]
 		for s := range instrument.Steps {
-			r.TimeAfter[s][j] = e.timeAfter(b, int(i), s)
+			r.TimeAfter[s][j] = t.after[s]
 		}
 	}
 	if p.payoff > schema.Vanilla {
@@ -116,7 +123,7 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 	}
 	if p.dividends == withDividends {
 		for j, i := range rows {
-			r.Dividends[j] = w.schedules[i]
+			r.Dividends[j] = w.terms.list[w.termOf[i]].dividends
 		}
 	}
 	price(r)
@@ -181,22 +188,5 @@ func scatter(to, from []float64, rows []int32) {
 	}
 }
 
-// orientation is +1 for a call, −1 for a put, 0 for neither.
-func orientation(t schema.Choice) float64 {
-	switch t {
-	case schema.Call:
-		return 1
-	case schema.Put:
-		return -1
-	}
-	return 0
-}
-
-// timeAfter returns the time to expiry seen from the moment of a theta step,
-// not below 0.
-func (e *Engine) timeAfter(b *schema.Batch, i, step int) float64 {
-	if b.Expiry[i] == schema.NoDate {
-		return 0
-	}
-	return max(e.after[step].Years(b.Expiry[i], b.ExpiryMinute[i]), 0)
-}
+// orientations are +1 for a call, −1 for a put, 0 for neither.
+var orientations = [...]float64{0, schema.Call: 1, schema.Put: -1}

@@ -102,7 +102,7 @@ func prepare(m *market.Market, d *schema.Dicts, q *schema.ImpliedRow) *instrumen
 		return no(schema.QuoteNoMarket, "the forward price to expiry is "+number(q.Forward)+" once the cash dividends of "+u.Name+" are paid: check dividends")
 	}
 	o := &instrument.Quote{
-		Price: q.Used, Spot: u.Price, Strike: q.Strike, Time: q.Time, Rate: rate, Yield: u.Yield, Sign: orientation(q.OptionType),
+		Price: q.Used, Spot: u.Price, Strike: q.Strike, Time: q.Time, Rate: rate, Yield: u.Yield, Sign: orientations[q.OptionType],
 		American: q.Exercise == schema.American,
 	}
 	if u.Kind == schema.FuturePrice {
@@ -203,5 +203,5 @@ func SurfaceOf(implied []schema.ImpliedRow, file string) ([]schema.VolRow, []sch
 }
 
 func outOfTheMoney(q *schema.ImpliedRow) bool {
-	return orientation(q.OptionType)*(q.Strike-q.Forward) >= 0
+	return orientations[q.OptionType]*(q.Strike-q.Forward) >= 0
 }

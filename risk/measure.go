@@ -7,52 +7,113 @@ import (
 	"nightbook/schema"
 )
 
+// blockRows is how many rows are treated together column by column, so that
+// what one column leaves is still in the cache for the next.
+const blockRows = 512
+
 // measure turns the sensitivities of one unit into measures of the position, in
 // the line's currency and in the reporting currency, and refuses rows whose
-// results are not finite.
+// results are not finite. What it makes of rows refused before means nothing.
 func measure(b *schema.Batch) {
-	v, d, g := b.Measures[schema.Value], b.Measures[schema.DeltaCash], b.Measures[schema.GammaCash1Pct]
-	ve, t1, tb, rh := b.Measures[schema.VegaCash1Pt], b.Measures[schema.ThetaCash1D], b.Measures[schema.ThetaCash1BD], b.Measures[schema.RhoCash1BP]
-	for i := range b.N {
-		if b.Status[i] == schema.Rejected {
-			continue
-		}
-		units, s, price := b.Quantity[i]*b.Multiplier[i], b.Spot[i], b.Price[i]
-		v[i] = price * units
-		b.DeltaUnits[i] = float64(b.Delta[i] * units)
-		d[i] = b.DeltaUnits[i] * s
-		g[i] = b.Gamma[i] * s * s / 100 * units
-		ve[i] = b.Vega[i] / 100 * units
-		t1[i] = (t1[i] - price) * units
-		tb[i] = (tb[i] - price) * units
-		rh[i] = b.Rho[i] / 10_000 * units
-		fx := b.FX[i]
-		check := notFinite(b.DeltaUnits[i])
-		for m := range b.Measures {
-			x := float64(b.Measures[m][i] * fx)
-			b.MeasuresInBase[m][i] = x
-			check += notFinite(x)
-		}
-		for _, s := range [...][]float64{b.Price, b.Delta, b.Gamma, b.Vega, b.Rho, b.CarryRho, b.Vanna, b.Volga, b.Charm, b.Theta} {
-			check += notFinite(s[i])
-		}
-		if check != 0 {
-			reason := "a result is beyond the range of a double: check quantity " + number(b.Quantity[i]) +
-				", multiplier " + number(b.Multiplier[i]) + ", strike " + number(b.Strike[i]) + ", vol " + number(b.VolUsed[i]) + " and the price of the underlying"
-			if math.IsNaN(b.Price[i]) {
-				reason = "model " + schema.Models[b.Model[i]] + " has no value for such terms: vol " + number(b.VolUsed[i]) + " over " + number(b.Time[i]) +
-					" years, strike " + number(b.Strike[i]) + ", spot " + number(b.Spot[i]) + "; check them, and the rates"
+	var units [blockRows]float64
+	for from := 0; from < b.N; from += blockRows {
+		to := min(from+blockRows, b.N)
+		if outOfRange(b, from, to, units[:to-from]) {
+			for i := from; i < to; i++ {
+				refuseNotFinite(b, i)
 			}
-			refuse(b, i, schema.NotFinite, "", "", reason)
 		}
 	}
 }
 
-// notFinite is 0 for an x below half the largest double, else NaN: a kernel
-// gives the largest double itself for a result that is beyond it.
-func notFinite(x float64) float64 {
-	x = float64(x * 2) // no fused product may stand for x here
-	return x - x
+// outOfRange sets the measures of rows and reports whether any result of theirs,
+// or of a row refused before, is not finite. units is scratch.
+func outOfRange(b *schema.Batch, from, to int, units []float64) bool {
+	n := len(units)
+	rows := func(column []float64) []float64 { return column[from:to][:n] }
+	quantity, multiplier := rows(b.Quantity), rows(b.Multiplier)
+	for i := range units {
+		units[i] = quantity[i] * multiplier[i]
+	}
+	spot, price, fx := rows(b.Spot), rows(b.Price), rows(b.FX)
+
+	own := rows(b.Measures[schema.Value])
+	for i, u := range units {
+		own[i] = price[i] * u
+	}
+	own, deltaUnits, delta := rows(b.Measures[schema.DeltaCash]), rows(b.DeltaUnits), rows(b.Delta)
+	for i, u := range units {
+		x := float64(delta[i] * u)
+		deltaUnits[i] = x
+		own[i] = x * spot[i]
+	}
+	own, gamma := rows(b.Measures[schema.GammaCash1Pct]), rows(b.Gamma)
+	for i, u := range units {
+		own[i] = gamma[i] * spot[i] * spot[i] / 100 * u
+	}
+	own, vega := rows(b.Measures[schema.VegaCash1Pt]), rows(b.Vega)
+	for i, u := range units {
+		own[i] = vega[i] / 100 * u
+	}
+	for _, step := range [...]schema.Measure{schema.ThetaCash1D, schema.ThetaCash1BD} { // the revaluations wait there
+		own = rows(b.Measures[step])
+		for i, u := range units {
+			own[i] = (own[i] - price[i]) * u
+		}
+	}
+	own, rho := rows(b.Measures[schema.RhoCash1BP]), rows(b.Rho)
+	for i, u := range units {
+		own[i] = rho[i] / 10_000 * u
+	}
+
+	largest := max(
+		magnitude(deltaUnits), magnitude(price), magnitude(delta), magnitude(gamma), magnitude(vega), magnitude(rho),
+		magnitude(rows(b.Theta)), magnitude(rows(b.CarryRho)), magnitude(rows(b.Vanna)), magnitude(rows(b.Volga)), magnitude(rows(b.Charm)))
+	for m := range b.Measures {
+		own, base := rows(b.Measures[m]), rows(b.MeasuresInBase[m])
+		for i, x := range own {
+			y := float64(x * fx[i])
+			base[i] = y
+			largest = max(largest, math.Float64bits(y)<<1)
+		}
+	}
+	return largest >= notFinite
+}
+
+// notFinite is where what is not finite begins, as magnitude counts: at half the
+// largest double, for a kernel gives the largest double itself for a result that is
+// beyond it.
+const notFinite = 0x7fe << 53
+
+// magnitude returns the largest magnitude in a column, by the bits of the double
+// without its sign: those of infinities and NaNs are larger than all others.
+func magnitude(column []float64) (largest uint64) {
+	for _, x := range column {
+		largest = max(largest, math.Float64bits(x)<<1)
+	}
+	return largest
+}
+
+// refuseNotFinite refuses row i if any of its results is not finite.
+func refuseNotFinite(b *schema.Batch, i int) {
+	largest := uint64(0)
+	look := func(column []float64) { largest = max(largest, magnitude(column[i:i+1])) }
+	for _, s := range [...][]float64{b.DeltaUnits, b.Price, b.Delta, b.Gamma, b.Vega, b.Rho, b.CarryRho, b.Vanna, b.Volga, b.Charm, b.Theta} {
+		look(s)
+	}
+	for _, s := range b.MeasuresInBase {
+		look(s)
+	}
+	if largest < notFinite || b.Status[i] == schema.Rejected {
+		return
+	}
+	reason := "a result is beyond the range of a double: check quantity " + number(b.Quantity[i]) +
+		", multiplier " + number(b.Multiplier[i]) + ", strike " + number(b.Strike[i]) + ", vol " + number(b.VolUsed[i]) + " and the price of the underlying"
+	if math.IsNaN(b.Price[i]) {
+		reason = "model " + schema.Models[b.Model[i]] + " has no value for such terms: vol " + number(b.VolUsed[i]) + " over " + number(b.Time[i]) +
+			" years, strike " + number(b.Strike[i]) + ", spot " + number(b.Spot[i]) + "; check them, and the rates"
+	}
+	refuse(b, i, schema.NotFinite, "", "", reason)
 }
 
 // refuse marks row i as rejected. The caller of the engine adds where the row

@@ -2,38 +2,38 @@ package risk
 
 import (
 	"math"
+	"slices"
 	"strings"
 
-	"nightbook/risk/instrument"
 	"nightbook/risk/market"
+	"nightbook/risk/vec"
 	"nightbook/schema"
 )
 
 var nan = math.NaN()
-
-// termKey names an expiry of an underlying; lines share what hangs on it.
-type termKey struct {
-	underlying schema.Code
-	day        schema.Date
-	minute     int16
-}
-
-// term is what every line of one underlying and expiry shares.
-type term struct {
-	time, rate, forward float64
-	curveInside         bool
-	dividends           *instrument.Schedule // up to expiry; nil where there are none
-	dividendsPV         float64
-}
 
 // largeDividends is the share of the price above which what dividends are worth is
 // told of: at 40 % volatility and ten years of quarterly dividends of 1 %, put, call
 // and forward then miss their parity by a hundredth of the price.
 const largeDividends = 0.4
 
-// maxTerms bounds a worker's memory of terms, for files in which every line has
-// an expiry of its own.
-const maxTerms = 1 << 15
+// unresolved sets the inputs used by every row as they are for one that needs none.
+func (e *Engine) unresolved(b *schema.Batch) {
+	for _, s := range [...][]float64{b.Forward, b.VolUsed, b.Rate, b.Carry, b.Time, b.DividendsPV, b.PriceError, b.Boundary} {
+		fill(s, nan)
+	}
+	fill(b.DividendModel, e.market.Models.Dividends)
+	clear(b.Setting)
+	clear(b.VolSource)
+	clear(b.Curve)
+	clear(b.ExerciseNow)
+}
+
+func fill[T any](s []T, x T) {
+	for i := range s {
+		s[i] = x
+	}
+}
 
 // resolve finds for row i what it is priced with, and how, and writes the
 // inputs used. It returns the row's route, or noRoute for a refused row.
@@ -42,14 +42,14 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 	if inst != schema.Option && !plainTerms(b, i) {
 		return noRoute
 	}
-	b.Model[i], b.Setting[i], b.DividendModel[i], b.VolSource[i], b.Curve[i] = 0, 0, e.market.Models.Dividends, 0, 0
-	b.Forward[i], b.VolUsed[i], b.Rate[i], b.Carry[i], b.Time[i], b.DividendsPV[i] = nan, nan, nan, nan, nan, nan
-	b.PriceError[i], b.Boundary[i], b.ExerciseNow[i] = nan, nan, false
 	if inst == schema.Cash {
-		return e.resolveCash(b, i)
+		return e.resolveCash(b, i, w)
 	}
 
-	u := e.market.Underlying(b.Underlying[i])
+	at := w.terms.find(e, termKey{b.Underlying[i], b.Expiry[i], b.ExpiryMinute[i]})
+	w.termOf[i] = at
+	t := &w.terms.list[at]
+	u := t.underlying
 	switch {
 	case u == nil:
 		return refuse(b, i, schema.UnknownUnderlying, "underlying", e.dicts.Underlyings.Name(b.Underlying[i]), "the underlying is not in underlyings: add it there, or mend the name")
@@ -61,20 +61,20 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 		return refuse(b, i, schema.CurrencyMismatch, "currency", e.dicts.Currencies.Name(b.Currency[i]),
 			"the price of "+u.Name+" is in "+e.dicts.Currencies.Name(u.Currency)+": a line in another currency is not priced; leave currency empty or mend it")
 	}
-	if !e.exchange(b, i) {
+	if !e.exchange(b, i, t.fx) {
 		return noRoute
 	}
 	var payoff, exercise schema.Choice
 	if inst == schema.Option {
 		payoff, exercise = b.Payoff[i], b.Exercise[i]
 	}
-	at := productAt[inst][u.Kind][payoff][exercise][withoutDividends]
-	if at == 0 {
+	product := productAt[inst][u.Kind][payoff][exercise][withoutDividends]
+	if product == 0 {
 		code, column, reason := unsupported(inst, u.Kind, payoff, exercise)
 		return refuse(b, i, code, column, choiceText(b, i, column), reason)
 	}
-	p := &products[at-1]
-	route := 2 * (at - 1)
+	p := &products[product-1]
+	route := 2 * (product - 1)
 	b.Spot[i] = u.Price
 	switch {
 	case u.Price < 0 && u.Kind != schema.FuturePrice && u.Kind != schema.Spread:
@@ -83,7 +83,7 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 		if math.IsNaN(b.EntryPrice[i]) && inst == schema.Future {
 			b.EntryPrice[i] = u.Price
 		}
-		if inst == schema.Future && b.Expiry[i] != schema.NoDate && e.market.AsOf.Years(b.Expiry[i], b.ExpiryMinute[i]) <= 0 {
+		if inst == schema.Future && b.Expiry[i] != schema.NoDate && t.time <= 0 {
 			return route + 1
 		}
 		return route
@@ -101,7 +101,6 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 		return noRoute
 	}
 
-	t := e.term(u, b, i, w)
 	if t.time <= 0 {
 		b.Time[i], b.Forward[i] = 0, u.Price
 		return route + 1
@@ -110,11 +109,11 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 		return refuse(b, i, u.CurveFault.Code, "underlying", u.Name, u.CurveFault.Reason)
 	}
 	if t.dividends != nil {
-		if at = productAt[inst][u.Kind][payoff][exercise][withDividends]; at == 0 {
+		if product = productAt[inst][u.Kind][payoff][exercise][withDividends]; product == 0 {
 			return refuse(b, i, schema.Unsupported, "payoff", choiceText(b, i, "payoff"), u.Name+" pays a cash dividend on "+u.Dividends[0].ExDate.String()+
 				", before expiry, with which payoff "+schema.Payoffs[payoff]+" is not priced by this version, and it is never left out: take the line out or price it elsewhere")
 		}
-		route, w.schedules[i] = 2*(at-1), t.dividends
+		route = 2 * (product - 1)
 		if t.dividendsPV > largeDividends*u.Price {
 			w.note(i, schema.DividendsLarge, b.Underlying[i])
 		}
@@ -138,7 +137,7 @@ func (e *Engine) resolve(b *schema.Batch, i int, w *Worker) uint8 {
 }
 
 // resolveCash takes the underlying of a cash line for its currency.
-func (e *Engine) resolveCash(b *schema.Batch, i int) uint8 {
+func (e *Engine) resolveCash(b *schema.Batch, i int, w *Worker) uint8 {
 	name := e.dicts.Underlyings.Name(b.Underlying[i])
 	currency := e.dicts.Currencies.Code(strings.ToUpper(name))
 	if b.Currency[i] != 0 && b.Currency[i] != currency {
@@ -146,17 +145,17 @@ func (e *Engine) resolveCash(b *schema.Batch, i int) uint8 {
 			"the underlying of a cash line is its currency, and it says "+name+": leave currency empty, or make the two the same")
 	}
 	b.Currency[i] = currency
-	if fx := e.market.FX(currency); fx.Problem.Code != "" {
+	fx := e.market.FX(currency)
+	if fx.Problem.Code != "" {
 		return refuse(b, i, fx.Problem.Code, "underlying", name, fx.Problem.Reason)
 	}
-	e.exchange(b, i)
-	b.Spot[i] = 1
+	b.FX[i], b.Spot[i] = fx.Rate, 1
+	w.termOf[i] = w.terms.find(e, termKey{day: schema.NoDate, minute: schema.NoMinute})
 	return 2 * (productAt[schema.Cash][0][0][0][withoutDividends] - 1)
 }
 
 // exchange sets the row's rate into the reporting currency, or refuses it.
-func (e *Engine) exchange(b *schema.Batch, i int) bool {
-	fx := e.market.FX(b.Currency[i])
+func (e *Engine) exchange(b *schema.Batch, i int, fx *market.Currency) bool {
 	if fx.Problem.Code != "" {
 		refuse(b, i, fx.Problem.Code, "currency", e.dicts.Currencies.Name(b.Currency[i]), fx.Problem.Reason)
 		return false
@@ -167,7 +166,7 @@ func (e *Engine) exchange(b *schema.Batch, i int) bool {
 
 // volatility sets the row's volatility and its source, or refuses it: the
 // line's own before the surface before the underlying's flat one.
-func (e *Engine) volatility(b *schema.Batch, i int, u *market.Underlying, t term, w *Worker) bool {
+func (e *Engine) volatility(b *schema.Batch, i int, u *market.Underlying, t *term, w *Worker) bool {
 	switch {
 	case !math.IsNaN(b.Vol[i]):
 		vol, tooHigh := e.market.LineVol(b.Vol[i], u.Kind)
@@ -184,9 +183,9 @@ func (e *Engine) volatility(b *schema.Batch, i int, u *market.Underlying, t term
 			" once its cash dividends are paid, and the surface is laid out along it: check dividends, or give the line a vol")
 		return false
 	case u.Surface != nil:
-		vol, inside := u.Surface.Vol(b.Strike[i], t.forward, t.time)
-		b.VolUsed[i], b.VolSource[i] = vol, schema.VolFromSurface
-		if !inside {
+		b.VolSource[i] = schema.VolFromSurface
+		w.onSurface = append(w.onSurface, int32(i))
+		if !t.smile.Inside {
 			w.note(i, schema.SurfaceFlatEnd, b.Underlying[i])
 		}
 	case !math.IsNaN(u.FlatVol):
@@ -199,29 +198,23 @@ func (e *Engine) volatility(b *schema.Batch, i int, u *market.Underlying, t term
 	return true
 }
 
-// term returns what the line's expiry stands for, from the worker's memory
-// where it has met it.
-func (e *Engine) term(u *market.Underlying, b *schema.Batch, i int, w *Worker) term {
-	key := termKey{b.Underlying[i], b.Expiry[i], b.ExpiryMinute[i]}
-	if key == w.last {
-		return w.term
-	}
-	t, ok := w.terms[key]
-	if !ok {
-		t = term{time: e.market.AsOf.Years(key.day, key.minute), rate: nan, forward: nan}
-		if u.Curve != nil && t.time > 0 {
-			t.rate, t.curveInside = u.Curve.Rate(t.time)
-			t.forward = u.Forward(t.rate, t.time, key.day)
-			paid := u.DividendsUntil(key.day)
-			t.dividends, t.dividendsPV = e.schedule(paid, key, t.time), market.PresentValue(paid, t.rate, t.time)
+// smiles reads the volatilities of the rows that have theirs from a surface.
+func (w *Worker) smiles(b *schema.Batch) {
+	var strike, forward, k [blockRows]float64
+	for rows := range slices.Chunk(w.onSurface, blockRows) {
+		n := len(rows)
+		for j, i := range rows {
+			strike[j], forward[j] = b.Strike[i], b.Forward[i]
 		}
-		if len(w.terms) == maxTerms {
-			clear(w.terms)
+		vec.LogRatio(k[:n], strike[:n], forward[:n])
+		for j, i := range rows {
+			t := &w.terms.list[w.termOf[i]]
+			if t.underlying.Kind == schema.Spread {
+				k[j] = strike[j] - forward[j]
+			}
+			b.VolUsed[i] = t.smile.Vol(k[j])
 		}
-		w.terms[key] = t
 	}
-	w.last, w.term = key, t
-	return t
 }
 
 // choiceText returns the word at fault for a product that does not exist.

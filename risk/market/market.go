@@ -84,12 +84,14 @@ func (m *Market) Underlying(c schema.Code) *Underlying {
 }
 
 // FX returns the rate of a currency code into the reporting currency.
-func (m *Market) FX(c schema.Code) Currency {
+func (m *Market) FX(c schema.Code) *Currency {
 	if int(c) < len(m.fx) && (m.fx[c].Rate != 0 || m.fx[c].Problem.Code != "") {
-		return m.fx[c]
+		return &m.fx[c]
 	}
-	return Currency{math.NaN(), Problem{schema.NoFX, "fx has no rate for this currency: add a row"}}
+	return &noRate
 }
+
+var noRate = Currency{math.NaN(), Problem{schema.NoFX, "fx has no rate for this currency: add a row"}}
 
 // New builds a market. The notes are warnings about the snapshot. The error is
 // a fault that leaves no line to price.

@@ -34,11 +34,15 @@ func moneyness(strike, forward float64, absolute bool) float64 {
 	return vec.LogRatio1(strike, forward)
 }
 
-// slice is the smile of one expiry: w and its slope in k at each strike.
+// slice is the smile of one expiry: w at each strike, and the curves between.
 type slice struct {
-	T       float64
-	k, w, m []float64
+	T      float64
+	k, w   []float64
+	pieces []piece
 }
+
+// piece is the cubic from one strike to the next, in Bernstein form.
+type piece struct{ k, h, b0, b1, b2, b3 float64 }
 
 // point is one quoted volatility.
 type point struct{ strike, vol float64 }
@@ -58,7 +62,11 @@ func newSlice(T, forward float64, points []point, absolute bool) (slice, error) 
 		s.k = append(s.k, k)
 		s.w = append(s.w, float64(p.vol*p.vol)*T)
 	}
-	s.m = slopes(s.k, s.w)
+	m := slopes(s.k, s.w)
+	for i := 1; i < len(s.k); i++ {
+		h, b0, b3 := s.k[i]-s.k[i-1], s.w[i-1], s.w[i]
+		s.pieces = append(s.pieces, piece{s.k[i-1], h, b0, b0 + float64(h*m[i-1])/3, b3 - float64(h*m[i])/3, b3})
+	}
 	return s, nil
 }
 
@@ -113,42 +121,56 @@ func (s *slice) variance(k float64) float64 {
 	if k >= s.k[n-1] {
 		return s.w[n-1]
 	}
-	i := sort.SearchFloat64s(s.k, k) // s.k[i-1] < k <= s.k[i]
-	h := s.k[i] - s.k[i-1]
-	u := (k - s.k[i-1]) / h
+	// The piece with k[i] < k <= k[i+1]. Its search takes the same steps for all
+	// strikes: there is no telling which way one goes.
+	i := 0
+	for left := n - 1; left > 1; {
+		half := left / 2
+		j := i + half
+		if s.k[j] < k {
+			i = j
+		}
+		left -= half
+	}
+	p := &s.pieces[i]
+	u := (k - p.k) / p.h
 	v := 1 - u
-	// cubic Hermite in Bernstein form: a convex combination of four ordinates
-	b0, b3 := s.w[i-1], s.w[i]
-	b1 := b0 + float64(h*s.m[i-1])/3
-	b2 := b3 - float64(h*s.m[i])/3
+	// a convex combination of four ordinates
 	uv3 := float64(3 * float64(u*v))
-	return float64(float64(v*v)*v*b0) + float64(uv3*(float64(v*b1)+float64(u*b2))) + float64(float64(u*u)*u*b3)
+	return float64(float64(v*v)*v*p.b0) + float64(uv3*(float64(v*p.b1)+float64(u*p.b2))) + float64(float64(u*u)*u*p.b3)
 }
 
-// Vol returns σ at a strike, where the forward to T > 0 is forward, and whether T
-// lies within the expiries.
-func (s *Surface) Vol(strike, forward, T float64) (vol float64, inside bool) {
-	return s.at(moneyness(strike, forward, s.absolute), T)
+// Smile is a surface at one time to expiry.
+type Smile struct {
+	Inside    bool    // the time lies within the expiries
+	near, far *slice  // far is nil where near counts alone
+	share     float64 // of far
+	over      float64 // the time over which w stands
 }
 
-func (s *Surface) at(k, T float64) (vol float64, inside bool) {
+// Smile returns the surface at T > 0.
+func (s *Surface) Smile(T float64) Smile {
 	n := len(s.slices)
 	i := sort.Search(n, func(i int) bool { return s.slices[i].T >= T })
-	if i == n {
+	switch {
+	case i == n:
 		last := &s.slices[n-1]
-		return math.Sqrt(last.variance(k) / last.T), false
+		return Smile{near: last, over: last.T}
+	case i == 0 || s.slices[i].T == T:
+		next := &s.slices[i]
+		return Smile{Inside: next.T == T, near: next, over: next.T}
 	}
-	next := &s.slices[i]
-	if next.T == T {
-		return math.Sqrt(next.variance(k) / T), true
+	prev, next := &s.slices[i-1], &s.slices[i]
+	return Smile{Inside: true, near: prev, far: next, share: (T - prev.T) / (next.T - prev.T), over: T}
+}
+
+// Vol returns σ at a moneyness: k = ln(K/F), of a spread k = K − F.
+func (s *Smile) Vol(k float64) float64 {
+	w := s.near.variance(k)
+	if s.far != nil {
+		w = float64((1-s.share)*w) + float64(s.share*s.far.variance(k))
 	}
-	if i == 0 {
-		return math.Sqrt(next.variance(k) / next.T), false
-	}
-	prev := &s.slices[i-1]
-	u := (T - prev.T) / (next.T - prev.T)
-	w := float64((1-u)*prev.variance(k)) + float64(u*next.variance(k))
-	return math.Sqrt(w / T), true
+	return math.Sqrt(w / s.over)
 }
 
 // calendarFall returns the first slice whose total variance at the money is

@@ -91,17 +91,49 @@ func TestSurfaceInTime(t *testing.T) {
 		{1.25, math.Sqrt((0.75*w1 + 0.25*w2) / 1.25), true},
 		{0.3, math.Sqrt(w1), false}, {4, math.Sqrt(w2 / 2), false},
 	} {
-		vol, inside := s.at(0.05, x.T)
+		smile := s.Smile(x.T)
+		vol, inside := smile.Vol(0.05), smile.Inside
 		if math.Abs(vol-x.vol) > 1e-15 || inside != x.inside {
 			t.Errorf("Vol(0.05, %v) = %v, %v; want %v, %v", x.T, vol, inside, x.vol, x.inside)
 		}
 	}
 	// flat ends in strike
-	if v, _ := s.at(-9, 1); math.Abs(v-0.25) > 1e-15 {
+	year := s.Smile(1)
+	if v := year.Vol(-9); math.Abs(v-0.25) > 1e-15 {
 		t.Errorf("far below the strikes %v, want 0.25", v)
 	}
-	if v, _ := s.at(9, 1); math.Abs(v-0.21) > 1e-15 {
+	if v := year.Vol(9); math.Abs(v-0.21) > 1e-15 {
 		t.Errorf("far above the strikes %v, want 0.21", v)
+	}
+}
+
+// The piece that a moneyness falls into is the one that looking at all of them finds.
+func TestPieceOfAMoneyness(t *testing.T) {
+	rng := rand.New(rand.NewPCG(3, 1))
+	for n := 2; n < 40; n++ {
+		s, err := newSlice(0.5, 100, smile(rng, n), false)
+		if err != nil {
+			t.Fatal(err)
+		}
+		for i := 1; i < n; i++ {
+			for i0 := range s.pieces { // each piece of its own value
+				x := float64(i0 + 1)
+				s.pieces[i0].b0, s.pieces[i0].b1, s.pieces[i0].b2, s.pieces[i0].b3 = x, x, x, x
+			}
+			inner := (s.k[i-1] + s.k[i]) / 2
+			if got := s.variance(inner); math.Abs(got-float64(i)) > 1e-12 {
+				t.Fatalf("%d strikes: between %d and %d the piece of value %v", n, i-1, i, got)
+			}
+			if i == n-1 {
+				break
+			}
+			if got := s.variance(s.k[i]); math.Abs(got-float64(i)) > 1e-12 {
+				t.Fatalf("%d strikes: at %d the piece of value %v", n, i, got)
+			}
+			if got := s.variance(math.Nextafter(s.k[i], 9)); math.Abs(got-float64(i+1)) > 1e-12 {
+				t.Fatalf("%d strikes: above %d the piece of value %v", n, i, got)
+			}
+		}
 	}
 }
 
