@@ -15,42 +15,41 @@ const maxTextBound = 256
 // bounds are the smallest and largest of a page's values so far, in the fields
 // of the column's type.
 type bounds struct {
-	values, nulls      int
+	values, nulls      int  // counted when the page ends
+	any                bool // whether there are values
 	minFloat, maxFloat float64
 	minInt, maxInt     int64 // also dates and booleans
 	minText, maxText   []byte
 }
 
-func (b *bounds) reset() {
-	*b = bounds{minText: b.minText[:0], maxText: b.maxText[:0]}
-}
+func (b *bounds) reset() { *b = bounds{} }
 
-// addFloats takes into account values that lie from low to high and reach both;
-// the caller counts them.
+// addFloats takes into account values that lie from low to high and reach both.
 func (b *bounds) addFloats(low, high float64) {
-	if b.values == 0 {
-		b.minFloat, b.maxFloat = low, high
+	if !b.any {
+		b.any, b.minFloat, b.maxFloat = true, low, high
 	}
 	b.minFloat, b.maxFloat = min(b.minFloat, low), max(b.maxFloat, high)
 }
 
 // addInts is addFloats for integers.
 func (b *bounds) addInts(low, high int64) {
-	if b.values == 0 {
-		b.minInt, b.maxInt = low, high
+	if !b.any {
+		b.any, b.minInt, b.maxInt = true, low, high
 	}
 	b.minInt, b.maxInt = min(b.minInt, low), max(b.maxInt, high)
 }
 
-// addText takes a text into account. Texts are ordered by their bytes.
-func (b *bounds) addText(t string) {
-	if b.values == 0 || t < string(b.minText) {
-		b.minText = append(b.minText[:0], t...)
+// addText takes a text into account, and keeps it. Texts are ordered by their bytes.
+func (b *bounds) addText(text []byte) {
+	switch {
+	case !b.any:
+		b.any, b.minText, b.maxText = true, text, text
+	case bytes.Compare(text, b.maxText) > 0:
+		b.maxText = text
+	case bytes.Compare(text, b.minText) < 0:
+		b.minText = text
 	}
-	if b.values == 0 || t > string(b.maxText) {
-		b.maxText = append(b.maxText[:0], t...)
-	}
-	b.values++
 }
 
 // encodedBounds are bounds as the file holds them.

@@ -27,10 +27,9 @@ type column struct {
 	blocks   *blocks
 
 	// the page being filled
-	rows    int
-	present []uint8  // optional columns: 1 where row i has a value, 0 for null
+	present presence
 	body    []byte   // values in PLAIN layout; of booleans a byte each
-	indices []uint32 // of texts that are in the dictionary
+	indices []uint32 // or of values in the dictionary
 	bounds  bounds
 
 	texts   textDict // of which a column uses one
@@ -80,20 +79,20 @@ func (c *column) add(v *schema.Vector, from, to int, s *scratch) (row int, err e
 	}
 	switch v.Kind {
 	case schema.KindFloats:
-		row, err = c.addFloats(v.Floats[from:to])
+		row, err = c.addFloats(v.Floats[from:to], s)
 	case schema.KindInts:
-		row, err = addWhole(c, v.Ints[from:to], schema.NoInt)
+		row, err = addWhole(c, v.Ints[from:to], schema.NoInt, s)
 	case schema.KindDates:
-		row, err = addWhole(c, v.Dates[from:to], schema.NoDate)
+		row, err = addWhole(c, v.Dates[from:to], schema.NoDate, s)
 	case schema.KindBools:
-		row, err = c.addBools(v.Bools[from:to])
+		c.addBools(v.Bools[from:to])
 	default:
 		return c.addTexts(v, from, to, s)
 	}
 	if err != nil {
 		return from + row, err
 	}
-	if c.rows == pageRows {
+	if c.present.rows == pageRows {
 		err = c.endPage(s)
 	}
 	return to, err
@@ -101,7 +100,7 @@ func (c *column) add(v *schema.Vector, from, to int, s *scratch) (row int, err e
 
 // finish ends the last page of the row group.
 func (c *column) finish(s *scratch) error {
-	if c.rows > 0 {
+	if c.present.rows > 0 {
 		if err := c.endPage(s); err != nil {
 			return err
 		}
@@ -110,14 +109,16 @@ func (c *column) finish(s *scratch) error {
 }
 
 // held is how many bytes the row group's pages take.
-func (c *column) held() int64 { return c.chunk.held + int64(len(c.body)) }
+func (c *column) held() int64 { return c.chunk.held + int64(len(c.body)+4*len(c.indices)) }
 
 // endPage turns what was added since the last page into a finished page.
 func (c *column) endPage(s *scratch) error {
 	first := len(c.chunk.pages) == 0
+	rows := c.present.rows
+	c.bounds.values, c.bounds.nulls = rows-c.present.nulls, c.present.nulls
 	s.raw = s.raw[:0]
 	if !c.Required {
-		s.raw = appendLevels(s.raw, c.present, c.bounds.nulls)
+		s.raw = c.present.appendLevels(s.raw)
 	}
 	encoding, block := c.encode(s)
 	if first {
@@ -136,11 +137,11 @@ func (c *column) endPage(s *scratch) error {
 		}
 	}
 	p := c.chunk.nextPage()
-	p.encoding, p.rows, p.bounds = encoding, c.rows, c.bounds.encoded(c.physical)
+	p.encoding, p.rows, p.bounds = encoding, rows, c.bounds.encoded(c.physical)
 	err := c.chunk.seal(p, &parquet.PageHeader{
 		Type: parquet.PageType_DATA_PAGE,
 		DataPageHeader: &parquet.DataPageHeader{
-			NumValues:               int32(c.rows),
+			NumValues:               int32(rows),
 			Encoding:                encoding,
 			DefinitionLevelEncoding: parquet.Encoding_RLE,
 			RepetitionLevelEncoding: parquet.Encoding_RLE,
@@ -150,51 +151,39 @@ func (c *column) endPage(s *scratch) error {
 	if len(block) > 0 {
 		c.body = nil // it is the chunk's now
 	}
-	c.rows = 0
-	c.present, c.body, c.indices = c.present[:0], c.body[:0], c.indices[:0]
+	c.present.reset()
+	c.body, c.indices = c.body[:0], c.indices[:0]
 	c.bounds.reset()
-	c.texts.page++
 	return err
 }
 
 // encode appends the page's values to s.raw, or returns them as a block if they
 // are numbers to be written as they lie.
 func (c *column) encode(s *scratch) (e parquet.Encoding, block []byte) {
-	indices, width := c.indices, 0
+	width := 0
 	switch {
 	case c.physical == parquet.Type_BOOLEAN:
 		s.raw = appendBits(s.raw, c.body)
 		return parquet.Encoding_PLAIN, nil
 	case c.width > 0:
-		if !c.indexNumbers(s) {
+		if !c.numbers.off && !c.numbers.endPage(len(c.indices)) {
+			c.leaveDictionary()
+		}
+		if len(c.indices) == 0 {
 			return parquet.Encoding_PLAIN, c.body
 		}
-		indices = s.indices
 		width = indexWidth(len(c.numbers.values))
-	case len(c.indices) == 0:
-		s.raw = append(s.raw, c.body...)
-		return parquet.Encoding_PLAIN, nil
 	default:
+		if len(c.indices) == 0 {
+			s.raw = append(s.raw, c.body...)
+			return parquet.Encoding_PLAIN, nil
+		}
+		c.texts.endPage(&c.bounds)
 		width = indexWidth(len(c.texts.values))
 	}
 	s.raw = append(s.raw, byte(width))
-	s.raw = appendHybrid(s.raw, indices, width)
+	s.raw = appendHybrid(s.raw, c.indices, width)
 	return parquet.Encoding_RLE_DICTIONARY, nil
-}
-
-// indexNumbers makes s.indices of the page's numbers, if they go through the
-// dictionary.
-func (c *column) indexNumbers(s *scratch) bool {
-	d := &c.numbers
-	if d.off || len(c.body) == 0 {
-		return false
-	}
-	most := mostNumbers
-	if len(d.values) == 0 {
-		most = min(most, len(c.body)/c.width/repeats)
-	}
-	s.indices, d.off = d.index(s.indices[:0], c.body, c.width, most)
-	return !d.off
 }
 
 // trialBytes is how much of a chunk is packed to see whether it is worth it.

@@ -1,27 +1,42 @@
 package parquet
 
-import "encoding/binary"
+import (
+	"encoding/binary"
+	"slices"
+)
+
+// leastRun is how many equal values make a run-length run.
+const leastRun = 8
 
 // appendHybrid appends values of width bits (1 to 32) in the format's mixture of
 // run-length and bit-packed runs: a run of eight or more equal values becomes a
 // run-length run, what lies between is packed in groups of eight.
-func appendHybrid[T uint8 | uint32](dst []byte, values []T, width int) []byte {
-	literal, i := 0, 0 // values[literal:i] are to be bit-packed
-	for i < len(values) {
-		run := 1
-		for i+run < len(values) && values[i+run] == values[i] {
-			run++
+func appendHybrid(dst []byte, values []uint32, width int) []byte {
+	literal, i := 0, 0 // values[literal:i] are to be bit-packed, none of them equal to the next
+	for i+leastRun <= len(values) {
+		// A long run that begins at i reaches the value looked at. If that is
+		// another, the runs before its own are short ones.
+		probe := i + leastRun - 1
+		start, value := probe, values[probe]
+		for start > i && values[start-1] == value {
+			start--
 		}
-		// A bit-packed run other than the last must be whole groups.
-		fill := (8 - (i-literal)%8) % 8
-		if run-fill < 8 {
-			i += run
+		if start > i {
+			i = start
 			continue
 		}
-		dst = appendPacked(dst, values[literal:i+fill], width)
-		dst = appendRun(dst, run-fill, uint32(values[i]), width)
-		i += run
-		literal = i
+		end := probe + 1
+		for end < len(values) && values[end] == value {
+			end++
+		}
+		// A bit-packed run other than the last must be whole groups.
+		fill := -(i - literal) & 7
+		if end-i-fill >= leastRun {
+			dst = appendPacked(dst, values[literal:i+fill], width)
+			dst = appendRun(dst, end-i-fill, value, width)
+			literal = end
+		}
+		i = end
 	}
 	return appendPacked(dst, values[literal:], width)
 }
@@ -37,43 +52,53 @@ func appendRun(dst []byte, n int, value uint32, width int) []byte {
 }
 
 // appendPacked appends one bit-packed run, the last group filled with zeros.
-func appendPacked[T uint8 | uint32](dst []byte, values []T, width int) []byte {
+func appendPacked(dst []byte, values []uint32, width int) []byte {
 	if len(values) == 0 {
 		return dst
 	}
 	groups := (len(values) + 7) / 8
 	dst = binary.AppendUvarint(dst, uint64(groups)<<1|1)
+	const slack = 32 // that the last group is written with, and more
 	end := len(dst) + groups*width
-	var acc uint64
-	bits := 0 // in acc, fewer than 32 between values
-	for _, v := range values {
-		acc |= uint64(v) << bits
-		if bits += width; bits >= 32 {
-			dst = binary.LittleEndian.AppendUint32(dst, uint32(acc))
-			acc >>= 32
-			bits -= 32
-		}
+	dst = slices.Grow(dst, groups*width+slack)
+	to := dst[len(dst) : end+slack]
+	for ; len(values) >= 8; values = values[8:] {
+		packGroup((*[slack]byte)(to), (*[8]uint32)(values), uint(width))
+		to = to[width:]
 	}
-	for len(dst) < end {
-		dst = append(dst, byte(acc))
-		acc >>= 8
+	if len(values) > 0 {
+		var last [8]uint32
+		copy(last[:], values)
+		packGroup((*[slack]byte)(to), &last, uint(width))
 	}
 	return dst[:end]
 }
 
-// appendLevels appends definition levels of an optional column, with their
-// length before them, as a data page holds them.
-func appendLevels(dst []byte, present []uint8, nulls int) []byte {
-	at := len(dst)
-	dst = append(dst, 0, 0, 0, 0)
-	switch nulls {
-	case 0:
-		dst = appendRun(dst, len(present), 1, 1)
-	case len(present):
-		dst = appendRun(dst, len(present), 0, 1)
-	default:
-		dst = appendHybrid(dst, present, 1)
+// packGroup packs eight values of width bits each; the bytes after them are
+// anything.
+func packGroup(to *[32]byte, v *[8]uint32, width uint) {
+	a := uint64(v[0]) | uint64(v[1])<<(width&63)
+	b := uint64(v[2]) | uint64(v[3])<<(width&63)
+	c := uint64(v[4]) | uint64(v[5])<<(width&63)
+	d := uint64(v[6]) | uint64(v[7])<<(width&63)
+	if width <= 8 {
+		a |= b << (2 * width & 63)
+		c |= d << (2 * width & 63)
+		binary.LittleEndian.PutUint64(to[:], a|c<<(4*width&63))
+		return
 	}
-	binary.LittleEndian.PutUint32(dst[at:], uint32(len(dst)-at-4))
-	return dst
+	var acc uint64
+	n, at := uint(0), 0 // bits in acc, fewer than 64
+	for _, pair := range [...]uint64{a, b, c, d} {
+		acc |= pair << n
+		if n += 2 * width; n >= 64 {
+			binary.LittleEndian.PutUint64(to[at:], acc)
+			at += 8
+			n -= 64
+			acc = pair >> (2*width - n)
+		}
+	}
+	if n > 0 {
+		binary.LittleEndian.PutUint64(to[at:], acc)
+	}
 }

@@ -14,6 +14,9 @@ const (
 	// repeats is how often, on average, the numbers of a chunk's first page must
 	// be repeated for the chunk to have a dictionary.
 	repeats = 4
+
+	// firstNumbers is how many different numbers that page may hold.
+	firstNumbers = pageRows / repeats
 )
 
 // numberDict is the dictionary of a column chunk of numbers, in the order in which
@@ -21,37 +24,39 @@ const (
 type numberDict struct {
 	off    bool // the rest of the chunk is PLAIN
 	values []uint64
+	had    int      // values of the pages before the one being filled
 	places []uint32 // open addressing: index of a value plus one, 0 where free
 	shift  int      // 64 minus the bits of a place
 }
 
-// index appends the indices of a page's numbers, of width bytes each. If the
-// dictionary would grow beyond most numbers, it appends none and says so.
-func (d *numberDict) index(indices []uint32, page []byte, width, most int) (_ []uint32, tooMany bool) {
-	had := len(d.values)
-	indices = slices.Grow(indices, len(page)/width)
-	var last uint64
-	n := uint32(0) // index of last, plus one
-	for at := 0; at < len(page); at += width {
+// index appends the indices of numbers of width bytes each, and returns how many
+// bytes of them it took: it stops at a number that the dictionary has no room for.
+func (d *numberDict) index(indices []uint32, numbers []byte, width int) ([]uint32, int) {
+	most := mostNumbers
+	if d.had == 0 {
+		most = firstNumbers
+	}
+	if len(d.places) == 0 {
+		d.resize(2 * firstNumbers)
+	}
+	indices = slices.Grow(indices, len(numbers)/width)
+	for at := 0; at < len(numbers); at += width {
 		var v uint64
 		if width == 8 {
-			v = binary.LittleEndian.Uint64(page[at:])
+			v = binary.LittleEndian.Uint64(numbers[at:])
 		} else {
-			v = uint64(binary.LittleEndian.Uint32(page[at:]))
+			v = uint64(binary.LittleEndian.Uint32(numbers[at:]))
 		}
-		if v != last || n == 0 {
-			if n = d.find(v); n == 0 {
-				if len(d.values) == most {
-					d.values = d.values[:had]
-					return indices[:0], true
-				}
-				n = d.add(v)
+		n := d.find(v)
+		if n == 0 {
+			if len(d.values) == most {
+				return indices, at
 			}
-			last = v
+			n = d.add(v)
 		}
 		indices = append(indices, n-1)
 	}
-	return indices, false
+	return indices, len(numbers)
 }
 
 // place is where the search for v begins. The multiplier is 2⁶⁴ over the golden
@@ -63,9 +68,6 @@ func (d *numberDict) place(v uint64) int {
 
 // find returns the index of v, plus one; 0 is that it is new.
 func (d *numberDict) find(v uint64) uint32 {
-	if len(d.places) == 0 {
-		return 0
-	}
 	for i := d.place(v); ; i = (i + 1) & (len(d.places) - 1) {
 		n := d.places[i]
 		if n == 0 || d.values[n-1] == v {
@@ -77,7 +79,7 @@ func (d *numberDict) find(v uint64) uint32 {
 func (d *numberDict) add(v uint64) uint32 {
 	d.values = append(d.values, v)
 	if 2*len(d.values) > len(d.places) {
-		d.grow()
+		d.resize(2 * len(d.places))
 	} else {
 		d.set(len(d.values))
 	}
@@ -93,28 +95,62 @@ func (d *numberDict) set(n int) {
 	d.places[i] = uint32(n)
 }
 
-func (d *numberDict) grow() {
-	size := max(256, 2*len(d.places))
-	d.places, d.shift = make([]uint32, size), 64-bits.Len(uint(size-1))
+// resize makes size places, a power of two.
+func (d *numberDict) resize(size int) {
+	d.places = slices.Grow(d.places[:0], size)[:size]
+	clear(d.places)
+	d.shift = 64 - bits.Len(uint(size-1))
 	for n := range d.values {
 		d.set(n + 1)
 	}
 }
 
+// endPage tells whether the page, of so many numbers, stays with the dictionary.
+func (d *numberDict) endPage(numbers int) bool {
+	if d.had == 0 {
+		if len(d.values) > numbers/repeats {
+			return false
+		}
+		// What is to come will be much like it: fewer places are nearer.
+		if size := max(256, 4<<bits.Len(uint(len(d.values)))); size < len(d.places) {
+			d.resize(size)
+		}
+	}
+	d.had = len(d.values)
+	return true
+}
+
+// giveUp takes the page out of the dictionary, and has the rest of the chunk go
+// PLAIN.
+func (d *numberDict) giveUp() {
+	d.off, d.values = true, d.values[:d.had]
+}
+
+// appendValues appends the numbers behind indices, of width bytes each.
+func (d *numberDict) appendValues(dst []byte, indices []uint32, width int) []byte {
+	for _, n := range indices {
+		dst = appendNumber(dst, d.values[n], width)
+	}
+	return dst
+}
+
 // reset empties the dictionary for the next chunk.
 func (d *numberDict) reset() {
-	clear(d.places)
-	d.values, d.off = d.values[:0], false
+	d.places = d.places[:0]
+	d.values, d.had, d.off = d.values[:0], 0, false
 }
 
 // appendPlain appends the dictionary as its page holds it.
 func (d *numberDict) appendPlain(dst []byte, width int) []byte {
 	for _, v := range d.values {
-		if width == 8 {
-			dst = binary.LittleEndian.AppendUint64(dst, v)
-		} else {
-			dst = binary.LittleEndian.AppendUint32(dst, uint32(v))
-		}
+		dst = appendNumber(dst, v, width)
 	}
 	return dst
+}
+
+func appendNumber(dst []byte, v uint64, width int) []byte {
+	if width == 8 {
+		return binary.LittleEndian.AppendUint64(dst, v)
+	}
+	return binary.LittleEndian.AppendUint32(dst, uint32(v))
 }

@@ -64,9 +64,9 @@ func (p *page) write(w *counter) error {
 
 // scratch is the working memory of one worker.
 type scratch struct {
-	raw     []byte   // a page before compression
-	packed  []byte   // and after
-	indices []uint32 // of a page's numbers
+	raw     []byte // a page before compression
+	packed  []byte // and after
+	numbers []byte // of a slice of a column, on their way to its page
 	gzip    *gzip.Writer
 	thrift  *serializer
 }

@@ -29,17 +29,23 @@ type textDict struct {
 	bytes   int // that values take in the file
 	numbers map[string]uint32
 
-	// known[c] is the number, plus one, of the text behind code or choice c of
-	// source: it saves looking the text up. Codes depend on chance and leave no
-	// trace in the file.
-	known  []uint32
+	// known[c] tells of code or choice c of source what has been found out: it
+	// saves looking the text up. Codes depend on chance and leave no trace in the
+	// file.
+	known  []uint32 // unmet, null, or firstKnown plus the number of the text
 	source any
 
-	// seen[n] is the last page that holds text n, so that a text is compared
-	// with the bounds once a page.
-	seen []int
-	page int // number of the page being filled, from 1
+	// seen[k] is whether the page holds a code of which k is known: a text is
+	// compared with the bounds once a page.
+	seen []bool
 }
+
+// What is known of a code.
+const (
+	unmet = iota
+	null
+	firstKnown
+)
 
 // addTexts appends rows [from, to) of a text vector, ending pages where they
 // are full of rows or of bytes. If it fails, row is the row at fault.
@@ -47,7 +53,7 @@ func (c *column) addTexts(v *schema.Vector, from, to int, s *scratch) (row int, 
 	d := &c.texts
 	d.know(v)
 	for from < to {
-		end := min(to, from+pageRows-c.rows)
+		end := min(to, from+pageRows-c.present.rows)
 		switch {
 		case d.off:
 			from, err = c.addPlain(v, from, end)
@@ -61,7 +67,7 @@ func (c *column) addTexts(v *schema.Vector, from, to int, s *scratch) (row int, 
 		if err != nil {
 			return from, err
 		}
-		if c.rows == pageRows || len(c.body) >= pageBytes || !d.off && d.bytes > dictionaryBytes {
+		if c.present.rows == pageRows || len(c.body) >= pageBytes || !d.off && d.bytes > dictionaryBytes {
 			if err := c.endPage(s); err != nil {
 				return from, err
 			}
@@ -75,23 +81,14 @@ func (c *column) addTexts(v *schema.Vector, from, to int, s *scratch) (row int, 
 	return to, nil
 }
 
-// value notes that the next row has a value.
-func (c *column) value() {
-	if !c.Required {
-		c.present = append(c.present, 1)
+// addPresence notes of n rows, from a row on, which have a value. It returns the
+// row behind them, or the row at fault.
+func (c *column) addPresence(mask uint64, from, n int) (int, error) {
+	if c.Required && mask != ^uint64(0)>>(64-n) {
+		return from + bits.TrailingZeros64(^mask), errNull
 	}
-	c.rows++
-}
-
-// null notes that the next row has none.
-func (c *column) null() error {
-	if c.Required {
-		return errNull
-	}
-	c.present = append(c.present, 0)
-	c.rows++
-	c.bounds.nulls++
-	return nil
+	c.present.add(mask, n)
+	return from + n, nil
 }
 
 // The next three append rows [from, to) to the page, up to the row that fills
@@ -101,48 +98,90 @@ func (c *column) null() error {
 // addCoded appends texts that have codes, through the dictionary.
 func addCoded[C schema.Code | schema.Choice](c *column, v *schema.Vector, codes []C, from, to int) (int, error) {
 	d := &c.texts
-	c.indices = slices.Grow(c.indices, to-from)
-	for i := from; i < to; i++ {
-		code := int(codes[i])
-		n := uint32(0)
-		if code < len(d.known) {
-			n = d.known[code]
-		}
-		if n == 0 {
-			text := v.Text(i)
-			if text == "" {
-				if err := c.null(); err != nil {
-					return i, err
-				}
-				continue
-			}
-			n = d.number(text) + 1
-			d.remember(code, n)
-			if d.bytes > dictionaryBytes {
-				to = i + 1
+	for from < to {
+		part := codes[from:min(from+64, to)]
+		at := len(c.indices)
+		c.indices = slices.Grow(c.indices, len(part))
+		indices, known, seen := c.indices[at:at+len(part)], d.known, d.seen
+		var mask uint64
+		n := 0
+		for i, code := range part {
+			k := known[code]
+			seen[k] = true
+			indices[n] = k - firstKnown // or is overwritten
+			if k >= firstKnown {
+				n++
+				mask |= 1 << i
 			}
 		}
-		c.value()
-		c.addIndex(n - 1)
+		if seen[unmet] {
+			seen[unmet] = false
+			if end := meet(d, v, codes, from, from+len(part), to); end < to {
+				to = end
+				d.see(c.indices) // and no text behind the last row
+			}
+			continue
+		}
+		c.indices = c.indices[:at+n]
+		var err error
+		if from, err = c.addPresence(mask, from, len(part)); err != nil {
+			return from, err
+		}
 	}
 	return to, nil
+}
+
+// meet numbers the texts of rows [from, to) with a code that is unmet. It returns
+// end, or the row behind the one that overfills the dictionary.
+func meet[C schema.Code | schema.Choice](d *textDict, v *schema.Vector, codes []C, from, to, end int) int {
+	for i := from; i < to; i++ {
+		code := codes[i]
+		if d.known[code] != unmet {
+			continue
+		}
+		text := v.Text(i)
+		if text == "" {
+			d.known[code] = null
+			continue
+		}
+		d.known[code] = firstKnown + d.number(text)
+		if d.bytes > dictionaryBytes {
+			return i + 1
+		}
+	}
+	return end
+}
+
+// see notes that the page holds texts of these numbers, and no others.
+func (d *textDict) see(indices []uint32) {
+	clear(d.seen)
+	for _, n := range indices {
+		d.seen[firstKnown+n] = true
+	}
 }
 
 // addStrings appends texts that come as they are, through the dictionary.
 func (c *column) addStrings(v *schema.Vector, from, to int) (int, error) {
 	d := &c.texts
-	for i := from; i < to; i++ {
-		text := v.Strings.At(i)
-		if text == "" {
-			if err := c.null(); err != nil {
-				return i, err
+	for from < to {
+		end := min(from+64, to)
+		var mask uint64
+		for i := from; i < end; i++ {
+			text := v.Strings.At(i)
+			if text == "" {
+				continue
 			}
-			continue
+			n := d.number(text)
+			d.seen[firstKnown+n] = true
+			c.indices = append(c.indices, n)
+			mask |= 1 << (i - from)
+			if d.bytes > dictionaryBytes {
+				to, end = i+1, i+1
+			}
 		}
-		c.value()
-		c.addIndex(d.number(text))
-		if d.bytes > dictionaryBytes {
-			return i + 1, nil
+		var err error
+		if from, err = c.addPresence(mask, from, end-from); err != nil {
+			return from, err
 		}
 	}
 	return to, nil
@@ -150,57 +189,51 @@ func (c *column) addStrings(v *schema.Vector, from, to int) (int, error) {
 
 // addPlain appends texts without a dictionary.
 func (c *column) addPlain(v *schema.Vector, from, to int) (int, error) {
-	for i := from; i < to; i++ {
-		text := v.Text(i)
-		if text == "" {
-			if err := c.null(); err != nil {
-				return i, err
+	for from < to {
+		end := min(from+64, to)
+		var mask uint64
+		for i := from; i < end; i++ {
+			text := v.Text(i)
+			if text == "" {
+				continue
 			}
-			continue
+			c.body = binary.LittleEndian.AppendUint32(c.body, uint32(len(text)))
+			start := len(c.body)
+			c.body = append(c.body, text...)
+			c.bounds.addText(c.body[start:])
+			mask |= 1 << (i - from)
+			if len(c.body) >= pageBytes {
+				to, end = i+1, i+1
+			}
 		}
-		c.value()
-		c.body = binary.LittleEndian.AppendUint32(c.body, uint32(len(text)))
-		c.body = append(c.body, text...)
-		c.bounds.addText(text)
-		if len(c.body) >= pageBytes {
-			return i + 1, nil
+		var err error
+		if from, err = c.addPresence(mask, from, end-from); err != nil {
+			return from, err
 		}
 	}
 	return to, nil
 }
 
-func (c *column) addIndex(n uint32) {
-	c.indices = append(c.indices, n)
-	if d := &c.texts; d.seen[n] != d.page {
-		d.seen[n] = d.page
-		c.bounds.addText(d.values[n])
-	}
-}
-
 // know prepares for a vector: codes of another source are not the same codes.
 func (d *textDict) know(v *schema.Vector) {
 	if d.numbers == nil {
-		d.numbers, d.page = map[string]uint32{}, 1
+		d.numbers, d.seen = map[string]uint32{}, make([]bool, firstKnown)
 	}
 	var source any
+	codes := 0
 	switch v.Kind {
 	case schema.KindCodes:
-		source = v.Dict
+		source, codes = v.Dict, v.Dict.Len()
 	case schema.KindChoices:
-		source = &v.Names[0]
+		source, codes = &v.Names[0], len(v.Names)
 	}
 	if source != d.source {
 		d.source = source
 		clear(d.known)
 	}
-}
-
-// remember notes the number, plus one, of a code's text.
-func (d *textDict) remember(code int, n uint32) {
-	for len(d.known) <= code {
-		d.known = append(d.known, 0)
+	for len(d.known) < codes {
+		d.known = append(d.known, unmet)
 	}
-	d.known[code] = n
 }
 
 // number returns the number of a text, giving it one if it has none.
@@ -212,10 +245,33 @@ func (d *textDict) number(text string) uint32 {
 	text = strings.Clone(text) // it may be part of the frame's memory
 	n = uint32(len(d.values))
 	d.values = append(d.values, text)
-	d.seen = append(d.seen, 0)
+	d.seen = append(d.seen, false)
 	d.bytes += 4 + len(text)
 	d.numbers[text] = n
 	return n
+}
+
+// endPage adds the texts of the page to its bounds.
+func (d *textDict) endPage(b *bounds) {
+	low, high, any := "", "", false
+	for n, text := range d.values {
+		if !d.seen[firstKnown+n] {
+			continue
+		}
+		switch {
+		case !any:
+			low, high, any = text, text, true
+		case text < low:
+			low = text
+		case text > high:
+			high = text
+		}
+	}
+	clear(d.seen)
+	if any {
+		b.addText([]byte(low))
+		b.addText([]byte(high))
+	}
 }
 
 // indexWidth is how many bits an index into a dictionary of n values takes.
@@ -235,5 +291,6 @@ func (d *textDict) reset() {
 	clear(d.values)
 	clear(d.known)
 	clear(d.numbers)
-	d.values, d.seen, d.bytes, d.off = d.values[:0], d.seen[:0], 0, d.offAll
+	d.values, d.bytes, d.off = d.values[:0], 0, d.offAll
+	d.seen = d.seen[:min(len(d.seen), firstKnown)]
 }

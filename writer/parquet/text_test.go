@@ -1,0 +1,42 @@
+package parquet
+
+import (
+	"fmt"
+	"strings"
+	"testing"
+
+	"nightbook/schema"
+)
+
+// Texts with codes: every page has the bounds of its own texts, also where the
+// dictionary is given up in the middle of rows.
+func TestCodedPages(t *testing.T) {
+	for name, text := range map[string]func(i int) string{
+		"few":                func(i int) string { return fmt.Sprint("name ", i*i%71) },
+		"with nulls":         func(i int) string { return []string{"", "a", "", "c", "d"}[i*i%5] },
+		"in runs":            func(i int) string { return fmt.Sprint("book ", i/1000) },
+		"a large dictionary": func(i int) string { return strings.Repeat("x", 200) + fmt.Sprint(i*7919%20_011) },
+		"new ones later":     func(i int) string { return fmt.Sprint(strings.Repeat("z", 100), max(0, i-30_000)*13%9_001) },
+	} {
+		dict := schema.NewDict()
+		f := &schema.Frame{N: 60_000, Cols: []schema.Vector{{Kind: schema.KindCodes, Dict: dict}}}
+		for i := range f.N {
+			f.Cols[0].Codes = append(f.Cols[0].Codes, dict.Code(text(i)))
+		}
+		data := write(t, schema.Table{Name: "t", Columns: []schema.Column{{Name: "it", Type: schema.Text}}}, Options{}, f)
+		readBack(t, data, f)
+		row := 0
+		for _, p := range pages(t, data, footer(t, data).RowGroups[0].Columns[0]) {
+			h := p.header.DataPageHeader
+			if h == nil {
+				continue
+			}
+			to := row + int(h.NumValues)
+			low, high, nulls := boundsOf(&f.Cols[0], row, to)
+			if s := h.Statistics; string(s.MinValue) != string(low) || string(s.MaxValue) != string(high) || *s.NullCount != nulls {
+				t.Errorf("%s, rows %d to %d: from %s to %s, %d nulls; want %s to %s, %d", name, row, to, s.MinValue, s.MaxValue, *s.NullCount, low, high, nulls)
+			}
+			row = to
+		}
+	}
+}
