@@ -5,6 +5,7 @@ import (
 	"errors"
 	"fmt"
 	"io"
+	"os"
 	"path/filepath"
 	"strings"
 
@@ -50,7 +51,7 @@ surface of these volatilities.`,
 					return usagef("--out takes a file that ends in .csv or .parquet, not %q", out)
 				}
 			}
-			rows, err := imply(c.Context, snapshot, c.String("as-of"))
+			rows, refused, err := imply(c.Context, snapshot, c.String("as-of"), out)
 			if err != nil {
 				return err
 			}
@@ -66,33 +67,64 @@ surface of these volatilities.`,
 			if err != nil {
 				return err
 			}
-			return tellImplied(newConsole(c.App.ErrWriter, c.String("log")), rows)
+			return tellImplied(newConsole(c.App.ErrWriter, c.String("log")), rows, refused)
 		},
 	}
 }
 
-// imply reads a snapshot and inverts its quotes.
-func imply(ctx context.Context, snapshot, asOf string) ([]schema.ImpliedRow, error) {
+// imply reads a snapshot and inverts its quotes. refused are rows of the other
+// tables: what a quote lacks for them is answered with the quote, but a table
+// that lost a row may be one that no quote stumbles over.
+func imply(ctx context.Context, snapshot, asOf, out string) (rows []schema.ImpliedRow, refused []schema.Reject, err error) {
 	folder, err := reader.OpenFolder(ctx, snapshot, "underlyings", "rates", "quotes")
 	if err != nil {
-		return nil, err
+		return nil, nil, err
+	}
+	if err := keepInputs(folder, snapshot, out); err != nil {
+		return nil, nil, err
 	}
 	cfg, err := folder.Config(asOf)
 	if err != nil {
-		return nil, err
+		return nil, nil, err
 	}
 	cfg.Vols.FromQuotes = true
 	raw, err := folder.Market(cfg)
 	if err != nil {
-		return nil, err
+		return nil, nil, err
 	}
 	raw.Vols = nil
 	dicts := schema.NewDicts()
 	m, _, err := market.New(cfg, raw, dicts)
 	if err != nil {
-		return nil, err
+		return nil, nil, err
 	}
-	return risk.Imply(ctx, m, dicts, raw.Quotes)
+	for _, f := range raw.Faults {
+		if f.Table != "quotes" { // each of those is answered
+			refused = append(refused, f.Reject)
+		}
+	}
+	rows, err = risk.Imply(ctx, m, dicts, raw.Quotes)
+	return rows, refused, err
+}
+
+// keepInputs refuses to write over what is read.
+func keepInputs(folder *reader.Folder, snapshot, out string) error {
+	result, err := os.Stat(out)
+	if err != nil {
+		return nil // there is nothing to write over
+	}
+	names := []string{"run.toml"}
+	for i := range schema.Inputs {
+		if name := folder.FileOf(schema.Inputs[i].Name); name != "" {
+			names = append(names, name)
+		}
+	}
+	for _, name := range names {
+		if info, err := os.Stat(filepath.Join(snapshot, name)); err == nil && os.SameFile(info, result) {
+			return fmt.Errorf("%s is read by this command, and is not replaced by it: give another --out", out)
+		}
+	}
+	return nil
 }
 
 func writeImplied(w io.Writer, format string, rows []schema.ImpliedRow) error {
@@ -106,9 +138,13 @@ func writeImplied(w io.Writer, format string, rows []schema.ImpliedRow) error {
 	return t.Close()
 }
 
-// tellImplied counts the quotes by status; quotes without a volatility are a
-// status of the program of their own.
-func tellImplied(con *console, rows []schema.ImpliedRow) error {
+// mostRefused is how many refused rows are told one by one: there is no file of
+// them to look into.
+const mostRefused = 20
+
+// tellImplied counts the quotes by status, and tells of the refused rows of other
+// tables. Either is a status of the program of its own.
+func tellImplied(con *console, rows []schema.ImpliedRow, refused []schema.Reject) error {
 	count := make([]int, len(schema.QuoteStatuses))
 	for i := range rows {
 		count[rows[i].Status]++
@@ -119,9 +155,28 @@ func tellImplied(con *console, rows []schema.ImpliedRow) error {
 			parts = append(parts, fmt.Sprintf("%d %s", n, schema.QuoteStatuses[s]))
 		}
 	}
-	con.say(fmt.Sprintf("%d quotes: %s", len(rows), strings.Join(parts, ", ")), "quotes", len(rows), "ok", count[schema.QuoteOK])
-	if count[schema.QuoteOK] < len(rows) {
+	for i := range refused[:min(len(refused), mostRefused)] {
+		r := &refused[i]
+		con.say("rejected, "+cellError(r).Error(), "file", r.File, "sheet", r.Sheet, "line", r.Line, "column", r.Column, "code", r.Code, "value", r.Value)
+	}
+	if more := len(refused) - mostRefused; more > 0 {
+		con.say(fmt.Sprintf("and %d market rows more", more), "more", more)
+	}
+	text := fmt.Sprintf("%d quotes: %s", len(rows), strings.Join(parts, ", "))
+	if len(rows) == 0 {
+		text = "0 quotes"
+	}
+	if len(refused) > 0 {
+		text += fmt.Sprintf("; rejected market rows: %d", len(refused))
+	}
+	con.say(text, "quotes", len(rows), "ok", count[schema.QuoteOK], "market_rows_rejected", len(refused))
+	if count[schema.QuoteOK] < len(rows) || len(refused) > 0 {
 		return &statusError{exitRejected, nil}
 	}
 	return nil
+}
+
+// cellError is a refused row as an error.
+func cellError(r *schema.Reject) *schema.CellError {
+	return &schema.CellError{File: r.File, Sheet: r.Sheet, Line: r.Line, Column: r.Column, Value: r.Value, Code: r.Code, Err: errors.New(r.Reason)}
 }
