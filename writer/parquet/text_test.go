@@ -11,12 +11,25 @@ import (
 // Texts with codes: every page has the bounds of its own texts, also where the
 // dictionary is given up in the middle of rows.
 func TestCodedPages(t *testing.T) {
+	// The row that overfills the dictionary, where it holds two short texts and
+	// then, from the second page on, long ones.
+	const size = 200
+	full := pageRows + (dictionaryBytes-(4+5)-(4+1))/(4+size)
 	for name, text := range map[string]func(i int) string{
 		"few":                func(i int) string { return fmt.Sprint("name ", i*i%71) },
 		"with nulls":         func(i int) string { return []string{"", "a", "", "c", "d"}[i*i%5] },
 		"in runs":            func(i int) string { return fmt.Sprint("book ", i/1000) },
 		"a large dictionary": func(i int) string { return strings.Repeat("x", 200) + fmt.Sprint(i*7919%20_011) },
 		"new ones later":     func(i int) string { return fmt.Sprint(strings.Repeat("z", 100), max(0, i-30_000)*13%9_001) },
+		"the last text again, behind the row that overfills the dictionary": func(i int) string {
+			switch {
+			case i == 0 || i == full+1:
+				return "~last"
+			case i < pageRows:
+				return "a"
+			}
+			return fmt.Sprintf("%*d", size, i)
+		},
 	} {
 		dict := schema.NewDict()
 		f := &schema.Frame{N: 60_000, Cols: []schema.Vector{{Kind: schema.KindCodes, Dict: dict}}}
