@@ -23,12 +23,12 @@ type Binder struct {
 
 	books, underlyings, currencies, strategies *schema.Interner
 
-	// Which rows need a cell, by the instruments of the piece; see need.
-	every, options, dated need
-	instruments           []schema.Choice
+	instruments []schema.Choice // of the piece, as far as they have been read
+	known       lookups
+	valid       []validity // of the house's own columns
 
 	problems []problem
-	bad      []bool // by row
+	bad      []bool // by row; empty is that none is
 }
 
 // problem is something wrong with a row; column is ours.
@@ -44,9 +44,7 @@ func (p *Positions) NewBinder() *Binder {
 		books: schema.NewInterner(p.dicts.Books), underlyings: schema.NewInterner(p.dicts.Underlyings),
 		currencies: schema.NewInterner(p.dicts.Currencies), strategies: schema.NewInterner(p.dicts.Strategies),
 	}
-	n.every = func(int) *finding { return missing }
-	n.options = func(i int) *finding { return optionNeeds(n.instruments[i]) }
-	n.dated = func(i int) *finding { return datedNeeds(n.instruments[i]) }
+	n.valid = make([]validity, len(p.extra))
 	if t, ok := p.o.source.(*textFile); ok {
 		n.decoder = t.NewDecoder()
 	}
@@ -71,7 +69,10 @@ func (n *Binder) Bind(pc *Piece, b *schema.Batch) error {
 	n.cells.Rows = rows
 	b.File = cmp.Or(rows.File, n.p.o.in.name)
 	n.problems = n.problems[:0]
-	n.bad = append(n.bad[:0], make([]bool, rows.N)...)
+	n.bad = n.bad[:0]
+	if len(rows.Bad) > 0 {
+		n.bad = append(n.bad, make([]bool, rows.N)...)
+	}
 	for _, x := range rows.Bad {
 		n.bad[x.Row] = true
 	}
@@ -96,39 +97,39 @@ func (n *Binder) columns(b *schema.Batch) {
 	n.instruments = b.Instrument
 	nan := math.NaN()
 	n.ids(b)
-	n.codes(book, n.books, b.Book, n.every)
-	n.codes(underlying, n.underlyings, b.Underlying, n.every)
-	n.choices(instrument, schema.Instruments, n.words.instrument, b.Instrument, n.every)
-	n.numbers(quantity, &anyNumber, b.Quantity, nan, n.every)
-	n.numbers(multiplier, &positive, b.Multiplier, 1, none)
+	n.codes(book, n.books, b.Book, &everyone)
+	n.codes(underlying, n.underlyings, b.Underlying, &everyone)
+	n.choices(instrument, schema.Instruments, n.words.instrument, b.Instrument, &everyone)
+	n.numbers(quantity, &anyNumber, b.Quantity, nan, &everyone)
+	n.numbers(multiplier, &positive, b.Multiplier, 1, &nobody)
 	n.currency(b.Currency)
-	n.choices(optionType, schema.OptionTypes, n.words.optionType, b.OptionType, n.options)
-	n.choices(exercise, schema.Exercises, n.words.exercise, b.Exercise, none)
-	n.choices(payoff, schema.Payoffs, n.words.payoff, b.Payoff, none)
+	n.choices(optionType, schema.OptionTypes, n.words.optionType, b.OptionType, &options)
+	n.choices(exercise, schema.Exercises, n.words.exercise, b.Exercise, &nobody)
+	n.choices(payoff, schema.Payoffs, n.words.payoff, b.Payoff, &nobody)
 	for i, x := range b.Instrument {
 		if x == schema.Option {
 			b.Exercise[i] = cmp.Or(b.Exercise[i], schema.European)
 			b.Payoff[i] = cmp.Or(b.Payoff[i], schema.Vanilla)
 		}
 	}
-	n.numbers(strike, &anyNumber, b.Strike, nan, n.dated)
-	n.dates(expiry, b.Expiry, b.ExpiryMinute, n.dated)
-	n.numbers(vol, &n.vol, b.Vol, nan, none)
-	n.numbers(mark, &anyNumber, b.Mark, nan, none)
-	n.numbers(payout, &anyNumber, b.Payout, nan, none)
-	n.choices(barrierType, schema.BarrierTypes, n.words.barrierType, b.BarrierType, none)
-	n.numbers(barrier, &anyNumber, b.Barrier, nan, none)
-	n.numbers(rebate, &anyNumber, b.Rebate, nan, none)
-	n.choices(monitoring, schema.Monitorings, n.words.monitoring, b.Monitoring, none)
-	n.dates(averageStart, b.AverageStart, nil, none)
-	n.numbers(averageSoFar, &anyNumber, b.AverageSoFar, nan, none)
-	n.numbers(entryPrice, &anyNumber, b.EntryPrice, nan, none)
-	n.codes(strategy, n.strategies, b.Strategy, none)
+	n.numbers(strike, &anyNumber, b.Strike, nan, &dated)
+	n.dates(expiry, b.Expiry, b.ExpiryMinute, &dated)
+	n.numbers(vol, &n.vol, b.Vol, nan, &nobody)
+	n.numbers(mark, &anyNumber, b.Mark, nan, &nobody)
+	n.numbers(payout, &anyNumber, b.Payout, nan, &nobody)
+	n.choices(barrierType, schema.BarrierTypes, n.words.barrierType, b.BarrierType, &nobody)
+	n.numbers(barrier, &anyNumber, b.Barrier, nan, &nobody)
+	n.numbers(rebate, &anyNumber, b.Rebate, nan, &nobody)
+	n.choices(monitoring, schema.Monitorings, n.words.monitoring, b.Monitoring, &nobody)
+	n.dates(averageStart, b.AverageStart, nil, &nobody)
+	n.numbers(averageSoFar, &anyNumber, b.AverageSoFar, nan, &nobody)
+	n.numbers(entryPrice, &anyNumber, b.EntryPrice, nan, &nobody)
+	n.codes(strategy, n.strategies, b.Strategy, &nobody)
 }
 
 // wrong notes a problem; further ones of a row that is no row are not worth a word.
 func (n *Binder) wrong(row, column int, why *finding) {
-	if !n.bad[row] {
+	if len(n.bad) == 0 || !n.bad[row] {
 		n.problems = append(n.problems, problem{row, column, why})
 	}
 }

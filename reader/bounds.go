@@ -74,3 +74,13 @@ func (b *bounds) check(x float64, kind table.Cell) (float64, *finding) {
 	}
 	return x, nil
 }
+
+// plain returns the finite numbers which check takes as they are, as the range
+// from lo to hi; ok is false where it takes none as it is.
+func (b *bounds) plain() (lo, hi float64, ok bool) {
+	lo, hi = max(b.from, -math.MaxFloat64), min(b.to, math.MaxFloat64)
+	if b.open {
+		lo = math.Nextafter(lo, math.Inf(1))
+	}
+	return lo, hi, b.scale == 0
+}

@@ -2,6 +2,7 @@ package reader
 
 import (
 	"bytes"
+	"encoding/binary"
 	"math"
 	"unicode/utf8"
 
@@ -72,6 +73,9 @@ func checkName(b []byte) *finding {
 	if len(b) > maxText {
 		return tooLongText
 	}
+	if printable(b) {
+		return nil
+	}
 	ascii := true
 	for _, x := range b {
 		if x < 0x20 || x == 0x7f {
@@ -94,6 +98,24 @@ func checkName(b []byte) *finding {
 		}
 	}
 	return nil
+}
+
+// printable reports whether b is 8 bytes or more, all of them of ASCII without its
+// control characters.
+func printable(b []byte) bool {
+	const ones, tops = 0x0101010101010101, 0x8080808080808080
+	if len(b) < 8 {
+		return false
+	}
+	// A byte below 0x20 borrows into its top bit, 0x7f carries into it, and
+	// what borrows or carries further has set its own.
+	x := binary.LittleEndian.Uint64(b[len(b)-8:])
+	odd := x | (x - 0x20*ones) | (x + ones)
+	for ; len(b) > 8; b = b[8:] {
+		x := binary.LittleEndian.Uint64(b)
+		odd |= x | (x - 0x20*ones) | (x + ones)
+	}
+	return odd&tops == 0
 }
 
 // fault returns what is wrong with a cell that holds an error instead of a value.
@@ -151,6 +173,19 @@ func (c *cells) number(col, i int) (float64, *finding) {
 		return x, nil
 	}
 	return math.NaN(), notNumber
+}
+
+// numberWithin returns a cell's number in our unit, absent if the cell is empty,
+// NaN if something is wrong with it.
+func (c *cells) numberWithin(col, i int, within *bounds, absent float64) (x float64, empty bool, why *finding) {
+	if x, why = c.number(col, i); why != nil {
+		return x, false, why
+	}
+	if math.IsNaN(x) {
+		return absent, true, nil
+	}
+	x, why = within.check(x, c.Cell(col, i))
+	return x, false, why
 }
 
 // date returns a cell's date and time of day; NoDate is an empty cell.

@@ -49,18 +49,13 @@ var (
 	forwardNeedsIt = &finding{schema.MissingValue, "the cell is empty and a forward needs it"}
 )
 
-// optionNeeds says why a line of that instrument needs what options need.
-func optionNeeds(i schema.Choice) *finding {
-	if i == schema.Option {
-		return optionNeedsIt
-	}
-	return nil
-}
+// needs says, by the instrument of a row, why it needs a cell that is empty; nil
+// is that it does not. An instrument that could not be read is the first.
+type needs [schema.Cash + 1]*finding
 
-// datedNeeds says why a line of that instrument needs a strike and an expiry.
-func datedNeeds(i schema.Choice) *finding {
-	if i == schema.Forward {
-		return forwardNeedsIt
-	}
-	return optionNeeds(i)
-}
+var (
+	nobody   = needs{}
+	everyone = needs{missing, missing, missing, missing, missing, missing}
+	options  = needs{schema.Option: optionNeedsIt}
+	dated    = needs{schema.Option: optionNeedsIt, schema.Forward: forwardNeedsIt}
+)
