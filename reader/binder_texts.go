@@ -16,29 +16,41 @@ type validity struct {
 // ids reads line_id.
 func (n *Binder) ids(b *schema.Batch) {
 	at := n.p.o.at[lineID]
-	if n.spelled(at) {
+	spelled := n.spelled(at)
+	if spelled {
 		n.spans(b, at, &b.LineID)
 	}
+	marked := n.cells.Cells[at] != nil
 	for i := range n.cells.N {
+		if spelled && !marked {
+			id := b.Raw.Data[b.LineID.Start[i]:b.LineID.End[i]]
+			if printable(id) && id[0] != ' ' && id[len(id)-1] != ' ' && len(id) <= maxText {
+				continue
+			}
+		}
 		id, why := n.cells.name(at, i)
 		if why != nil {
 			n.wrong(i, lineID, why)
 		} else if len(id) == 0 {
 			n.wrong(i, lineID, missing)
 		}
-		if b.LineID.Len() == n.cells.N { // as the cells are, with spaces around them
-			if start, end := b.LineID.Start[i], b.LineID.End[i]; int(end-start) != len(id) {
-				for start < end && (b.Raw.Data[start] == ' ' || b.Raw.Data[start] == '\t') {
-					start++
-				}
-				b.LineID.Start[i], b.LineID.End[i] = start, start+uint32(len(id))
-			}
+		if spelled {
+			trimSpan(&b.LineID, b.Raw.Data, i, len(id))
 			continue
 		}
 		start := len(b.Raw.Data)
 		b.Raw.Data = append(b.Raw.Data, id...)
 		b.LineID.AppendSpan(uint32(start), uint32(len(b.Raw.Data)))
 	}
+}
+
+// trimSpan takes the spaces around text i from its span, which leaves size bytes.
+func trimSpan(s *schema.Strings, data []byte, i, size int) {
+	start, end := s.Start[i], s.End[i]
+	for int(end-start) > size && (data[start] == ' ' || data[start] == '\t') {
+		start++
+	}
+	s.Start[i], s.End[i] = start, start+uint32(size)
 }
 
 // spelled reports whether a column is of texts, and has them in its vector.
