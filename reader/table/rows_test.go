@@ -81,3 +81,36 @@ func TestReset(t *testing.T) {
 		t.Errorf("%d columns", len(r.Cols))
 	}
 }
+
+// A coded column shows the same before and after it is spelled out, and so do
+// the rows behind.
+func TestCoded(t *testing.T) {
+	var texts schema.Strings
+	for _, x := range []string{"north", "so,uth", "never", ""} {
+		texts.AppendString(x)
+	}
+	var r Rows
+	r.Reset(1)
+	r.N = 3
+	r.Coded[0] = Coded{NewWords(texts), []uint32{1, 3, 0}}
+	r.AppendColumn("2026", Number)
+	for _, state := range []string{"coded", "spelled out"} {
+		for i, want := range []string{`"so,uth",2026`, ",2026", "north,2026"} {
+			if got := string(r.AppendRow(nil, i)); got != want {
+				t.Errorf("%s, row %d: %s, want %s", state, i, got, want)
+			}
+		}
+		if got := r.Cell(0, 1)*10 + r.Cell(1, 1); got != 10*Text+Number {
+			t.Errorf("%s: cells of kinds %d", state, got)
+		}
+		r.SpellOut(0)
+	}
+	r.Cols[0].Strings.AppendString("more")
+	if got := string(r.Text(0, 2)) + string(r.Text(0, 3)); r.Coded[0].Words != nil || got != "northmore" || string(texts.Data) != "northso,uthnever" {
+		t.Errorf("%s; the words are %s", got, texts.Data)
+	}
+	r.Reset(2)
+	if r.Coded[0].Words != nil || r.Coded[1].Words != nil || len(r.Coded) != 2 {
+		t.Errorf("%+v", r.Coded)
+	}
+}

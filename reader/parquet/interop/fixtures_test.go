@@ -24,11 +24,11 @@ var fixtures = []struct {
 	layout
 }{
 	{"lz4-delta", kind{physical: parquet.Types.Int64, logical: schema.NoLogicalType{}, value: func(i int) any { return int64(i*i - 7) }},
-		layout{compress.Codecs.Lz4Raw, parquet.DataPageV1, parquet.Encodings.DeltaBinaryPacked, true}},
+		layout{compress.Codecs.Lz4Raw, parquet.DataPageV1, parquet.Encodings.DeltaBinaryPacked, true, false}},
 	{"lz4-split", kind{physical: parquet.Types.Double, logical: schema.NoLogicalType{}, value: func(i int) any { return float64(i)/8 - 3 }},
-		layout{compress.Codecs.Lz4Raw, parquet.DataPageV2, parquet.Encodings.ByteStreamSplit, true}},
+		layout{compress.Codecs.Lz4Raw, parquet.DataPageV2, parquet.Encodings.ByteStreamSplit, true, false}},
 	{"lz4-plain", kind{physical: parquet.Types.ByteArray, logical: schema.StringLogicalType{}, value: func(i int) any { return parquet.ByteArray(fmt.Sprintf("row %d of many", i/3)) }},
-		layout{compress.Codecs.Lz4Raw, parquet.DataPageV1, parquet.Encodings.Plain, false}},
+		layout{compress.Codecs.Lz4Raw, parquet.DataPageV1, parquet.Encodings.Plain, false, false}},
 }
 
 // TestFixtures compares the files of ../testdata with what is made here.

@@ -22,10 +22,11 @@ type layout struct {
 	page     parquet.DataPageVersion
 	encoding parquet.Encoding
 	optional bool
+	outgrown bool // the dictionary, by the values: the pages behind are plain
 }
 
 func (l layout) String() string {
-	return fmt.Sprintf("%s, pages v%d, %s, nulls %v", l.encoding, l.page+1, l.codec, l.optional)
+	return fmt.Sprintf("%s, pages v%d, %s, nulls %v, dictionary outgrown %v", l.encoding, l.page+1, l.codec, l.optional, l.outgrown)
 }
 
 // isNull says which rows of a column with nulls have none: now and then many in a row.
@@ -49,6 +50,9 @@ func write(k kind, l layout, n int) ([]byte, error) {
 		parquet.WithVersion(parquet.V2_LATEST)}
 	if l.encoding == parquet.Encodings.RLEDict {
 		options = append(options, parquet.WithDictionaryDefault(true))
+		if l.outgrown {
+			options = append(options, parquet.WithDictionaryPageSizeLimit(1500))
+		}
 	} else {
 		options = append(options, parquet.WithDictionaryDefault(false), parquet.WithEncoding(l.encoding))
 	}
@@ -162,8 +166,11 @@ func TestReadTheirs(t *testing.T) {
 	const n = 3000
 	for _, k := range kinds() {
 		for _, encoding := range encodings(k.physical) {
-			for at := range 2 * 2 * len(codecs) {
-				l := layout{codecs[at/4], parquet.DataPageVersion(at & 1), encoding, at&2 != 0}
+			for at := range 2 * 2 * 2 * len(codecs) {
+				l := layout{codecs[at/8], parquet.DataPageVersion(at & 1), encoding, at&2 != 0, at&4 != 0}
+				if l.outgrown && encoding != parquet.Encodings.RLEDict {
+					continue
+				}
 				b, err := write(k, l, n)
 				if err != nil {
 					t.Fatalf("%s, %s: written: %v", k.name, l, err)
