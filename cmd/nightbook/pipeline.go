@@ -118,7 +118,9 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 	}
 
 	s := &schema.Summary{Config: cfg, Version: version, RowsIn: gate.rowsIn, Faults: int64(len(raw.Faults)), Inputs: folder.Inputs()}
-	totals.Summary(s)
+	if err := totals.Summary(ctx, s); err != nil {
+		return nil, err
+	}
 	s.Notes = slices.Concat(s.Notes, gate.notes(), folder.Notes(), marketNotes)
 	if s.RowsIn == 0 {
 		s.Notes = append(s.Notes, schema.Note{Code: schema.NoPositions, Subject: positions.Name(), File: positions.Name(), Count: 1,

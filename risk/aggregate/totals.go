@@ -2,6 +2,7 @@ package aggregate
 
 import (
 	"cmp"
+	"context"
 	"math"
 	"slices"
 
@@ -10,37 +11,32 @@ import (
 
 // sums are the exact forms of schema.Totals.
 type sums struct {
+	row                       // quantity, and the measures in the reporting currency
 	priced, expired, rejected int64
-	quantity                  Sum
-	measures                  [schema.NumMeasures]Sum
 }
 
 func (s *sums) merge(t *sums) {
 	s.priced += t.priced
 	s.expired += t.expired
 	s.rejected += t.rejected
-	s.quantity.Merge(&t.quantity)
-	for m := range s.measures {
-		s.measures[m].Merge(&t.measures[m])
-	}
+	s.row.merge(&t.row)
 }
 
 func (s *sums) round() schema.Totals {
 	t := schema.Totals{
 		Lines: s.priced + s.expired, Priced: s.priced, Expired: s.expired, Rejected: s.rejected,
-		Quantity: s.quantity.Round(),
+		Quantity: s.row.round(0),
 	}
-	for m := range s.measures {
-		t.Measures[m] = s.measures[m].Round()
+	for m := range t.Measures {
+		t.Measures[m] = s.row.round(1 + m)
 	}
 	return t
 }
 
-// local are sums in the price currency, of lines on one underlying in one currency.
+// local are sums of lines on one underlying in one currency.
 type local struct {
 	sums
-	deltaUnits   Sum
-	measures     [schema.NumMeasures]Sum
+	own          row // units of delta, and the measures in the price currency
 	kind         schema.Choice
 	spot, fx     float64
 	underlying   schema.Code
@@ -48,21 +44,35 @@ type local struct {
 	isUnderlying bool
 }
 
-// Totals adds up a run. It is not safe for concurrent use; sums made apart may
-// be made one with Merge.
+// inCurrency returns the measures in the price currency.
+func (l *local) inCurrency() (measures [schema.NumMeasures]float64) {
+	for m := range measures {
+		measures[m] = l.own.round(1 + m)
+	}
+	return measures
+}
+
+// Totals adds up a run. It is not safe for concurrent use.
 type Totals struct {
 	dicts *schema.Dicts
 	tree  *tree
 	notes []schema.Note
 
-	books     []*sums // by schema.Code of the book; nil where no line names it
-	locals    map[[2]schema.Code]*local
-	lastLocal *local
-	rowBooks  []*sums  // of the batch at hand, by row
-	rowLocals []*local // likewise
-	noBook    sums     // rejected rows whose book could not be read
-	codes     map[schema.RejectCode]int64
-	worst     [3]float64 // see Summary.MaxResidual, MaxIntegralResidual, MaxPriceError
+	books  []*sums // by schema.Code of the book; nil where no line names it
+	locals map[localKey]*local
+	recent [2][]*local // by code of the underlying: of underlyings, and of cash, the one in the currency met last
+	noBook sums        // rejected rows whose book could not be read
+	codes  map[schema.RejectCode]int64
+	worst  [3]float64 // see Summary.MaxResidual, MaxIntegralResidual, MaxPriceError
+
+	ofBook, ofLocal, own [blockRows]*row // of the lines at hand
+}
+
+// localKey names a local. Cash is kept apart from an underlying that bears a
+// currency's name.
+type localKey struct {
+	underlying, currency schema.Code
+	isUnderlying         bool
 }
 
 // NewTotals returns empty totals over the book tree of the snapshot.
@@ -73,7 +83,7 @@ func NewTotals(books []schema.BookRow, d *schema.Dicts) (*Totals, error) {
 	}
 	return &Totals{
 		dicts: d, tree: t, notes: notes,
-		locals: map[[2]schema.Code]*local{}, codes: map[schema.RejectCode]int64{}, worst: [3]float64{math.NaN(), math.NaN(), math.NaN()},
+		locals: map[localKey]*local{}, codes: map[schema.RejectCode]int64{}, worst: [3]float64{math.NaN(), math.NaN(), math.NaN()},
 	}, nil
 }
 
@@ -90,29 +100,42 @@ func (t *Totals) AddRejects(b *schema.Batch) {
 // AddLines adds the lines of a compacted batch. kind gives the kind of an
 // underlying, 0 for a name that is none.
 func (t *Totals) AddLines(b *schema.Batch, kind func(schema.Code) schema.Choice) {
-	t.rowBooks, t.rowLocals = t.rowBooks[:0], t.rowLocals[:0]
-	for i := range b.N {
+	for from := 0; from < b.N; from += blockRows {
+		t.addBlock(b, from, min(from+blockRows, b.N), kind)
+	}
+	t.lookForWorst(b)
+}
+
+// addBlock adds the lines from and up to.
+func (t *Totals) addBlock(b *schema.Batch, from, to int, kind func(schema.Code) schema.Choice) {
+	n := to - from
+	ofBook, ofLocal, own := t.ofBook[:n], t.ofLocal[:n], t.own[:n]
+	for j := range n {
+		i := from + j
 		s, l := t.book(b.Book[i]), t.local(b, i, kind)
-		t.rowBooks, t.rowLocals = append(t.rowBooks, s), append(t.rowLocals, l)
+		s.reserve()
+		l.row.reserve()
+		l.own.reserve()
+		ofBook[j], ofLocal[j], own[j] = &s.row, &l.row, &l.own
+		expired := int64(0)
 		if b.Status[i] == schema.Expired {
-			s.expired++
-			l.expired++
-		} else {
-			s.priced++
-			l.priced++
+			expired = 1
 		}
-		s.quantity.Add(b.Quantity[i])
-		l.quantity.Add(b.Quantity[i])
-		l.deltaUnits.Add(b.DeltaUnits[i])
+		s.expired += expired
+		l.expired += expired
+		s.priced += 1 - expired
+		l.priced += 1 - expired
 	}
-	for m := range schema.NumMeasures {
-		own, inBase := b.Measures[m], b.MeasuresInBase[m]
-		for i, l := range t.rowLocals {
-			t.rowBooks[i].measures[m].Add(inBase[i])
-			l.sums.measures[m].Add(inBase[i])
-			l.measures[m].Add(own[i])
-		}
+	addTwice(0, ofBook, ofLocal, b.Quantity[from:to])
+	addOnce(0, own, b.DeltaUnits[from:to])
+	for m := range int(schema.NumMeasures) {
+		addTwice(1+m, ofBook, ofLocal, b.MeasuresInBase[m][from:to])
+		addOnce(1+m, own, b.Measures[m][from:to])
 	}
+}
+
+// lookForWorst keeps the largest errors.
+func (t *Totals) lookForWorst(b *schema.Batch) {
 	for i, r := range b.Residual[:b.N] {
 		worst := &t.worst[0]
 		switch b.Model[i] {
@@ -140,31 +163,37 @@ func (t *Totals) book(c schema.Code) *sums {
 	return t.books[c]
 }
 
+// local returns the sums of the underlying and the currency of line i.
 func (t *Totals) local(b *schema.Batch, i int, kind func(schema.Code) schema.Choice) *local {
-	u, c := b.Underlying[i], b.Currency[i]
-	if l := t.lastLocal; l != nil && l.underlying == u && l.currency == c && l.isUnderlying == (b.Instrument[i] != schema.Cash) {
-		return l
+	key := localKey{b.Underlying[i], b.Currency[i], b.Instrument[i] != schema.Cash}
+	recent := &t.recent[0]
+	if !key.isUnderlying {
+		recent = &t.recent[1]
 	}
-	key := [2]schema.Code{u, c}
-	isUnderlying := b.Instrument[i] != schema.Cash
-	if !isUnderlying {
-		key[0] = ^u // cash is kept apart from an underlying that bears a currency's name
+	if int(key.underlying) < len(*recent) {
+		if l := (*recent)[key.underlying]; l != nil && l.currency == key.currency {
+			return l
+		}
 	}
 	l := t.locals[key]
 	if l == nil {
-		l = &local{underlying: u, currency: c, spot: b.Spot[i], fx: b.FX[i], isUnderlying: isUnderlying}
-		if isUnderlying {
-			l.kind = kind(u)
+		l = &local{underlying: key.underlying, currency: key.currency, spot: b.Spot[i], fx: b.FX[i], isUnderlying: key.isUnderlying}
+		if key.isUnderlying {
+			l.kind = kind(key.underlying)
 		}
 		t.locals[key] = l
 	}
-	t.lastLocal = l
+	for int(key.underlying) >= len(*recent) {
+		*recent = append(*recent, nil)
+	}
+	(*recent)[key.underlying] = l
 	return l
 }
 
 // Summary rounds the sums into a summary: totals, books, underlyings,
-// currencies, reject counts and notes about books.
-func (t *Totals) Summary(s *schema.Summary) {
+// currencies, reject counts and notes about books. The error is that of a context
+// that ended before: the summary then must not be used.
+func (t *Totals) Summary(ctx context.Context, s *schema.Summary) error {
 	listed := len(t.tree.nodes) > 0
 	for c, sum := range t.books {
 		if sum == nil {
@@ -180,8 +209,12 @@ func (t *Totals) Summary(s *schema.Summary) {
 			}
 		}
 	}
-	t.sumBooks(s)
-	t.sumLocals(s)
+	if err := t.sumBooks(ctx, s); err != nil {
+		return err
+	}
+	if err := t.sumLocals(ctx, s); err != nil {
+		return err
+	}
 	for _, c := range schema.RejectCodes {
 		if n := t.codes[schema.RejectCode(c.Code)]; n > 0 {
 			s.RejectCount = append(s.RejectCount, schema.CodeCount{Code: c.Code, Count: n})
@@ -190,9 +223,11 @@ func (t *Totals) Summary(s *schema.Summary) {
 	}
 	s.Notes = append(s.Notes, t.notes...)
 	s.MaxResidual, s.MaxIntegralResidual, s.MaxPriceError = t.worst[0], t.worst[1], t.worst[2]
+	return nil
 }
 
-func (t *Totals) sumBooks(s *schema.Summary) {
+// sumBooks adds the books up along the tree.
+func (t *Totals) sumBooks(ctx context.Context, s *schema.Summary) error {
 	own := map[string]*sums{}
 	for c, sum := range t.books {
 		if sum != nil {
@@ -214,6 +249,9 @@ func (t *Totals) sumBooks(s *schema.Summary) {
 	}
 	rounded := make(map[*node]schema.Totals, len(order))
 	for _, n := range slices.Backward(order) {
+		if err := ctx.Err(); err != nil {
+			return err
+		}
 		s := of(n)
 		if o := own[n.book]; o != nil {
 			s.merge(o)
@@ -227,6 +265,9 @@ func (t *Totals) sumBooks(s *schema.Summary) {
 		delete(all, n)
 	}
 	t.tree.walk(func(n *node, level int, path string) {
+		if ctx.Err() != nil {
+			return
+		}
 		b := schema.BookTotal{Book: n.book, Owner: n.owner, Path: path, Level: level, Listed: n.listed}
 		if n.parent != nil {
 			b.Parent = n.parent.book
@@ -238,37 +279,38 @@ func (t *Totals) sumBooks(s *schema.Summary) {
 		s.Books = append(s.Books, b)
 	})
 	s.Total = total.round()
+	return ctx.Err()
 }
 
-func (t *Totals) sumLocals(s *schema.Summary) {
+// sumLocals adds the underlyings up by currency.
+func (t *Totals) sumLocals(ctx context.Context, s *schema.Summary) error {
 	currencies := map[schema.Code]*local{}
 	for _, l := range t.locals {
+		if err := ctx.Err(); err != nil {
+			return err
+		}
 		u := schema.UnderlyingTotal{
 			Underlying: t.dicts.Underlyings.Name(l.underlying), Kind: l.kind,
 			Currency: t.dicts.Currencies.Name(l.currency), Spot: l.spot, FX: l.fx,
-			DeltaUnits: l.deltaUnits.Round(), Totals: l.round(),
+			DeltaUnits: l.own.round(0), Local: l.inCurrency(), Totals: l.sums.round(),
 		}
 		c := currencies[l.currency]
 		if c == nil {
 			c = &local{fx: l.fx}
 			currencies[l.currency] = c
 		}
-		c.merge(&l.sums)
-		for m := range l.measures {
-			u.Local[m] = l.measures[m].Round()
-			c.measures[m].Merge(&l.measures[m])
-		}
+		c.sums.merge(&l.sums)
+		c.own.merge(&l.own)
 		s.Underlyings = append(s.Underlyings, u)
 	}
 	for code, l := range currencies {
-		c := schema.CurrencyTotal{Currency: t.dicts.Currencies.Name(code), FX: l.fx, Totals: l.round()}
-		for m := range l.measures {
-			c.Local[m] = l.measures[m].Round()
-		}
-		s.Currencies = append(s.Currencies, c)
+		s.Currencies = append(s.Currencies, schema.CurrencyTotal{
+			Currency: t.dicts.Currencies.Name(code), FX: l.fx, Local: l.inCurrency(), Totals: l.sums.round(),
+		})
 	}
 	slices.SortFunc(s.Underlyings, func(a, b schema.UnderlyingTotal) int {
 		return cmp.Or(cmp.Compare(a.Underlying, b.Underlying), cmp.Compare(a.Currency, b.Currency), cmp.Compare(a.Kind, b.Kind))
 	})
 	slices.SortFunc(s.Currencies, func(a, b schema.CurrencyTotal) int { return cmp.Compare(a.Currency, b.Currency) })
+	return nil
 }

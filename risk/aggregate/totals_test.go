@@ -69,7 +69,9 @@ func summaryOf(t *testing.T, lots []lot, cuts []int) *schema.Summary {
 		from = to
 	}
 	s := &schema.Summary{RowsIn: int64(len(lots))}
-	totals.Summary(s)
+	if err := totals.Summary(t.Context(), s); err != nil {
+		t.Fatal(err)
+	}
 	return s
 }
 
@@ -169,7 +171,9 @@ func TestParentWithoutARow(t *testing.T) {
 		t.Fatal(err)
 	}
 	s := &schema.Summary{}
-	totals.Summary(s)
+	if err := totals.Summary(t.Context(), s); err != nil {
+		t.Fatal(err)
+	}
 	if len(s.Books) != 2 || s.Books[0].Book != "ghost" || s.Books[0].Listed || s.Books[1].Level != 1 {
 		t.Errorf("%+v", s.Books)
 	}
