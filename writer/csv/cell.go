@@ -2,66 +2,9 @@ package csv
 
 import (
 	"fmt"
-	"math"
-	"strconv"
 	"strings"
 	"unicode/utf8"
-
-	"nightbook/schema"
 )
-
-// appendCell appends row i of v. ok is false where the value is null though the
-// column is never null, or infinite.
-func appendCell(b []byte, v *schema.Vector, i int, c *column) (_ []byte, ok bool) {
-	switch v.Kind {
-	case schema.KindFloats:
-		x := v.Floats[i]
-		if x-x == 0 { // finite
-			return appendFloat(b, x), true
-		}
-		return b, x != x && !c.Required
-	case schema.KindInts:
-		if v.Ints[i] == schema.NoInt {
-			return b, !c.Required
-		}
-		return strconv.AppendInt(b, v.Ints[i], 10), true
-	case schema.KindDates:
-		if v.Dates[i] == schema.NoDate {
-			return b, !c.Required
-		}
-		return appendDate(b, v.Dates[i]), true
-	case schema.KindBools:
-		return strconv.AppendBool(b, v.Bools[i]), true
-	}
-	s := v.Text(i)
-	if s == "" {
-		return b, !c.Required
-	}
-	return appendText(b, s, c.guard), true
-}
-
-// appendFloat appends the shortest decimal that reads back as x.
-func appendFloat(b []byte, x float64) []byte {
-	// Whole numbers, zeros above all, are frequent and quick to write.
-	if n := int64(x); float64(n) == x && n > -1e15 && n < 1e15 && (n != 0 || !math.Signbit(x)) {
-		return strconv.AppendInt(b, n, 10)
-	}
-	if a := math.Abs(x); x != 0 && (a < 1e-6 || a >= 1e21) {
-		return strconv.AppendFloat(b, x, 'e', -1, 64)
-	}
-	return strconv.AppendFloat(b, x, 'f', -1, 64)
-}
-
-func appendDate(b []byte, d schema.Date) []byte {
-	y, m, day := d.Time().Date()
-	if y < 0 || y > 9999 {
-		return d.AppendDate(b)
-	}
-	return append(b,
-		byte('0'+y/1000), byte('0'+y/100%10), byte('0'+y/10%10), byte('0'+y%10), '-',
-		byte('0'+m/10), byte('0'+m%10), '-',
-		byte('0'+day/10), byte('0'+day%10))
-}
 
 // appendText appends s, with an apostrophe before it where guard is set and a
 // spreadsheet would take it for a formula, in quotes where it needs them.

@@ -24,8 +24,7 @@ const partRows = 256
 type Writer struct {
 	w       io.Writer
 	columns []column
-	parts   [][]byte // one buffer a goroutine, kept from frame to frame
-	errs    []error
+	parts   []*part // one a goroutine
 	rows    int64
 	failed  error
 }
@@ -38,7 +37,7 @@ type column struct {
 // New starts a table. The header is written at once.
 func New(w io.Writer, t schema.Table, opt Options) (*Writer, error) {
 	workers := max(opt.Workers, 1)
-	c := &Writer{w: w, parts: make([][]byte, workers), errs: make([]error, workers)}
+	c := &Writer{w: w}
 	for _, name := range opt.AsCame {
 		if t.Column(name) == nil {
 			return nil, fmt.Errorf("csv: table %s has no column %s to leave as it came", t.Name, name)
@@ -54,6 +53,9 @@ func New(w io.Writer, t schema.Table, opt Options) (*Writer, error) {
 		c.columns = append(c.columns, column{col, !opt.BareText && !slices.Contains(opt.AsCame, col.Name)})
 	}
 	header = append(header, '\n')
+	for range workers {
+		c.parts = append(c.parts, newPart(c.columns))
+	}
 	if _, err := w.Write(header); err != nil {
 		return nil, err
 	}
@@ -71,15 +73,16 @@ func (c *Writer) Write(f *schema.Frame) error {
 	n := min(len(c.parts), 1+f.N/partRows)
 	var wg sync.WaitGroup
 	for p := 1; p < n; p++ {
-		wg.Go(func() { c.format(p, f, f.N*p/n, f.N*(p+1)/n) })
+		wg.Go(func() { c.parts[p].format(f, f.N*p/n, f.N*(p+1)/n) })
 	}
-	c.format(0, f, 0, f.N/n)
+	c.parts[0].format(f, 0, f.N/n)
 	wg.Wait()
 	for p := range n {
-		if c.failed = c.errs[p]; c.failed != nil {
+		if bad := c.parts[p].bad; bad.found {
+			c.failed = c.refusal(&f.Cols[bad.column], bad.row, bad.column)
 			return c.failed
 		}
-		if _, c.failed = c.w.Write(c.parts[p]); c.failed != nil {
+		if _, c.failed = c.w.Write(c.parts[p].out); c.failed != nil {
 			return c.failed
 		}
 	}
@@ -90,31 +93,7 @@ func (c *Writer) Write(f *schema.Frame) error {
 // Close ends the table.
 func (c *Writer) Close() error { return c.failed }
 
-// format turns rows [from, to) of the frame into part p.
-func (c *Writer) format(p int, f *schema.Frame, from, to int) {
-	b := c.parts[p][:0]
-	c.errs[p] = nil
-	for row := from; row < to && c.errs[p] == nil; row++ {
-		start := len(b)
-		for i := range c.columns {
-			if i > 0 {
-				b = append(b, ',')
-			}
-			var ok bool
-			if b, ok = appendCell(b, &f.Cols[i], row, &c.columns[i]); !ok {
-				c.errs[p] = c.refusal(&f.Cols[i], row, i)
-				break
-			}
-		}
-		if len(b) == start {
-			b = append(b, `""`...) // an empty line would not be a row
-		}
-		b = append(b, '\n')
-	}
-	c.parts[p] = b
-}
-
-// refusal says what is wrong with a value that appendCell did not take.
+// refusal says what is wrong with a value that cannot be written.
 func (c *Writer) refusal(v *schema.Vector, row, i int) error {
 	what := "null in a column that is never null"
 	if v.Kind == schema.KindFloats && v.Floats[row] == v.Floats[row] {

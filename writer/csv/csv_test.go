@@ -13,6 +13,7 @@ import (
 	stdcsv "encoding/csv"
 
 	"nightbook/schema"
+	"nightbook/writer/csv/shortest"
 	"nightbook/writer/internal/invent"
 )
 
@@ -137,10 +138,15 @@ func TestFloats(t *testing.T) {
 		{math.SmallestNonzeroFloat64, "5e-324"},
 		{9007199254740992, "9007199254740992"},
 	} {
-		if got := string(appendFloat(nil, c.x)); got != c.want {
+		if got := floatText(c.x); got != c.want {
 			t.Errorf("%v is written %s, want %s", c.x, got, c.want)
 		}
 	}
+}
+
+func floatText(x float64) string {
+	var dst [shortest.Size]byte
+	return string(dst[:shortest.Float(&dst, x)])
 }
 
 func TestText(t *testing.T) {
@@ -370,3 +376,108 @@ func TestNoAllocationsPerCell(t *testing.T) {
 type discard struct{}
 
 func (discard) Write(p []byte) (int, error) { return len(p), nil }
+
+// Every day of the years of four digits, and some beyond, must be as package time
+// writes it.
+func TestDates(t *testing.T) {
+	check := func(d schema.Date) {
+		var s slot
+		if got, want := string(s[:putDate(&s, d)]), string(d.AppendDate(nil)); got != want {
+			t.Fatalf("day %d is written %s, want %s", d, got, want)
+		}
+	}
+	for d := schema.Date(-720_000); d < 2_933_500; d++ {
+		check(d)
+	}
+	for _, d := range []schema.Date{math.MinInt32 + 1, math.MaxInt32, -1e6, 1e7} {
+		check(d)
+	}
+}
+
+// A text must be the same by eight bytes at a time and by the rules, wherever it
+// stands in the column's bytes and whatever stands around it.
+func TestPlainTexts(t *testing.T) {
+	var texts []string
+	for length := range slotText + 6 {
+		for at := range length {
+			for c := range 256 {
+				b := bytes.Repeat([]byte("x"), length)
+				b[at] = byte(c)
+				texts = append(texts, string(b))
+			}
+		}
+	}
+	for _, guard := range []bool{true, false} {
+		columns := []column{{schema.Column{Name: "a", Type: schema.Text}, guard}}
+		for _, around := range []string{"", ",,,,,,,,\"\"\"\"\"\"\"\"\x00\x00\x00\x00\x00\x00\x00\x00\xff\xff\xff\xff\xff\xff\xff\xff"} {
+			f := &schema.Frame{N: len(texts), Cols: make([]schema.Vector, 1)}
+			var want []byte
+			for _, text := range texts {
+				data := &f.Cols[0].Strings
+				data.Data = append(data.Data, around...)
+				data.AppendString(text)
+				data.Data = append(data.Data, around...)
+				want = append(appendText(want, text, guard), '\n')
+			}
+			p := newPart(columns)
+			p.format(f, 0, f.N)
+			if !bytes.Equal(p.out, want) {
+				t.Errorf("guard %v, between %q: other texts than by the rules", guard, around)
+			}
+		}
+	}
+}
+
+// More codes than are kept, texts longer than a slot, and a dictionary that is
+// another from frame to frame.
+func TestManyCodes(t *testing.T) {
+	columns := []column{{schema.Column{Name: "a", Type: schema.Text}, true}, {schema.Column{Name: "b", Type: schema.Text}, true}}
+	p := newPart(columns)
+	for round := range 3 {
+		f := &schema.Frame{N: 5 * notedCodes, Cols: []schema.Vector{
+			{Kind: schema.KindCodes, Dict: schema.NewDict()},
+			{Kind: schema.KindChoices, Names: []string{"", "=a", "b,c", strings.Repeat("long ", 20), strings.Repeat("l", slotText), strings.Repeat("l", slotText+1)}},
+		}}
+		var want []byte
+		for i := range f.N {
+			text := fmt.Sprintf("round %d, %s%d", round, strings.Repeat("x", i%40), i*7%(3*notedCodes))
+			if i%5 == 0 {
+				text = ""
+			}
+			f.Cols[0].Codes = append(f.Cols[0].Codes, f.Cols[0].Dict.Code(text))
+			f.Cols[1].Choices = append(f.Cols[1].Choices, schema.Choice(i*11%6))
+			if text != "" {
+				want = appendText(want, text, true)
+			}
+			want = append(want, ',')
+			if name := f.Cols[1].Text(i); name != "" {
+				want = appendText(want, name, true)
+			}
+			want = append(want, '\n')
+		}
+		p.format(f, 0, f.N)
+		if !bytes.Equal(p.out, want) {
+			t.Errorf("round %d: other texts than by the rules", round)
+		}
+	}
+}
+
+// The cell that is told of is the first by rows, then by columns.
+func TestFirstFault(t *testing.T) {
+	inf := math.Inf(1)
+	table := schema.Table{Name: "t", Columns: []schema.Column{{Name: "a", Type: schema.Float}, {Name: "b", Type: schema.Float}, {Name: "c", Type: schema.Float}}}
+	f := &schema.Frame{N: 100, Cols: make([]schema.Vector, 3)}
+	for c := range f.Cols {
+		f.Cols[c] = schema.Vector{Kind: schema.KindFloats, Floats: make([]float64, f.N)}
+	}
+	f.Cols[0].Floats[71], f.Cols[1].Floats[70], f.Cols[2].Floats[70], f.Cols[0].Floats[99] = inf, inf, inf, inf
+	for workers := 1; workers < 4; workers++ {
+		w, err := New(&discard{}, table, Options{Workers: workers})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if err := w.Write(f); err == nil || !strings.Contains(err.Error(), "column b, row 71:") {
+			t.Errorf("error %v", err)
+		}
+	}
+}
