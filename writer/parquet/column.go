@@ -166,12 +166,13 @@ func (c *column) encode(s *scratch) (e parquet.Encoding, block []byte) {
 		s.raw = appendBits(s.raw, c.body)
 		return parquet.Encoding_PLAIN, nil
 	case c.width > 0:
-		if !c.numbers.off && !c.numbers.endPage(len(c.indices)) {
-			c.leaveDictionary()
+		if len(c.body) > 0 && !c.numbers.off {
+			c.enterDictionary(s)
 		}
 		if len(c.indices) == 0 {
 			return parquet.Encoding_PLAIN, c.body
 		}
+		c.numbers.had = len(c.numbers.values)
 		width = indexWidth(len(c.numbers.values))
 	default:
 		if len(c.indices) == 0 {
@@ -186,40 +187,55 @@ func (c *column) encode(s *scratch) (e parquet.Encoding, block []byte) {
 	return parquet.Encoding_RLE_DICTIONARY, nil
 }
 
-// trialBytes is how much of a chunk is packed to see whether it is worth it.
-const trialBytes = 32 << 10
+const (
+	// trialBytes is how much of a chunk is packed to see whether it is worth it.
+	trialBytes = 32 << 10
 
-// settleCodec settles the codec of the chunk by its first page: numbers in
-// PLAIN layout that compression does not halve are not compressed. Texts always
-// gain, if not on their first page of indices then in the dictionary.
+	// tellingBytes are the fewest that tell anything of the chunk.
+	tellingBytes = 1 << 10
+)
+
+// settleCodec settles the codec of the chunk by its first page, and the dictionary
+// as far as that goes: what compression does not halve is not compressed. Texts
+// without codes always gain, if not on their first page then on those to come.
 func (c *column) settleCodec(s *scratch, e parquet.Encoding, block []byte) error {
 	c.chunk.codec = c.comp.codec
-	if c.physical == parquet.Type_BYTE_ARRAY || e != parquet.Encoding_PLAIN {
+	if c.physical == parquet.Type_BYTE_ARRAY && (e == parquet.Encoding_PLAIN || c.texts.source == nil) {
 		return nil
 	}
 	size := len(s.raw)
 	s.raw = append(s.raw, block[:min(len(block), trialBytes)]...)
-	packed, err := c.comp.pack(s, c.comp.codec)
-	if 2*len(packed) > len(s.raw) {
-		c.chunk.codec = parquet.CompressionCodec_UNCOMPRESSED
+	if e != parquet.Encoding_PLAIN {
+		s.raw = c.appendDictionary(s.raw)
+		s.raw = s.raw[:min(len(s.raw), size+trialBytes)]
+	}
+	var err error
+	if e == parquet.Encoding_PLAIN || len(s.raw) >= tellingBytes {
+		var packed []byte
+		packed, err = c.comp.pack(s, c.comp.codec)
+		if 2*len(packed) > len(s.raw) {
+			c.chunk.codec = parquet.CompressionCodec_UNCOMPRESSED
+		}
 	}
 	s.raw = s.raw[:size]
 	return err
 }
 
+// appendDictionary appends the dictionary as its page holds it.
+func (c *column) appendDictionary(dst []byte) []byte {
+	if c.width > 0 {
+		return c.numbers.appendPlain(dst, c.width)
+	}
+	return c.texts.appendPlain(dst)
+}
+
 // endDictionary makes the dictionary page of the chunk, if it has a dictionary,
 // and empties it.
 func (c *column) endDictionary(s *scratch) error {
-	s.raw = s.raw[:0]
-	values := len(c.texts.values)
-	if c.width > 0 {
-		values = len(c.numbers.values)
-		s.raw = c.numbers.appendPlain(s.raw, c.width)
-		c.numbers.reset()
-	} else {
-		s.raw = c.texts.appendPlain(s.raw)
-		c.texts.reset()
-	}
+	s.raw = c.appendDictionary(s.raw[:0])
+	values := len(c.texts.values) + len(c.numbers.values)
+	c.texts.reset()
+	c.numbers.reset()
 	if values == 0 {
 		return nil
 	}

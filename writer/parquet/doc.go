@@ -16,9 +16,10 @@
 //     dictionary grows past a limit, goes on as PLAIN.
 //   - Numbers and dates go through a dictionary if each of those on the chunk's
 //     first page stands there four times or more on average.
-//   - A chunk of numbers without a dictionary is stored uncompressed if
-//     compression does not halve what its first page begins with: the low bits of
-//     computed numbers are noise.
+//   - A chunk is stored uncompressed if compression does not halve what its first
+//     page begins with, and its dictionary: the low bits of computed numbers are
+//     noise, and so are indices that follow no pattern. Texts without codes are
+//     always compressed.
 //   - Smallest and largest value and number of nulls of each page and chunk, a
 //     page index, and a CRC of each page.
 //

@@ -23,30 +23,60 @@ func (c *column) reserve(bytes int) {
 	}
 }
 
+// indexing is whether numbers go through the dictionary as they come. Those of
+// a chunk's first page do not: it is they that settle whether there is one.
+func (c *column) indexing() bool { return c.numbers.had > 0 && !c.numbers.off }
+
 // room is memory for n numbers, which addNumbers takes: that of the page itself
 // if they go there.
 func (c *column) room(n int, s *scratch) []byte {
 	n *= c.width
-	if c.numbers.off {
-		c.reserve(n)
-		return c.body[len(c.body) : len(c.body)+n]
+	if c.indexing() {
+		s.numbers = slices.Grow(s.numbers[:0], n)
+		return s.numbers[:n]
 	}
-	s.numbers = slices.Grow(s.numbers[:0], n)
-	return s.numbers[:n]
+	c.reserve(n)
+	return c.body[len(c.body) : len(c.body)+n]
 }
 
-// addNumbers appends the numbers that the room of so many rows begins with.
+// addNumbers appends the numbers that the room begins with.
 func (c *column) addNumbers(numbers []byte) {
-	if c.numbers.off {
+	if !c.indexing() {
 		c.body = c.body[:len(c.body)+len(numbers)]
 		return
 	}
+	c.growIndices(len(numbers) / c.width)
 	var n int
-	if c.indices, n = c.numbers.index(c.indices, numbers, c.width); n < len(numbers) {
+	if c.indices, n = c.numbers.index(c.indices, numbers, c.width, mostNumbers); n < len(numbers) {
 		c.leaveDictionary()
 		c.reserve(len(numbers) - n)
 		c.body = append(c.body, numbers[n:]...)
 	}
+}
+
+// growIndices makes room for n more indices in the page.
+func (c *column) growIndices(n int) {
+	if size := len(c.indices) + n; size > cap(c.indices) {
+		if len(c.indices) > 0 {
+			size = pageRows // there are more to come
+		}
+		c.indices = append(make([]uint32, 0, size), c.indices...)
+	}
+}
+
+// enterDictionary turns the numbers of a chunk's first page into indices, if they
+// are repeated enough for the chunk to have a dictionary.
+func (c *column) enterDictionary(s *scratch) {
+	var ok bool
+	if s.indices, ok = s.trial.try(s.indices[:0], c.body, c.width); !ok {
+		c.numbers.off = true
+		return
+	}
+	c.numbers.take(&s.trial)
+	c.growIndices(len(s.indices))
+	c.indices = append(c.indices, s.indices...)
+	c.blocks.give([][]byte{c.body})
+	c.body = nil
 }
 
 // leaveDictionary turns the indices of the page into the numbers they stand for,

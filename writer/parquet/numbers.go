@@ -14,9 +14,6 @@ const (
 	// repeats is how often, on average, the numbers of a chunk's first page must
 	// be repeated for the chunk to have a dictionary.
 	repeats = 4
-
-	// firstNumbers is how many different numbers that page may hold.
-	firstNumbers = pageRows / repeats
 )
 
 // numberDict is the dictionary of a column chunk of numbers, in the order in which
@@ -24,22 +21,14 @@ const (
 type numberDict struct {
 	off    bool // the rest of the chunk is PLAIN
 	values []uint64
-	had    int      // values of the pages before the one being filled
+	had    int      // how many were there before the page that fills; 0: nothing is settled
 	places []uint32 // open addressing: index of a value plus one, 0 where free
 	shift  int      // 64 minus the bits of a place
 }
 
 // index appends the indices of numbers of width bytes each, and returns how many
-// bytes of them it took: it stops at a number that the dictionary has no room for.
-func (d *numberDict) index(indices []uint32, numbers []byte, width int) ([]uint32, int) {
-	most := mostNumbers
-	if d.had == 0 {
-		most = firstNumbers
-	}
-	if len(d.places) == 0 {
-		d.resize(2 * firstNumbers)
-	}
-	indices = slices.Grow(indices, len(numbers)/width)
+// bytes of them it took: it stops at one that would be more than most.
+func (d *numberDict) index(indices []uint32, numbers []byte, width, most int) ([]uint32, int) {
 	for at := 0; at < len(numbers); at += width {
 		var v uint64
 		if width == 8 {
@@ -105,19 +94,21 @@ func (d *numberDict) resize(size int) {
 	}
 }
 
-// endPage tells whether the page, of so many numbers, stays with the dictionary.
-func (d *numberDict) endPage(numbers int) bool {
-	if d.had == 0 {
-		if len(d.values) > numbers/repeats {
-			return false
-		}
-		// What is to come will be much like it: fewer places are nearer.
-		if size := max(256, 4<<bits.Len(uint(len(d.values)))); size < len(d.places) {
-			d.resize(size)
-		}
-	}
+// try makes the dictionary of a first page's numbers, if they are repeated
+// enough, and appends their indices.
+func (d *numberDict) try(indices []uint32, numbers []byte, width int) (_ []uint32, ok bool) {
+	most := min(len(numbers)/width/repeats, mostNumbers)
+	d.values = d.values[:0]
+	d.resize(2 << bits.Len(uint(most)))
+	indices, n := d.index(indices, numbers, width, most)
+	return indices, n == len(numbers)
+}
+
+// take makes the dictionary a copy of another.
+func (d *numberDict) take(from *numberDict) {
+	d.values = append(d.values[:0], from.values...)
 	d.had = len(d.values)
-	return true
+	d.resize(max(256, 4<<bits.Len(uint(d.had)))) // few places are near
 }
 
 // giveUp takes the page out of the dictionary, and has the rest of the chunk go
@@ -136,7 +127,6 @@ func (d *numberDict) appendValues(dst []byte, indices []uint32, width int) []byt
 
 // reset empties the dictionary for the next chunk.
 func (d *numberDict) reset() {
-	d.places = d.places[:0]
 	d.values, d.had, d.off = d.values[:0], 0, false
 }
 

@@ -28,7 +28,8 @@ func TestNumbersEncoding(t *testing.T) {
 		codec             parquet.CompressionCodec
 	}{
 		"one number":          {mostRows + 10, func(int) float64 { return 0.25 }, whole, 0, zstd},
-		"a quarter different": {mostRows, func(i int) float64 { return noise(i % (pageRows / repeats)) }, whole, 0, zstd},
+		"a quarter different": {mostRows, func(i int) float64 { return noise(i % (pageRows / repeats)) }, whole, 0, none},
+		"a pattern":           {mostRows, func(i int) float64 { return noise(i / 3 % 50) }, whole, 0, zstd},
 		"more than a quarter": {mostRows, func(i int) float64 { return noise(i % (pageRows/repeats + 1)) }, 0, whole, none},
 		"all different":       {mostRows + 10, noise, 0, whole, none},
 		"counting":            {mostRows, func(i int) float64 { return float64(i) }, 0, whole, zstd},

@@ -64,9 +64,11 @@ func (p *page) write(w *counter) error {
 
 // scratch is the working memory of one worker.
 type scratch struct {
-	raw     []byte // a page before compression
-	packed  []byte // and after
-	numbers []byte // of a slice of a column, on their way to its page
+	raw     []byte     // a page before compression
+	packed  []byte     // and after
+	numbers []byte     // of a slice of a column, on their way to its page
+	trial   numberDict // of a chunk's first page
+	indices []uint32   // into it
 	gzip    *gzip.Writer
 	thrift  *serializer
 }

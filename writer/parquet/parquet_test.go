@@ -133,11 +133,13 @@ func TestRoundTrip(t *testing.T) {
 			"gzip": parquet.CompressionCodec_GZIP, "none": parquet.CompressionCodec_UNCOMPRESSED,
 		}[codec]
 		group := open(t, data).Footer.RowGroups[0]
-		if got := group.Columns[9].MetaData.Codec; got != want { // rate: four values
-			t.Errorf("%s: column rate is %v", codec, got)
+		if got := group.Columns[0].MetaData.Codec; got != want { // id: free text
+			t.Errorf("%s: column id is %v", codec, got)
 		}
-		if got := group.Columns[7].MetaData.Codec; got != parquet.CompressionCodec_UNCOMPRESSED { // price: noise
-			t.Errorf("%s: column price is %v", codec, got)
+		for i, what := range map[int]string{9: "rate: indices of four values", 7: "price: noise"} {
+			if got := group.Columns[i].MetaData.Codec; got != parquet.CompressionCodec_UNCOMPRESSED {
+				t.Errorf("%s: column %s is %v", codec, what, got)
+			}
 		}
 	}
 	if _, err := New(io.Discard, invent.Table, Options{Compression: "lzo"}); err == nil {

@@ -3,7 +3,6 @@ package parquet
 import (
 	"encoding/binary"
 	"math/bits"
-	"slices"
 	"strings"
 
 	"nightbook/schema"
@@ -98,10 +97,10 @@ func (c *column) addPresence(mask uint64, from, n int) (int, error) {
 // addCoded appends texts that have codes, through the dictionary.
 func addCoded[C schema.Code | schema.Choice](c *column, v *schema.Vector, codes []C, from, to int) (int, error) {
 	d := &c.texts
+	c.growIndices(to - from)
 	for from < to {
 		part := codes[from:min(from+64, to)]
 		at := len(c.indices)
-		c.indices = slices.Grow(c.indices, len(part))
 		indices, known, seen := c.indices[at:at+len(part)], d.known, d.seen
 		var mask uint64
 		n := 0

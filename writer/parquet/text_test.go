@@ -5,6 +5,8 @@ import (
 	"strings"
 	"testing"
 
+	"github.com/xitongsys/parquet-go/parquet"
+
 	"nightbook/schema"
 )
 
@@ -50,6 +52,39 @@ func TestCodedPages(t *testing.T) {
 				t.Errorf("%s, rows %d to %d: from %s to %s, %d nulls; want %s to %s, %d", name, row, to, s.MinValue, s.MaxValue, *s.NullCount, low, high, nulls)
 			}
 			row = to
+		}
+	}
+}
+
+// The codec of a chunk of texts depends on whether they are free or have codes.
+func TestCodecOfTexts(t *testing.T) {
+	zstd, none := parquet.CompressionCodec_ZSTD, parquet.CompressionCodec_UNCOMPRESSED
+	for name, c := range map[string]struct {
+		n     int
+		text  func(i int) string
+		free  parquet.CompressionCodec // where they come as they are
+		coded parquet.CompressionCodec
+	}{
+		"indices without a pattern": {pageRows, func(i int) string { return fmt.Sprint(int64(noise(i)) % 50) }, zstd, none},
+		"indices with a pattern":    {pageRows, func(i int) string { return fmt.Sprint(i / 3 % 50) }, zstd, zstd},
+		"a large dictionary":        {pageRows, func(i int) string { return fmt.Sprintf("%050d", i%2000) }, zstd, zstd},
+		"one text":                  {pageRows, func(i int) string { return "x" }, zstd, zstd},
+		"few rows":                  {5, func(i int) string { return fmt.Sprint(i) }, zstd, zstd},
+		"all different":             {pageRows, func(i int) string { return fmt.Sprint(noise(i)) }, zstd, none},
+		"nothing":                   {pageRows, func(i int) string { return "" }, zstd, zstd},
+	} {
+		table, free := texts(c.n, c.text)
+		dict := schema.NewDict()
+		coded := &schema.Frame{N: c.n, Cols: []schema.Vector{{Kind: schema.KindCodes, Dict: dict}}}
+		for i := range c.n {
+			coded.Cols[0].Codes = append(coded.Cols[0].Codes, dict.Code(c.text(i)))
+		}
+		for f, want := range map[*schema.Frame]parquet.CompressionCodec{free: c.free, coded: c.coded} {
+			data := write(t, table, Options{}, f)
+			readBack(t, data, f)
+			if got := footer(t, data).RowGroups[0].Columns[0].MetaData.Codec; got != want {
+				t.Errorf("%s, coded %v: %v, want %v", name, f == coded, got, want)
+			}
 		}
 	}
 }
