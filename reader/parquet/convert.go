@@ -141,7 +141,7 @@ func stretch[T any](to, stored []T, levels []uint32, null T) []T {
 		return append(to, stored...)
 	}
 	n := len(to)
-	to = append(to, make([]T, len(levels))...)
+	to = slices.Grow(to, len(levels))[:n+len(levels)]
 	spread(to[n:], stored, levels, null)
 	return to
 }

@@ -4,6 +4,7 @@ import (
 	"encoding/binary"
 	"fmt"
 	"math"
+	"slices"
 
 	"github.com/xitongsys/parquet-go/parquet"
 
@@ -229,9 +230,10 @@ func spread[T any](rows, stored []T, levels []uint32, null T) {
 // gather appends values by their places.
 func gather[T any](to, from []T, places []uint32) []T {
 	n := len(to)
-	to = append(to, make([]T, len(places))...)
+	to = slices.Grow(to, len(places))[:n+len(places)]
+	rows := to[n:]
 	for i, k := range places {
-		to[n+i] = from[k]
+		rows[i] = from[k]
 	}
 	return to
 }

@@ -29,10 +29,11 @@ type File struct {
 	row   int64 // rows read so far
 	total int64
 
-	unpacked int64 // bytes of pages
-	texts    int64 // bytes of text in the run being read, or more; see holdTexts
-	counted  bool  // not more
-	long     []int // its rows with a field that is too long
+	packed   []byte // memory of the page read last, as it lies in the file
+	unpacked int64  // bytes of pages
+	texts    int64  // bytes of text in the run being read, or more; see holdTexts
+	counted  bool   // not more
+	long     []int  // its rows with a field that is too long
 }
 
 const magic = "PAR1"

@@ -127,13 +127,20 @@ func (h *hybrid) unpack(out []uint32) {
 			x := binary.LittleEndian.Uint64(h.bits[bit>>3:]) >> (bit & 7)
 			o := out[:8:8]
 			o[0] = uint32(x & mask)
-			o[1] = uint32(x >> (w & 63) & mask)
-			o[2] = uint32(x >> (2 * w & 63) & mask)
-			o[3] = uint32(x >> (3 * w & 63) & mask)
-			o[4] = uint32(x >> (4 * w & 63) & mask)
-			o[5] = uint32(x >> (5 * w & 63) & mask)
-			o[6] = uint32(x >> (6 * w & 63) & mask)
-			o[7] = uint32(x >> (7 * w & 63) & mask)
+			x >>= w & 63
+			o[1] = uint32(x & mask)
+			x >>= w & 63
+			o[2] = uint32(x & mask)
+			x >>= w & 63
+			o[3] = uint32(x & mask)
+			x >>= w & 63
+			o[4] = uint32(x & mask)
+			x >>= w & 63
+			o[5] = uint32(x & mask)
+			x >>= w & 63
+			o[6] = uint32(x & mask)
+			x >>= w & 63
+			o[7] = uint32(x & mask)
 			out = out[8:]
 			bit += 8 * w
 		}

@@ -25,7 +25,8 @@ type pages struct {
 	body   io.Reader
 	left   int // rows of the page not yet read
 	levels hybrid
-	packed []byte // memory of the page as it lies in the file
+	packed []byte // the page as it lies in the file
+	own    []byte // memory of those that are not unpacked at once
 	data   []byte // memory of the page unpacked
 	unpack unpacker
 }
@@ -70,7 +71,13 @@ func (c *column) nextPage() error {
 	if err := limits.Unpacked(c.file.unpacked, c.file.size); err != nil {
 		return err
 	}
-	if p.packed, err = readBytes(p.body, p.packed, int(h.CompressedPageSize)); err != nil {
+	// A page that is unpacked at once can share its memory with the other columns'.
+	buf := &c.file.packed
+	if p.codec == parquet.CompressionCodec_UNCOMPRESSED || h.Type == parquet.PageType_DATA_PAGE_V2 {
+		buf = &p.own
+	}
+	*buf, err = readBytes(p.body, *buf, int(h.CompressedPageSize))
+	if p.packed = *buf; err != nil {
 		if errors.Is(err, io.EOF) {
 			err = io.ErrUnexpectedEOF
 		}
@@ -120,8 +127,11 @@ func (p *pages) unpacked(codec parquet.CompressionCodec, packed []byte, size int
 	if codec == parquet.CompressionCodec_UNCOMPRESSED && len(packed) == size {
 		return packed, nil
 	}
+	if cap(p.data) < size && size/21 <= len(packed) { // no larger than Snappy can make it; the next is about as long
+		p.data = make([]byte, 0, size+size/8)
+	}
 	data, err := p.unpack.page(codec, packed, size, p.data)
-	if err == nil {
+	if cap(data) > cap(p.data) {
 		p.data = data
 	}
 	return data, err
@@ -215,9 +225,6 @@ func (u *unpacker) page(codec parquet.CompressionCodec, packed []byte, size int,
 	case parquet.CompressionCodec_SNAPPY:
 		if n, err := snappy.DecodedLen(packed); err != nil || n != size {
 			return nil, damaged("a Snappy page does not have the size in its header")
-		}
-		if buf != nil && cap(buf) < size && size/21 <= len(packed) { // pages of one column are about as long
-			buf = make([]byte, size+size/8)
 		}
 		data, err = snappy.Decode(buf[:cap(buf)], packed)
 	case parquet.CompressionCodec_GZIP:

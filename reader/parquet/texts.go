@@ -1,6 +1,8 @@
 package parquet
 
 import (
+	"slices"
+
 	"nightbook/reader/table"
 	"nightbook/schema"
 )
@@ -49,7 +51,7 @@ func (c *column) takePlainTexts(into *table.Rows, at, n, stored int) error {
 	v, data := &into.Cols[at].Strings, c.values.data
 	longest := int(c.file.limits.Of(schema.FieldBytes))
 	base, rows, end, size, long := len(v.Data), v.Len(), 0, 0, false
-	v.Start, v.End = append(v.Start, make([]uint32, n)...), append(v.End, make([]uint32, n)...)
+	v.Start, v.End = slices.Grow(v.Start, n)[:rows+n], slices.Grow(v.End, n)[:rows+n]
 	starts, ends := v.Start[rows:], v.End[rows:]
 	for i, level := range c.rows(n, stored) {
 		start := end
