@@ -60,7 +60,7 @@ const noRoute = 255
 func (e *Engine) Price(ctx context.Context, b *schema.Batch, w *Worker) error {
 	w.run.Methods.InterruptedBy(func() bool { return ctx.Err() != nil })
 	w.terms.trim()
-	w.termOf = append(w.termOf[:0], make([]int32, b.N)...)
+	w.termOf = append(w.termOf[:0], make([]int32, b.N)...) // makes nothing but room
 	w.onSurface = w.onSurface[:0]
 	for i := range w.rows {
 		w.rows[i] = w.rows[i][:0]
@@ -108,14 +108,23 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 	r := &w.run
 	r.Resize(len(rows))
 	r.SameDay = e.after[instrument.NextDay] == e.after[instrument.NextBusinessDay]
+	gather(r.Spot, b.Spot, rows)
+	gather(r.Strike, b.Strike, rows)
+	gather(r.Time, b.Time, rows)
+	gather(r.Vol, b.VolUsed, rows)
+	gather(r.Rate, b.Rate, rows)
+	gather(r.Yield, b.Carry, rows)
+	gather(r.Entry, b.EntryPrice, rows)
 	for j, i := range rows {
-		r.Spot[j], r.Strike[j], r.Time[j] = b.Spot[i], b.Strike[i], b.Time[i]
-		r.Vol[j], r.Rate[j], r.Yield[j] = b.VolUsed[i], b.Rate[i], b.Carry[i]
-		r.Entry[j] = b.EntryPrice[i]
 		r.Sign[j] = orientations[b.OptionType[i]]
-		t := &w.terms.list[w.termOf[i]]
-		for s := range instrument.Steps {
-			r.TimeAfter[s][j] = t.after[s]
+	}
+	for s, after := range r.TimeAfter {
+		if s == instrument.NextBusinessDay && r.SameDay {
+			copy(after, r.TimeAfter[instrument.NextDay])
+			break
+		}
+		for j, i := range rows {
+			after[j] = w.terms.list[w.termOf[i]].after[s]
 		}
 	}
 	if p.payoff > schema.Vanilla {
@@ -133,12 +142,15 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 	// the two revaluations wait in the theta columns for measure
 	scatter(b.Measures[schema.ThetaCash1D], r.After[instrument.NextDay], rows)
 	scatter(b.Measures[schema.ThetaCash1BD], r.After[instrument.NextBusinessDay], rows)
+	status := schema.Priced
+	if route%2 == 1 {
+		status = schema.Expired
+	}
 	for _, i := range rows {
-		b.Model[i] = model
-		if b.Status[i] = schema.Priced; route%2 == 1 {
-			b.Status[i] = schema.Expired
-		}
-		if p.instrument != schema.Option {
+		b.Model[i], b.Status[i] = model, status
+	}
+	if p.instrument != schema.Option {
+		for _, i := range rows {
 			b.Residual[i] = nan
 		}
 	}
@@ -183,8 +195,16 @@ func greekColumns(r *schema.Results) [11]*[]float64 {
 }
 
 func scatter(to, from []float64, rows []int32) {
+	from = from[:len(rows)]
 	for j, i := range rows {
 		to[i] = from[j]
+	}
+}
+
+func gather(to, from []float64, rows []int32) {
+	to = to[:len(rows)]
+	for j, i := range rows {
+		to[j] = from[i]
 	}
 }
 

@@ -27,11 +27,15 @@ func (w *Worker) note(i int, code schema.NoteCode, subject schema.Code) {
 // flushNotes counts the worker's warnings about rows that were priced, and moves
 // them to the batch, in a fixed order.
 func (e *Engine) flushNotes(b *schema.Batch, w *Worker) {
+	var last noteKey
+	var n *schema.Note // that of last
 	for _, t := range w.taken {
 		if b.Status[t.row] == schema.Rejected {
 			continue
 		}
-		n := w.notes[t.noteKey]
+		if n == nil || t.noteKey != last {
+			last, n = t.noteKey, w.notes[t.noteKey]
+		}
 		if n == nil {
 			n = &schema.Note{Code: t.code, Line: b.Line[t.row]}
 			w.notes[t.noteKey] = n

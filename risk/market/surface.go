@@ -121,15 +121,13 @@ func (s *slice) variance(k float64) float64 {
 	if k >= s.k[n-1] {
 		return s.w[n-1]
 	}
-	// The piece with k[i] < k <= k[i+1]. Its search takes the same steps for all
-	// strikes: there is no telling which way one goes.
+	// The piece with k[i] < k <= k[i+1]. There is no telling which way a step of the
+	// search goes, so that none is a jump: the difference bears the sign of less.
 	i := 0
 	for left := n - 1; left > 1; {
 		half := left / 2
-		j := i + half
-		if s.k[j] < k {
-			i = j
-		}
+		less := int(int64(math.Float64bits(s.k[i+half]-k)) >> 63)
+		i += half & less
 		left -= half
 	}
 	p := &s.pieces[i]
