@@ -4,6 +4,7 @@ import (
 	"bytes"
 	"fmt"
 	"io"
+	"math"
 	"testing"
 
 	"nightbook/schema"
@@ -55,5 +56,24 @@ func BenchmarkWriteLines(b *testing.B) {
 				b.ReportMetric(float64(whole.Len())/n, "B/row")
 			})
 		}
+	}
+}
+
+func BenchmarkRangeOf(b *testing.B) {
+	for name, of := range map[string]func(int) float64{
+		"numbers": noise,
+		"null":    func(int) float64 { return math.NaN() },
+		"mixed":   func(i int) float64 { return []float64{noise(i), math.NaN()}[int64(noise(i))%20/19] },
+	} {
+		values := make([]float64, checkRows)
+		for i := range values {
+			values[i] = of(i)
+		}
+		b.Run(name, func(b *testing.B) {
+			b.SetBytes(8 * checkRows)
+			for b.Loop() {
+				rangeOf(values)
+			}
+		})
 	}
 }

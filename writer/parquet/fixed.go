@@ -115,9 +115,9 @@ func (c *column) addFloats(values []float64, s *scratch) (int, error) {
 	return 0, nil
 }
 
-// rangeOf returns the smallest and the largest of values and how many are null;
-// if all are, the smallest is above the largest.
-func rangeOf(values []float64) (low, high float64, nulls int) {
+// rangeOfGeneric returns the smallest and the largest of values, of zeros either,
+// and how many are null; if all are, the smallest is above the largest.
+func rangeOfGeneric(values []float64) (low, high float64, nulls int) {
 	low, high = math.Inf(1), math.Inf(-1)
 	for _, x := range values {
 		if x >= low && x <= high {

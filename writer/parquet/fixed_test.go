@@ -46,8 +46,10 @@ func TestFloats(t *testing.T) {
 			low, high = math.Min(low, x), math.Max(high, x)
 			numbers, present = append(numbers, math.Float64bits(x)), append(present, 1)
 		}
-		if l, h, n := rangeOf(values); l != low || h != high || n != nulls {
-			t.Fatalf("%v: from %v to %v, %d nulls", values, l, h, n)
+		for name, of := range map[string]func([]float64) (float64, float64, int){"rangeOf": rangeOf, "rangeOfGeneric": rangeOfGeneric} {
+			if l, h, n := of(values); l != low || h != high || n != nulls {
+				t.Fatalf("%s of %v: from %v to %v, %d nulls", name, values, l, h, n)
+			}
 		}
 		var c column
 		c.present.rows = round % 64 // where a page already has rows
