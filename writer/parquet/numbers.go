@@ -29,55 +29,58 @@ type numberDict struct {
 // index appends the indices of numbers of width bytes each, and returns how many
 // bytes of them it took: it stops at one that would be more than most.
 func (d *numberDict) index(indices []uint32, numbers []byte, width, most int) ([]uint32, int) {
-	for at := 0; at < len(numbers); at += width {
+	had := len(indices)
+	indices = slices.Grow(indices, len(numbers)/width)[:had+len(numbers)/width]
+	at, to := 0, indices[had:]
+	for {
+		// Those that are known, up to one that is not.
+		places, values, shift := d.places, d.values, d.shift&63
 		var v uint64
-		if width == 8 {
-			v = binary.LittleEndian.Uint64(numbers[at:])
-		} else {
-			v = uint64(binary.LittleEndian.Uint32(numbers[at:]))
-		}
-		n := d.find(v)
-		if n == 0 {
-			if len(d.values) == most {
-				return indices, at
+		for ; at < len(numbers); at += width {
+			if width == 8 {
+				v = binary.LittleEndian.Uint64(numbers[at:])
+			} else {
+				v = uint64(binary.LittleEndian.Uint32(numbers[at:]))
 			}
-			n = d.add(v)
+			i := place(v, shift)
+			n := places[i]
+			for n != 0 && values[n-1] != v {
+				i = (i + 1) & (len(places) - 1)
+				n = places[i]
+			}
+			if n == 0 {
+				break
+			}
+			to[0] = n - 1
+			to = to[1:]
 		}
-		indices = append(indices, n-1)
+		if at == len(numbers) || len(d.values) == most {
+			return indices[:len(indices)-len(to)], at
+		}
+		d.add(v)
 	}
-	return indices, len(numbers)
 }
 
-// place is where the search for v begins. The multiplier is 2⁶⁴ over the golden
-// ratio, made odd.
-func (d *numberDict) place(v uint64) int {
+// place is where the search for v begins among 2^(64−shift) places. The multiplier
+// is 2⁶⁴ over the golden ratio, made odd.
+func place(v uint64, shift int) int {
 	v ^= v >> 32 // round decimals differ in their high bits alone
-	return int(v * 0x9e3779b97f4a7c15 >> d.shift)
+	return int(v * 0x9e3779b97f4a7c15 >> shift)
 }
 
-// find returns the index of v, plus one; 0 is that it is new.
-func (d *numberDict) find(v uint64) uint32 {
-	for i := d.place(v); ; i = (i + 1) & (len(d.places) - 1) {
-		n := d.places[i]
-		if n == 0 || d.values[n-1] == v {
-			return n
-		}
-	}
-}
-
-func (d *numberDict) add(v uint64) uint32 {
+// add takes up a value that is new.
+func (d *numberDict) add(v uint64) {
 	d.values = append(d.values, v)
 	if 2*len(d.values) > len(d.places) {
 		d.resize(2 * len(d.places))
 	} else {
 		d.set(len(d.values))
 	}
-	return uint32(len(d.values))
 }
 
 // set notes the place of value n−1.
 func (d *numberDict) set(n int) {
-	i := d.place(d.values[n-1])
+	i := place(d.values[n-1], d.shift)
 	for d.places[i] != 0 {
 		i = (i + 1) & (len(d.places) - 1)
 	}
