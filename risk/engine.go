@@ -42,6 +42,7 @@ type Worker struct {
 	termOf    []int32   // by row of the batch: where in terms.list
 	onSurface []int32   // the rows whose volatility is read off a surface
 	rows      [][]int32 // by route: 2·product, plus 1 for its expired form
+	late      []int
 	run       instrument.Run
 }
 
@@ -60,40 +61,53 @@ const noRoute = 255
 func (e *Engine) Price(ctx context.Context, b *schema.Batch, w *Worker) error {
 	w.run.Methods.InterruptedBy(func() bool { return ctx.Err() != nil })
 	w.terms.trim()
-	w.termOf = append(w.termOf[:0], make([]int32, b.N)...) // makes nothing but room
-	w.onSurface = w.onSurface[:0]
+	w.termOf = append(w.termOf[:0], make([]int32, b.N)...)
 	for i := range w.rows {
 		w.rows[i] = w.rows[i][:0]
 	}
-	e.unresolved(b)
-	for i := range b.N {
-		if b.Status[i] == schema.Rejected {
-			continue
+	late := w.late[:0] // blocks with lines that wait
+	for from := 0; from < b.N; from += blockRows {
+		to := min(from+blockRows, b.N)
+		e.resolveBlock(b, from, to, w)
+		waiting := false
+		for route, rows := range w.rows {
+			if len(rows) > 0 && sharesWork(route) {
+				waiting = waiting || int(rows[len(rows)-1]) >= from
+			} else if len(rows) > 0 {
+				e.priceRun(b, w, route, rows)
+				w.rows[route] = rows[:0]
+			}
 		}
-		if route := e.resolve(b, i, w); route != noRoute {
-			w.rows[route] = append(w.rows[route], int32(i))
+		if waiting {
+			late = append(late, from)
+		} else {
+			measure(b, from, to)
 		}
 	}
-	w.smiles(b)
 	for route, rows := range w.rows {
-		together := len(rows) // lines of finite differences share work
-		if !products[route/2].knowsExercise() || route%2 == 1 {
-			together = blockRows
-		}
-		for len(rows) > 0 {
-			n := min(together, len(rows))
-			e.priceRun(b, w, route, rows[:n])
-			rows = rows[n:]
+		if len(rows) > 0 {
+			e.priceRun(b, w, route, rows)
 		}
 	}
 	if err := ctx.Err(); err != nil {
 		return err
 	}
-	measure(b)
+	for _, from := range late {
+		measure(b, from, min(from+blockRows, b.N))
+	}
+	w.late = late
 	slices.SortStableFunc(b.Rejects, func(x, y schema.Reject) int { return x.Index - y.Index })
 	e.flushNotes(b, w)
 	return nil
 }
+
+// blockRows is how many rows go through all steps together, so that what one step
+// leaves is still in the cache for the next.
+const blockRows = 512
+
+// sharesWork reports whether the lines of a route wait for the end of the batch:
+// the more of them come together, the less each takes.
+func sharesWork(route int) bool { return route%2 == 0 && products[route/2].knowsExercise() }
 
 // priceRun gathers the rows of one route, prices them and scatters the results.
 func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
@@ -154,7 +168,7 @@ func (e *Engine) priceRun(b *schema.Batch, w *Worker, route int, rows []int32) {
 			b.Residual[i] = nan
 		}
 	}
-	if p.knowsExercise() && route%2 == 0 {
+	if sharesWork(route) {
 		e.exercise(b, w, rows)
 	}
 }

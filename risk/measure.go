@@ -7,21 +7,15 @@ import (
 	"nightbook/schema"
 )
 
-// blockRows is how many rows are treated together column by column, so that
-// what one column leaves is still in the cache for the next.
-const blockRows = 512
-
 // measure turns the sensitivities of one unit into measures of the position, in
-// the line's currency and in the reporting currency, and refuses rows whose
-// results are not finite. What it makes of rows refused before means nothing.
-func measure(b *schema.Batch) {
+// the line's currency and in the reporting currency, for a block of rows, and
+// refuses rows whose results are not finite. What it makes of rows refused before
+// means nothing.
+func measure(b *schema.Batch, from, to int) {
 	var units [blockRows]float64
-	for from := 0; from < b.N; from += blockRows {
-		to := min(from+blockRows, b.N)
-		if outOfRange(b, from, to, units[:to-from]) {
-			for i := from; i < to; i++ {
-				refuseNotFinite(b, i)
-			}
+	if outOfRange(b, from, to, units[:to-from]) {
+		for i := from; i < to; i++ {
+			refuseNotFinite(b, i)
 		}
 	}
 }

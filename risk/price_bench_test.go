@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"math/rand/v2"
 	"testing"
+	"time"
 
 	"nightbook/risk/market"
 	"nightbook/schema"
@@ -45,14 +46,24 @@ func BenchmarkPriceDesk(bench *testing.B) {
 	}
 	e := NewEngine(m, d.dicts)
 	w := e.NewWorker()
+	best := make([]time.Duration, len(batches))
 	for bench.Loop() {
-		for _, b := range batches {
+		for k, b := range batches {
+			start := time.Now()
 			clear(b.Status)
 			b.Notes = b.Notes[:0]
 			if err := e.Price(context.Background(), b, w); err != nil || len(b.Rejects) > 0 {
 				bench.Fatal(err, len(b.Rejects))
 			}
+			if d := time.Since(start); best[k] == 0 || d < best[k] {
+				best[k] = d
+			}
 		}
 	}
+	var sum time.Duration
+	for _, d := range best {
+		sum += d
+	}
+	bench.ReportMetric(float64(sum.Nanoseconds())/float64(len(batches))/schema.BatchRows, "best-ns/line")
 	bench.ReportMetric(float64(bench.Elapsed().Nanoseconds())/float64(bench.N*len(batches))/schema.BatchRows, "ns/line")
 }

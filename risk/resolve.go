@@ -2,7 +2,6 @@ package risk
 
 import (
 	"math"
-	"slices"
 	"strings"
 
 	"nightbook/risk/market"
@@ -17,16 +16,27 @@ var nan = math.NaN()
 // and forward then miss their parity by a hundredth of the price.
 const largeDividends = 0.4
 
-// unresolved sets the inputs used by every row as they are for one that needs none.
-func (e *Engine) unresolved(b *schema.Batch) {
+// resolveBlock finds for a block of rows what each is priced with, and writes the
+// inputs used. The rows that are not refused go to their routes.
+func (e *Engine) resolveBlock(b *schema.Batch, from, to int, w *Worker) {
 	for _, s := range [...][]float64{b.Forward, b.VolUsed, b.Rate, b.Carry, b.Time, b.DividendsPV, b.PriceError, b.Boundary} {
-		fill(s, nan)
+		fill(s[from:to], nan)
 	}
-	fill(b.DividendModel, e.market.Models.Dividends)
-	clear(b.Setting)
-	clear(b.VolSource)
-	clear(b.Curve)
-	clear(b.ExerciseNow)
+	fill(b.DividendModel[from:to], e.market.Models.Dividends)
+	clear(b.Setting[from:to])
+	clear(b.VolSource[from:to])
+	clear(b.Curve[from:to])
+	clear(b.ExerciseNow[from:to])
+	w.onSurface = w.onSurface[:0]
+	for i := from; i < to; i++ {
+		if b.Status[i] == schema.Rejected {
+			continue
+		}
+		if route := e.resolve(b, i, w); route != noRoute {
+			w.rows[route] = append(w.rows[route], int32(i))
+		}
+	}
+	w.smiles(b)
 }
 
 func fill[T any](s []T, x T) {
@@ -198,22 +208,19 @@ func (e *Engine) volatility(b *schema.Batch, i int, u *market.Underlying, t *ter
 	return true
 }
 
-// smiles reads the volatilities of the rows that have theirs from a surface.
+// smiles reads the volatilities of the rows of a block that have theirs from a surface.
 func (w *Worker) smiles(b *schema.Batch) {
 	var strike, forward, k [blockRows]float64
-	for rows := range slices.Chunk(w.onSurface, blockRows) {
-		n := len(rows)
-		for j, i := range rows {
-			strike[j], forward[j] = b.Strike[i], b.Forward[i]
+	n := len(w.onSurface)
+	gather(strike[:n], b.Strike, w.onSurface)
+	gather(forward[:n], b.Forward, w.onSurface)
+	vec.LogRatio(k[:n], strike[:n], forward[:n])
+	for j, i := range w.onSurface {
+		t := &w.terms.list[w.termOf[i]]
+		if t.underlying.Kind == schema.Spread {
+			k[j] = strike[j] - forward[j]
 		}
-		vec.LogRatio(k[:n], strike[:n], forward[:n])
-		for j, i := range rows {
-			t := &w.terms.list[w.termOf[i]]
-			if t.underlying.Kind == schema.Spread {
-				k[j] = strike[j] - forward[j]
-			}
-			b.VolUsed[i] = t.smile.Vol(k[j])
-		}
+		b.VolUsed[i] = t.smile.Vol(k[j])
 	}
 }
 

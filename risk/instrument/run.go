@@ -48,15 +48,15 @@ func resized[T any](s []T, n int) []T {
 	return s[:n]
 }
 
-func (r *Run) slices() []*[]float64 {
-	s := []*[]float64{&r.Spot, &r.Strike, &r.Time, &r.Vol, &r.Rate, &r.Yield, &r.Sign, &r.Entry, &r.rest}
-	for i := range Steps {
-		s = append(s, &r.TimeAfter[i], &r.After[i])
-	}
-	for _, g := range r.Greeks.Slices() {
-		s = append(s, g)
-	}
-	return append(s, r.Terms.slices()...)
+func (r *Run) slices() (s [13 + 11 + 11]*[]float64) {
+	k := copy(s[:], []*[]float64{
+		&r.Spot, &r.Strike, &r.Time, &r.Vol, &r.Rate, &r.Yield, &r.Sign, &r.Entry, &r.rest,
+		&r.TimeAfter[NextDay], &r.TimeAfter[NextBusinessDay], &r.After[NextDay], &r.After[NextBusinessDay],
+	})
+	greeks, terms := r.Greeks.Slices(), r.Terms.slices()
+	k += copy(s[k:], greeks[:])
+	copy(s[k:], terms[:])
+	return s
 }
 
 // revaluations are the steps to price After for, one where they are one.

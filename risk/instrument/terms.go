@@ -13,8 +13,8 @@ type Terms struct {
 	passed, startAfter, averageAfter []float64 // scratch of the averages' revaluation
 }
 
-func (t *Terms) slices() []*[]float64 {
-	return []*[]float64{
+func (t *Terms) slices() [11]*[]float64 {
+	return [...]*[]float64{
 		&t.Payout, &t.Barrier, &t.Rebate, &t.Interval, &t.Side, &t.Knock, &t.AverageStart, &t.Average,
 		&t.passed, &t.startAfter, &t.averageAfter,
 	}
