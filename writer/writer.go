@@ -18,6 +18,10 @@ type Table interface {
 	Close() error
 }
 
+// Aborter is a Table that goes on writing when Write has returned. Abort returns
+// when it no longer does, where the table is given up before Close.
+type Aborter interface{ Abort() }
+
 // Formats are the names that NewTable knows, which are also the extensions of
 // the files.
 var Formats = []string{"parquet", "csv"}

@@ -53,6 +53,13 @@ func (t *tableFile) close() error {
 	return t.file.Close()
 }
 
+// abort returns when nothing is written to the file any more.
+func (t *tableFile) abort() {
+	if a, ok := t.Table.(writer.Aborter); ok {
+		a.Abort()
+	}
+}
+
 func newOutputs(ctx context.Context, o *options, cfg *schema.Config, dicts *schema.Dicts, lines schema.Table, s share) (*outputs, error) {
 	out := &outputs{ctx: ctx, o: o, cfg: cfg, dicts: dicts, share: s}
 	var err error
@@ -138,7 +145,10 @@ func (out *outputs) table(t schema.Table, format string) (*tableFile, error) {
 			"nightbook.caution": writer.Caution,
 		},
 	})
-	return &tableFile{Table: w, file: f}, err
+	if err != nil {
+		return nil, err
+	}
+	return &tableFile{Table: w, file: f}, nil
 }
 
 // batch writes a compacted batch, its refused rows, and its options to exercise.
@@ -260,6 +270,11 @@ func (out *outputs) commit(s *schema.Summary) error {
 func (out *outputs) abort() {
 	if out.report != nil {
 		out.report.Abort()
+	}
+	for _, t := range slices.Concat(out.lines, out.exercise, []*tableFile{out.rejected}) {
+		if t != nil {
+			t.abort()
+		}
 	}
 	if out.folder != nil {
 		out.folder.Abort()

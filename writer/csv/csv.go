@@ -1,6 +1,7 @@
 package csv
 
 import (
+	"cmp"
 	"fmt"
 	"io"
 	"slices"
@@ -11,7 +12,7 @@ import (
 
 // Options are settings of the format; the zero value serves.
 type Options struct {
-	Workers  int      // goroutines that format; 0 is one
+	Workers  int      // goroutines that format; 0 is one. From two on, what is formatted is written beside that
 	BareText bool     // put no apostrophe before any text, formula or not
 	AsCame   []string // columns whose texts get no apostrophe
 }
@@ -20,13 +21,18 @@ type Options struct {
 // it costs more than it saves.
 const partRows = 256
 
-// Writer writes one table.
+// Writer writes one table. With several workers Write returns when the frame is
+// formatted, and leaves the rows to be written while the next frame is: what goes
+// wrong then is told by the next Write or by Close.
 type Writer struct {
 	w       io.Writer
 	columns []column
 	parts   []*part // one a goroutine
 	rows    int64
 	failed  error
+
+	writing bool       // the rows of an earlier frame
+	written chan error // nil where Write itself writes
 }
 
 type column struct {
@@ -38,6 +44,9 @@ type column struct {
 func New(w io.Writer, t schema.Table, opt Options) (*Writer, error) {
 	workers := max(opt.Workers, 1)
 	c := &Writer{w: w}
+	if workers > 1 {
+		c.written = make(chan error, 1)
+	}
 	for _, name := range opt.AsCame {
 		if t.Column(name) == nil {
 			return nil, fmt.Errorf("csv: table %s has no column %s to leave as it came", t.Name, name)
@@ -77,21 +86,58 @@ func (c *Writer) Write(f *schema.Frame) error {
 	}
 	c.parts[0].format(f, 0, f.N/n)
 	wg.Wait()
-	for p := range n {
-		if bad := c.parts[p].bad; bad.found {
-			c.failed = c.refusal(&f.Cols[bad.column], bad.row, bad.column)
-			return c.failed
+	if c.failed = c.settle(); c.failed != nil {
+		return c.failed
+	}
+	for i, p := range c.parts[:n] {
+		if p.out, p.ready = p.ready, p.out; c.written == nil {
+			p.out = p.ready // one buffer serves
 		}
-		if _, c.failed = c.w.Write(c.parts[p].out); c.failed != nil {
+		if p.bad.found {
+			c.failed = cmp.Or(c.writeRows(i), c.refusal(&f.Cols[p.bad.column], p.bad.row, p.bad.column))
 			return c.failed
 		}
 	}
 	c.rows += int64(f.N)
+	if c.written == nil {
+		c.failed = c.writeRows(n)
+		return c.failed
+	}
+	c.writing = true
+	go func() { c.written <- c.writeRows(n) }()
 	return nil
 }
 
+// writeRows writes what the first n parts have ready.
+func (c *Writer) writeRows(n int) error {
+	for _, p := range c.parts[:n] {
+		if _, err := c.w.Write(p.ready); err != nil {
+			return err
+		}
+	}
+	return nil
+}
+
+// settle waits until no rows are being written.
+func (c *Writer) settle() error {
+	if !c.writing {
+		return nil
+	}
+	c.writing = false
+	return <-c.written
+}
+
 // Close ends the table.
-func (c *Writer) Close() error { return c.failed }
+func (c *Writer) Close() error {
+	if err := c.settle(); c.failed == nil {
+		c.failed = err
+	}
+	return c.failed
+}
+
+// Abort returns when nothing is written any more, where the table is to be given
+// up. It need not be called after Close.
+func (c *Writer) Abort() { c.settle() }
 
 // refusal says what is wrong with a value that cannot be written.
 func (c *Writer) refusal(v *schema.Vector, row, i int) error {

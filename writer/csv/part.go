@@ -17,7 +17,8 @@ type part struct {
 	notes   []notes // of the columns
 	cells   []slot  // of a block, row by row
 	long    []byte  // the texts of the block that fit no slot
-	out     []byte  // the rows
+	out     []byte  // rows that are being formatted
+	ready   []byte  // rows that are, and are being written
 	bad     fault   // what could not be written
 }
 
