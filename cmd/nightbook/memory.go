@@ -22,7 +22,7 @@ const (
 	programMemory  = 24 * mib // the program itself, and what the collector is behind
 	jobMemory      = 6 * mib  // a batch on its way, with its piece of the file
 	workbookMemory = 40 * mib // report.xlsx: the sheets are on the disk
-	csvMemory      = 4 * mib
+	csvMemory      = 8 * mib
 )
 
 // share is how a run divides the memory it may take.
