@@ -295,3 +295,33 @@ func TestLimitsOfWords(t *testing.T) {
 		}
 	}
 }
+
+// Texts, numbers and dates by dictionaries, as most programs write them.
+func BenchmarkCodedBind(b *testing.B) {
+	const rows = 100_000
+	lines := strings.Split(strings.TrimSuffix(desk(rows, 3), "\n"), "\n")
+	columns := textColumns(strings.Split(lines[0], ","))
+	for i, name := range []string{"quantity", "multiplier", "strike", "vol", "mark", "entry_price"} {
+		k := slices.IndexFunc(columns, func(c laidColumn) bool { return c.name == name })
+		if columns[k].kind = parquet.Type_DOUBLE; i < 2 {
+			columns[k].kind = parquet.Type_INT64
+		}
+	}
+	var cells [][]string
+	for _, line := range lines[1:] {
+		row := strings.Split(line, ",")
+		for k := range row {
+			if row[k] == "" {
+				row[k] = null
+			}
+		}
+		cells = append(cells, row)
+	}
+	file := laid(b, columns, [][][]string{cells}, func(_, column int, c []string) chunk {
+		if words := different(c, 0); len(words) < 5000 {
+			return chunk{words, len(c), 1 << 20}
+		}
+		return chunk{page: 1 << 20}
+	})
+	benchmarkBind(b, "positions.parquet", file, rows)
+}

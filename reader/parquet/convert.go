@@ -212,7 +212,8 @@ func (c *column) text(b []byte, from *plain, k int) []byte {
 		if c.physical == parquet.Type_BYTE_ARRAY || c.physical == fixed {
 			return appendDecimal(b, bigEndian(from.bytes[k]), c.scale)
 		}
-		return appendDecimal(b, strconv.AppendInt(nil, from.ints[k], 10), c.scale)
+		var digits [20]byte
+		return appendDecimal(b, strconv.AppendInt(digits[:0], from.ints[k], 10), c.scale)
 	}
 	// A UUID: 8-4-4-4-12 hexadecimal digits.
 	u := from.bytes[k]
