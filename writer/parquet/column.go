@@ -132,7 +132,7 @@ func (c *column) endPage(s *scratch) error {
 		s.raw = append(s.raw, block...)
 		block = nil
 		var err error
-		if packed, err = c.comp.pack(s, c.chunk.codec); err != nil {
+		if packed, err = c.comp.pack(s, s.raw, c.chunk.codec); err != nil {
 			return err
 		}
 	}
@@ -189,7 +189,7 @@ func (c *column) encode(s *scratch) (e parquet.Encoding, block []byte) {
 
 const (
 	// trialBytes is how much of a chunk is packed to see whether it is worth it.
-	trialBytes = 32 << 10
+	trialBytes = 8 << 10
 
 	// tellingBytes are the fewest that tell anything of the chunk.
 	tellingBytes = 1 << 10
@@ -204,18 +204,20 @@ func (c *column) settleCodec(s *scratch, e parquet.Encoding, block []byte) error
 		return nil
 	}
 	size := len(s.raw)
-	s.raw = append(s.raw, block[:min(len(block), trialBytes)]...)
-	if e != parquet.Encoding_PLAIN {
-		s.raw = c.appendDictionary(s.raw)
-		s.raw = s.raw[:min(len(s.raw), size+trialBytes)]
+	if e == parquet.Encoding_PLAIN {
+		s.raw = append(s.raw, block[:min(len(block), trialBytes)]...)
+	} else if s.raw = c.appendDictionary(s.raw); len(s.raw) < tellingBytes {
+		s.raw = s.raw[:size]
+		return nil
 	}
-	var err error
-	if e == parquet.Encoding_PLAIN || len(s.raw) >= tellingBytes {
-		var packed []byte
-		packed, err = c.comp.pack(s, c.comp.codec)
-		if 2*len(packed) > len(s.raw) {
-			c.chunk.codec = parquet.CompressionCodec_UNCOMPRESSED
-		}
+	// What there is most of, the beginning of it.
+	trial := s.raw[:min(size, trialBytes)]
+	if 2*size < len(s.raw) {
+		trial = s.raw[size:min(len(s.raw), size+trialBytes)]
+	}
+	packed, err := c.comp.pack(s, trial, c.comp.codec)
+	if 2*len(packed) > len(trial) {
+		c.chunk.codec = parquet.CompressionCodec_UNCOMPRESSED
 	}
 	s.raw = s.raw[:size]
 	return err
@@ -239,7 +241,7 @@ func (c *column) endDictionary(s *scratch) error {
 	if values == 0 {
 		return nil
 	}
-	packed, err := c.comp.pack(s, c.chunk.codec)
+	packed, err := c.comp.pack(s, s.raw, c.chunk.codec)
 	if err != nil {
 		return err
 	}

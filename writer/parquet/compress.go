@@ -41,22 +41,22 @@ func newCompressor(name string, workers int) (*compressor, error) {
 	return nil, fmt.Errorf("parquet compression %q: must be zstd, snappy, gzip or none", name)
 }
 
-// pack returns s.raw compressed. The result is valid until the next use of s.
-func (c *compressor) pack(s *scratch, codec parquet.CompressionCodec) ([]byte, error) {
+// pack returns raw compressed. The result is valid until the next use of s.
+func (c *compressor) pack(s *scratch, raw []byte, codec parquet.CompressionCodec) ([]byte, error) {
 	switch codec {
 	case parquet.CompressionCodec_ZSTD:
-		s.packed = c.zstd.EncodeAll(s.raw, s.packed[:0])
+		s.packed = c.zstd.EncodeAll(raw, s.packed[:0])
 	case parquet.CompressionCodec_SNAPPY:
-		s.packed = snappy.Encode(s.packed[:cap(s.packed)], s.raw)
+		s.packed = snappy.Encode(s.packed[:cap(s.packed)], raw)
 	case parquet.CompressionCodec_GZIP:
 		buf := bytes.NewBuffer(s.packed[:0])
 		s.gzip.Reset(buf)
-		_, err := s.gzip.Write(s.raw)
+		_, err := s.gzip.Write(raw)
 		err = errors.Join(err, s.gzip.Close())
 		s.packed = buf.Bytes()
 		return s.packed, err
 	default:
-		return s.raw, nil
+		return raw, nil
 	}
 	return s.packed, nil
 }

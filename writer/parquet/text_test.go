@@ -70,7 +70,7 @@ func TestCodecOfTexts(t *testing.T) {
 		"a large dictionary":        {pageRows, func(i int) string { return fmt.Sprintf("%050d", i%2000) }, zstd, zstd},
 		"one text":                  {pageRows, func(i int) string { return "x" }, zstd, zstd},
 		"few rows":                  {5, func(i int) string { return fmt.Sprint(i) }, zstd, zstd},
-		"all different":             {pageRows, func(i int) string { return fmt.Sprint(noise(i)) }, zstd, none},
+		"all different":             {pageRows, func(i int) string { return fmt.Sprint(noise(i)) }, zstd, zstd},
 		"nothing":                   {pageRows, func(i int) string { return "" }, zstd, zstd},
 	} {
 		table, free := texts(c.n, c.text)
