@@ -5,7 +5,8 @@
 // few thousand values at a time, so that what is held in memory is a page a
 // column whatever the size of the row groups. A page gives its values
 // as they are stored; what they stand for (a date, a decimal, a time) is one
-// step further, in the file convert.go.
+// step further, in the file convert.go. The texts of a dictionary are handed on
+// once a row group, and the rows as places among them.
 //
 // It reads every encoding of the format's first two page layouts (plain,
 // dictionary, run lengths, delta binary packed, delta length and delta byte
