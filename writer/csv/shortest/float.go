@@ -70,7 +70,7 @@ func Float(dst *[Size]byte, x float64) int {
 	if 16 <= point && point <= 21 { // 1250000000000000
 		return slowly(dst, x)
 	}
-	return place(dst, int(b>>63), sixteen, last, point)
+	return put(dst, int(b>>63), sixteen, last, point)
 }
 
 // scaled returns k = ⌊log₁₀ 2^q⌋ and, for a c of 53 bits, c·2^q/10^k as whole and
