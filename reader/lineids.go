@@ -1,6 +1,7 @@
 package reader
 
 import (
+	"encoding/binary"
 	"hash/maphash"
 	"math/bits"
 )
@@ -43,6 +44,11 @@ func (s *LineIDs) Seen(id []byte) bool {
 	}
 	digits := 0
 	var number, scale uint64 = 0, 1
+	if n := len(id); n >= 8 {
+		if last, ok := eightDigits(binary.LittleEndian.Uint64(id[n-8:])); ok {
+			number, scale, digits = last, 1e8, 8
+		}
+	}
 	for digits < maxDigits && digits < len(id) {
 		d := id[len(id)-1-digits] - '0'
 		if d > 9 {
@@ -58,6 +64,20 @@ func (s *LineIDs) Seen(id []byte) bool {
 		}
 	}
 	return s.prints.add(id)
+}
+
+// eightDigits returns the number that eight digits are, the first of them in the
+// lowest byte. ok is false where not all are digits.
+// Source: the usual addition of neighbours, in bytes, in pairs and in fours.
+func eightDigits(text uint64) (number uint64, ok bool) {
+	const high, zeros, sixes = 0xf0f0f0f0f0f0f0f0, 0x3030303030303030, 0x0606060606060606
+	if text&high|(text+sixes)&high>>4 != zeros|zeros>>4 {
+		return 0, false
+	}
+	x := text - zeros
+	x = (x*10 + x>>8) & 0x00ff00ff00ff00ff
+	x = (x*100 + x>>16) & 0x0000ffff0000ffff
+	return (x*10_000 + x>>32) & 0xffffffff, true
 }
 
 // prefix returns the code of a prefix with that many digits behind it; 0 is
@@ -81,30 +101,36 @@ func (s *LineIDs) prefix(prefix []byte, digits int) uint64 {
 // wordTable is a hash table with open addressing from keys other than 0 to
 // words of bits.
 type wordTable struct {
-	keys, words []uint64
-	n           int
+	words []keyedWord
+	n     int
+	last  int // where the key met last stands: ids in sequence share words
 }
+
+type keyedWord struct{ key, bits uint64 }
 
 // add sets a bit in the word of the key and reports whether it was set before.
 func (t *wordTable) add(key, bit uint64) bool {
-	if 8*t.n >= 7*len(t.keys) {
-		t.grow()
+	if t.last >= len(t.words) || t.words[t.last].key != key {
+		if 8*t.n >= 7*len(t.words) {
+			t.grow()
+		}
+		t.last = t.find(key)
 	}
-	i := t.find(key)
-	if t.keys[i] == 0 {
-		t.keys[i] = key
+	w := &t.words[t.last]
+	if w.key == 0 {
+		w.key = key
 		t.n++
 	}
-	had := t.words[i]&bit != 0
-	t.words[i] |= bit
+	had := w.bits&bit != 0
+	w.bits |= bit
 	return had
 }
 
 // find returns the place of the key, or the free place where it would stand.
 func (t *wordTable) find(key uint64) int {
-	i := place(key, len(t.keys))
-	for t.keys[i] != 0 && t.keys[i] != key {
-		if i++; i == len(t.keys) {
+	i := place(key, len(t.words))
+	for t.words[i].key != 0 && t.words[i].key != key {
+		if i++; i == len(t.words) {
 			i = 0
 		}
 	}
@@ -112,13 +138,11 @@ func (t *wordTable) find(key uint64) int {
 }
 
 func (t *wordTable) grow() {
-	old := *t
-	size := max(64, len(old.keys)*3/2)
-	t.keys, t.words = make([]uint64, size), make([]uint64, size)
-	for k, key := range old.keys {
-		if key != 0 {
-			i := t.find(key)
-			t.keys[i], t.words[i] = key, old.words[k]
+	old := t.words
+	t.words = make([]keyedWord, max(64, len(old)*3/2))
+	for _, w := range old {
+		if w.key != 0 {
+			t.words[t.find(w.key)] = w
 		}
 	}
 }

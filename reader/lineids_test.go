@@ -1,8 +1,10 @@
 package reader
 
 import (
+	"encoding/binary"
 	"fmt"
 	"math/rand/v2"
+	"strconv"
 	"strings"
 	"testing"
 )
@@ -61,6 +63,31 @@ func TestLineIDsForms(t *testing.T) {
 	}
 }
 
+// strconv of the standard library is the reference.
+func TestEightDigits(t *testing.T) {
+	rng := rand.New(rand.NewPCG(5, 6))
+	for range 100_000 {
+		text := []byte(fmt.Sprintf("%08d", rng.IntN(1e8)))
+		for rng.IntN(3) == 0 {
+			text[rng.IntN(8)] = byte(rng.IntN(256))
+		}
+		want, err := strconv.ParseUint(string(text), 10, 64)
+		got, ok := eightDigits(binary.LittleEndian.Uint64(text))
+		if ok != (err == nil) || ok && got != want {
+			t.Fatalf("%q is %d, %v; want %d, %v", text, got, ok, want, err)
+		}
+	}
+	for at := range 8 {
+		for c := range 256 {
+			text := []byte("00000000")
+			text[at] = byte(c)
+			if _, ok := eightDigits(binary.LittleEndian.Uint64(text)); ok != ('0' <= c && c <= '9') {
+				t.Fatalf("%q: %v", text, ok)
+			}
+		}
+	}
+}
+
 // Ten million ids in sequence take a few megabytes.
 func TestLineIDsMemory(t *testing.T) {
 	var ids LineIDs
@@ -74,7 +101,7 @@ func TestLineIDsMemory(t *testing.T) {
 			t.Fatalf("%s was met before", id)
 		}
 	}
-	if size := 16 * len(ids.words.keys); size > 5<<20 || ids.prints.n > 0 {
+	if size := 16 * len(ids.words.words); size > 5<<20 || ids.prints.n > 0 {
 		t.Errorf("%d bytes, %d prints", size, ids.prints.n)
 	}
 }
