@@ -5,23 +5,6 @@ import (
 	"nightbook/writer/csv/shortest"
 )
 
-// floats formats a column of numbers; see column.
-func (p *part) floats(c int, list []float64) (bad int) {
-	required, columns := p.columns[c].Required, len(p.columns)
-	for i, x := range list {
-		s := &p.cells[i*columns+c]
-		if x-x != 0 { // not finite
-			if x == x || required {
-				return i
-			}
-			s.null()
-			continue
-		}
-		s.end(shortest.Float((*[shortest.Size]byte)(s), x))
-	}
-	return -1
-}
-
 func (p *part) ints(c int, list []int64) (bad int) {
 	for i, n := range list {
 		s := &p.cells[i*len(p.columns)+c]

@@ -579,3 +579,30 @@ func TestAbort(t *testing.T) {
 	w.Abort()
 	time.Sleep(5 * time.Millisecond)
 }
+
+// Numbers that repeat must be written as those that do not, whether notes are
+// kept or not, and when the column changes.
+func TestNotedNumbers(t *testing.T) {
+	p := newPart([]column{{schema.Column{Name: "a", Type: schema.Float}, true}})
+	kept := 0
+	for round := range 5 * trialFrames {
+		distinct := []int{3, 100, 2000, 1e6}[round/11%4]
+		f := &schema.Frame{N: 1000, Cols: []schema.Vector{{Kind: schema.KindFloats}}}
+		var want []byte
+		for i := range f.N {
+			x := float64((round*f.N+i)*7919%distinct) / 64 * float64(1-i%2*2) // zeros of both signs among them
+			f.Cols[0].Floats = append(f.Cols[0].Floats, x)
+			want = append(append(want, floatText(x)...), '\n')
+		}
+		p.format(f, 0, f.N)
+		if !bytes.Equal(p.out, want) {
+			t.Fatalf("round %d: other numbers", round)
+		}
+		if p.notes[0].numbers.on {
+			kept++
+		}
+	}
+	if kept == 0 || kept == 5*trialFrames {
+		t.Errorf("notes were kept in %d of %d frames", kept, 5*trialFrames)
+	}
+}

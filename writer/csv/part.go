@@ -15,6 +15,7 @@ const blockRows = 32
 type part struct {
 	columns []column
 	notes   []notes // of the columns
+	frames  int     // that came so far
 	cells   []slot  // of a block, row by row
 	long    []byte  // the texts of the block that fit no slot
 	out     []byte  // rows that are being formatted
@@ -27,6 +28,7 @@ type part struct {
 type notes struct {
 	codes   codeNotes
 	choices []slot
+	numbers numberNotes
 }
 
 // fault is the first cell that cannot be written: null though the column is never
@@ -45,6 +47,10 @@ func newPart(columns []column) *part {
 func (p *part) format(f *schema.Frame, from, to int) {
 	p.out, p.bad = p.out[:0], fault{}
 	p.prepare(f)
+	if p.frames%trialFrames == 0 {
+		p.try(f, from, to)
+	}
+	p.frames++
 	for ; from < to && !p.bad.found; from += blockRows {
 		n := min(blockRows, to-from)
 		p.long = p.long[:0]
