@@ -20,6 +20,8 @@ type Folder struct {
 	dir    string
 	tables map[string]*input
 
+	held int64 // bytes that the market takes, about
+
 	mu     sync.Mutex
 	inputs []schema.InputFile
 	notes  []schema.Note

@@ -17,15 +17,16 @@ func (f *Folder) Market(cfg *schema.Config) (*schema.Market, error) {
 	for _, t := range []struct {
 		name string
 		rows func(*schema.Market, *schema.Config) func(*marketRow) // what reads one row into the market
+		held int64                                                 // bytes that a row takes beside its texts, those of a table that is copied as it grows included
 	}{
-		{"underlyings", underlyingRows},
-		{"rates", rateRows},
-		{"vols", volRows},
-		{"fx", fxRows},
-		{"books", bookRows},
-		{"dividends", dividendRows},
-		{"holidays", holidayRows},
-		{"quotes", quoteRows},
+		{"underlyings", underlyingRows, 500},
+		{"rates", rateRows, 250},
+		{"vols", volRows, 250},
+		{"fx", fxRows, 250},
+		{"books", bookRows, 1500},
+		{"dividends", dividendRows, 120},
+		{"holidays", holidayRows, 100},
+		{"quotes", quoteRows, 450},
 	} {
 		if t.name == "quotes" && !cfg.Vols.FromQuotes {
 			if in := f.tables[t.name]; in != nil {
@@ -34,7 +35,7 @@ func (f *Folder) Market(cfg *schema.Config) (*schema.Market, error) {
 			}
 			continue
 		}
-		if err := f.readMarket(t.name, cfg, m, t.rows(m, cfg)); err != nil {
+		if err := f.readMarket(t.name, cfg, m, t.rows(m, cfg), t.held); err != nil {
 			return nil, err
 		}
 	}
@@ -42,12 +43,19 @@ func (f *Folder) Market(cfg *schema.Config) (*schema.Market, error) {
 }
 
 // readMarket reads one table of the market, if the folder has it.
-func (f *Folder) readMarket(name string, cfg *schema.Config, m *schema.Market, row func(*marketRow)) error {
+func (f *Folder) readMarket(name string, cfg *schema.Config, m *schema.Market, row func(*marketRow), held int64) error {
 	o, err := f.open(name, cfg)
 	if o == nil || err != nil {
 		return err
 	}
 	defer o.Close()
+	if err := o.checkMemory(cfg.Limits.Ceiling()); err != nil {
+		return err
+	}
+	limits := []schema.Limit{schema.MarketRows}
+	if name == "books" { // each has its sums, whether lines are in it or not
+		limits = append(limits, schema.Books)
+	}
 	r := &marketRow{o: o, m: m}
 	var rows table.Rows
 	r.cells = cells{Rows: &rows, style: o.style}
@@ -73,8 +81,16 @@ func (f *Folder) readMarket(name string, cfg *schema.Config, m *schema.Market, r
 			}
 			r.end()
 		}
-		if o.rows += int64(rows.N); o.rows > cfg.Limits.Of(schema.MarketRows) {
-			return o.in.fail(o.sheet, cfg.Limits.Exceeded(schema.MarketRows))
+		f.held += r.bytes + held*int64(rows.N)
+		r.bytes = 0
+		if err := f.checkMarket(cfg.Limits.Ceiling()); err != nil {
+			return o.in.fail(o.sheet, err)
+		}
+		o.rows += int64(rows.N)
+		for _, limit := range limits {
+			if o.rows > cfg.Limits.Of(limit) {
+				return o.in.fail(o.sheet, cfg.Limits.Exceeded(limit))
+			}
 		}
 	}
 	return o.finish(f)
@@ -86,6 +102,8 @@ type marketRow struct {
 	cells
 	o *opened
 	m *schema.Market
+
+	bytes int64 // of the texts that are kept
 
 	i      int
 	name   string // of what the row belongs to
@@ -101,7 +119,9 @@ func (r *marketRow) start(i int) {
 // end puts a refused row among the faults.
 func (r *marketRow) end() {
 	if r.why != nil {
-		r.m.Faults = append(r.m.Faults, schema.Fault{Table: r.o.in.table.Name, Name: r.name, Reject: r.rejected()})
+		x := r.rejected()
+		r.bytes += faultBytes + int64(len(x.Row))
+		r.m.Faults = append(r.m.Faults, schema.Fault{Table: r.o.in.table.Name, Name: r.name, Reject: x})
 	}
 }
 
@@ -162,6 +182,7 @@ func (r *marketRow) text(name string) string {
 		r.refuse(k, why)
 		return ""
 	}
+	r.bytes += int64(len(b)) + textBytes
 	return string(b)
 }
 

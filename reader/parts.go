@@ -27,6 +27,8 @@ type parts struct {
 	header []string
 	schema []string // of every file
 	all    int64    // bytes of the files
+	memory int64    // that reading takes, where there is a ceiling
+	texts  int64    // bytes of text in a run of rows that it leaves; 0: any number
 
 	at   int   // the part being read
 	past int64 // bytes of those before it
@@ -59,6 +61,13 @@ func (f *Folder) openParts(in *input, cfg *schema.Config) (*parts, error) {
 		}
 		if err != nil {
 			return nil, errors.Join(file.fail("", err), file.Close())
+		}
+		if cfg.Limits.Ceiling() > 0 {
+			n, err := rows.Memory()
+			if err != nil {
+				return nil, errors.Join(file.fail("", err), file.Close())
+			}
+			p.memory = max(p.memory, n)
 		}
 		if err := file.Close(); err != nil {
 			return nil, err
@@ -214,6 +223,9 @@ func (p *parts) openPart(x *part) error {
 	}
 	if err != nil {
 		return file.fail("", err)
+	}
+	if p.texts > 0 {
+		p.rows.LimitTexts(p.cfg.Limits.Ceiling(), p.texts)
 	}
 	if agree(p.schema, p.rows.Schema()) != nil { // it was another file when the folder was opened
 		return fmt.Errorf("%s: %w", x.path, errChanged)

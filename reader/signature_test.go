@@ -118,6 +118,7 @@ func TestDamagedPacked(t *testing.T) {
 		for _, c := range []struct{ file, want string }{
 			{whole[:len(whole)/2] + "\xAA\x55\xAA\x55" + whole[len(whole)/2+4:], "the packed text is damaged within the first "},
 			{whole[:len(whole)-6] + "\xAA\x55" + whole[len(whole)-4:], ": fetch it again, or have it written again"},
+			{whole[:len(whole)-2] + "\xAA\x55", ": fetch it again, or have it written again"}, // gzip: the length; zstd: the checksum
 			{whole + "more", "something else stands behind the end of the packed text: the file is damaged, or was written over a longer one: fetch it again"},
 			{whole[:len(whole)/2], "the file is cut short: its "},
 			{whole[:3], "the file is cut short: "},

@@ -45,7 +45,7 @@ var LimitDocs = [limitCount]LimitDoc{
 	BatchBytes:       {"batch_bytes", 64 << 20, 1 << 20, 512 << 20, "bytes of text in 4,096 rows of a Parquet file", "the texts of 4,096 rows have more bytes"},
 	Columns:          {"columns", 2048, 1, 4096, "columns of a table", "it has more columns"},
 	Rows:             {"rows", 1e9, 1, 1e12, "rows of the positions", "it has more rows"},
-	Books:            {"books", 20_000, 1, 1e8, "different books in the positions, each of which takes some kilobytes of memory", "its rows name more books"},
+	Books:            {"books", 20_000, 1, 1e8, "different books in the positions, and rows of the table of books, each of which takes some kilobytes of memory", "its rows name more books"},
 	Underlyings:      {"underlyings", 100_000, 1, 1e8, "different underlyings in the positions that the market does not have", "its rows name more underlyings that the market does not have"},
 	Strategies:       {"strategies", 1e6, 1, 1e9, "different strategies in the positions", "its rows name more strategies"},
 	MarketRows:       {"market_rows", 1e7, 1, 1e9, "rows of any other table, all held in memory", "it has more rows"},
@@ -63,8 +63,28 @@ var LimitDocs = [limitCount]LimitDoc{
 // ratioFrom is from how many unpacked bytes on a ratio is worth a thought.
 const ratioFrom = 100 << 20
 
-// Limits are the values of the limits; 0 stands for the default.
-type Limits [limitCount]int64
+// Limits are the values of the limits; 0 stands for the default. Behind them
+// stand a ceiling on the memory of the run, 0 for none, and which limits are lower
+// for it, a bit each.
+type Limits [limitCount + 2]int64
+
+const (
+	ceiling = limitCount + iota
+	lowered
+)
+
+// Under lowers a limit to what a ceiling on the memory of the run leaves, or to
+// its least value.
+func (l *Limits) Under(bytes int64, k Limit, value int64) {
+	if value = max(value, LimitDocs[k].Least); value < l.Of(k) {
+		l[k] = value
+		l[lowered] |= 1 << k
+	}
+	l[ceiling] = bytes
+}
+
+// Ceiling returns the ceiling on the memory of the run, 0 for none.
+func (l *Limits) Ceiling() int64 { return l[ceiling] }
 
 // Of returns the value of a limit.
 func (l *Limits) Of(k Limit) int64 {
@@ -75,7 +95,13 @@ func (l *Limits) Of(k Limit) int64 {
 }
 
 // Exceeded is the error of a file that is beyond a limit.
-func (l *Limits) Exceeded(k Limit) error { return &LimitError{k, l.Of(k)} }
+func (l *Limits) Exceeded(k Limit) error {
+	e := &LimitError{Limit: k, Value: l.Of(k)}
+	if l[lowered]&(1<<k) != 0 {
+		e.Ceiling = l[ceiling]
+	}
+	return e
+}
 
 // Unpacked holds a file that has been unpacked to so many bytes, out of so many
 // packed ones, to the two limits on that.
@@ -97,11 +123,15 @@ func (l *Limits) Grown(bytes, packed int64) error {
 
 // LimitError says that a file is beyond a limit, and how to move that.
 type LimitError struct {
-	Limit Limit
-	Value int64
+	Limit   Limit
+	Value   int64
+	Ceiling int64 // on the memory of the run, which has lowered the limit; 0: none has
 }
 
 func (e *LimitError) Error() string {
 	d := &LimitDocs[e.Limit]
+	if e.Ceiling > 0 {
+		return fmt.Sprintf("%s than --memory leaves room for, %d under a ceiling of %d MiB: give --memory more", d.what, e.Value, e.Ceiling>>20)
+	}
 	return fmt.Sprintf("%s than %s = %d allows: if the file is what it should be, give a larger %s under [limits] of run.toml, %d at most", d.what, d.Key, e.Value, d.Key, d.Most)
 }

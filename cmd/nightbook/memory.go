@@ -25,6 +25,17 @@ const (
 	csvMemory      = 8 * mib
 )
 
+const (
+	pieceTexts  = 1 * mib // of jobMemory
+	muchReading = 4 * mib // worth a word
+)
+
+// input is what the positions say of the memory that reading takes.
+type input interface {
+	Memory() (int64, error)
+	LimitTexts(ceiling, bytes int64)
+}
+
 // share is how a run divides the memory it may take.
 type share struct {
 	workers   int
@@ -32,32 +43,63 @@ type share struct {
 	live      int64 // bytes that may be in use at a time; 0: any number
 }
 
-// divide divides o.memory. It is called when the market is in memory. Row groups
-// depend on the ceiling and on the columns alone, so that the results are the
+// bound lowers the limits on what is read to what o.memory leaves, before
+// anything is: no file may then ask for more than a share of it at once.
+func (o *options) bound(cfg *schema.Config) {
+	if o.memory == 0 {
+		return
+	}
+	room := max(o.memory-programMemory, leastMarket)
+	for _, x := range []struct {
+		limit schema.Limit
+		share int64
+	}{
+		{schema.HeldBytes, room / 4},     // the shared texts of a workbook take up to three times their markup
+		{schema.WindowBytes, room / 4},   // zstd holds a window and what it unpacks
+		{schema.PageBytes, room / 4},     // packed and unpacked, and growing
+		{schema.MetadataBytes, room / 8}, // a footer is larger unpacked
+		{schema.BatchBytes, room / 8},
+		{schema.RowBytes, room / 32}, // rows come in blocks, and a workbook's have markup around them
+	} {
+		cfg.Limits.Under(o.memory, x.limit, x.share)
+	}
+}
+
+// divide divides o.memory. It is called when the market is in memory and the
+// positions are open. Row groups depend on the ceiling and on the columns alone, so that the results are the
 // same with any number of workers.
-func (o *options) divide(columns []schema.Column) (share, error) {
+func (o *options) divide(columns []schema.Column, positions input) (share, error) {
 	if o.memory == 0 {
 		return share{workers: o.workers}, nil
+	}
+	reading, err := positions.Memory()
+	if err != nil {
+		return share{}, err
 	}
 	runtime.GC() // what is left of reading is not what the market takes
 	var m runtime.MemStats
 	runtime.ReadMemStats(&m)
 	s, need := o.needed(columns, o.memory)
-	need += int64(m.HeapAlloc)
+	kept := int64(m.HeapAlloc) + reading
+	need += kept
 	const fewest = (1 + moreJobs) * jobMemory
 	if need+fewest > o.memory {
 		// With more memory the row groups are larger, which takes some of it.
 		enough := o.memory
-		for more := need; more+fewest > enough; more += int64(m.HeapAlloc) {
+		for more := need; more+fewest > enough; more += kept {
 			enough = (more + fewest + 2*mib) / mib * mib
 			_, more = o.needed(columns, enough)
 		}
-		return s, &hinted{
-			fmt.Errorf("--memory %s is too little for this run, which takes %d MiB", sizeText(o.memory), enough/mib),
-			"give --memory more, fewer --formats, or leave --memory away",
+		hint := "give --memory more, fewer --formats, or leave --memory away"
+		if reading >= muchReading {
+			hint += fmt.Sprintf("; %d MiB of it are for the pages and dictionaries of the positions: a file written with smaller pages takes less", reading/mib)
 		}
+		return s, &hinted{fmt.Errorf("--memory %s is too little for this run, which takes %d MiB", sizeText(o.memory), enough/mib), hint}
 	}
 	s.workers = int(min(int64(o.workers), (o.memory-need)/jobMemory-moreJobs))
+	// A piece's texts stand in it, in its batch, and in a page that is packed.
+	jobs := int64(s.workers + moreJobs)
+	positions.LimitTexts(o.memory, pieceTexts+(o.memory-need-jobs*jobMemory)/(2*jobs+4))
 	most := o.memory - programMemory
 	s.live = most / 8 * 7 // what is kept grows by more than it was, now and then
 	debug.SetMemoryLimit(most)
@@ -110,7 +152,7 @@ type marketWatch struct {
 }
 
 const (
-	watchEvery  = 20 * time.Millisecond
+	watchEvery  = 5 * time.Millisecond
 	leastMarket = 32 * mib // below that it is told later, when it is known what the run takes
 )
 
@@ -125,7 +167,8 @@ func (o *options) watchMarket(ctx context.Context) (context.Context, *marketWatc
 	ctx, w.cancel = context.WithCancel(ctx)
 	most := max(o.memory-programMemory, leastMarket)
 	debug.SetMemoryLimit(most)
-	h, stop := newHeld(most/8*7), w.stop
+	// A table that grows is copied, and stands twice in memory for a moment.
+	h, stop := newHeld(most/8*6), w.stop
 	go func() {
 		tick := time.NewTicker(watchEvery)
 		defer tick.Stop()
@@ -138,7 +181,7 @@ func (o *options) watchMarket(ctx context.Context) (context.Context, *marketWatc
 			}
 		}
 		err := &hinted{
-			fmt.Errorf("--memory %s is too little for the market, which is held whole: more than %d MiB were in use before it was read", sizeText(o.memory), h.most/mib),
+			fmt.Errorf("--memory %s is too little for the market, which is held whole, and copied while it grows: more than %d MiB were in use before it was read", sizeText(o.memory), h.most/mib),
 			"give --memory more, or see whether the files of the market hold what they should; [limits] market_rows bounds them",
 		}
 		w.over <- err
@@ -168,9 +211,9 @@ func (h *held) check(o *options, file string, rows int64) error {
 		return nil
 	}
 	return &hinted{
-		fmt.Errorf("%s: --memory %s is too little for what is kept of the first %d rows: every name of a book, an underlying or a strategy, and every line_id that does not end in a number",
+		fmt.Errorf("%s: --memory %s is too little for what is kept of the first %d rows: every name of a book, an underlying or a strategy, every line_id that does not end in a number, and the texts of a row group",
 			file, sizeText(o.memory), rows),
-		"give --memory more, or see whether these columns hold what they should: their texts differ from row to row",
+		"give --memory more, or see whether these columns, and those that are carried through, hold what they should: their texts are long or differ from row to row",
 	}
 }
 

@@ -15,6 +15,12 @@ import (
 	"nightbook/schema"
 )
 
+// pages are positions that take so many bytes to be read.
+type pages int64
+
+func (p *pages) Memory() (int64, error) { return int64(*p), nil }
+func (p *pages) LimitTexts(_, _ int64)  {}
+
 // What a run is said to take is enough for it, though more memory may mean larger
 // row groups.
 func TestEnoughMemory(t *testing.T) {
@@ -24,7 +30,7 @@ func TestEnoughMemory(t *testing.T) {
 			columns := schema.LinesTable(extra).Columns
 			for _, memory := range []int64{1, 20 * mib, 60 * mib, 80 * mib} {
 				o := &options{formats: formats, workers: 2, memory: memory}
-				_, err := o.divide(columns)
+				_, err := o.divide(columns, new(pages))
 				if err == nil {
 					continue
 				}
@@ -35,11 +41,53 @@ func TestEnoughMemory(t *testing.T) {
 					t.Fatalf("%v: %v", err, scan)
 				}
 				o.memory = enough * mib
-				if s, err := o.divide(columns); err != nil || s.workers < 1 || s.live <= 0 {
+				if s, err := o.divide(columns, new(pages)); err != nil || s.workers < 1 || s.live <= 0 {
 					t.Errorf("%v, %d columns, %s and then %d MiB: %+v %v", formats, len(columns), sizeText(memory), enough, s, err)
 				}
 			}
 		}
+	}
+}
+
+// What positions say that reading takes is part of what a run takes, and is told
+// where the ceiling is too low for it.
+func TestMemoryOfInputs(t *testing.T) {
+	defer debug.SetMemoryLimit(debug.SetMemoryLimit(-1))
+	columns := schema.LinesTable(nil).Columns
+	o := &options{formats: []string{"csv"}, workers: 1, memory: 100 * mib}
+	few, many := pages(2*mib), pages(60*mib)
+	if _, err := o.divide(columns, &few); err != nil {
+		t.Error(err)
+	}
+	_, err := o.divide(columns, &many)
+	var says *hinted
+	if !errors.As(err, &says) || !strings.Contains(says.hint, "60 MiB of it are for the pages and dictionaries of the positions") {
+		t.Errorf("%v", err)
+	}
+}
+
+// The limits on what a file may ask for at once are lower under a ceiling, never
+// higher than they were, and say why.
+func TestLimitsUnderMemory(t *testing.T) {
+	var cfg schema.Config
+	cfg.Limits[schema.WindowBytes] = 2 * mib
+	o := &options{memory: 96 * mib}
+	o.bound(&cfg)
+	if n := cfg.Limits.Of(schema.HeldBytes); n != 18*mib {
+		t.Errorf("held_bytes is %d", n)
+	}
+	if n := cfg.Limits.Of(schema.WindowBytes); n != 2*mib {
+		t.Errorf("window_bytes is %d", n)
+	}
+	if err := cfg.Limits.Exceeded(schema.HeldBytes); !strings.Contains(err.Error(), "than --memory leaves room for, 18874368 under a ceiling of 96 MiB: give --memory more") {
+		t.Error(err)
+	}
+	if err := cfg.Limits.Exceeded(schema.WindowBytes); !strings.Contains(err.Error(), "give a larger window_bytes under [limits]") {
+		t.Error(err)
+	}
+	cfg.Limits = schema.Limits{}
+	if new(options).bound(&cfg); cfg.Limits != (schema.Limits{}) {
+		t.Errorf("without a ceiling: %v", cfg.Limits)
 	}
 }
 

@@ -41,6 +41,7 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 	if err != nil {
 		return nil, err
 	}
+	o.bound(cfg)
 	raw, err := folder.Market(cfg)
 	if err != nil {
 		return nil, cmp.Or(watch.end(), err)
@@ -60,7 +61,7 @@ func pipeline(ctx context.Context, o *options, con *console) (*schema.Summary, e
 	}
 	defer positions.Close()
 	lines := schema.LinesTable(positions.Extra())
-	share, err := o.divide(lines.Columns)
+	share, err := o.divide(lines.Columns, positions)
 	if err != nil {
 		return nil, err
 	}
