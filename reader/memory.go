@@ -64,11 +64,11 @@ const (
 	faultBytes = 700
 )
 
-// checkMarket refuses a market that takes more than three quarters of what a
+// checkMarket refuses a market that takes more than seven eighths of what a
 // ceiling leaves: curves and surfaces are made of it yet.
 func (f *Folder) checkMarket(ceiling int64) error {
 	const program = 24 << 20
-	if ceiling == 0 || f.held <= max(ceiling-program, program)/4*3 {
+	if ceiling == 0 || f.held <= max(ceiling-program, program)/8*7 {
 		return nil
 	}
 	return fmt.Errorf("--memory %dMiB is too little for the market, which is held whole: up to this table it takes more than %d MiB; give --memory more, or see whether the files of the market hold what they should",
