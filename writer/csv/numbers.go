@@ -58,8 +58,10 @@ func (p *part) try(f *schema.Frame, from, to int) {
 // floats formats a column of numbers; see column.
 func (p *part) floats(c int, list []float64) (bad int) {
 	required, notes := p.columns[c].Required, &p.notes[c].numbers
+	cells, columns, at := p.cells, len(p.columns), c
 	for i, x := range list {
-		s := &p.cells[i*len(p.columns)+c]
+		s := &cells[at]
+		at += columns
 		if x-x != 0 { // not finite
 			if x == x || required {
 				return i
@@ -72,14 +74,14 @@ func (p *part) floats(c int, list []float64) (bad int) {
 			continue
 		}
 		bits := math.Float64bits(x)
-		at := hashed(bits)
-		if notes.bits[at] == bits {
-			s.set(&notes.texts[at])
+		h := hashed(bits)
+		if notes.bits[h] == bits {
+			s.set(&notes.texts[h])
 			continue
 		}
 		s.end(shortest.Float((*[shortest.Size]byte)(s), x))
-		notes.bits[at] = bits
-		notes.texts[at].set(s)
+		notes.bits[h] = bits
+		notes.texts[h].set(s)
 	}
 	return -1
 }

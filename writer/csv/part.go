@@ -8,7 +8,7 @@ import (
 
 // blockRows is how many rows are formatted column by column before they are put
 // together: as many as their cells stay in the cache.
-const blockRows = 32
+const blockRows = 64
 
 // part is what one goroutine formats of a frame, and what it keeps from frame to
 // frame.
