@@ -2,6 +2,7 @@ package writer
 
 import (
 	"errors"
+	"fmt"
 	"os"
 	"syscall"
 )
@@ -17,6 +18,9 @@ type lock struct {
 func takeLock(path string) (*lock, error) {
 	for {
 		f, err := os.OpenFile(path, os.O_RDWR|os.O_CREATE|syscall.O_NOFOLLOW, 0o666)
+		if errors.Is(err, syscall.ELOOP) || errors.Is(err, syscall.EISDIR) {
+			return nil, fmt.Errorf("%w: a link or a folder stands where the lock is to be: no run has made it, take it away", err)
+		}
 		if err != nil {
 			return nil, err
 		}

@@ -4,10 +4,28 @@ import (
 	"errors"
 	"os"
 	"path/filepath"
+	"strings"
 	"sync"
 	"sync/atomic"
 	"testing"
 )
+
+// What no run has made is not taken for a lock, nor followed.
+func TestLockIsAFile(t *testing.T) {
+	dir := t.TempDir()
+	link, target := filepath.Join(dir, "link"), filepath.Join(dir, "target")
+	if err := os.Symlink(target, link); err != nil {
+		t.Fatal(err)
+	}
+	for _, path := range []string{link, dir} {
+		if l, err := takeLock(path); err == nil || !strings.Contains(err.Error(), "stands where the lock is to be") {
+			t.Errorf("%v %v", l, err)
+		}
+	}
+	if _, err := os.Lstat(target); err == nil {
+		t.Error("the link was followed")
+	}
+}
 
 // However many take and release the lock, one at a time holds it, though its
 // file comes and goes.

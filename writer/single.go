@@ -12,11 +12,22 @@ import (
 )
 
 // WriteFile makes the file path of what write writes: whole, by one step, or
-// not at all. It fails with ErrExists if the file is there and replace is false.
+// not at all. It fails with ErrExists if the file is there and replace is false,
+// with ErrBusy if another run is writing it, and if path is a folder.
 func WriteFile(path string, replace bool, write func(io.Writer) error) (err error) {
-	if _, err := os.Lstat(path); err == nil && !replace {
+	if info, err := os.Lstat(path); err == nil && info.IsDir() {
+		return fmt.Errorf("%s: it is a folder: give the name of a file", path)
+	} else if err == nil && !replace {
 		return fmt.Errorf("%s: %w", path, ErrExists)
 	}
+	if _, err := os.Stat(filepath.Dir(path)); err != nil {
+		return fmt.Errorf("result file %s: %w: make its folder first, or give another", path, err)
+	}
+	lock, err := takeLock(filepath.Join(filepath.Dir(path), "."+filepath.Base(path)+lockSuffix))
+	if err != nil {
+		return fmt.Errorf("%s: %w", path, err)
+	}
+	defer func() { err = errors.Join(err, lock.release()) }()
 	part := filepath.Join(filepath.Dir(path), "."+filepath.Base(path)+partSuffix)
 	if err := os.Remove(part); err != nil && !errors.Is(err, fs.ErrNotExist) { // of a killed run
 		return fmt.Errorf("leftover of an earlier run: %w", err)

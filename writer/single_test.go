@@ -54,3 +54,44 @@ func TestWriteFile(t *testing.T) {
 		t.Error("a file was written into a folder that is not there")
 	}
 }
+
+// Of two that write one file at once the second is refused, and the first's is whole.
+func TestWriteFileTwice(t *testing.T) {
+	dir := t.TempDir()
+	path := filepath.Join(dir, "x.csv")
+	err := WriteFile(path, false, func(w io.Writer) error {
+		if err := WriteFile(path, false, func(w io.Writer) error { _, err := io.WriteString(w, "other"); return err }); !errors.Is(err, ErrBusy) {
+			t.Errorf("the second: %v", err)
+		}
+		_, err := io.WriteString(w, "whole")
+		return err
+	})
+	got, _ := os.ReadFile(path)
+	if err != nil || string(got) != "whole" {
+		t.Errorf("the first: %v, the file holds %q", err, got)
+	}
+	if entries, _ := os.ReadDir(dir); len(entries) != 1 {
+		t.Errorf("%d files in the folder", len(entries))
+	}
+}
+
+// A link is replaced and what it leads to is left; a folder is never replaced.
+func TestWriteFileOverLink(t *testing.T) {
+	dir := t.TempDir()
+	target, link := filepath.Join(dir, "target"), filepath.Join(dir, "x.csv")
+	if err := errors.Join(os.WriteFile(target, []byte("kept"), 0o666), os.Symlink("target", link)); err != nil {
+		t.Fatal(err)
+	}
+	put := func(w io.Writer) error { _, err := io.WriteString(w, "new"); return err }
+	if err := WriteFile(link, true, put); err != nil {
+		t.Error(err)
+	}
+	kept, _ := os.ReadFile(target)
+	made, _ := os.ReadFile(link)
+	if string(kept) != "kept" || string(made) != "new" {
+		t.Errorf("the target holds %q, the file %q", kept, made)
+	}
+	if err := WriteFile(dir, true, put); err == nil {
+		t.Error("a folder was replaced")
+	}
+}

@@ -30,8 +30,8 @@ same bytes on every machine. Desks, books and underlyings are invented.`,
 				return err
 			}
 			lines := c.Int64("lines")
-			if lines < 0 {
-				return usagef("--lines takes a number from 0, not %d", lines)
+			if lines < 1 {
+				return usagef("--lines takes a number from 1, not %d", lines)
 			}
 			if err := samples.Write(dir, samples.Options{Lines: lines, Seed: c.Uint64("seed"), American: c.Bool("american"), Stop: c.Context.Err}); err != nil {
 				return err
