@@ -115,11 +115,11 @@ func TestFrontsAreEmptiedInTime(t *testing.T) {
 // Sums made apart and merged have the bits of sums made together.
 func TestMergedRows(t *testing.T) {
 	rng := rand.New(rand.NewPCG(13, 14))
-	for range 50 {
+	for range 20 {
 		draw := hostile(rng)
 		parts := make([]row, 1+rng.IntN(30))
 		var xs []float64
-		for range rng.IntN(20_000) {
+		for range rng.IntN(6000) {
 			x := draw()
 			xs = append(xs, x)
 			r := &parts[rng.IntN(len(parts))]
