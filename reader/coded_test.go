@@ -18,8 +18,7 @@ import (
 // faultyDesk is desk with cells that are at fault, or written in other ways, each
 // on several rows, as a table of cells.
 func faultyDesk(n int, seed uint64) (header []string, rows [][]string) {
-	lines := strings.Split(strings.TrimSuffix(desk(n, seed), "\n"), "\n")
-	header = strings.Split(lines[0], ",")
+	header, rows = cellsOf(desk(n, seed))
 	rng := rand.New(rand.NewPCG(seed, 2))
 	odd := map[string][]string{
 		"book": {"  Book 7\t", "Bo\x01ok", "B\xff", strings.Repeat("long", 80), "\ufeffBook", "Bücher", "North", ""}, "underlying": {"", "al\x7fba", " ALBA"},
@@ -28,16 +27,22 @@ func faultyDesk(n int, seed uint64) (header []string, rows [][]string) {
 		"payoff": {"VANILLA", "lookback"}, "strike": {"1e-3", "", "x"}, "expiry": {"2027-02-30", "", "2027-03-01", "2027-03-01 09:30:15", "soon", "2027-03-01T09:30Z"},
 		"vol": {"-0.1", "", "0"}, "mark": {"", "?"}, "entry_price": {"12.5", "Infinity"}, "strategy": {"a\nb", "", "é"}, "trader": {"In\xffes", "", "  kept  ", "x\x00y"}, "line_id": {"", " L7 ", "L\x02", "é"},
 	}
-	for _, line := range lines[1:] {
-		row := strings.Split(line, ",")
+	for _, row := range rows {
 		for k, h := range header {
 			if words := odd[h]; rng.IntN(60) == 0 {
 				row[k] = words[rng.IntN(len(words))]
 			}
 		}
-		rows = append(rows, row)
 	}
 	return header, rows
+}
+
+// cellsOf takes a text apart that has no quotation marks.
+func cellsOf(text string) (header []string, rows [][]string) {
+	for line := range strings.Lines(text) {
+		rows = append(rows, strings.Split(strings.TrimSuffix(line, "\n"), ","))
+	}
+	return rows[0], rows[1:]
 }
 
 // asCSV writes cells as a CSV text.
@@ -299,23 +304,20 @@ func TestLimitsOfWords(t *testing.T) {
 // Texts, numbers and dates by dictionaries, as most programs write them.
 func BenchmarkCodedBind(b *testing.B) {
 	const rows = 100_000
-	lines := strings.Split(strings.TrimSuffix(desk(rows, 3), "\n"), "\n")
-	columns := textColumns(strings.Split(lines[0], ","))
+	header, cells := cellsOf(desk(rows, 3))
+	columns := textColumns(header)
 	for i, name := range []string{"quantity", "multiplier", "strike", "vol", "mark", "entry_price"} {
 		k := slices.IndexFunc(columns, func(c laidColumn) bool { return c.name == name })
 		if columns[k].kind = parquet.Type_DOUBLE; i < 2 {
 			columns[k].kind = parquet.Type_INT64
 		}
 	}
-	var cells [][]string
-	for _, line := range lines[1:] {
-		row := strings.Split(line, ",")
+	for _, row := range cells {
 		for k := range row {
 			if row[k] == "" {
 				row[k] = null
 			}
 		}
-		cells = append(cells, row)
 	}
 	file := laid(b, columns, [][][]string{cells}, func(_, column int, c []string) chunk {
 		if words := different(c, 0); len(words) < 5000 {

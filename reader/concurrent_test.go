@@ -24,9 +24,14 @@ func TestBindersAtOnce(t *testing.T) {
 		}
 	}
 	text = strings.Join(lines, "\n")
-	for name, file := range map[string]string{"positions.csv": text, "positions.csv.zst": zstandard(t, text), "positions.parquet": parquetOf(t, desk(2*schema.BatchRows+50, 17))} {
+	header, rows := faultyDesk(5*schema.BatchRows+123, 17)
+	for _, c := range []struct{ name, file string }{
+		{"positions.csv", text}, {"positions.csv.zst", zstandard(t, text)}, {"positions.parquet", parquetOf(t, desk(2*schema.BatchRows+50, 17))},
+		{"positions.parquet", laid(t, textColumns(header), inGroups(rows), layouts["some of each"])},
+	} {
+		name := c.name
 		over := map[string]string{"positions.csv": ""}
-		over[name] = file
+		over[name] = c.file
 		dir := folderOf(t, over)
 		once, err := readAll(dir)
 		if err != nil {
@@ -146,7 +151,21 @@ func TestEndStays(t *testing.T) {
 
 // In the steady state no memory is asked for, however many rows a piece has.
 func TestBindAllocations(t *testing.T) {
-	f, err := OpenFolder(context.Background(), folderOf(t, map[string]string{"positions.csv": desk(40*schema.BatchRows, 9)}))
+	text := desk(40*schema.BatchRows, 9)
+	header, rows := cellsOf(text)
+	coded := laid(t, textColumns(header), [][][]string{rows}, func(_, column int, c []string) chunk {
+		if column == 0 {
+			return chunk{page: 1 << 20}
+		}
+		return chunk{different(c, 0), len(c), 1 << 20}
+	})
+	for _, over := range []map[string]string{{"positions.csv": text}, {"positions.csv": "", "positions.parquet": coded}} {
+		bindAllocations(t, over)
+	}
+}
+
+func bindAllocations(t *testing.T, over map[string]string) {
+	f, err := OpenFolder(context.Background(), folderOf(t, over))
 	if err != nil {
 		t.Fatal(err)
 	}
