@@ -6,6 +6,7 @@ import (
 	"fmt"
 	"math"
 	"math/rand/v2"
+	"runtime"
 	"testing"
 
 	"nightbook/schema"
@@ -148,4 +149,33 @@ func TestSummaryEndsWithItsContext(t *testing.T) {
 	if err := totals.Summary(ctx, new(schema.Summary)); !errors.Is(err, context.Canceled) {
 		t.Errorf("error %v", err)
 	}
+}
+
+// BenchmarkManyBooks adds up 20,000 books that have a line each.
+func BenchmarkManyBooks(b *testing.B) {
+	rng := rand.New(rand.NewPCG(15, 16))
+	const n = 20_000
+	lots := make([]lot, n)
+	for i := range lots {
+		x := rng.NormFloat64() * 1e4
+		lots[i] = lot{fmt.Sprint("B", i), "U", "EUR", false, schema.Priced, 1, x, x}
+	}
+	d := schema.NewDicts()
+	batch := batchOf(d, lots)
+	var before, after runtime.MemStats
+	for b.Loop() {
+		totals, err := NewTotals(nil, d)
+		if err != nil {
+			b.Fatal(err)
+		}
+		runtime.GC()
+		runtime.ReadMemStats(&before)
+		totals.AddLines(batch, kindOf)
+		runtime.ReadMemStats(&after)
+		if err := totals.Summary(context.Background(), new(schema.Summary)); err != nil {
+			b.Fatal(err)
+		}
+	}
+	b.ReportMetric(float64(b.Elapsed().Nanoseconds())/float64(b.N)/n, "ns/book")
+	b.ReportMetric(float64(after.TotalAlloc-before.TotalAlloc)/n, "B/book")
 }
