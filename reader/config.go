@@ -105,6 +105,9 @@ func (f *Folder) Config(asOf string) (*schema.Config, error) {
 		return nil, err
 	}
 	cfg, err := parseConfig(text, asOf, f.name())
+	if err != nil && text == "" {
+		return nil, fmt.Errorf("%s: the file is not there or empty, and a run needs one: %w", filepath.Join(f.dir, configName), err)
+	}
 	if err != nil {
 		return nil, fmt.Errorf("%s: %w", filepath.Join(f.dir, configName), err)
 	}
@@ -142,7 +145,7 @@ func parseConfig(text, asOf, folder string) (*schema.Config, error) {
 	if err != nil {
 		var syntax toml.ParseError
 		if errors.As(err, &syntax) {
-			return nil, fmt.Errorf("line %d: %s", syntax.Position.Line, syntax.Message)
+			return nil, fmt.Errorf("line %d: %s; a line is a key, = and a value, and a text stands in quotation marks", syntax.Position.Line, syntax.Message)
 		}
 		return nil, err
 	}
@@ -152,7 +155,10 @@ func parseConfig(text, asOf, folder string) (*schema.Config, error) {
 		}
 	}
 	cfg := &schema.Config{ReportingCurrency: strings.ToUpper(r.ReportingCurrency), Calendar: r.Calendar}
-	if !isCurrency(cfg.ReportingCurrency) {
+	if r.ReportingCurrency != "" && !isCurrency(cfg.ReportingCurrency) {
+		return nil, fmt.Errorf("reporting_currency is %q: expected three letters of ISO 4217, such as \"USD\"", r.ReportingCurrency)
+	}
+	if r.ReportingCurrency == "" {
 		return nil, errors.New(`reporting_currency is needed: three letters of ISO 4217, such as reporting_currency = "USD"`)
 	}
 	if why := checkName([]byte(r.Calendar)); why != nil {

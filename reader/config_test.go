@@ -155,7 +155,7 @@ func TestConfigErrors(t *testing.T) {
 		}
 	}
 	for _, text := range []string{"", `reporting_currency = ""`, `reporting_currency = "US"`, `reporting_currency = "U1D"`, `reporting_currency = "dollar"`} {
-		if _, err := parseConfig(text, "2026-03-20", "x"); err == nil || !strings.Contains(err.Error(), "reporting_currency is needed") {
+		if _, err := parseConfig(text, "2026-03-20", "x"); err == nil || !strings.Contains(err.Error(), "letters of ISO 4217") {
 			t.Errorf("%q: %v", text, err)
 		}
 	}

@@ -74,13 +74,13 @@ func OpenFolder(ctx context.Context, dir string, needed ...string) (*Folder, err
 		// is not read must not be passed over.
 		stem, rest := stemOf(name)
 		if f.tables[stem] == nil {
-			return nil, fmt.Errorf("%s: a file of the form %s is not read: expected one of %s", filepath.Join(dir, name), rest, strings.Join(formatNames(), ", "))
+			return nil, fmt.Errorf("%s: a file of the form %s is not read: save it as one of %s, or name it so if it is one", filepath.Join(dir, name), rest, strings.Join(formatNames(), ", "))
 		}
 		f.note(unused(name))
 	}
 	for _, table := range needed {
 		if f.tables[table] == nil {
-			return nil, fmt.Errorf("%s: there is no %s file: it takes %s.csv (or %s); the folder holds %s",
+			return nil, fmt.Errorf("%s: there is no %s file: put it there, or name it so: %s.csv (or %s); the folder holds %s",
 				dir, table, table, strings.Join(formatNames()[1:], ", "), listed(files))
 		}
 	}

@@ -130,7 +130,7 @@ func (p *parts) find() error {
 			return nil
 		}
 		if !strings.EqualFold(filepath.Ext(path), ".parquet") {
-			return fmt.Errorf("%s: not a .parquet file: a folder of Parquet files holds nothing else", path)
+			return fmt.Errorf("%s: not a .parquet file, and a folder of Parquet files holds nothing else: take it out", path)
 		}
 		if int64(len(p.list)) == p.cfg.Limits.Of(schema.Parts) {
 			return p.in.fail("", p.cfg.Limits.Exceeded(schema.Parts))
@@ -152,7 +152,7 @@ func (p *parts) find() error {
 		return nil
 	})
 	if err == nil && len(p.list) == 0 {
-		err = fmt.Errorf("%s: the folder holds no .parquet file", p.in.path)
+		err = fmt.Errorf("%s: the folder holds no .parquet file: put the parts there, or take it away", p.in.path)
 	}
 	return err
 }

@@ -87,7 +87,7 @@ func columnsOf(elements []*parquet.SchemaElement) ([]*column, error) {
 			return nil, fmt.Errorf("column %s is nested (%s): only flat columns are read; write its fields as columns of their own", e.Name, describe(e))
 		}
 		if e.GetRepetitionType() == parquet.FieldRepetitionType_REPEATED {
-			return nil, fmt.Errorf("column %s repeats (a list of %s): only one value a row is read", e.Name, describe(e))
+			return nil, fmt.Errorf("column %s repeats (a list of %s): only one value a row is read; write one, or leave the column out", e.Name, describe(e))
 		}
 		c := &column{name: e.Name, physical: *e.Type, length: int(e.GetTypeLength()),
 			optional: e.RepetitionType != nil && *e.RepetitionType == parquet.FieldRepetitionType_OPTIONAL}
@@ -95,7 +95,7 @@ func columnsOf(elements []*parquet.SchemaElement) ([]*column, error) {
 			return nil, damaged("column %s has values of %d bytes", c.name, c.length)
 		}
 		if !c.classify(e) {
-			return nil, fmt.Errorf("column %s is of type %s, which is not read", e.Name, describe(e))
+			return nil, fmt.Errorf("column %s is of type %s, which is not read: write it as numbers, dates, times or texts", e.Name, describe(e))
 		}
 		columns = append(columns, c)
 	}

@@ -45,7 +45,7 @@ func TestTimes(t *testing.T) {
 // Nor is an encoding that came after it.
 func TestUnknownEncoding(t *testing.T) {
 	c := &column{physical: parquet.Type_DOUBLE}
-	for e, want := range map[parquet.Encoding]string{parquet.Encoding_DELTA_BINARY_PACKED: "DOUBLE in the encoding DELTA_BINARY_PACKED is not read", 10: "DOUBLE in the encoding number 10 of the format is not read"} {
+	for e, want := range map[parquet.Encoding]string{parquet.Encoding_DELTA_BINARY_PACKED: "DOUBLE in the encoding DELTA_BINARY_PACKED is not read: write the column in another, such as PLAIN", 10: "DOUBLE in the encoding number 10 of the format is not read: write the column in another, such as PLAIN"} {
 		if err := c.values.start(c, e, nil); err == nil || err.Error() != want {
 			t.Errorf("%v, want %s", err, want)
 		}

@@ -38,7 +38,7 @@ func (d *dictionary) forget() {
 // setDictionary decodes the dictionary of a row group.
 func (v *values) setDictionary(c *column, data []byte, n int, e parquet.Encoding) error {
 	if e != parquet.Encoding_PLAIN && e != parquet.Encoding_PLAIN_DICTIONARY {
-		return fmt.Errorf("a dictionary in the encoding %s is not read", encodingName(e))
+		return fmt.Errorf("a dictionary in the encoding %s is not read: write the column with a plain one, or without", encodingName(e))
 	}
 	if n < 0 || n > len(data) || c.physical == parquet.Type_BOOLEAN {
 		return damaged("a dictionary of %d values in %d bytes", n, len(data))

@@ -103,7 +103,7 @@ func readFooter(r io.ReaderAt, size int64, limits *schema.Limits) (*parquet.File
 	}
 	switch {
 	case string(head[:]) == "PARE" || string(tail[4:]) == "PARE":
-		return nil, errors.New("encrypted Parquet files are not read")
+		return nil, errors.New("encrypted Parquet files are not read: write it without encryption")
 	case string(head[:]) != magic:
 		return nil, errors.New("not a Parquet file: it does not begin with PAR1")
 	case string(tail[4:]) != magic:
@@ -211,7 +211,7 @@ func (f *File) startGroup(g *parquet.RowGroup) error {
 			return damaged("column %s of row group %d has no description", c.name, f.group+1)
 		}
 		if chunk.FilePath != nil && *chunk.FilePath != "" {
-			return errors.New("a Parquet file whose columns lie in other files is not read")
+			return errors.New("a Parquet file whose columns lie in other files is not read: write it as one file")
 		}
 		if err := c.start(f.r, f.size, chunk.MetaData, g.NumRows); err != nil {
 			return fmt.Errorf("column %s, row group %d: %w", c.name, f.group+1, err)

@@ -165,7 +165,7 @@ func (c *column) startPage(h *parquet.DataPageHeader, size int) error {
 	}
 	if c.optional {
 		if h.DefinitionLevelEncoding != parquet.Encoding_RLE {
-			return fmt.Errorf("levels in the encoding %s are not read", h.DefinitionLevelEncoding)
+			return fmt.Errorf("levels in the encoding %s are not read: write the file with levels in RLE", h.DefinitionLevelEncoding)
 		}
 		if len(data) < 4 {
 			return damaged("a page without levels")

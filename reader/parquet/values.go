@@ -81,7 +81,7 @@ func (v *values) start(c *column, e parquet.Encoding, data []byte) error {
 			return v.startPrefixes(data)
 		}
 	}
-	return fmt.Errorf("%s in the encoding %s is not read", c.physical, encodingName(e))
+	return fmt.Errorf("%s in the encoding %s is not read: write the column in another, such as PLAIN", c.physical, encodingName(e))
 }
 
 // encodingName names an encoding, one that came after this reader by its number.
