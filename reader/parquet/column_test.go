@@ -109,3 +109,31 @@ func TestDictionaryOfItsRowGroup(t *testing.T) {
 		t.Errorf("%v, want a damaged file", err)
 	}
 }
+
+// A column with a second dictionary, which no writer makes within a run of rows,
+// is spelled out: the rows before keep their texts.
+func TestSecondDictionary(t *testing.T) {
+	c := &column{physical: parquet.Type_BYTE_ARRAY, meaning: texts, file: &File{limits: new(schema.Limits)}}
+	c.file.columns = []*column{c}
+	var rows table.Rows
+	rows.Reset(1)
+	for _, words := range []string{"\x01\x00\x00\x00a\x01\x00\x00\x00b", "\x01\x00\x00\x00c\x02\x00\x00\x00dd"} {
+		if err := c.values.setDictionary(c, []byte(words), 2, parquet.Encoding_PLAIN); err != nil {
+			t.Fatal(err)
+		}
+		if err := c.values.start(c, parquet.Encoding_RLE_DICTIONARY, []byte{1, 3, 2}); err != nil { // of one bit: 0 1 0 0 …
+			t.Fatal(err)
+		}
+		if err := c.take(&rows, 0, 3, 3); err != nil {
+			t.Fatal(err)
+		}
+		rows.N += 3
+	}
+	var got string
+	for i := range rows.N {
+		got += string(rows.Text(0, i)) + " "
+	}
+	if got != "a b a c dd c " || c.file.texts < 7 {
+		t.Errorf("%s, of %d bytes", got, c.file.texts)
+	}
+}
