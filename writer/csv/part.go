@@ -42,8 +42,8 @@ func newPart(columns []column) *part {
 	return &part{columns: columns, notes: make([]notes, len(columns)), cells: make([]slot, blockRows*len(columns))}
 }
 
-// format turns rows [from, to) of the frame into p.out, up to the first cell
-// that cannot be written.
+// format turns rows [from, to) of the frame into p.out, up to the block with the
+// first cell that cannot be written.
 func (p *part) format(f *schema.Frame, from, to int) {
 	p.out, p.bad = p.out[:0], fault{}
 	p.prepare(f)
@@ -59,7 +59,9 @@ func (p *part) format(f *schema.Frame, from, to int) {
 				p.bad = fault{true, from + bad, c}
 			}
 		}
-		p.assemble(n)
+		if !p.bad.found { // behind a fault, the slots of its column are those of an earlier block
+			p.assemble(n)
+		}
 	}
 }
 

@@ -19,8 +19,8 @@ const Size = 32
 //
 //	k = ⌊log₁₀ 2^q⌋, so that 1 ≤ 2^q/10^k < 10,
 //
-// that interval holds two multiples of 10^k or more, but one of 10^(k+1) at
-// most: where there is one it is the shortest decimal, when its zeros at the end
+// that interval, 1 to 10 times 10^k wide, holds a multiple of 10^k, and one of
+// 10^(k+1) at most: where there is one it is the shortest decimal, when its zeros at the end
 // are dropped; where there is none, the multiple of 10^k closest to c·2^q is.
 // So all that has to be known is c·2^q/10^k, whose whole part has 16 or 17
 // digits, and how its last digit and its fraction compare with half the interval.
