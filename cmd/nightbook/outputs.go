@@ -1,6 +1,7 @@
 package main
 
 import (
+	"cmp"
 	"context"
 	"errors"
 	"fmt"
@@ -199,14 +200,31 @@ func (out *outputs) rejects(rejects []schema.Reject) error {
 
 // finish writes what is known only at the end, and makes the folder appear.
 func (out *outputs) finish(s *schema.Summary) error {
+	if out.folder == nil {
+		return out.closeLines()
+	}
+	// The lines go to the disk meanwhile, which takes longest.
+	closed := make(chan error, 1)
+	go func() { closed <- guarded(out.closeLines) }()
+	err := out.sums(s)
+	if err := cmp.Or(<-closed, err); err != nil {
+		return err
+	}
+	return out.commit(s)
+}
+
+// closeLines closes the tables that came line by line.
+func (out *outputs) closeLines() error {
 	for _, t := range slices.Concat(out.lines, out.exercise, []*tableFile{out.rejected}) {
 		if err := t.close(); err != nil {
 			return err
 		}
 	}
-	if out.folder == nil {
-		return nil
-	}
+	return nil
+}
+
+// sums writes the tables of the whole, and the workbook.
+func (out *outputs) sums(s *schema.Summary) error {
 	whole := func(t schema.Table, format string, f *schema.Frame) error {
 		w, err := out.table(t, format)
 		if err != nil {
@@ -227,22 +245,18 @@ func (out *outputs) finish(s *schema.Summary) error {
 		if err := whole(schema.CurrenciesOut, format, s.CurrenciesFrame()); err != nil {
 			return err
 		}
+		s.LinesFiles = append(s.LinesFiles, schema.Lines.Name+"."+format)
 	}
 	if err := whole(schema.WarningsOut, "csv", schema.NotesFrame(s.Notes)); err != nil {
 		return err
 	}
-	for _, format := range out.tableFormats() {
-		s.LinesFiles = append(s.LinesFiles, schema.Lines.Name+"."+format)
+	if out.report == nil {
+		return nil
 	}
-	if out.report != nil {
-		if err := out.report.Finish(s); err != nil {
-			return err
-		}
-		if err := out.reportFile.Close(); err != nil {
-			return err
-		}
+	if err := out.report.Finish(s); err != nil {
+		return err
 	}
-	return out.commit(s)
+	return out.reportFile.Close()
 }
 
 func (out *outputs) commit(s *schema.Summary) error {
