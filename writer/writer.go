@@ -22,6 +22,8 @@ type Table interface {
 // when it no longer does, where the table is given up before Close.
 type Aborter interface{ Abort() }
 
+var _, _ Aborter = (*parquet.Writer)(nil), (*csv.Writer)(nil)
+
 // Formats are the names that NewTable knows, which are also the extensions of
 // the files.
 var Formats = []string{"parquet", "csv"}

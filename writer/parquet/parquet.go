@@ -2,6 +2,7 @@ package parquet
 
 import (
 	"cmp"
+	"errors"
 	"fmt"
 	"io"
 	"sync"
@@ -59,6 +60,8 @@ type Writer struct {
 	meta   footerInfo
 	failed error
 }
+
+var errAborted = errors.New("parquet: the table was given up")
 
 // New starts a file.
 func New(w io.Writer, t schema.Table, opt Options) (*Writer, error) {
@@ -122,6 +125,14 @@ func (p *Writer) Close() error {
 		p.failed = p.writeFooter()
 	}
 	return p.failed
+}
+
+// Abort returns when nothing is written any more, where the table is to be given
+// up. It need not be called after Close.
+func (p *Writer) Abort() {
+	if err := p.settle(); p.failed == nil {
+		p.failed = cmp.Or(err, errAborted)
+	}
 }
 
 // add hands rows [from, to) of the frame to the columns.
