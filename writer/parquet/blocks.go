@@ -6,15 +6,15 @@ const (
 	// blockBytes is a page of doubles.
 	blockBytes = 8 * pageRows
 
-	// slabBlocks is how many blocks are allocated at a time.
-	slabBlocks = 64
+	// slabBytes is how much is allocated at a time.
+	slabBytes = 64 * blockBytes
 )
 
 // blocks are the memory in which a row group lies until it is in the file: what
 // is packed, and numbers from the moment they are added, so that a page which is
-// not packed is never copied. They are used again. While a row group is being written, no more than a few are
-// made: who needs more waits until some have been written, so that a slow disk
-// costs time and not memory.
+// not packed is never copied. They are used again. While a row group is being
+// written, no more than a few are made: who needs more waits until some have been
+// written, so that a slow disk costs time and not memory.
 type blocks struct {
 	mu      sync.Mutex
 	some    sync.Cond // free, or writing no more
@@ -52,8 +52,7 @@ func (b *blocks) take() []byte {
 // cut makes a block.
 func (b *blocks) cut() []byte {
 	if len(b.slab) == 0 {
-		b.slab = make([]byte, slabBlocks*blockBytes)
-		hugePages(b.slab)
+		b.slab = newSlab()
 	}
 	block := b.slab[:0:blockBytes]
 	b.slab = b.slab[blockBytes:]

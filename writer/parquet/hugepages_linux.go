@@ -6,12 +6,14 @@ import (
 	"golang.org/x/sys/unix"
 )
 
-// hugePages asks the system to back memory with large pages: to get it in small
-// ones takes more time than to fill it. A system that cannot is none the worse.
-func hugePages(b []byte) {
+// newSlab allocates memory that is whole huge pages, and asks the system to back
+// it with such: to get it in small ones takes more time than to fill it. What lies
+// before and behind is never touched. A system that cannot is none the worse.
+func newSlab() []byte {
 	const huge = 2 << 20
-	start := uintptr(unsafe.Pointer(unsafe.SliceData(b)))
-	end := (start + uintptr(len(b)) + huge - 1) &^ (huge - 1)
-	start &^= huge - 1
-	_, _, _ = unix.Syscall(unix.SYS_MADVISE, start, end-start, unix.MADV_HUGEPAGE)
+	b := make([]byte, slabBytes+huge)
+	skip := -int(uintptr(unsafe.Pointer(unsafe.SliceData(b)))) & (huge - 1)
+	slab := b[skip:][:slabBytes]
+	_ = unix.Madvise(slab, unix.MADV_HUGEPAGE)
+	return slab
 }

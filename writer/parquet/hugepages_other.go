@@ -2,4 +2,4 @@
 
 package parquet
 
-func hugePages([]byte) {}
+func newSlab() []byte { return make([]byte, slabBytes) }
