@@ -4,6 +4,7 @@ import (
 	"context"
 	"math"
 	"math/rand/v2"
+	"reflect"
 	"testing"
 
 	"nightbook/risk/market"
@@ -21,6 +22,10 @@ func mixedDesk(t *testing.T, n int) (*desk, []line) {
 	d.underlying("F", schema.FuturePrice, "EUR", 100, 0, 0.3)
 	d.underlying("X", schema.Spread, "EUR", -2, 0, nan)
 	d.underlying("N", schema.Equity, "EUR", 100, 0, nan) // no volatility
+	d.underlying("P", schema.Index, "EUR", 100, 0, 0.25) // pays
+	for _, days := range []schema.Date{20, 200, 400} {
+		d.raw.Dividends = append(d.raw.Dividends, schema.DividendRow{Underlying: "P", ExDate: d.cfg.AsOf.Day + days, Amount: 1.5})
+	}
 	for _, days := range []int{30, 90, 365} {
 		for k := 60.0; k < 150; k += 7 {
 			row := schema.VolRow{Underlying: "S", Day: d.cfg.AsOf.Day + schema.Date(days), Minute: schema.NoMinute, Strike: k, Vol: 0.2 + (k-100)*(k-100)/1e5}
@@ -54,6 +59,17 @@ func mixedDesk(t *testing.T, n int) (*desk, []line) {
 		case 9:
 			l = l.american()
 			l.quantity, l.multiplier = 1e200, 1e200
+		case 10:
+			l.underlying = "P"
+		case 11:
+			l = l.american()
+			l.underlying = "P"
+		case 12: // refused where a dividend comes before expiry
+			l.underlying, l.payoff, l.start = "P", schema.AsianGeometric, 1
+		case 13:
+			l = line{underlying: []string{"P", "S"}[rng.IntN(2)], instrument: schema.Forward, strike: l.strike, days: l.days}
+		case 14:
+			l.payoff, l.barrierType, l.barrier = schema.Barrier, schema.UpOut, 160
 		}
 		lines[i] = l
 	}
@@ -110,7 +126,7 @@ func TestBlocksDoNotMatter(t *testing.T) {
 			t.Fatalf("line %d: other words than by itself", i)
 		}
 	}
-	if len(rejects) != 0 || refused[schema.NotFinite] < 10 || refused[schema.UnknownUnderlying] < 10 || refused[schema.NoVol] < 10 {
+	if len(rejects) != 0 || refused[schema.NotFinite] < 10 || refused[schema.UnknownUnderlying] < 10 || refused[schema.NoVol] < 10 || refused[schema.Unsupported] < 10 {
 		t.Errorf("refused %v, %d left", refused, len(rejects))
 	}
 	for _, n := range b.Notes {
@@ -138,14 +154,16 @@ func TestTerms(t *testing.T) {
 		if rng.IntN(64) == 0 { // as from batch to batch
 			s.trim()
 		}
-		key := termKey{schema.Code(rng.IntN(7)), d.cfg.AsOf.Day + schema.Date(rng.IntN(20_000)-10), schema.NoMinute}
+		key := termKey{schema.Code(rng.IntN(8)), d.cfg.AsOf.Day + schema.Date(rng.IntN(20_000)-10), schema.NoMinute}
 		if rng.IntN(4) == 0 {
 			key.minute = int16(rng.IntN(1440))
 		}
 		at := s.find(e, key)
 		got, want := &s.list[at], e.newTerm(key)
-		if got.key != key || got.time != want.time || got.underlying != want.underlying ||
-			math.Float64bits(got.forward) != math.Float64bits(want.forward) || got.smile != want.smile {
+		if got.key != key || got.time != want.time || got.underlying != want.underlying || got.fx != want.fx ||
+			math.Float64bits(got.rate) != math.Float64bits(want.rate) || math.Float64bits(got.forward) != math.Float64bits(want.forward) ||
+			got.after != want.after || got.curveInside != want.curveInside || got.dividendsPV != want.dividendsPV ||
+			!reflect.DeepEqual(got.dividends, want.dividends) || got.smile != want.smile {
 			t.Fatalf("%+v: %+v, want %+v", key, *got, want)
 		}
 		if again := s.find(e, key); again != at {
