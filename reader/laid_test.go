@@ -74,7 +74,7 @@ func laid(t testing.TB, columns []laidColumn, groups [][][]string, how func(grou
 func compact(t testing.TB, s thrift.TStruct) []byte {
 	t.Helper()
 	w := thrift.NewTSerializer()
-	w.Protocol = thrift.NewTCompactProtocolFactory().GetProtocol(w.Transport)
+	w.Protocol = thrift.NewTCompactProtocolFactoryConf(nil).GetProtocol(w.Transport)
 	b, err := w.Write(context.Background(), s)
 	if err != nil {
 		t.Fatal(err)

@@ -51,11 +51,11 @@ surface of these volatilities.`,
 					return usagef("--out takes a file that ends in .csv or .parquet, not %q", out)
 				}
 			}
-			rows, refused, err := imply(c.Context, snapshot, c.String("as-of"), out)
+			found, err := imply(c.Context, snapshot, c.String("as-of"), out)
 			if err != nil {
 				return err
 			}
-			write := func(w io.Writer) error { return writeImplied(w, format, rows) }
+			write := func(w io.Writer) error { return found.write(w, format) }
 			if out == "" {
 				err = write(c.App.Writer)
 			} else {
@@ -67,44 +67,54 @@ surface of these volatilities.`,
 			if err != nil {
 				return err
 			}
-			return tellImplied(newConsole(c.App.ErrWriter, c.String("log")), rows, refused)
+			return found.tell(newConsole(c.App.ErrWriter, c.String("log")))
 		},
 	}
 }
 
-// imply reads a snapshot and inverts its quotes. refused are rows of the other
-// tables: what a quote lacks for them is answered with the quote, but a table
-// that lost a row may be one that no quote stumbles over.
-func imply(ctx context.Context, snapshot, asOf, out string) (rows []schema.ImpliedRow, refused []schema.Reject, err error) {
+// implied is what came of the quotes.
+type implied struct {
+	rows []schema.ImpliedRow
+
+	// Rows of the other tables: what a quote lacks for them is answered with the
+	// quote, but a table that lost a row may be one that no quote stumbles over.
+	refused []schema.Reject
+
+	bareText bool
+}
+
+// imply reads a snapshot and inverts its quotes.
+func imply(ctx context.Context, snapshot, asOf, out string) (*implied, error) {
 	folder, err := reader.OpenFolder(ctx, snapshot, "underlyings", "rates", "quotes")
 	if err != nil {
-		return nil, nil, err
+		return nil, err
 	}
 	if err := keepInputs(folder, snapshot, out); err != nil {
-		return nil, nil, err
+		return nil, err
 	}
 	cfg, err := folder.Config(asOf)
 	if err != nil {
-		return nil, nil, err
+		return nil, err
 	}
 	cfg.Vols.FromQuotes = true
 	raw, err := folder.Market(cfg)
 	if err != nil {
-		return nil, nil, err
+		return nil, err
 	}
 	raw.Vols = nil
 	dicts := schema.NewDicts()
 	m, _, err := market.New(cfg, raw, dicts)
 	if err != nil {
-		return nil, nil, err
+		return nil, err
 	}
+	found := &implied{bareText: cfg.CSV.BareText}
 	for _, f := range raw.Faults {
 		if f.Table != "quotes" { // each of those is answered
-			refused = append(refused, f.Reject)
+			found.refused = append(found.refused, f.Reject)
 		}
 	}
-	rows, err = risk.Imply(ctx, m, dicts, raw.Quotes)
-	return rows, refused, err
+	found.rows, err = risk.Imply(ctx, m, dicts, raw.Quotes)
+	return found, err
 }
 
 // keepInputs refuses to write over what is read.
@@ -127,12 +137,12 @@ func keepInputs(folder *reader.Folder, snapshot, out string) error {
 	return nil
 }
 
-func writeImplied(w io.Writer, format string, rows []schema.ImpliedRow) error {
-	t, err := writer.NewTable(format, w, schema.ImpliedOut, writer.Options{Workers: 1})
+func (found *implied) write(w io.Writer, format string) error {
+	t, err := writer.NewTable(format, w, schema.ImpliedOut, writer.Options{Workers: 1, BareText: found.bareText})
 	if err != nil {
 		return err
 	}
-	if err := t.Write(schema.ImpliedFrame(rows)); err != nil {
+	if err := t.Write(schema.ImpliedFrame(found.rows)); err != nil {
 		return err
 	}
 	return t.Close()
@@ -142,9 +152,10 @@ func writeImplied(w io.Writer, format string, rows []schema.ImpliedRow) error {
 // them to look into.
 const mostRefused = 20
 
-// tellImplied counts the quotes by status, and tells of the refused rows of other
+// tell counts the quotes by status, and tells of the refused rows of other
 // tables. Either is a status of the program of its own.
-func tellImplied(con *console, rows []schema.ImpliedRow, refused []schema.Reject) error {
+func (found *implied) tell(con *console) error {
+	rows, refused := found.rows, found.refused
 	count := make([]int, len(schema.QuoteStatuses))
 	for i := range rows {
 		count[rows[i].Status]++
