@@ -38,6 +38,7 @@ type Options struct {
 	Compression string            // of Parquet: zstd, snappy, gzip or none; "" is zstd
 	Metadata    map[string]string // key-value pairs for the footer of Parquet files
 	GroupRows   int               // rows in a row group of Parquet; 0 is 262,144
+	GroupBytes  int64             // bytes of its pages, if texts are long; 0 is 128 MiB
 
 	// BareText turns off, for CSV, the protection against texts that a
 	// spreadsheet would run as formulas (see package csv).
@@ -54,6 +55,7 @@ func NewTable(format string, w io.Writer, t schema.Table, opt Options) (Table, e
 			Compression: opt.Compression,
 			Metadata:    opt.Metadata,
 			GroupRows:   opt.GroupRows,
+			GroupBytes:  opt.GroupBytes,
 		})
 	case "csv":
 		return csv.New(w, t, csv.Options{

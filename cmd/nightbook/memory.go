@@ -38,9 +38,10 @@ type input interface {
 
 // share is how a run divides the memory it may take.
 type share struct {
-	workers   int
-	groupRows int   // of the row groups of Parquet files; 0: as many as usual
-	live      int64 // bytes that may be in use at a time; 0: any number
+	workers    int
+	groupRows  int   // of the row groups of Parquet files; 0: as many as usual
+	groupBytes int64 // beyond which they end early
+	live       int64 // bytes that may be in use at a time; 0: any number
 }
 
 // bound lowers the limits on what is read to what o.memory leaves, before
@@ -118,6 +119,7 @@ func (o *options) needed(columns []schema.Column, ceiling int64) (s share, need 
 			need += csvMemory
 		case "parquet":
 			s.groupRows = parquet.GroupRows(columns, ceiling/2)
+			s.groupBytes = parquet.GroupBytes(columns, s.groupRows)
 			need += parquet.Memory(columns, s.groupRows)
 		}
 	}

@@ -140,6 +140,7 @@ func (out *outputs) table(t schema.Table, format string) (*tableFile, error) {
 		Version:     version,
 		Workers:     out.share.workers,
 		GroupRows:   out.share.groupRows,
+		GroupBytes:  out.share.groupBytes,
 		Metadata: map[string]string{
 			"nightbook.version": version, "nightbook.schema_revision": strconv.Itoa(schema.Revision),
 			"nightbook.as_of": out.cfg.AsOf.String(), "nightbook.reporting_currency": out.cfg.ReportingCurrency,

@@ -41,7 +41,7 @@ func (p *Writer) flush() error {
 	go func() { done <- p.writeGroup(g) }()
 	p.writing, p.written, p.group = g, done, nil
 	p.rows += p.groupRows
-	p.groupRows = 0
+	p.groupRows, p.groupHeld = 0, 0
 	return nil
 }
 

@@ -6,8 +6,8 @@ import "nightbook/schema"
 // the codecs.
 const fixedMemory = 12 << 20
 
-// Memory returns about how many bytes a writer takes at most, if texts are
-// short. groupRows 0 is the usual number.
+// Memory returns about how many bytes a writer takes at most, if texts are short
+// or GroupBytes ends row groups. groupRows 0 is the usual number.
 func Memory(columns []schema.Column, groupRows int) int64 {
 	if groupRows == 0 {
 		groupRows = mostRows
@@ -22,6 +22,13 @@ func Memory(columns []schema.Column, groupRows int) int64 {
 	// few while the row group before is being written.
 	blocks := numbers*(groupRows/pageRows+1) + len(columns)
 	return fixedMemory + int64(blocks)*blockBytes
+}
+
+// GroupBytes returns how many bytes of pages a row group may have for a writer to
+// get by with Memory if texts are long: of what is there for pages two thirds, as
+// blocks are not full.
+func GroupBytes(columns []schema.Column, groupRows int) int64 {
+	return (Memory(columns, groupRows) - fixedMemory) * 2 / 3
 }
 
 // GroupRows returns how many rows a row group may have for a writer to get by

@@ -20,10 +20,10 @@ const (
 	// mostRows is how many rows a row group holds, unless Options say fewer.
 	mostRows = 16 * pageRows
 
-	// groupBytes ends a row group early: it bounds the memory that long texts
-	// take. It is looked at every checkRows rows.
-	groupBytes = 128 << 20
-	checkRows  = 4 << 10
+	// mostBytes is how many bytes of pages a row group holds, unless Options say
+	// fewer: long texts end it early. It is looked at every checkRows rows.
+	mostBytes = 128 << 20
+	checkRows = 4 << 10
 )
 
 // Options are settings of the format; the zero value serves.
@@ -32,7 +32,8 @@ type Options struct {
 	Version     string            // of the program
 	Compression string            // zstd, snappy, gzip or none; "" is zstd
 	Metadata    map[string]string // key-value pairs for the footer
-	GroupRows   int               // rows in a row group: see GroupRows; 0 is 262,144
+	GroupRows   int               // rows in a row group, rounded up to 4,096; 0 is 262,144
+	GroupBytes  int64             // of pages in a row group: see GroupBytes; 0 is 128 MiB
 }
 
 // Writer writes one table.
@@ -46,7 +47,9 @@ type Writer struct {
 	rows      int64  // of the row groups that are full
 	group     *group // being filled; nil before its first row
 	groupRows int64  // in it
-	fullRows  int64  // when it is full
+	groupHeld int64  // bytes of its pages when it was last looked at
+	fullRows  int64  // it is full with so many rows,
+	fullBytes int64  // or where more would be more bytes
 
 	writing *group     // nil if none is
 	written chan error // of writing
@@ -77,7 +80,8 @@ func New(w io.Writer, t schema.Table, opt Options) (*Writer, error) {
 		blocks: newBlocks(len(t.Columns)),
 		meta:   footerInfo{version: opt.Version, pairs: opt.Metadata},
 
-		fullRows: int64(cmp.Or(opt.GroupRows, mostRows)),
+		fullRows:  int64(cmp.Or(opt.GroupRows, mostRows)),
+		fullBytes: cmp.Or(opt.GroupBytes, mostBytes),
 	}
 	for _, c := range t.Columns {
 		p.columns = append(p.columns, newColumn(c, comp, p.blocks))
@@ -106,7 +110,7 @@ func (p *Writer) Write(f *schema.Frame) error {
 		p.failed = p.add(f, from, to)
 		p.groupRows += int64(to - from)
 		from = to
-		if p.failed == nil && p.groupRows%checkRows == 0 && (p.groupRows == p.fullRows || p.held() > groupBytes) {
+		if p.failed == nil && p.groupRows%checkRows == 0 && p.full() {
 			p.failed = p.flush()
 		}
 	}
@@ -174,6 +178,14 @@ func (p *Writer) each(do func(i int, s *scratch) error) error {
 		}
 	}
 	return nil
+}
+
+// full is whether the row group is, where as many rows again as were last added
+// are taken to be as many bytes.
+func (p *Writer) full() bool {
+	before := p.groupHeld
+	p.groupHeld = p.held()
+	return p.groupRows >= p.fullRows || 2*p.groupHeld-before > p.fullBytes
 }
 
 // held is how many bytes the pages of the row group at hand take: none where
