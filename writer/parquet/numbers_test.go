@@ -1,6 +1,7 @@
 package parquet
 
 import (
+	"bytes"
 	"math"
 	"testing"
 
@@ -53,6 +54,33 @@ func TestNumbersEncoding(t *testing.T) {
 		dictionary, plain := countEncodings(pages(t, data, chunk))
 		if dictionary != c.dictionary || plain != c.plain || chunk.MetaData.Codec != c.codec {
 			t.Errorf("%s: %d pages with a dictionary, %d plain, %v", name, dictionary, plain, chunk.MetaData.Codec)
+		}
+	}
+}
+
+// The zeros of a bound have the signs that the format wants, whatever those of the
+// values: a reader that tells them apart may skip no page.
+func TestZeros(t *testing.T) {
+	minus := math.Copysign(0, -1)
+	const negative, positive = 1 << 63, 0 // zero
+	for _, c := range []struct {
+		values    []float64
+		low, high uint64
+	}{
+		{[]float64{0}, negative, positive},
+		{[]float64{minus}, negative, positive},
+		{[]float64{minus, math.NaN(), 0}, negative, positive},
+		{[]float64{0, 1, 2}, negative, math.Float64bits(2)},
+		{[]float64{-2, minus, -1}, math.Float64bits(-2), positive},
+	} {
+		f := &schema.Frame{N: len(c.values), Cols: []schema.Vector{{Kind: schema.KindFloats, Floats: c.values}}}
+		data := write(t, schema.Table{Name: "t", Columns: []schema.Column{{Name: "it", Type: schema.Float}}}, Options{}, f)
+		readBack(t, data, f)
+		chunk := footer(t, data).RowGroups[0].Columns[0]
+		for _, s := range []*parquet.Statistics{chunk.MetaData.Statistics, pages(t, data, chunk)[0].header.DataPageHeader.Statistics} {
+			if !bytes.Equal(s.MinValue, encodeUint64(c.low)) || !bytes.Equal(s.MaxValue, encodeUint64(c.high)) {
+				t.Errorf("%v: from % x to % x", c.values, s.MinValue, s.MaxValue)
+			}
 		}
 	}
 }

@@ -130,24 +130,22 @@ func boundsOf(v *schema.Vector, from, to int) (low, high []byte, nulls int64) {
 		}
 		nulls++
 	}
+	// The format: a smallest zero is written as -0, a largest one as +0.
+	if v.Kind == schema.KindFloats && low != nil {
+		if decodeFloat(low) == 0 {
+			low = []byte{0, 0, 0, 0, 0, 0, 0, 0x80}
+		}
+		if decodeFloat(high) == 0 {
+			high = make([]byte, 8)
+		}
+	}
 	return low, high, nulls
 }
 
 func encodeFloat(x float64) []byte {
-	if x == 0 {
-		x = 0
-	}
 	var b bytes.Buffer
 	binary.Write(&b, binary.LittleEndian, x)
 	return b.Bytes()
-}
-
-// sameBound compares bounds; zeros of a double may have either sign.
-func sameBound(v *schema.Vector, got, want []byte) bool {
-	if v.Kind == schema.KindFloats && len(got) == 8 && len(want) == 8 && decodeFloat(want) == 0 {
-		return decodeFloat(got) == 0
-	}
-	return bytes.Equal(got, want)
 }
 
 // Every page, every chunk and the page index must tell the truth.
@@ -167,7 +165,7 @@ func TestStructure(t *testing.T) {
 			compressed += m.TotalCompressedSize
 			uncompressed += m.TotalUncompressedSize
 			low, high, nulls := boundsOf(v, start, start+int(group.NumRows))
-			if s := m.Statistics; !sameBound(v, s.MinValue, low) || !sameBound(v, s.MaxValue, high) || *s.NullCount != nulls {
+			if s := m.Statistics; !bytes.Equal(s.MinValue, low) || !bytes.Equal(s.MaxValue, high) || *s.NullCount != nulls {
 				t.Errorf("group %d, %v: statistics %v", g, m.PathInSchema, s)
 			}
 			list := pages(t, data, chunk)
@@ -193,10 +191,10 @@ func TestStructure(t *testing.T) {
 				}
 				from := start + int(row)
 				low, high, nulls := boundsOf(v, from, from+int(h.NumValues))
-				if s := h.Statistics; !sameBound(v, s.MinValue, low) || !sameBound(v, s.MaxValue, high) || *s.NullCount != nulls {
+				if s := h.Statistics; !bytes.Equal(s.MinValue, low) || !bytes.Equal(s.MaxValue, high) || *s.NullCount != nulls {
 					t.Errorf("group %d, %v, page %d: statistics %v", g, m.PathInSchema, k, s)
 				}
-				if !sameBound(v, columns.MinValues[k], low) || !sameBound(v, columns.MaxValues[k], high) ||
+				if !bytes.Equal(columns.MinValues[k], low) || !bytes.Equal(columns.MaxValues[k], high) ||
 					columns.NullCounts[k] != nulls || columns.NullPages[k] != (low == nil) {
 					t.Errorf("group %d, %v, page %d: the index is wrong", g, m.PathInSchema, k)
 				}
