@@ -7,6 +7,7 @@ import (
 	"math"
 	"math/rand/v2"
 	"runtime"
+	"strings"
 	"testing"
 
 	"nightbook/schema"
@@ -72,7 +73,8 @@ func TestTotalsAreExactlyRounded(t *testing.T) {
 			totals.AddLines(batchOf(d, lots), kindOf)
 		}
 		s := new(schema.Summary)
-		if err := totals.Summary(t.Context(), s); err != nil {
+		// Some are beyond the range of doubles, which is told, and infinite in s.
+		if err := totals.Summary(t.Context(), s); err != nil && !strings.Contains(err.Error(), "beyond the range") {
 			t.Fatal(err)
 		}
 		for _, b := range s.Books {

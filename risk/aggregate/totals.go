@@ -192,7 +192,8 @@ func (t *Totals) local(b *schema.Batch, i int, kind func(schema.Code) schema.Cho
 
 // Summary rounds the sums into a summary: totals, books, underlyings,
 // currencies, reject counts and notes about books. The error is that of a context
-// that ended before: the summary then must not be used.
+// that ended before, or that a sum is beyond the range of doubles: the summary
+// then must not be used.
 func (t *Totals) Summary(ctx context.Context, s *schema.Summary) error {
 	listed := len(t.tree.nodes) > 0
 	for c, sum := range t.books {
@@ -223,7 +224,7 @@ func (t *Totals) Summary(ctx context.Context, s *schema.Summary) error {
 	}
 	s.Notes = append(s.Notes, t.notes...)
 	s.MaxResidual, s.MaxIntegralResidual, s.MaxPriceError = t.worst[0], t.worst[1], t.worst[2]
-	return nil
+	return checkRange(s)
 }
 
 // sumBooks adds the books up along the tree.
