@@ -5,6 +5,7 @@ import (
 	"fmt"
 	"io"
 	"log/slog"
+	"math"
 	"path/filepath"
 	"strings"
 	"text/tabwriter"
@@ -141,8 +142,12 @@ func (c *console) books(s *schema.Summary) {
 	}
 }
 
-// grouped writes x with the given decimals and a comma between thousands.
+// grouped writes x with the given decimals and a comma between thousands; beyond
+// 2^53 it has no digits to fill them, and is written with an exponent.
 func grouped(x float64, decimals int) string {
+	if math.Abs(x) > 1<<53 {
+		return fmt.Sprintf("%.5e", x)
+	}
 	text := fmt.Sprintf("%.*f", decimals, x)
 	sign := ""
 	if strings.HasPrefix(text, "-") {
