@@ -128,7 +128,7 @@ func shown(v *names.Vector, i int) string {
 	case names.KindBools:
 		return fmt.Sprint(v.Bools[i])
 	default:
-		if s := v.Strings.At(i); s != "" {
+		if s := v.Text(i); s != "" {
 			return s
 		}
 	}
