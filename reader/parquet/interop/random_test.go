@@ -100,8 +100,8 @@ func randomColumn(r *rand.Rand, name string, n int) (names.Column, names.Vector)
 	return c, v
 }
 
-// randomNumber is a sequence: one number, a few, many, all different, and one
-// that turns into another in a later page.
+// randomNumber is a sequence: one number, a few, many or all different, which in
+// a later page turns into one of many.
 func randomNumber(r *rand.Rand) func(i int) uint64 {
 	noise := func(x uint64) uint64 { return (x + 1) * 0x9e3779b97f4a7c15 >> 3 * 0xbf58476d1ce4e5b9 }
 	start, length := r.Uint64N(5), r.IntN(40)+1
@@ -115,7 +115,7 @@ func randomNumber(r *rand.Rand) func(i int) uint64 {
 		func(i int) uint64 { return start + uint64(i) },
 		func(i int) uint64 { return -uint64(i) },
 	}
-	one, other, turn := sequences[r.IntN(len(sequences))], sequences[r.IntN(len(sequences))], r.IntN(3*pageRows)
+	one, other, turn := sequences[r.IntN(8)], sequences[4+r.IntN(4)], r.IntN(3*pageRows)
 	return func(i int) uint64 {
 		if i < turn {
 			return one(i)
