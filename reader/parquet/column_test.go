@@ -2,6 +2,7 @@ package parquet
 
 import (
 	"bytes"
+	"encoding/binary"
 	"errors"
 	"strings"
 	"testing"
@@ -107,6 +108,31 @@ func TestDictionaryOfItsRowGroup(t *testing.T) {
 	}
 	if err := read(); !errors.Is(err, errDamaged) {
 		t.Errorf("%v, want a damaged file", err)
+	}
+}
+
+// Few words may make many texts, which are counted before they are spelled out.
+func TestWordsBeyondLimit(t *testing.T) {
+	c := &column{physical: parquet.Type_BYTE_ARRAY, meaning: texts, file: &File{limits: new(schema.Limits)}}
+	c.file.columns = []*column{c}
+	c.file.limits[schema.BatchBytes] = 1 << 20
+	var rows table.Rows
+	rows.Reset(1)
+	for n, size := range []int{1, 50_000} {
+		word := append(binary.LittleEndian.AppendUint32(nil, uint32(size)), make([]byte, size)...)
+		if err := c.values.setDictionary(c, word, 1, parquet.Encoding_PLAIN); err != nil {
+			t.Fatal(err)
+		}
+		if err := c.values.start(c, parquet.Encoding_RLE_DICTIONARY, []byte{0, 0xfe, 0x1f}); err != nil { // of no bit: 0 0 0 …, 2,047 times
+			t.Fatal(err)
+		}
+		err := c.take(&rows, 0, 2000, 2000)
+		if limit := (*schema.LimitError)(nil); n == 0 && err != nil || n == 1 && (!errors.As(err, &limit) || limit.Limit != schema.BatchBytes) {
+			t.Errorf("words of %d bytes: %v", size, err)
+		}
+	}
+	if n := cap(rows.Cols[0].Strings.Data); n > 2<<20 {
+		t.Errorf("%d bytes are taken before the texts are refused", n)
 	}
 }
 

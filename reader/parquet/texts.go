@@ -28,6 +28,9 @@ func (c *column) takeWords(into *table.Rows, at, n, stored int) error {
 		}
 	}
 	if v.Len() > 0 {
+		if sizeOf(d.words, places) > c.file.limits.Of(schema.BatchBytes) { // few words may make many texts
+			return c.file.limits.Exceeded(schema.BatchBytes)
+		}
 		for _, k := range places {
 			v.Append(d.words.Bytes(int(k)))
 		}
