@@ -2,6 +2,7 @@ package reader
 
 import (
 	"unicode/utf8"
+	"weak"
 
 	"nightbook/reader/table"
 	"nightbook/schema"
@@ -9,7 +10,7 @@ import (
 
 // validity is whether all words of a column are valid UTF-8.
 type validity struct {
-	words *table.Words
+	words weak.Pointer[table.Words]
 	all   bool
 }
 
@@ -119,8 +120,9 @@ func (n *Binder) extra(b *schema.Batch) {
 
 // allValid reports whether all words of the house's column k are valid UTF-8.
 func (n *Binder) allValid(k int, words *table.Words) bool {
-	if v := &n.valid[k]; v.words != words {
-		*v = validity{words, true}
+	w := weak.Make(words)
+	if v := &n.valid[k]; v.words != w {
+		*v = validity{w, true}
 		for i := range words.Len() {
 			v.all = v.all && utf8.Valid(words.Bytes(i))
 		}

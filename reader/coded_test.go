@@ -1,17 +1,21 @@
 package reader
 
 import (
+	"context"
 	"fmt"
 	"maps"
 	"math/rand/v2"
 	"os"
 	"path/filepath"
+	"runtime"
 	"slices"
 	"strings"
 	"testing"
+	"weak"
 
 	"github.com/xitongsys/parquet-go/parquet"
 
+	"nightbook/reader/table"
 	"nightbook/schema"
 )
 
@@ -255,6 +259,52 @@ func withColumn(rows [][]string, text string) (wider [][]string) {
 		wider = append(wider, append(slices.Clone(row), text))
 	}
 	return wider
+}
+
+// A binder knows words again without keeping them in memory: they live as long as
+// the piece that has them.
+func TestWordsAreNotKept(t *testing.T) {
+	header, rows := cellsOf(desk(3000, 4))
+	file := laid(t, textColumns(header), [][][]string{rows[:2000], rows[2000:]}, layouts["dictionaries"])
+	f, err := OpenFolder(context.Background(), folderOf(t, map[string]string{"positions.csv": "", "positions.parquet": file}))
+	if err != nil {
+		t.Fatal(err)
+	}
+	cfg, err := f.Config("")
+	if err != nil {
+		t.Fatal(err)
+	}
+	p, err := f.Positions(cfg, schema.NewDicts())
+	if err != nil {
+		t.Fatal(err)
+	}
+	defer p.Close()
+	binder := p.NewBinder()
+	var pc Piece
+	var b schema.Batch
+	var words [2][]weak.Pointer[table.Words]
+	for i := range words {
+		if err := p.Next(&pc); err != nil {
+			t.Fatal(err)
+		}
+		for _, c := range pc.rows.Coded {
+			words[i] = append(words[i], weak.Make(c.Words))
+		}
+		if i > 0 { // the binder has seen the first only
+			break
+		}
+		if err := binder.Bind(&pc, &b); err != nil {
+			t.Fatal(err)
+		}
+	}
+	runtime.GC()
+	for k, h := range header {
+		if words[0][k].Value() != nil || words[1][k].Value() == nil {
+			t.Errorf("column %s: the words of the piece before are kept: %v; those of the piece at hand: %v", h, words[0][k].Value() != nil, words[1][k].Value() != nil)
+		}
+	}
+	runtime.KeepAlive(binder)
+	runtime.KeepAlive(&pc)
 }
 
 // A word that is too long refuses the rows that have it, and what the words of a

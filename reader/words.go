@@ -1,6 +1,8 @@
 package reader
 
 import (
+	"weak"
+
 	"nightbook/reader/table"
 	"nightbook/schema"
 )
@@ -9,8 +11,8 @@ import (
 // the first row that has it, and holds for the others until the column comes
 // with other words. A word that no row has is not looked at.
 type lookup[T any] struct {
-	words  *table.Words
-	known  []verdict // by word
+	words  weak.Pointer[table.Words] // which are not kept for it
+	known  []verdict                 // by word
 	values []T
 }
 
@@ -35,9 +37,9 @@ func (l *lookup[T]) read(c *table.Coded, n *Binder, column int, need *needs, ask
 	if c.Words == nil || c.Words.Len() > mostWords {
 		return nil, false
 	}
-	if l.words != c.Words {
+	if w := weak.Make(c.Words); l.words != w {
 		size := c.Words.Len()
-		l.words = c.Words
+		l.words = w
 		l.known = append(l.known[:0], make([]verdict, size)...)
 		if cap(l.values) < size {
 			l.values = make([]T, size)
