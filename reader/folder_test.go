@@ -61,7 +61,10 @@ func (s *snapshot) rejects() (all []schema.Reject) {
 }
 
 // readAll reads a snapshot, positions last.
-func readAll(dir string) (*snapshot, error) {
+func readAll(dir string) (*snapshot, error) { return readUnder(dir, 0) }
+
+// readUnder reads a folder under a ceiling on memory, as a run does; 0 is none.
+func readUnder(dir string, ceiling int64) (*snapshot, error) {
 	s := &snapshot{dicts: schema.NewDicts()}
 	var err error
 	if s.Folder, err = OpenFolder(context.Background(), dir); err != nil {
@@ -70,6 +73,9 @@ func readAll(dir string) (*snapshot, error) {
 	if s.cfg, err = s.Config(""); err != nil {
 		return nil, err
 	}
+	if ceiling > 0 {
+		s.cfg.Limits.Under(ceiling, schema.PageBytes, ceiling/4)
+	}
 	if s.market, err = s.Market(s.cfg); err != nil {
 		return nil, err
 	}
@@ -77,6 +83,12 @@ func readAll(dir string) (*snapshot, error) {
 		return nil, err
 	}
 	defer s.positions.Close()
+	if ceiling > 0 {
+		if _, _, err := s.positions.Memory(); err != nil {
+			return nil, err
+		}
+		s.positions.LimitTexts(ceiling, ceiling/8)
+	}
 	binder := s.positions.NewBinder()
 	var pc Piece
 	for {

@@ -8,15 +8,18 @@ import (
 )
 
 // Memory returns about how many bytes reading the positions takes at most, beside
-// the pieces and what is in memory when they have been opened. The file says so
-// before it is read.
-func (p *Positions) Memory() (int64, error) {
-	n, err := p.o.memory()
-	if err != nil {
+// the pieces and what is in memory when they have been opened, and how many each
+// piece on its way keeps of the dictionaries. The file says so before it is read.
+func (p *Positions) Memory() (reading, piece int64, err error) {
+	if reading, piece, err = p.o.memory(); err != nil {
 		err = p.o.fail(p.o.sheet, err)
 	}
-	return n, err
+	return reading, piece, err
 }
+
+// Market returns about how many bytes the market takes that was read before, counted
+// row by row.
+func (p *Positions) Market() int64 { return p.folder.held }
 
 // LimitTexts holds the texts of a piece to so many bytes, which is what a ceiling
 // on the memory of the run leaves for them. It is called before Next.
@@ -31,15 +34,15 @@ func (p *Positions) LimitTexts(ceiling, bytes int64) {
 	}
 }
 
-// memory returns what reading takes, 0 where that is little.
-func (o *opened) memory() (int64, error) {
+// memory returns what reading takes, and what a piece keeps; 0 where that is little.
+func (o *opened) memory() (reading, piece int64, err error) {
 	switch s := o.source.(type) {
 	case *parquet.File:
 		return s.Memory()
 	case *parts:
-		return s.memory, nil
+		return s.memory, s.piece, nil
 	}
-	return 0, nil
+	return 0, 0, nil
 }
 
 // checkMemory refuses a table of the market that takes more memory to read than a
@@ -48,7 +51,7 @@ func (o *opened) checkMemory(ceiling int64) error {
 	if ceiling == 0 {
 		return nil
 	}
-	n, err := o.memory()
+	n, _, err := o.memory()
 	if err == nil && n > ceiling/2 {
 		err = fmt.Errorf("its pages and dictionaries take %d MiB of memory to be read, too many under --memory, %d MiB: give --memory more, or write the file with smaller pages", n>>20, ceiling>>20)
 	}

@@ -28,6 +28,7 @@ type parts struct {
 	schema []string // of every file
 	all    int64    // bytes of the files
 	memory int64    // that reading takes, where there is a ceiling
+	piece  int64    // that a piece keeps of the dictionaries
 	texts  int64    // bytes of text in a run of rows that it leaves; 0: any number
 
 	at   int   // the part being read
@@ -63,11 +64,11 @@ func (f *Folder) openParts(in *input, cfg *schema.Config) (*parts, error) {
 			return nil, errors.Join(file.fail("", err), file.Close())
 		}
 		if cfg.Limits.Ceiling() > 0 {
-			n, err := rows.Memory()
+			n, kept, err := rows.Memory()
 			if err != nil {
 				return nil, errors.Join(file.fail("", err), file.Close())
 			}
-			p.memory = max(p.memory, n)
+			p.memory, p.piece = max(p.memory, n), max(p.piece, kept)
 		}
 		if err := file.Close(); err != nil {
 			return nil, err

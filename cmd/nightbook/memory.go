@@ -30,9 +30,10 @@ const (
 	muchReading = 4 * mib // worth a word
 )
 
-// input is what the positions say of the memory that reading takes.
+// input is what the market and the positions say of the memory that they take.
 type input interface {
-	Memory() (int64, error)
+	Market() int64
+	Memory() (reading, piece int64, err error)
 	LimitTexts(ceiling, bytes int64)
 }
 
@@ -67,50 +68,53 @@ func (o *options) bound(cfg *schema.Config) {
 }
 
 // divide divides o.memory. It is called when the market is in memory and the
-// positions are open. Row groups depend on the ceiling and on the columns alone, so that the results are the
-// same with any number of workers.
+// positions are open. Row groups depend on the ceiling and on what is read, and
+// not on the heap, so that the results are the same with any number of workers.
 func (o *options) divide(columns []schema.Column, positions input) (share, error) {
 	if o.memory == 0 {
 		return share{workers: o.workers}, nil
 	}
-	reading, err := positions.Memory()
+	reading, piece, err := positions.Memory()
 	if err != nil {
 		return share{}, err
 	}
+	job := jobMemory + piece
+	fewest := reading + (1+moreJobs)*job
 	runtime.GC() // what is left of reading is not what the market takes
 	var m runtime.MemStats
 	runtime.ReadMemStats(&m)
-	s, need := o.needed(columns, o.memory)
-	kept := int64(m.HeapAlloc) + reading
-	need += kept
-	const fewest = (1 + moreJobs) * jobMemory
-	if need+fewest > o.memory {
-		// With more memory the row groups are larger, which takes some of it.
+	market := int64(m.HeapAlloc)
+	s, need := o.needed(columns, o.memory, fewest+positions.Market())
+	if need+market+fewest > o.memory {
+		// With more memory the row groups may be larger, which takes some of it.
 		enough := o.memory
-		for more := need; more+fewest > enough; more += kept {
-			enough = (more + fewest + 2*mib) / mib * mib
-			_, more = o.needed(columns, enough)
+		for more := need; more+market+fewest > enough; {
+			enough = (more + market + fewest + 2*mib) / mib * mib
+			_, more = o.needed(columns, enough, fewest+positions.Market())
 		}
 		hint := "give --memory more, fewer --formats, or leave --memory away"
-		if reading >= muchReading {
-			hint += fmt.Sprintf("; %d MiB of it are for the pages and dictionaries of the positions: a file written with smaller pages takes less", reading/mib)
+		if inputs := reading + (1+moreJobs)*piece; inputs >= muchReading {
+			hint += fmt.Sprintf("; %d MiB of it are for the pages and dictionaries of the positions: a file written with smaller ones takes less", inputs/mib)
 		}
 		return s, &hinted{fmt.Errorf("--memory %s is too little for this run, which takes %d MiB", sizeText(o.memory), enough/mib), hint}
 	}
-	s.workers = int(min(int64(o.workers), (o.memory-need)/jobMemory-moreJobs))
+	need += market + reading
+	s.workers = int(min(int64(o.workers), (o.memory-need)/job-moreJobs))
 	// A piece's texts stand in it, in its batch, and in a page that is packed.
 	jobs := int64(s.workers + moreJobs)
-	positions.LimitTexts(o.memory, pieceTexts+(o.memory-need-jobs*jobMemory)/(2*jobs+4))
+	positions.LimitTexts(o.memory, pieceTexts+(o.memory-need-jobs*job)/(2*jobs+4))
 	most := o.memory - programMemory
 	s.live = most / 8 * 7 // what is kept grows by more than it was, now and then
 	debug.SetMemoryLimit(most)
 	return s, nil
 }
 
-// needed returns the row groups under a ceiling, and what a run takes beside the
-// market and the batches on their way.
-func (o *options) needed(columns []schema.Column, ceiling int64) (s share, need int64) {
+// needed returns the row groups under a ceiling, of which inputs are taken, and
+// what a run takes beside those. Larger row groups than others are for what is
+// left, and for half of the ceiling at most.
+func (o *options) needed(columns []schema.Column, ceiling, inputs int64) (s share, need int64) {
 	need = programMemory
+	groups := false
 	for _, f := range o.formats {
 		switch f {
 		case "xlsx":
@@ -118,10 +122,13 @@ func (o *options) needed(columns []schema.Column, ceiling int64) (s share, need 
 		case "csv":
 			need += csvMemory
 		case "parquet":
-			s.groupRows = parquet.GroupRows(columns, ceiling/2)
-			s.groupBytes = parquet.GroupBytes(columns, s.groupRows)
-			need += parquet.Memory(columns, s.groupRows)
+			groups = true
 		}
+	}
+	if groups {
+		s.groupRows = parquet.GroupRows(columns, min(ceiling/2, ceiling-need-inputs))
+		s.groupBytes = parquet.GroupBytes(columns, s.groupRows)
+		need += parquet.Memory(columns, s.groupRows)
 	}
 	return s, need
 }

@@ -15,11 +15,12 @@ import (
 	"nightbook/schema"
 )
 
-// pages are positions that take so many bytes to be read.
-type pages int64
+// pages are positions that take so many bytes to be read, and so many for each piece.
+type pages struct{ reading, piece int64 }
 
-func (p *pages) Memory() (int64, error) { return int64(*p), nil }
-func (p *pages) LimitTexts(_, _ int64)  {}
+func (p pages) Memory() (int64, int64, error) { return p.reading, p.piece, nil }
+func (p pages) Market() int64                 { return 8 * mib }
+func (p pages) LimitTexts(_, _ int64)         {}
 
 // What a run is said to take is enough for it, though more memory may mean larger
 // row groups.
@@ -30,7 +31,7 @@ func TestEnoughMemory(t *testing.T) {
 			columns := schema.LinesTable(extra).Columns
 			for _, memory := range []int64{1, 20 * mib, 60 * mib, 80 * mib} {
 				o := &options{formats: formats, workers: 2, memory: memory}
-				_, err := o.divide(columns, new(pages))
+				_, err := o.divide(columns, pages{})
 				if err == nil {
 					continue
 				}
@@ -41,10 +42,32 @@ func TestEnoughMemory(t *testing.T) {
 					t.Fatalf("%v: %v", err, scan)
 				}
 				o.memory = enough * mib
-				if s, err := o.divide(columns, new(pages)); err != nil || s.workers < 1 || s.live <= 0 {
+				if s, err := o.divide(columns, pages{}); err != nil || s.workers < 1 || s.live <= 0 {
 					t.Errorf("%v, %d columns, %s and then %d MiB: %+v %v", formats, len(columns), sizeText(memory), enough, s, err)
 				}
 			}
+		}
+	}
+}
+
+// A run that fits under a ceiling fits under a higher one, though its row groups
+// are larger.
+func TestMoreMemoryIsEnough(t *testing.T) {
+	defer debug.SetMemoryLimit(debug.SetMemoryLimit(-1))
+	columns := schema.LinesTable(nil).Columns
+	for _, in := range []pages{{}, {20 * mib, 0}, {35 * mib, 20 * mib}, {200 * mib, 1 * mib}} {
+		fits := int64(0)
+		for memory := int64(64 * mib); memory < 640*mib; memory += 8 * mib {
+			o := &options{formats: []string{"xlsx", "parquet"}, workers: 2, memory: memory}
+			_, err := o.divide(columns, in)
+			if err == nil && fits == 0 {
+				fits = memory
+			} else if err != nil && fits > 0 {
+				t.Errorf("%+v: %s is enough, %s is not: %v", in, sizeText(fits), sizeText(memory), err)
+			}
+		}
+		if fits == 0 {
+			t.Errorf("%+v: nothing is enough", in)
 		}
 	}
 }
@@ -55,14 +78,25 @@ func TestMemoryOfInputs(t *testing.T) {
 	defer debug.SetMemoryLimit(debug.SetMemoryLimit(-1))
 	columns := schema.LinesTable(nil).Columns
 	o := &options{formats: []string{"csv"}, workers: 1, memory: 100 * mib}
-	few, many := pages(2*mib), pages(60*mib)
-	if _, err := o.divide(columns, &few); err != nil {
+	if _, err := o.divide(columns, pages{2 * mib, 0}); err != nil {
 		t.Error(err)
 	}
-	_, err := o.divide(columns, &many)
-	var says *hinted
-	if !errors.As(err, &says) || !strings.Contains(says.hint, "60 MiB of it are for the pages and dictionaries of the positions") {
-		t.Errorf("%v", err)
+	for _, many := range []pages{{60 * mib, 0}, {0, 20 * mib}} {
+		_, err := o.divide(columns, many)
+		var says *hinted
+		if !errors.As(err, &says) || !strings.Contains(says.hint, "60 MiB of it are for the pages and dictionaries of the positions") {
+			t.Errorf("%v: %v", many, err)
+		}
+	}
+	// Fewer workers have fewer pieces on their way.
+	o.workers, o.memory = 4, 150*mib
+	for _, c := range []struct {
+		piece   int64
+		workers int
+	}{{0, 4}, {1 * mib, 4}, {15 * mib, 3}, {20 * mib, 2}} {
+		if s, err := o.divide(columns, pages{0, c.piece}); err != nil || s.workers > c.workers || s.workers < c.workers-1 {
+			t.Errorf("pieces of %d MiB: %d workers, %v", c.piece/mib, s.workers, err)
+		}
 	}
 }
 

@@ -20,7 +20,19 @@ func FuzzParquet(f *testing.F) {
 		f.Add(readFile(f, name+".parquet"))
 	}
 	f.Fuzz(func(t *testing.T, b []byte) {
-		rendered(bytes.NewReader(b), int64(len(b)))
+		r, size := bytes.NewReader(b), int64(len(b))
+		_, rows, err := rendered(r, size)
+		if err != nil {
+			return
+		}
+		// What can be read, the headers of its pages tell of.
+		p, err := Open(r, size, schema.Limits{})
+		if err != nil {
+			t.Fatal(err)
+		}
+		if reading, kept, err := p.Memory(); err != nil || len(rows) > 0 && reading < codecBytes || kept < 0 {
+			t.Fatalf("reading takes %d, a run %d: %v", reading, kept, err)
+		}
 	})
 }
 
