@@ -232,6 +232,7 @@ func (out *outputs) sums(s *schema.Summary) error {
 			return err
 		}
 		if err := w.write(f); err != nil {
+			w.abort()
 			return err
 		}
 		return w.close()

@@ -18,8 +18,10 @@
 //     first page stands there four times or more on average.
 //   - A chunk is stored uncompressed if compression does not halve what its first
 //     page begins with, and its dictionary: the low bits of computed numbers are
-//     noise, and so are indices that follow no pattern. Texts without codes are
-//     always compressed.
+//     noise, and so are indices that follow no pattern. It stays so where later
+//     pages could be compressed, as in a file that has all options first and then
+//     all stocks: the codec is one for the chunk, and its pages are not kept to
+//     be packed again. Texts without codes are always compressed.
 //   - Smallest and largest value and number of nulls of each page and chunk, a
 //     page index, and a CRC of each page.
 //
