@@ -218,6 +218,53 @@ func TestInterrupted(t *testing.T) {
 	}
 }
 
+// A run into a folder that another run is writing is refused, however long that
+// one takes, and does it no harm.
+func TestSecondRefused(t *testing.T) {
+	c := newContest(t)
+	for try := 1; ; try++ {
+		first, said := c.start(t, 0)
+		for begun := time.Now(); !c.writing(t); {
+			if time.Since(begun) > time.Minute {
+				t.Fatalf("the first run does not begin to write: %s", said)
+			}
+		}
+		first.Process.Signal(syscall.SIGSTOP)
+		second, refused := c.start(t, 1)
+		second.Wait()
+		first.Process.Signal(syscall.SIGCONT)
+		first.Wait()
+		if code := first.ProcessState.ExitCode(); code != exitDone {
+			t.Fatalf("the first run: status %d: %s", code, said)
+		}
+		code := second.ProcessState.ExitCode()
+		if code == exitDone && c.found(t) == 1 && try < 10 { // the first had ended before it was held up
+			if err := os.RemoveAll(c.out); err != nil {
+				t.Fatal(err)
+			}
+			continue
+		}
+		if code != exitFailed || !strings.Contains(refused.String(), "another run is writing it\nhint: wait until that run has ended") {
+			t.Errorf("the second run: status %d: %s", code, refused)
+		}
+		if who := c.found(t); who != 0 {
+			t.Errorf("the results are those of snapshot %d", who)
+		}
+		c.only(t)
+		return
+	}
+}
+
+// writing reports whether a run has begun to write.
+func (c *contest) writing(t *testing.T) bool {
+	t.Helper()
+	parts, err := filepath.Glob(filepath.Join(c.out, ".*part"))
+	if err != nil {
+		t.Fatal(err)
+	}
+	return len(parts) > 0
+}
+
 // Of two runs into one folder at once, one at least succeeds, and a loser says why.
 func TestTwoAtOnce(t *testing.T) {
 	c := newContest(t)
