@@ -1,6 +1,7 @@
 package schema
 
 import (
+	"errors"
 	"fmt"
 	"strings"
 )
@@ -37,6 +38,11 @@ type CellError struct {
 	Column, Value string
 	Code          RejectCode
 	Err           error
+}
+
+// CellError returns the refused row as an error.
+func (r *Reject) CellError() *CellError {
+	return &CellError{File: r.File, Sheet: r.Sheet, Line: r.Line, Column: r.Column, Value: r.Value, Code: r.Code, Err: errors.New(r.Reason)}
 }
 
 // Error says where, what, and what was expected.

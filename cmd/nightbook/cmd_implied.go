@@ -168,7 +168,7 @@ func (found *implied) tell(con *console) error {
 	}
 	for i := range refused[:min(len(refused), mostRefused)] {
 		r := &refused[i]
-		con.say("rejected, "+cellError(r).Error(), "file", r.File, "sheet", r.Sheet, "line", r.Line, "column", r.Column, "code", r.Code, "value", r.Value)
+		con.say("rejected, "+r.CellError().Error(), "file", r.File, "sheet", r.Sheet, "line", r.Line, "column", r.Column, "code", r.Code, "value", r.Value)
 	}
 	if more := len(refused) - mostRefused; more > 0 {
 		con.say(fmt.Sprintf("and %d market rows more", more), "more", more)
@@ -185,9 +185,4 @@ func (found *implied) tell(con *console) error {
 		return &statusError{exitRejected, nil}
 	}
 	return nil
-}
-
-// cellError is a refused row as an error.
-func cellError(r *schema.Reject) *schema.CellError {
-	return &schema.CellError{File: r.File, Sheet: r.Sheet, Line: r.Line, Column: r.Column, Value: r.Value, Code: r.Code, Err: errors.New(r.Reason)}
 }

@@ -2,7 +2,6 @@ package main
 
 import (
 	"cmp"
-	"errors"
 	"slices"
 
 	"nightbook/reader"
@@ -87,7 +86,7 @@ func (g *gate) rows(b *schema.Batch) error {
 
 func strictError(r *schema.Reject) error {
 	return &hinted{
-		&schema.CellError{File: r.File, Sheet: r.Sheet, Line: r.Line, Column: r.Column, Value: r.Value, Code: r.Code, Err: errors.New(r.Reason)},
+		r.CellError(),
 		"--strict stops at the first refused row; without it, refused rows are kept in rejects.csv and the others are priced",
 	}
 }

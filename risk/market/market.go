@@ -1,12 +1,10 @@
 package market
 
 import (
-	"errors"
 	"fmt"
 	"maps"
 	"math"
 	"slices"
-	"sort"
 	"strings"
 
 	"nightbook/schema"
@@ -98,21 +96,22 @@ var noRate = Currency{math.NaN(), Problem{schema.NoFX, "fx has no rate for this 
 func New(cfg *schema.Config, raw *schema.Market, d *schema.Dicts) (*Market, []schema.Note, error) {
 	b := builder{cfg: cfg, raw: raw, dicts: d, m: &Market{AsOf: cfg.AsOf, Reporting: cfg.ReportingCurrency, Models: cfg.Models.OrDefault(), percent: cfg.Vols.Percent}, faults: faultsByName(raw.Faults)}
 	for _, t := range []struct{ table, what string }{{"books", "every sum along the book tree"}, {"holidays", "every line's theta_cash_1bd"}} {
-		if f := b.faults[t.table]; len(f) > 0 {
-			return nil, nil, errors.New(t.table + " has refused rows, and " + t.what + " depends on it: mend " + f.any())
+		if row := refused(raw.Faults, t.table, nil); row != nil {
+			return nil, nil, fmt.Errorf("%s has refused rows, and %s depends on it: mend %w", t.table, t.what, row)
 		}
 	}
-	if at, bad := b.faults["fx"][cfg.ReportingCurrency]; bad {
-		return nil, nil, errors.New("the fx row of the reporting currency is refused: take it out, or mend " + at)
+	if row := refused(raw.Faults, "fx", &cfg.ReportingCurrency); row != nil {
+		return nil, nil, fmt.Errorf("the fx row of the reporting currency is refused: take it out, or mend %w", row)
 	}
 	for _, r := range raw.FX {
 		if r.Currency == cfg.ReportingCurrency && r.Rate != 1 {
 			return nil, nil, fmt.Errorf("fx gives the reporting currency %s the rate %v: the table is quoted in another currency; rates are units of %s for one unit", r.Currency, r.Rate, r.Currency)
 		}
 	}
+	nameless := ""
 	for _, table := range []string{"underlyings", "rates", "fx", "vols", "dividends"} {
-		if at, bad := b.faults[table][""]; bad {
-			return nil, nil, fmt.Errorf("%s has a refused row whose name cannot be read, so every line is in doubt: mend %s", table, at)
+		if row := refused(raw.Faults, table, &nameless); row != nil {
+			return nil, nil, fmt.Errorf("%s has a refused row whose name cannot be read, so every line is in doubt: mend %w", table, row)
 		}
 	}
 	b.calendar()
@@ -122,17 +121,19 @@ func New(cfg *schema.Config, raw *schema.Market, d *schema.Dicts) (*Market, []sc
 	return b.m, b.notes, nil
 }
 
+// refused returns the first refused row of a market table, of one name if that is
+// given, with what is wrong with it; nil is that there is none.
+func refused(faults []schema.Fault, table string, name *string) error {
+	for i := range faults {
+		if f := &faults[i]; f.Table == table && (name == nil || f.Name == *name) {
+			return f.CellError()
+		}
+	}
+	return nil
+}
+
 // faultTable tells, by name, where the first refused row of a market table is.
 type faultTable map[string]string
-
-func (f faultTable) any() string {
-	names := make([]string, 0, len(f))
-	for _, at := range f {
-		names = append(names, at)
-	}
-	sort.Strings(names)
-	return names[0]
-}
 
 func faultsByName(faults []schema.Fault) map[string]faultTable {
 	byTable := map[string]faultTable{}
