@@ -2,13 +2,9 @@ package reader
 
 import (
 	"bytes"
-	"context"
-	"errors"
 	"fmt"
 	"io"
 	"math"
-	"os"
-	"path/filepath"
 	"strconv"
 	"strings"
 	"testing"
@@ -265,114 +261,6 @@ func TestRejectsOfWorkbook(t *testing.T) {
 		if r[i] != want {
 			t.Errorf("%+v, want\n%+v", r[i], want)
 		}
-	}
-}
-
-// A packed file that ends early, or is none, is an error with the file's name;
-// its rows are not taken for all there are.
-func TestTruncated(t *testing.T) {
-	text := desk(3000, 5)
-	for name, whole := range map[string]string{
-		"positions.csv.gz": gzipped(t, text), "positions.csv.zst": zstandard(t, text), "positions.parquet": parquetOf(t, text), "positions.xlsx": sheetOf(t, desk(20, 5)),
-	} {
-		for _, n := range []int{0, 1, 2, 5, len(whole) / 3, len(whole) / 2, len(whole) - 20, len(whole) - 1} {
-			if n == 0 && name != "positions.csv.zst" && name != "positions.csv.gz" {
-				continue // folderOf leaves empty files out
-			}
-			dir := folderOf(t, map[string]string{"positions.csv": "", name: "x"})
-			path := filepath.Join(dir, name)
-			if err := os.WriteFile(path, []byte(whole[:n]), 0o644); err != nil {
-				t.Fatal(err)
-			}
-			s, err := readAll(dir)
-			if err == nil {
-				t.Errorf("%s cut to %d of %d bytes reads well, %d batches", name, n, len(whole), len(s.batches))
-			} else if !strings.Contains(err.Error(), path) {
-				t.Errorf("%s cut to %d bytes: %v does not name the file", name, n, err)
-			}
-			if strings.HasPrefix(name, "positions.csv") && !errors.Is(err, io.ErrUnexpectedEOF) {
-				t.Errorf("%s cut to %d bytes: %v", name, n, err)
-			}
-		}
-	}
-	// One that is cut is in no list of inputs.
-	dir := folderOf(t, map[string]string{"positions.csv": "", "positions.csv.gz": gzipped(t, text)[:20000]})
-	f, err := OpenFolder(context.Background(), dir)
-	if err != nil {
-		t.Fatal(err)
-	}
-	cfg, err := f.Config("")
-	if err != nil {
-		t.Fatal(err)
-	}
-	if p, err := f.Positions(cfg, schema.NewDicts()); err == nil {
-		defer p.Close()
-		var pc Piece
-		for err == nil {
-			err = p.Next(&pc)
-		}
-	}
-	for _, in := range f.Inputs() {
-		if in.Table == "positions" {
-			t.Errorf("%+v", in)
-		}
-	}
-}
-
-// A file that unpacks without measure is refused before it fills the machine.
-func TestBomb(t *testing.T) {
-	line := strings.Repeat("0", 1<<16-1) + "\n"
-	var b bytes.Buffer
-	w, err := zstd.NewWriter(&b) // gzip packs to a thousandth at best
-	if err != nil {
-		t.Fatal(err)
-	}
-	io.WriteString(w, "line_id,book,underlying,instrument,quantity\n")
-	for range (110 << 20) / len(line) {
-		io.WriteString(w, line)
-	}
-	w.Close()
-	dir := folderOf(t, map[string]string{"positions.csv": "", "positions.csv.zst": b.String()})
-	f, err := OpenFolder(context.Background(), dir)
-	if err != nil {
-		t.Fatal(err)
-	}
-	cfg, err := f.Config("")
-	if err != nil {
-		t.Fatal(err)
-	}
-	p, err := f.Positions(cfg, schema.NewDicts())
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer p.Close()
-	var pc Piece
-	for err = p.Next(&pc); err == nil; err = p.Next(&pc) {
-	}
-	var limit *schema.LimitError
-	if !errors.As(err, &limit) || limit.Limit != schema.UnpackedRatio {
-		t.Error(err)
-	}
-}
-
-// A gzip file may be of several members; what stands behind them and is none is
-// not taken for a cut.
-func TestGzipMembers(t *testing.T) {
-	text := desk(300, 5)
-	half := len(text) / 2
-	whole := gzipped(t, text[:half]) + gzipped(t, text[half:])
-	if got, want := content(mustRead(t, map[string]string{"positions.csv": "", "positions.csv.gz": whole})), content(mustRead(t, map[string]string{"positions.csv": text})); got != want {
-		t.Error("two members read otherwise than the text")
-	}
-	for _, behind := range []string{"x", "junk", strings.Repeat("longer than a header", 9)} {
-		_, err := readAll(folderOf(t, map[string]string{"positions.csv": "", "positions.csv.gz": whole + behind}))
-		if !errors.Is(err, errTrailing) || strings.Contains(err.Error(), "cut short") {
-			t.Errorf("%q behind the end: %v", behind, err)
-		}
-	}
-	_, err := readAll(folderOf(t, map[string]string{"positions.csv": "", "positions.csv.gz": whole[:len(whole)-9]}))
-	if !errors.Is(err, io.ErrUnexpectedEOF) {
-		t.Errorf("the second member cut: %v", err)
 	}
 }
 
