@@ -132,8 +132,8 @@ func TestRefusals(t *testing.T) {
 func TestFaultsThatEndTheRun(t *testing.T) {
 	for table, name := range map[string]string{"holidays": "home", "books": "B", "rates": "", "underlyings": "", "fx": "", "vols": "", "dividends": ""} {
 		d := newDesk(t)
-		d.raw.Faults = []schema.Fault{{Table: table, Name: name, Reject: schema.Reject{File: table + ".csv", Line: 4, Code: schema.BadDate}}}
-		if _, _, err := market.New(&d.cfg, &d.raw, d.dicts); err == nil || !strings.Contains(err.Error(), table+".csv line 4") {
+		d.raw.Faults = []schema.Fault{{Table: table, Name: name, Reject: schema.Reject{File: table + ".csv", Line: 4, Code: schema.BadDate, Reason: "expected a date"}}}
+		if _, _, err := market.New(&d.cfg, &d.raw, d.dicts); err == nil || !strings.Contains(err.Error(), table+".csv, line 4: expected a date") {
 			t.Errorf("%s: error %v", table, err)
 		}
 	}
@@ -224,8 +224,8 @@ func TestReportingCurrencyHasTheRateOne(t *testing.T) {
 		t.Errorf("error %v", err)
 	}
 	d = newDesk(t)
-	d.raw.Faults = []schema.Fault{{Table: "fx", Name: "EUR", Reject: schema.Reject{File: "fx.csv", Line: 2}}}
-	if _, _, err := market.New(&d.cfg, &d.raw, d.dicts); err == nil || !strings.Contains(err.Error(), "fx.csv line 2") {
+	d.raw.Faults = []schema.Fault{{Table: "fx", Name: "EUR", Reject: schema.Reject{File: "fx.csv", Line: 2, Reason: "expected a number"}}}
+	if _, _, err := market.New(&d.cfg, &d.raw, d.dicts); err == nil || !strings.Contains(err.Error(), "fx.csv, line 2: expected a number") {
 		t.Errorf("error %v", err)
 	}
 	d = newDesk(t)
