@@ -1,7 +1,6 @@
 package reader
 
 import (
-	"context"
 	"fmt"
 	"maps"
 	"math/rand/v2"
@@ -266,19 +265,7 @@ func withColumn(rows [][]string, text string) (wider [][]string) {
 func TestWordsAreNotKept(t *testing.T) {
 	header, rows := cellsOf(desk(3000, 4))
 	file := laid(t, textColumns(header), [][][]string{rows[:2000], rows[2000:]}, layouts["dictionaries"])
-	f, err := OpenFolder(context.Background(), folderOf(t, map[string]string{"positions.csv": "", "positions.parquet": file}))
-	if err != nil {
-		t.Fatal(err)
-	}
-	cfg, err := f.Config("")
-	if err != nil {
-		t.Fatal(err)
-	}
-	p, err := f.Positions(cfg, schema.NewDicts())
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer p.Close()
+	p := positionsOf(t, folderOf(t, map[string]string{"positions.csv": "", "positions.parquet": file}))
 	binder := p.NewBinder()
 	var pc Piece
 	var b schema.Batch

@@ -125,19 +125,7 @@ func atOnce(t *testing.T, dir string) string {
 
 // Next goes on saying that the file has ended.
 func TestEndStays(t *testing.T) {
-	f, err := OpenFolder(context.Background(), folderOf(t, nil))
-	if err != nil {
-		t.Fatal(err)
-	}
-	cfg, err := f.Config("")
-	if err != nil {
-		t.Fatal(err)
-	}
-	p, err := f.Positions(cfg, schema.NewDicts())
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer p.Close()
+	p := positionsOf(t, folderOf(t, nil))
 	var pc Piece
 	if err := p.Next(&pc); err != nil || pc.Rows != 1 || p.Rows() != 1 {
 		t.Fatal(err, pc.Rows)
@@ -165,19 +153,7 @@ func TestBindAllocations(t *testing.T) {
 }
 
 func bindAllocations(t *testing.T, over map[string]string) {
-	f, err := OpenFolder(context.Background(), folderOf(t, over))
-	if err != nil {
-		t.Fatal(err)
-	}
-	cfg, err := f.Config("")
-	if err != nil {
-		t.Fatal(err)
-	}
-	p, err := f.Positions(cfg, schema.NewDicts())
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer p.Close()
+	p := positionsOf(t, folderOf(t, over))
 	binder := p.NewBinder()
 	var pc Piece
 	var b schema.Batch

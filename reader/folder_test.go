@@ -43,6 +43,25 @@ func folderOf(t testing.TB, over map[string]string) string {
 	return dir
 }
 
+// positionsOf opens the positions of a snapshot folder, until the test ends.
+func positionsOf(t testing.TB, dir string) *Positions {
+	t.Helper()
+	f, err := OpenFolder(context.Background(), dir)
+	if err != nil {
+		t.Fatal(err)
+	}
+	cfg, err := f.Config("")
+	if err != nil {
+		t.Fatal(err)
+	}
+	p, err := f.Positions(cfg, schema.NewDicts())
+	if err != nil {
+		t.Fatal(err)
+	}
+	t.Cleanup(func() { p.Close() })
+	return p
+}
+
 // snapshot is a folder read to the end.
 type snapshot struct {
 	*Folder

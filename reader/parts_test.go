@@ -165,19 +165,7 @@ func TestPartsLink(t *testing.T) {
 func TestPartsChanged(t *testing.T) {
 	one := parquetFile(t, short{"1", "ALBA", "stock", "1"})
 	dir := partsOf(t, "", map[string]string{"book=North/a.parquet": one, "book=North/b.parquet": one})
-	f, err := OpenFolder(context.Background(), dir)
-	if err != nil {
-		t.Fatal(err)
-	}
-	cfg, err := f.Config("")
-	if err != nil {
-		t.Fatal(err)
-	}
-	p, err := f.Positions(cfg, schema.NewDicts())
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer p.Close()
+	p := positionsOf(t, dir)
 	var pc Piece
 	if err := p.Next(&pc); err != nil {
 		t.Fatal(err)

@@ -136,19 +136,7 @@ func TestBomb(t *testing.T) {
 	}
 	w.Close()
 	dir := folderOf(t, map[string]string{"positions.csv": "", "positions.csv.zst": b.String()})
-	f, err := OpenFolder(context.Background(), dir)
-	if err != nil {
-		t.Fatal(err)
-	}
-	cfg, err := f.Config("")
-	if err != nil {
-		t.Fatal(err)
-	}
-	p, err := f.Positions(cfg, schema.NewDicts())
-	if err != nil {
-		t.Fatal(err)
-	}
-	defer p.Close()
+	p := positionsOf(t, dir)
 	var pc Piece
 	for err = p.Next(&pc); err == nil; err = p.Next(&pc) {
 	}
