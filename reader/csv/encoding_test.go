@@ -94,8 +94,11 @@ func FuzzEncoding(f *testing.F) {
 	f.Fuzz(func(t *testing.T, b []byte, e byte) {
 		all := func(r io.Reader) string {
 			u, _, err := decoded(r, Encoding(int(e)%len(EncodingNames)))
+			if wide := bytes.HasPrefix(b, []byte("\xFF\xFE\x00\x00")) || bytes.HasPrefix(b, []byte("\x00\x00\xFE\xFF")); (err != nil) != wide {
+				t.Fatalf("UTF-32 %v: %v", wide, err)
+			}
 			if err != nil {
-				t.Fatal(err)
+				return err.Error()
 			}
 			text, err := io.ReadAll(u)
 			if err != nil {
