@@ -148,12 +148,16 @@ func TestRoundTrip(t *testing.T) {
 }
 
 func TestRowGroups(t *testing.T) {
-	const n = 2*mostRows + 5000
+	rows := mostRows
+	if testing.Short() {
+		rows = 2 * pageRows
+	}
+	n := 2*rows + 5000
 	frames := invent.Slices(invent.Rows(0, n, schema.NewDict()), 4096)
-	data := write(t, invent.Table, Options{Workers: 2, Version: "1.2.3", Metadata: map[string]string{"b": "2", "a": "1"}}, frames...)
+	data := write(t, invent.Table, Options{Workers: 2, Version: "1.2.3", Metadata: map[string]string{"b": "2", "a": "1"}, GroupRows: rows % mostRows}, frames...)
 	compare(t, data, frames...)
 	footer := open(t, data).Footer
-	if len(footer.RowGroups) != 3 || footer.RowGroups[1].NumRows != mostRows || footer.RowGroups[2].NumRows != 5000 {
+	if len(footer.RowGroups) != 3 || footer.RowGroups[1].NumRows != int64(rows) || footer.RowGroups[2].NumRows != 5000 {
 		t.Errorf("row groups: %v", footer.RowGroups)
 	}
 	if *footer.CreatedBy != "nightbook version 1.2.3" {

@@ -330,6 +330,9 @@ func TestLongTextsAreNoBounds(t *testing.T) {
 // Long texts must end a row group before its rows do, at the same row whatever
 // the frames.
 func TestGroupsAreBounded(t *testing.T) {
+	if testing.Short() {
+		t.Skip("800 MB by one goroutine")
+	}
 	const n, size = 5*checkRows + 100, 20_000
 	text := func(i int) string { return strings.Repeat(string(rune('a'+i%26)), size+i%100) }
 	var rows []int64
